@@ -1,0 +1,77 @@
+/**
+ * npm test: everything CI runs. Checks, unit and property tests, the tests on PostgreSQL (the
+ * embedded one, and Debian's where it can be had), and the browser tests against the real program.
+ */
+import { existsSync, readFileSync, rmSync } from "node:fs";
+import path from "node:path";
+import { bin, build, install, requireNode, root, run, say } from "./scripts/steps.mjs";
+import { findChromium, installChromium } from "./scripts/chromium.mjs";
+
+const started = Date.now();
+const reports = path.join(root, "test-results");
+
+requireNode();
+await install();
+rmSync(reports, { recursive: true, force: true });
+
+const steps = [];
+const step = async (name, work) => {
+  const from = Date.now();
+  say(`test: ${name}`);
+  const code = await work();
+  steps.push({ name, code, seconds: Math.round((Date.now() - from) / 1000) });
+};
+
+await step("checks", () => run(process.execPath, ["apps/launch/check.mjs"]));
+await step("build", async () => (await build(), 0));
+await step("unit, property and database tests", () =>
+  run(bin("vitest"), [
+    "run",
+    "--reporter=default",
+    "--reporter=json",
+    `--outputFile.json=${path.join(reports, "vitest.json")}`,
+  ]),
+);
+await step("store's tests on Debian's PostgreSQL 15", () =>
+  run(process.execPath, ["test/debian-postgres.mjs", path.join(reports, "postgres15.json")]),
+);
+await step("browser tests", async () => {
+  const chromium = (await findChromium()) ?? (await installChromium());
+  if (chromium === null) {
+    say("browser tests NOT RUN: no Chromium here, and none could be installed");
+    return 1;
+  }
+  return run(bin("playwright"), ["test", "--config", "test/playwright.config.ts"], {
+    env: {
+      WEIGHHOUSE_CHROMIUM: chromium,
+      PLAYWRIGHT_JSON_OUTPUT_NAME: path.join(reports, "playwright.json"),
+    },
+  });
+});
+
+const counts = countTests();
+for (const { name, code, seconds } of steps) {
+  say(`${code === 0 ? "ok    " : "FAILED"} ${name} (${seconds} s)`);
+}
+say(`in all ${Math.round((Date.now() - started) / 1000)} s`);
+process.stdout.write(`${counts.passed} passed, ${counts.failed} failed\n`);
+const good = counts.failed === 0 && counts.passed > 0 && steps.every(({ code }) => code === 0);
+process.exit(good ? 0 : 1);
+
+function countTests() {
+  const total = { passed: 0, failed: 0 };
+  for (const name of ["vitest.json", "postgres15.json"]) {
+    const report = read(name);
+    total.passed += report?.numPassedTests ?? 0;
+    total.failed += report?.numFailedTests ?? 0;
+  }
+  const browser = read("playwright.json")?.stats;
+  total.passed += (browser?.expected ?? 0) + (browser?.flaky ?? 0);
+  total.failed += browser?.unexpected ?? 0;
+  return total;
+}
+
+function read(name) {
+  const file = path.join(reports, name);
+  return existsSync(file) ? JSON.parse(readFileSync(file, "utf8")) : null;
+}
