@@ -21,7 +21,7 @@ export const campaign = {
 export const observables = [
   { key: "heat-flux", title: "Heat flux at the bed", unit: "mW/m^2", scale: "log10" },
   {
-    key: "undercooling",
+    key: "bed-temperature",
     title: "Bed temperature above pressure melting",
     unit: "K",
     scale: "linear",
@@ -60,7 +60,7 @@ export const measurands = [
   },
   {
     key: "bed-temperature-a",
-    observable: "undercooling",
+    observable: "bed-temperature",
     title: "Bed temperature, borehole A",
     window: within("2025-03-01", "2025-07-01"),
     reference: { family: "uniform", lower: -4, upper: 0.5 },
