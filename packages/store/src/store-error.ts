@@ -1,0 +1,39 @@
+import type { Problem } from "@weighhouse/campaign/problem";
+
+export type StoreErrorCode =
+  | "campaign-exists"
+  | "no-such-campaign"
+  | "no-such-size"
+  | "no-such-entry"
+  | "moved-on"
+  | "invalid-payload"
+  | "payload-too-large"
+  | "clock-not-simulated"
+  | "no-signer"
+  | "strange-key"
+  | "bad-keys"
+  | "bad-settings"
+  | "owner-runs"
+  | "not-migrated"
+  | "ledger-broken"
+  | "member-exists"
+  | "no-such-member"
+  | "embedded-failed";
+
+/** What the store refuses: a closed list of codes, so that every caller's table of them is total. */
+export class StoreError extends Error {
+  override readonly name = "StoreError";
+  readonly code: StoreErrorCode;
+  /** For `invalid-payload`: each fault with its pointer into the payload. */
+  readonly problems: Problem[];
+
+  constructor(
+    code: StoreErrorCode,
+    message: string,
+    options: { cause?: unknown; problems?: Problem[] } = {},
+  ) {
+    super(message, { cause: options.cause });
+    this.code = code;
+    this.problems = options.problems ?? [];
+  }
+}
