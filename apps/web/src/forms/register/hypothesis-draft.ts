@@ -1,0 +1,136 @@
+import type { CampaignDocument, Hypothesis } from "@weighhouse/campaign/document";
+import { expectedFromText, numberFromText, numberToText, textOrNull } from "../entered-text";
+
+/** What the form holds of one prediction: text as typed, one draft per quantity of the campaign. */
+export interface PredictionDraft {
+  measurand: string;
+  says: "silent" | "number";
+  expected: string;
+  tolerance: "exact" | "normal";
+  sd: string;
+  sharing: "common" | "each";
+  decisive: boolean;
+}
+
+export interface HypothesisDraft {
+  title: string;
+  key: string;
+  statement: string;
+  team: string;
+  group: string;
+  weight: string;
+  predictions: PredictionDraft[];
+}
+
+export function silentOn(measurand: string): PredictionDraft {
+  return {
+    measurand,
+    says: "silent",
+    expected: "",
+    tolerance: "normal",
+    sd: "",
+    sharing: "common",
+    decisive: false,
+  };
+}
+
+export function emptyHypothesisDraft(
+  document: CampaignDocument,
+  team: string | null,
+): HypothesisDraft {
+  return {
+    title: "",
+    key: "",
+    statement: "",
+    team: team ?? "",
+    group: "",
+    weight: "1",
+    predictions: openMeasurands(document).map((measurand) => silentOn(measurand.key)),
+  };
+}
+
+/** Measurands that still take predictions, by the start of their window; undated ones last. */
+export function openMeasurands(document: CampaignDocument): CampaignDocument["measurands"] {
+  const opens = (measurand: CampaignDocument["measurands"][number]) =>
+    measurand.window?.from ?? "9999";
+  return document.measurands
+    .filter((measurand) => measurand.closed === null)
+    .toSorted((a, b) => opens(a).localeCompare(opens(b)));
+}
+
+/** The hypothesis that the form's text stands for, as the schemas read it. */
+export function hypothesisContent(draft: HypothesisDraft): Record<string, unknown> {
+  return {
+    key: draft.key.trim(),
+    title: draft.title.trim(),
+    statement: textOrNull(draft.statement),
+    team: textOrNull(draft.team),
+    group: textOrNull(draft.group),
+    weight: numberFromText(draft.weight) ?? 1,
+    predictions: spoken(draft).map(predictionContent),
+  };
+}
+
+export function predictionContent(draft: PredictionDraft): Record<string, unknown> {
+  return {
+    measurand: draft.measurand,
+    expected: expectedFromText(draft.expected),
+    tolerance:
+      draft.tolerance === "exact"
+        ? null
+        : { family: "normal", sd: numberFromText(draft.sd), sharing: draft.sharing },
+    decisive: draft.decisive,
+  };
+}
+
+/** Where a place in the content stands in the form: silent quantities are drafts, not predictions. */
+export function hypothesisField(
+  draft: HypothesisDraft,
+  path: readonly (string | number)[],
+): string {
+  const [part, index, ...rest] = path;
+  if (part !== "predictions" || index === undefined) return path.join(".");
+  const row = spoken(draft)[Number(index)];
+  if (row === undefined) return "predictions";
+  const at = draft.predictions.indexOf(row);
+  const [field, inner] = rest;
+  if (field === "tolerance") return `predictions.${at}.${inner === "sharing" ? "sharing" : "sd"}`;
+  return `predictions.${at}.${field === "decisive" ? "decisive" : "expected"}`;
+}
+
+/** A registered hypothesis back in the form, to be amended. */
+export function draftOfHypothesis(
+  document: CampaignDocument,
+  hypothesis: Hypothesis,
+): HypothesisDraft {
+  const said = new Map(hypothesis.predictions.map((each) => [each.measurand, each]));
+  return {
+    title: hypothesis.title,
+    key: hypothesis.key,
+    statement: hypothesis.statement ?? "",
+    team: hypothesis.team ?? "",
+    group: hypothesis.group ?? "",
+    weight: numberToText(hypothesis.weight),
+    predictions: openMeasurands(document).map(({ key }) => {
+      const prediction = said.get(key);
+      return prediction === undefined ? silentOn(key) : draftOfPrediction(prediction);
+    }),
+  };
+}
+
+function draftOfPrediction(prediction: Hypothesis["predictions"][number]): PredictionDraft {
+  const { tolerance } = prediction;
+  return {
+    measurand: prediction.measurand,
+    says: "number",
+    expected: numberToText(prediction.expected),
+    tolerance: tolerance?.family === "normal" ? "normal" : "exact",
+    sd: tolerance?.family === "normal" ? numberToText(tolerance.sd) : "",
+    sharing: tolerance?.family === "normal" && tolerance.sharing === "each" ? "each" : "common",
+    decisive: prediction.decisive ?? false,
+  };
+}
+
+function spoken(draft: HypothesisDraft): PredictionDraft[] {
+  return draft.predictions.filter((prediction) => prediction.says === "number");
+}
