@@ -1,0 +1,40 @@
+import "server-only";
+import { createContext } from "@weighhouse/api/context";
+import { appRouter } from "@weighhouse/api/router";
+import { DeskError } from "@weighhouse/desk/desk-error";
+import type { Actor } from "@weighhouse/desk/desk";
+import { headers } from "next/headers";
+import { notFound, redirect } from "next/navigation";
+import { cache } from "react";
+import { services } from "./services";
+
+/** The API, called in this process for the reader of this request; one a request. */
+const readApi = cache(async () => {
+  const { desk, auth, log } = await services();
+  const context = await createContext({ desk, auth, log, headers: await headers() });
+  return { caller: appRouter.createCaller(context), actor: context.actor };
+});
+
+export async function readActor(): Promise<Actor> {
+  return (await readApi()).actor;
+}
+
+export type Caller = Awaited<ReturnType<typeof readApi>>["caller"];
+
+/**
+ * Runs one read for a page. What isn't there becomes the page for that; who must sign in first is
+ * sent there and comes back to `path`.
+ */
+export async function readFor<T>(path: string, read: (caller: Caller) => Promise<T>): Promise<T> {
+  const { caller } = await readApi();
+  try {
+    return await read(caller);
+  } catch (error) {
+    const cause = error instanceof Error && error.cause instanceof DeskError ? error.cause : error;
+    if (cause instanceof DeskError && cause.code === "not-found") notFound();
+    if (cause instanceof DeskError && cause.code === "not-signed-in") {
+      redirect(`/sign-in?next=${encodeURIComponent(path)}`);
+    }
+    throw error;
+  }
+}
