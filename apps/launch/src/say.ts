@@ -1,0 +1,1 @@
+export const say = (text: string) => process.stdout.write(`weighhouse: ${text}\n`);

@@ -1,0 +1,129 @@
+import { randomBytes } from "node:crypto";
+import { existsSync, mkdirSync, readFileSync, writeFileSync } from "node:fs";
+import path from "node:path";
+import { defaultHome, startEmbeddedPostgres } from "@weighhouse/store/embedded";
+import type { EmbeddedPostgres } from "@weighhouse/store/embedded";
+import { openKeys } from "@weighhouse/store/keys";
+import { migrate } from "@weighhouse/store/migrate";
+import type { Settings } from "@weighhouse/store/settings";
+import { forgetAddress, writeAddress } from "./address";
+import { demoKey } from "./demo/scenario";
+import { makeDemo } from "./demo/make-demo";
+import { readDemoAccounts } from "./demo/accounts";
+import { freePort } from "./free-port";
+import { scorerProgram, startProgram, webProgram } from "./programs";
+import type { Running } from "./programs";
+import { say } from "./say";
+
+/** Loopback: the demo's accounts are for whoever sits at this machine. */
+const host = "127.0.0.1";
+
+/** Starts it all on one machine and runs until it is told to stop or a part ends. */
+export async function startEverything(settings: Settings): Promise<number> {
+  const stopped = stopSignal();
+  const home = settings.WEIGHHOUSE_HOME ?? defaultHome();
+  mkdirSync(home, { recursive: true });
+  const parts: Running[] = [];
+  let database: EmbeddedPostgres | null = null;
+  try {
+    database = settings.DATABASE_URL ? null : await embedded(home);
+    const url = settings.DATABASE_URL ?? database?.url ?? "";
+    const adminUrl = settings.DATABASE_ADMIN_URL ?? database?.adminUrl;
+    const keys = settings.WEIGHHOUSE_KEYS ?? path.join(home, "keys");
+    const secret = settings.WEIGHHOUSE_SECRET ?? ownSecret(home);
+
+    const port = await freePort(settings.PORT, host);
+    if (port !== settings.PORT) say(`port ${settings.PORT} is taken; using ${port}`);
+    const origin = settings.WEIGHHOUSE_ORIGIN ?? `http://localhost:${port}`;
+    await openKeys({ folder: keys, name: new URL(origin).hostname, make: database !== null });
+
+    if (adminUrl) {
+      say("migrating the database");
+      await migrate({ adminUrl, url });
+    }
+    const environment = {
+      ...process.env,
+      DATABASE_URL: url,
+      WEIGHHOUSE_HOME: home,
+      WEIGHHOUSE_KEYS: keys,
+      WEIGHHOUSE_ORIGIN: origin,
+      WEIGHHOUSE_SECRET: secret,
+      PORT: String(port),
+    };
+    if (database) await makeDemo({ home, url, keys, origin, secret });
+
+    say("starting web and scorer");
+    parts.push(startProgram(scorerProgram(), environment));
+    parts.push(startProgram(webProgram({ port, host }), environment));
+    const ended = Promise.race(
+      parts.map(async ({ name, exited }) => ({ name, code: await exited })),
+    );
+    const answers = await Promise.race([untilAnswers(`http://${host}:${port}/`, stopped), ended]);
+    if (answers === true) {
+      writeAddress(home, origin);
+      announce(origin, home, database !== null);
+    }
+
+    const first = await Promise.race([stopped, ended]);
+    if (first === "stop") {
+      say("stopping");
+      return 0;
+    }
+    say(`${first.name} ended by itself with code ${first.code}; stopping the rest`);
+    return 1;
+  } finally {
+    forgetAddress(home);
+    await Promise.all(parts.map((part) => part.stop()));
+    await database?.stop();
+    say("stopped");
+  }
+}
+
+async function embedded(home: string): Promise<EmbeddedPostgres> {
+  say(`starting the embedded PostgreSQL (data under ${home})`);
+  return startEmbeddedPostgres({ home, log: quietLog });
+}
+
+const quietLog = {
+  info: () => {},
+  warn: (fields: object, message: string) => say(`${message} ${JSON.stringify(fields)}`),
+  error: (fields: object, message: string) => say(`${message} ${JSON.stringify(fields)}`),
+};
+
+/** Signs sessions; made once, readable by this user alone. */
+function ownSecret(home: string): string {
+  const file = path.join(home, "session-secret");
+  if (!existsSync(file)) writeFileSync(file, randomBytes(32).toString("hex"), { mode: 0o600 });
+  return readFileSync(file, "utf8").trim();
+}
+
+function stopSignal(): Promise<"stop"> {
+  return new Promise((resolve) => {
+    for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"] as const) {
+      process.on(signal, () => resolve("stop"));
+    }
+  });
+}
+
+/** True once the page is there; false when told to stop before. */
+async function untilAnswers(address: string, stopped: Promise<"stop">): Promise<boolean> {
+  let stopping = false;
+  void stopped.then(() => (stopping = true));
+  while (!stopping) {
+    const answer = await fetch(address, { redirect: "manual" }).catch(() => null);
+    if (answer && answer.status < 500) return true;
+    await new Promise((resolve) => setTimeout(resolve, 150));
+  }
+  return false;
+}
+
+function announce(origin: string, home: string, withDemo: boolean): void {
+  say(`ready at ${origin}`);
+  const accounts = withDemo ? readDemoAccounts(home) : null;
+  if (!accounts) return;
+  say(`the demo campaign: ${origin}/campaigns/${demoKey}`);
+  say(`demo accounts, all with the password ${accounts.password} (kept in ${home}):`);
+  for (const { email, what } of accounts.people) say(`  ${email.padEnd(30)} ${what}`);
+  say("npm run demo:stream, in another terminal, posts further measurements live");
+  say("Ctrl-C stops everything");
+}
