@@ -192,7 +192,9 @@ function hashOfRange(hasher: Hasher, range: Range, readNode: ReadNode): Uint8Arr
 function perfectNodes({ begin, end }: Range): NodeAddress[] {
   const nodes: NodeAddress[] = [];
   for (let at = begin; at < end;) {
-    const level = Math.floor(Math.log2(end - at));
+    let level = Math.round(Math.log2(end - at));
+    // log2 rounds up just below large powers of two.
+    if (2 ** level > end - at) level -= 1;
     nodes.push({ level, index: at / 2 ** level });
     at += 2 ** level;
   }
