@@ -1,5 +1,5 @@
 import { placeText, type LabelStyle } from "./beam-labels";
-import type { BeamPlan } from "./beam-layout";
+import type { BeamPlan } from "./beam";
 import { KASS_RAFTERY, type BeamScale } from "./beam-scale";
 import { MINUS } from "./numbers";
 import { wrapText } from "./text-width";

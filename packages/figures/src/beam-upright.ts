@@ -1,5 +1,5 @@
 import { composeLabel, placeLabel, placeText, type Label, type LabelStyle } from "./beam-labels";
-import type { BeamLayout, BeamMark, BeamPlan, BeamTick } from "./beam-layout";
+import type { BeamLayout, BeamMark, BeamPlan, BeamTick } from "./beam";
 import {
   BEAM_PX,
   categoryStretches,
