@@ -1,12 +1,62 @@
+import { chmodSync, existsSync, mkdirSync, readFileSync, statSync, writeFileSync } from "node:fs";
+import path from "node:path";
+import { createPrivateKeyPem, signerFromPem } from "@weighhouse/ledger/node-keys";
 import type { TreeHeadSigner } from "@weighhouse/ledger/tree-head";
+import { decodeVerifierKey, encodeVerifierKey, fingerprint } from "@weighhouse/ledger/verifier-key";
 import { StoreError } from "./store-error";
 
-/** Reads the signing key of a folder; with `make`, makes folder and key if there is none. */
-export async function openKeys(options: {
+export type KeysOptions = {
   folder: string;
-  /** Key name of the signature lines: the server's name without scheme. */
+  /** Key name of the signature lines, used when the key is made: the server's name without scheme. */
   name: string;
+  /** Only the launcher with the embedded database makes keys by itself. */
   make: boolean;
-}): Promise<TreeHeadSigner> {
-  throw new StoreError("bad-keys", options.folder);
+};
+
+const PRIVATE = "tree-heads.pem";
+const PUBLIC = "tree-heads.vkey";
+
+/** Reads the signing key of a folder; with `make`, makes folder and key if there is none. */
+export async function openKeys({ folder, name, make }: KeysOptions): Promise<TreeHeadSigner> {
+  const privateFile = path.join(folder, PRIVATE);
+  const publicFile = path.join(folder, PUBLIC);
+  if (!existsSync(privateFile)) {
+    if (!make) throw refusal(`no ${privateFile}`, "a folder with the installation's key");
+    makeKey(folder, name);
+  }
+  const { mode } = statSync(privateFile);
+  if ((mode & 0o077) !== 0) {
+    throw refusal(`${privateFile} with mode ${(mode & 0o777).toString(8)}`, "mode 600");
+  }
+  // The name is part of every signature, so it is kept with the key, not taken from settings.
+  const verifier = readPublic(publicFile);
+  const signer = signerFromPem(readFileSync(privateFile, "utf8"), verifier.name);
+  if (fingerprint(signer.publicKey) !== fingerprint(verifier.publicKey)) {
+    throw refusal(`${PUBLIC} of another key than ${PRIVATE}`, "the two halves of one key");
+  }
+  return signer;
+}
+
+function makeKey(folder: string, name: string): void {
+  mkdirSync(folder, { recursive: true, mode: 0o700 });
+  chmodSync(folder, 0o700);
+  const pem = createPrivateKeyPem();
+  const text = `${encodeVerifierKey(signerFromPem(pem, name))}\n`;
+  // The public half first: with the private one there, the key counts as made.
+  writeFileSync(path.join(folder, PUBLIC), text, { mode: 0o600 });
+  writeFileSync(path.join(folder, PRIVATE), pem, { mode: 0o600, flag: "wx" });
+}
+
+function readPublic(file: string): ReturnType<typeof decodeVerifierKey> {
+  try {
+    return decodeVerifierKey(readFileSync(file, "utf8"));
+  } catch (cause) {
+    throw new StoreError("bad-keys", `WEIGHHOUSE_KEYS: found no verifier key in ${file}`, {
+      cause,
+    });
+  }
+}
+
+function refusal(found: string, allowed: string): StoreError {
+  return new StoreError("bad-keys", `WEIGHHOUSE_KEYS: found ${found}; allowed is ${allowed}`);
 }

@@ -1,2 +1,7 @@
 // The one list of tables that drizzle and better-auth's adapter take.
 export { account, rateLimit, session, user, verification } from "./accounts";
+export { campaigns } from "./campaigns";
+export { entries, heads, nodes, signingKeys, tips } from "./ledger";
+export { memberships } from "./memberships";
+export { measurements, parts } from "./projections";
+export { scorerStates, standings, timelinePoints, timelineSteps } from "./standings";

@@ -1,0 +1,68 @@
+import { sql } from "drizzle-orm";
+import {
+  boolean,
+  doublePrecision,
+  index,
+  pgTable,
+  primaryKey,
+  text,
+  uniqueIndex,
+} from "drizzle-orm/pg-core";
+import { instant } from "../instant";
+import { campaigns } from "./campaigns";
+import { campaignId, jsonText, versionColumns } from "./columns";
+
+/** Every part of a campaign document but its measurements, in each of its versions. */
+export const parts = pgTable(
+  "parts",
+  {
+    campaignId: campaignId().references(() => campaigns.id),
+    part: text("part").notNull(),
+    key: text("key").notNull(),
+    ...versionColumns(),
+    content: jsonText("content").notNull(),
+  },
+  (table) => [
+    primaryKey({
+      name: "parts_pkey",
+      columns: [table.campaignId, table.part, table.key, table.fromSize],
+    }),
+    uniqueIndex("parts_current_unique")
+      .on(table.campaignId, table.part, table.key)
+      .where(sql`${table.toSize} is null`),
+  ],
+);
+
+/** Measurements in each of their versions: `content` is the whole, the columns are for finding. */
+export const measurements = pgTable(
+  "measurements",
+  {
+    campaignId: campaignId().references(() => campaigns.id),
+    id: text("id").notNull(),
+    ...versionColumns(),
+    measurand: text("measurand").notNull(),
+    facility: text("facility"),
+    team: text("team"),
+    batch: text("batch"),
+    observedAt: instant("observed_at"),
+    postedAt: instant("posted_at"),
+    /** In the unit as posted, as are `sd` and the content. */
+    value: doublePrecision("value"),
+    sd: doublePrecision("sd"),
+    unit: text("unit"),
+    setAside: boolean("set_aside").notNull(),
+    content: jsonText("content").notNull(),
+  },
+  (table) => [
+    primaryKey({
+      name: "measurements_pkey",
+      columns: [table.campaignId, table.id, table.fromSize],
+    }),
+    uniqueIndex("measurements_current_unique")
+      .on(table.campaignId, table.id)
+      .where(sql`${table.toSize} is null`),
+    index("measurements_order_index").on(table.campaignId, table.firstSeq, table.firstPlace),
+    index("measurements_measurand_index").on(table.campaignId, table.measurand, table.observedAt),
+    index("measurements_facility_index").on(table.campaignId, table.facility, table.observedAt),
+  ],
+);
