@@ -23,7 +23,7 @@ const GAP_PX = 8;
 export function layoutHorizontal(plan: BeamPlan): BeamLayout {
   const { style, width } = plan;
   const labelWidth = Math.min(230, Math.max(130, width * 0.2));
-  const labels = plan.items.map((item) => composeLabel(item, item.leads, labelWidth, style));
+  const labels = plan.items.map((item) => composeLabel(item, labelWidth, style));
   const { scale, right, length } = fitScale(plan, labels);
 
   const ticksTop = 4;

@@ -1,5 +1,4 @@
 import type { Box, PlacedText } from "./boxes";
-import { formatLog10B } from "./standing-numbers";
 import { estimateTextWidth, wrapText, type MeasureText } from "./text-width";
 
 /** One thing that hangs on the beam. */
@@ -10,6 +9,8 @@ export type BeamItem = {
   log10BayesFactor: number | null;
   /** Standard error of that log10, 0 for closed forms. */
   error: number;
+  /** What the label says of it: `leads`, `−0.80`. */
+  number: string;
   /** A short remark after the number: `silent on 4`. */
   note: string | null;
   role: "hypothesis" | "no-model";
@@ -37,16 +38,10 @@ export type Label = { width: number; height: number; lines: { text: string; bold
  * The lines of a label: the title in at most two, then number and note in as many as they need,
  * since a number is never cut.
  */
-export function composeLabel(
-  item: BeamItem,
-  leads: boolean,
-  width: number,
-  style: LabelStyle,
-): Label {
+export function composeLabel(item: BeamItem, width: number, style: LabelStyle): Label {
   const inner = width - 2 * style.padding;
   const { measure, fontSize } = style;
-  const number = leads ? "leads" : formatLog10B(item.log10BayesFactor, item.error);
-  const remark = item.note === null ? number : `${number}, ${item.note}`;
+  const remark = item.note === null ? item.number : `${item.number}, ${item.note}`;
   const lines = [
     ...wrapText(item.title, inner, { measure, fontSize, bold: true, maxLines: 2 }).map((text) => ({
       text,

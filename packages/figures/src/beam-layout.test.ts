@@ -26,7 +26,11 @@ function beams(size: { min: number; max: number }): fc.Arbitrary<BeamInput> {
         }),
         { minLength: size.min, maxLength: size.max },
       ),
-      noModel: fc.option(fc.constantFrom(-400, -4.2, -0.1, 0, 0.2, 7)),
+      noModel: fc.option(
+        fc
+          .constantFrom(-400, -4.2, -0.1, 0, 0.2, 7)
+          .map((log10BayesFactor) => ({ log10BayesFactor, lnEvidence: -12.5 })),
+      ),
       noneDescribes: fc.boolean(),
     })
     .map(({ reach, items, noModel, noneDescribes }) => ({
@@ -113,7 +117,10 @@ describe("labels on the beam", () => {
       note: null,
     }));
     for (const widthPx of [320, 390, 640, 768, 1160, 1600]) {
-      const layout = layoutBeam({ hypotheses, noModel: -0.1, noneDescribes: true }, { widthPx });
+      const layout = layoutBeam(
+        { hypotheses, noModel: { log10BayesFactor: -0.1, lnEvidence: -9 }, noneDescribes: true },
+        { widthPx },
+      );
       expect(layout.marks).toHaveLength(13);
       expect(overlapping(textBoxes(layout))).toEqual([]);
       expect(outside(layout)).toEqual([]);
@@ -144,7 +151,7 @@ describe("the beam", () => {
       { key: "c", title: "Clay", log10BayesFactor: -9.4, error: 0, note: "silent on 4" },
       { key: "d", title: "Dust", log10BayesFactor: null, error: 0, note: null },
     ],
-    noModel: -4.2,
+    noModel: { log10BayesFactor: -4.2, lnEvidence: -9 },
     noneDescribes: false,
   };
 
@@ -172,7 +179,10 @@ describe("the beam", () => {
   });
 
   test("goes on, dashed, to a no-model evidence above the leader's", () => {
-    const layout = layoutBeam({ ...input, noModel: 1.3 }, { widthPx: 1160 });
+    const layout = layoutBeam(
+      { ...input, noModel: { log10BayesFactor: 1.3, lnEvidence: -9 } },
+      { widthPx: 1160 },
+    );
     expect(layout.marks[0]?.key).toBe("no-model");
     expect(layout.beyond?.to.x).toBeGreaterThan(layout.beam.from.x);
     expect(layoutBeam(input, { widthPx: 1160 }).beyond).toBeNull();

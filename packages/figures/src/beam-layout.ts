@@ -3,6 +3,7 @@ import { layoutHorizontal } from "./beam-horizontal";
 import { LABEL_STYLE } from "./beam-labels";
 import { layoutUpright } from "./beam-upright";
 import type { Box, PlacedText } from "./boxes";
+import { formatLnEvidence, formatLog10B } from "./standing-numbers";
 
 export type { BeamInput, BeamLayout, BeamMark, BeamOptions } from "./beam";
 
@@ -42,25 +43,26 @@ export function textBoxes(layout: BeamLayout): Box[] {
 }
 
 function hungItems(input: BeamInput): BeamPlan["items"] {
-  const hypotheses = input.hypotheses.map((item, index) => ({
-    ...item,
-    role: "hypothesis" as const,
-    index,
-    leads: index === 0 && item.log10BayesFactor === 0,
-  }));
+  const hypotheses = input.hypotheses.map((item, index) => {
+    const leads = index === 0 && item.log10BayesFactor === 0;
+    const number = leads ? "leads" : formatLog10B(item.log10BayesFactor);
+    return { ...item, role: "hypothesis" as const, number, index, leads };
+  });
   if (input.noModel === null) return hypotheses;
+  const { log10BayesFactor, lnEvidence } = input.noModel;
   const noModel = {
     key: "no-model",
     title: "no model",
-    log10BayesFactor: input.noModel,
+    log10BayesFactor,
     error: 0,
+    number: `ln evidence ${formatLnEvidence(lnEvidence)}`,
     note: null,
     role: "no-model" as const,
     index: -1,
     leads: false,
   };
   const place = hypotheses.findIndex(
-    (item) => (item.log10BayesFactor ?? -Infinity) < (noModel.log10BayesFactor ?? -Infinity),
+    (item) => (item.log10BayesFactor ?? -Infinity) < log10BayesFactor,
   );
   const before = place === -1 ? hypotheses.length : place;
   return [...hypotheses.slice(0, before), noModel, ...hypotheses.slice(before)];

@@ -24,7 +24,7 @@ const LEAST_LENGTH_PX = 300;
 export function layoutUpright(plan: BeamPlan): BeamLayout {
   const { style, width } = plan;
   const labelWidth = width - LABELS_X_PX - MARGIN_PX;
-  const labels = plan.items.map((item) => composeLabel(item, item.leads, labelWidth, style));
+  const labels = plan.items.map((item) => composeLabel(item, labelWidth, style));
   const hung = labels.reduce((total, label) => total + label.height + GAP_PX, 0);
 
   const statement = plan.noneDescribes

@@ -3,9 +3,9 @@ import type { BeamItem, LabelStyle } from "./beam-labels";
 
 /** What hangs on the beam, the leader first. */
 export type BeamInput = {
-  hypotheses: Omit<BeamItem, "role">[];
-  /** log10 of the no-model evidence against the leader's; null where there is none. */
-  noModel: number | null;
+  hypotheses: Omit<BeamItem, "role" | "number">[];
+  /** Its place on the beam, and the number that the standings hold of it; null where there is none. */
+  noModel: { log10BayesFactor: number; lnEvidence: number } | null;
   /** Set when every hypothesis with data has p < 0.001. */
   noneDescribes: boolean;
 };
