@@ -11,7 +11,7 @@ import {
 } from "./declarations";
 import { key, line, list, measurementId, optional, time, titled } from "./fields";
 import { hypothesisFields, predictionFields } from "./hypothesis";
-import { correlationSchema, measurementFields } from "./measurement";
+import { correlationSchema, measurementFields, withResultDefaults } from "./measurement";
 
 /**
  * The entries of a ledger and their payloads. `registeredAt` and `postedAt` are in none: the fold
@@ -39,9 +39,10 @@ export type EntryKind = (typeof entryKinds)[number];
 export const MEASUREMENTS_PER_ENTRY = 1000;
 
 /** A random id, frozen in entry 0; the tree heads' origin line (C2SP: no space, no plus). */
-const ledgerId = z.string().regex(/^[A-Za-z0-9._:/-]{1,200}$/, {
-  error: "a ledger id: 1 to 200 of A-Z, a-z, 0-9, . _ : / and -",
-});
+const ledgerId = z
+  .string()
+  .regex(/^[A-Za-z0-9._:/-]{1,200}$/)
+  .describe("a ledger id: 1 to 200 of A-Z, a-z, 0-9, . _ : / and -");
 
 export const visibilities = ["public", "members"] as const;
 export const clocks = ["real", "simulated"] as const;
@@ -72,10 +73,9 @@ export const hypothesisContentSchema = z.strictObject({
   ),
 });
 
-export const measurementContentSchema = z.strictObject({
-  ...measurementFields,
-  claimed: optional(z.strictObject({ postedAt: time })),
-});
+export const measurementContentSchema = z
+  .strictObject({ ...measurementFields, claimed: optional(z.strictObject({ postedAt: time })) })
+  .transform(withResultDefaults);
 
 export const payloadSchemas = {
   "campaign.opened": z.strictObject({

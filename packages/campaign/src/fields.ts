@@ -12,18 +12,22 @@ export const ID_PATTERN = /^[A-Za-z0-9._:-]{1,200}$/;
 export const TIME_PATTERN =
   /^(?:(?:\d\d[2468][048]|\d\d[13579][26]|\d\d0[48]|[02468][048]00|[13579][26]00)-02-29|\d{4}-(?:(?:0[13578]|1[02])-(?:0[1-9]|[12]\d|3[01])|(?:0[469]|11)-(?:0[1-9]|[12]\d|30)|02-(?:0[1-9]|1\d|2[0-8])))T(?:(?:[01]\d|2[0-3]):[0-5]\d:[0-5]\d|23:59:60)(?:\.\d{1,9})?Z$/;
 
-export const key = z.string().regex(KEY_PATTERN, {
-  error: "a key: 1 to 64 of a-z, 0-9 and -, starting with a letter or digit",
-});
-export const name = z.string().regex(NAME_PATTERN, {
-  error: "a name for expressions: a small letter, then up to 31 of a-z, A-Z, 0-9 and _",
-});
+export const key = z
+  .string()
+  .regex(KEY_PATTERN)
+  .describe("a key: 1 to 64 of a-z, 0-9 and -, starting with a letter or digit");
+export const name = z
+  .string()
+  .regex(NAME_PATTERN)
+  .describe("a name for expressions: a small letter, then up to 31 of a-z, A-Z, 0-9 and _");
 export const measurementId = z
   .string()
-  .regex(ID_PATTERN, { error: "an id: 1 to 200 of A-Z, a-z, 0-9, . _ : and -" });
-export const time = z.string().regex(TIME_PATTERN, {
-  error: "an RFC 3339 time in UTC, such as 2031-03-01T00:00:00Z",
-});
+  .regex(ID_PATTERN)
+  .describe("an id: 1 to 200 of A-Z, a-z, 0-9, . _ : and -");
+export const time = z
+  .string()
+  .regex(TIME_PATTERN)
+  .describe("an RFC 3339 time in UTC, such as 2031-03-01T00:00:00Z");
 
 /** Texts are bounded so that no document can be made of one of them. */
 export const line = z.string().min(1).max(500);

@@ -34,7 +34,9 @@ export const tableSchema = z.strictObject({
   key: name,
   in: z.array(name).min(1).max(2),
   at: z.array(z.array(number).min(2)).min(1).max(2),
-  values: z.union([z.array(number), z.array(z.array(number))]),
+  values: z
+    .union([z.array(number), z.array(z.array(number))])
+    .describe("a list of numbers, or with two axes a list of such lists"),
 });
 
 /** One row is one joint draw of all columns; weights null: all rows alike. */
@@ -80,7 +82,7 @@ export const toleranceSchema = z.discriminatedUnion("family", [
 /** `tolerance` null beside an `expected` is exact: zero tolerance. */
 export const predictionFields = {
   measurand: key,
-  expected: optional(z.union([number, z.string().min(1)])),
+  expected: optional(z.union([number, z.string().min(1)]).describe("a number or an expression")),
   tolerance: optional(toleranceSchema),
   probability: optional(number),
   given: optional(z.strictObject({ measurand: key, occurred: z.boolean() })),
@@ -97,21 +99,31 @@ export const toleranceCorrelationSchema = z.strictObject({
   coefficient: z.number().min(-1).max(1),
 });
 
-export const hypothesisFields = {
+const identity = {
   key,
   title: line,
   statement: optional(prose),
   team: optional(key),
   group: optional(line),
   weight: defaulted(positive, 1),
+};
+const model = {
   withheld: list(key),
   parameters: list(parameterSchema),
   tables: list(tableSchema),
   ensemble: optional(ensembleSchema),
+};
+const correlations = {
   toleranceCorrelations: list(toleranceCorrelationSchema),
 };
+
+/** The fields that both a document and a ledger's payload have, but for the predictions. */
+export const hypothesisFields = { ...identity, ...model, ...correlations };
+
 export const hypothesisSchema = z.strictObject({
-  ...hypothesisFields,
+  ...identity,
   registeredAt: optional(time),
+  ...model,
   predictions: z.array(predictionSchema),
+  ...correlations,
 });

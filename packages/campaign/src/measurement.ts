@@ -27,13 +27,15 @@ export const loadingSchema = z.strictObject({
 
 export const limits = ["upper", "lower", "fainter", "brighter"] as const;
 
-export const measurementFields = {
+const identity = {
   id: measurementId,
   measurand: key,
   facility: optional(key),
   team: optional(key),
   batch: optional(line),
   observedAt: optional(time),
+};
+const report = {
   knownSince: optional(time),
   conditions: record(name, number),
   value: optional(number),
@@ -56,14 +58,43 @@ export const measurementFields = {
   source: optional(z.string().min(1).max(2000)),
   extra: record(
     z.string().min(1).max(200),
-    z.union([z.string().max(2000), z.number(), z.boolean(), z.null()]),
+    z
+      .union([z.string().max(2000), z.number(), z.boolean(), z.null()])
+      .describe("a text of at most 2000 characters, a number, true, false or null"),
   ),
   shared: list(loadingSchema),
   sameData: optional(line),
   setAside: optional(z.strictObject({ reason: line })),
 };
 
-export const measurementSchema = z.strictObject({ ...measurementFields, postedAt: optional(time) });
+/** The fields that both a document and a ledger's payload have. */
+export const measurementFields = { ...identity, ...report };
+
+export const measurementSchema = z
+  .strictObject({ ...identity, postedAt: optional(time), ...report })
+  .transform(withResultDefaults);
+
+type ResultFields = {
+  occurred: boolean | null;
+  efficiency: number | null;
+  falseAlarm: number | null;
+  count: number | null;
+  exposure: number | null;
+  background: number | null;
+};
+
+/** An event's report is taken as certain, and a count as of one exposure without background. */
+export function withResultDefaults<M extends ResultFields>(measurement: M): M {
+  if (measurement.occurred !== null) {
+    measurement.efficiency ??= 1;
+    measurement.falseAlarm ??= 0;
+  }
+  if (measurement.count !== null) {
+    measurement.exposure ??= 1;
+    measurement.background ??= 0;
+  }
+  return measurement;
+}
 
 export const correlationSchema = z.strictObject({
   a: measurementId,
