@@ -10,7 +10,7 @@ const tones = {
 export function Notice(props: {
   tone?: keyof typeof tones;
   label?: string;
-  role?: "alert" | "status" | "note";
+  role?: "alert";
   children: ReactNode;
 }) {
   return (

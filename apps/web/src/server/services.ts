@@ -29,24 +29,25 @@ export function services(): Promise<Services> {
 async function openServices(): Promise<Services> {
   const settings = readSettings(process.env);
   const origin = settings.WEIGHHOUSE_ORIGIN ?? `http://localhost:${settings.PORT}`;
-  if (!settings.DATABASE_URL || !settings.WEIGHHOUSE_KEYS) {
+  const { DATABASE_URL, WEIGHHOUSE_KEYS, WEIGHHOUSE_SECRET } = settings;
+  if (!DATABASE_URL || !WEIGHHOUSE_KEYS || !WEIGHHOUSE_SECRET) {
     throw new Error(
-      "DATABASE_URL and WEIGHHOUSE_KEYS: found neither or one; both are needed to serve pages",
+      "DATABASE_URL, WEIGHHOUSE_KEYS and WEIGHHOUSE_SECRET are needed to serve pages",
     );
   }
   const log = consoleLog;
   const signer = await openKeys({
-    folder: settings.WEIGHHOUSE_KEYS,
+    folder: WEIGHHOUSE_KEYS,
     name: new URL(origin).host,
     make: false,
   });
   const store = await openStore({
-    url: settings.DATABASE_URL,
+    url: DATABASE_URL,
     readUrl: settings.DATABASE_READ_URL,
     signer,
     log,
   });
-  const auth = createAuth({ store, origin, secret: settings.WEIGHHOUSE_SECRET });
+  const auth = createAuth({ store, origin, secret: WEIGHHOUSE_SECRET });
   return { desk: { store }, auth, log };
 }
 

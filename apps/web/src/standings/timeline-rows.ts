@@ -1,0 +1,39 @@
+import type { TimelineStep } from "@weighhouse/store/standings";
+
+/** One moment of the chart: time, ledger size, and each hypothesis's ln evidence from then on. */
+export interface TimelineRow {
+  time: number;
+  at: string;
+  size: number;
+  movedBy: string;
+  values: Record<string, number | null>;
+}
+
+/** The timeline up to a size, as rows for the chart and for its table. */
+export function timelineRows(steps: readonly TimelineStep[], size: number): TimelineRow[] {
+  return steps
+    .filter((step) => step.size <= size)
+    .map((step) => ({
+      time: Date.parse(step.at),
+      at: step.at,
+      size: step.size,
+      movedBy: movedByText(step.movedBy),
+      values: Object.fromEntries(step.points.map((point) => [point.hypothesis, point.lnEvidence])),
+    }));
+}
+
+/** What a step was moved by: `2 measurements from sobral`, `a hypothesis registered`. */
+export function movedByText(movedBy: TimelineStep["movedBy"]): string {
+  const { kind, measurements, facilities } = movedBy;
+  if (kind === "measurements.posted") {
+    const count = `${measurements} measurement${measurements === 1 ? "" : "s"}`;
+    return facilities.length > 0 ? `${count} from ${facilities.join(", ")}` : count;
+  }
+  const words: Record<string, string> = {
+    "hypothesis.registered": "a hypothesis registered",
+    "hypothesis.amended": "a hypothesis amended",
+    "measurement.set-aside": "a measurement set aside",
+    "registration.closed": "registration closed",
+  };
+  return words[kind] ?? kind;
+}

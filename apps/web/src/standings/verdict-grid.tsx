@@ -1,0 +1,87 @@
+import { formatTension } from "@weighhouse/figures/standing-numbers";
+import { formatWindow } from "@weighhouse/figures/times";
+import Link from "next/link";
+import { HypothesisMark } from "@/look/hypothesis-mark";
+import { Measured } from "@/look/measured";
+import { tailOf } from "@/look/number";
+import { Table } from "@/look/table";
+import { VerdictCell } from "@/look/verdict-cell";
+import type { GridRow, RankedHypothesis } from "./table-rows";
+
+/** Measurands by hypotheses: in each cell the tension in sigma, our mark and the verdict's word. */
+export function VerdictGrid(props: {
+  rows: GridRow[];
+  hypotheses: RankedHypothesis[];
+  base: string;
+}) {
+  const tail = tailOf(
+    props.rows.flatMap((row) =>
+      row.cells.map((cell) =>
+        cell === null || cell.row.tension === null ? null : formatTension(cell.row.tension),
+      ),
+    ),
+  );
+  return (
+    <Table
+      caption="Verdicts, a row for each quantity, a column for each hypothesis"
+      stackBelow={props.hypotheses.length > 5 ? "always" : "middle"}
+      head={
+        <tr>
+          <th scope="col">Quantity, in window order</th>
+          <th scope="col">
+            Measured <span className="gloss">combined</span>
+          </th>
+          {props.hypotheses.map((hypothesis) => (
+            <th scope="col" key={hypothesis.key} className="max-w-[14em]">
+              <HypothesisMark index={hypothesis.index} />
+              {hypothesis.title}
+            </th>
+          ))}
+        </tr>
+      }
+    >
+      {props.rows.map((row) => (
+        <tr key={row.measurand.key} data-measurand={row.measurand.key}>
+          <th scope="row" className="min-w-[12em]">
+            <Link href={`${props.base}/quantities/${row.measurand.key}`} className="link">
+              {row.measurand.title}
+            </Link>
+            <div className="text-[13px] text-quiet">
+              {formatWindow(row.measurand.window.from, row.measurand.window.to)}
+            </div>
+          </th>
+          <td data-label="Measured, combined">
+            <MeasuredCell row={row} />
+          </td>
+          {row.cells.map((cell, column) => (
+            <td
+              key={props.hypotheses[column]?.key ?? column}
+              data-label={props.hypotheses[column]?.title}
+            >
+              <VerdictCell row={cell?.row ?? null} at={cell?.at} tail={tail} />
+            </td>
+          ))}
+        </tr>
+      ))}
+    </Table>
+  );
+}
+
+function MeasuredCell({ row }: { row: GridRow }) {
+  if (row.combined === null || row.place === null) {
+    return (
+      <span className="text-quiet">
+        {row.measurements > 0 ? `${row.measurements} measured, no one value` : "not yet"}
+      </span>
+    );
+  }
+  return (
+    <Measured
+      value={row.combined.value}
+      sd={row.combined.sd}
+      scale={row.observable?.scale ?? "linear"}
+      unit={row.observable?.unit ?? null}
+      at={`/measurands/${row.place}/combined`}
+    />
+  );
+}
