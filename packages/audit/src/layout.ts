@@ -1,0 +1,63 @@
+/** Where things stand in an archive. */
+export const ARCHIVE_FORMAT = "weighhouse-audit/1";
+
+export const README = "README.md";
+export const MANIFEST = "manifest.json";
+export const MANIFEST_NOTE = "manifest.note";
+export const LEDGER = "ledger.ndjson";
+export const PAYLOADS = "payloads.ndjson";
+export const DOCUMENT = "campaign.json";
+export const STANDINGS = "standings.json";
+
+/** Padded, so that the names sort by size. */
+export function headPath(size: number): string {
+  return `heads/${String(size).padStart(10, "0")}.note`;
+}
+
+/** The size in a head's path, or null for another path. */
+export function sizeOfHeadPath(path: string): number | null {
+  const digits = /^heads\/(\d{10})\.note$/.exec(path)?.[1];
+  return digits === undefined ? null : Number(digits);
+}
+
+export function keyPath(fingerprint: string): string {
+  return `keys/${fingerprint.slice(0, 16)}.pub`;
+}
+
+export const TABLE_NAMES = [
+  "hypotheses",
+  "predictions",
+  "measurements",
+  "verdicts",
+  "standings",
+] as const;
+export type TableName = (typeof TABLE_NAMES)[number];
+
+export function tablePath(name: TableName): string {
+  return `tables/${name}.csv`;
+}
+
+const KNOWN = new Set<string>([
+  README,
+  MANIFEST,
+  MANIFEST_NOTE,
+  LEDGER,
+  PAYLOADS,
+  DOCUMENT,
+  STANDINGS,
+  ...TABLE_NAMES.map(tablePath),
+]);
+
+/** True for a path that this version writes, and whose content `verifyArchive` therefore checks. */
+export function isKnownPath(path: string): boolean {
+  return KNOWN.has(path) || sizeOfHeadPath(path) !== null || isKeyPath(path);
+}
+
+export function isKeyPath(path: string): boolean {
+  return /^keys\/[0-9a-f]{16}\.pub$/.test(path);
+}
+
+/** A JSON file of the archive: indented for readers, one form only. */
+export function jsonText(value: unknown): string {
+  return `${JSON.stringify(value, null, 2)}\n`;
+}

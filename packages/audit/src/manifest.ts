@@ -1,0 +1,39 @@
+import * as z from "zod";
+import { utf8, hex } from "@weighhouse/ledger/bytes";
+import type { Hasher } from "@weighhouse/ledger/hasher";
+import { ARCHIVE_FORMAT } from "./layout";
+import type { ArchiveFile } from "./zip-write";
+
+/** What an archive is of, and the SHA-256 of every file in it but the manifest's own two. */
+export const manifestSchema = z.strictObject({
+  format: z.literal(ARCHIVE_FORMAT),
+  campaign: z.string(),
+  /** The ledger's id: the origin line of its tree heads. */
+  ledger: z.string(),
+  /** Number of entries. */
+  size: z.int().positive(),
+  /** Root of the tree of that size, base64. */
+  root: z.string(),
+  /** Time of the last entry. */
+  at: z.string(),
+  clock: z.enum(["real", "simulated"]),
+  engine: z.string(),
+  files: z.array(
+    z.strictObject({ path: z.string(), bytes: z.int().nonnegative(), sha256: z.string() }),
+  ),
+});
+
+export type Manifest = z.output<typeof manifestSchema>;
+
+export function listFiles(hasher: Hasher, files: readonly ArchiveFile[]): Manifest["files"] {
+  return files.map(({ path, bytes }) => ({
+    path,
+    bytes: bytes.length,
+    sha256: hex(hasher(bytes)),
+  }));
+}
+
+/** The text that `manifest.note` signs. No tree head reads like it, so neither passes for the other. */
+export function manifestNoteText(hasher: Hasher, manifestText: string): string {
+  return `weighhouse-manifest/1\n${hex(hasher(utf8(manifestText)))}\n`;
+}
