@@ -1,0 +1,4 @@
+/** What a table may hold at most: past it a file is refused before any row is read. */
+export const MAX_CHARACTERS = 64 * 1024 * 1024;
+export const MAX_ROWS = 250_000;
+export const MAX_COLUMNS = 200;
