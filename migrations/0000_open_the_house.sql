@@ -159,6 +159,7 @@ CREATE TABLE "timeline_points" (
 	"engine" text NOT NULL,
 	"size" integer NOT NULL,
 	"hypothesis" text NOT NULL,
+	"place" integer NOT NULL,
 	"ln_evidence" double precision,
 	CONSTRAINT "timeline_points_pkey" PRIMARY KEY("campaign_id","engine","size","hypothesis")
 );

@@ -1,6 +1,16 @@
+import { changesOf } from "@weighhouse/campaign/changes";
 import type { EntryKind } from "@weighhouse/campaign/entries";
 import type { Entry } from "@weighhouse/ledger/entry";
+import type { Queries } from "./queries";
+import { extendLedger } from "./extend-ledger";
+import { lockTip } from "./lock-tip";
+import type { Tip } from "./lock-tip";
 import type { Store } from "./open-store";
+import { preparePayload } from "./prepare-payload";
+import type { PreparedPayload } from "./prepare-payload";
+import { currentRows, writeRows } from "./projection-rows";
+import { Projector } from "./projector";
+import { queueScoring } from "./scoring-queue";
 import { StoreError } from "./store-error";
 
 /** Returns an instant, `2031-03-01T00:00:00.000000Z`. Only tests and the demo pass one. */
@@ -27,7 +37,79 @@ export type AppendInput = {
   expectedSize?: number | undefined;
 };
 
-/** Appends entries to a campaign's ledger in one transaction. */
-export async function appendEntries(_store: Store, _input: AppendInput): Promise<Appended> {
-  throw new StoreError("no-signer", "");
+/** Name of the channel on which every append and scoring is told. */
+export const CHANNEL = "weighhouse";
+
+/**
+ * Appends entries to a campaign's ledger in one transaction: clock and seq under the campaign's
+ * lock, tree, signed head, projections, the scoring job and the notice. All of it or nothing.
+ *
+ * @throws {StoreError} `no-such-campaign`, `invalid-payload`, `payload-too-large`, `moved-on`,
+ * `clock-not-simulated`, `no-signer`
+ */
+export async function appendEntries(store: Store, input: AppendInput): Promise<Appended> {
+  const payloads = input.entries.map(preparePayload);
+  return store.sql.begin(async (tx) => {
+    const tip = await lockTip(tx, input.campaign);
+    if (input.expectedSize !== undefined && input.expectedSize !== tip.size) {
+      throw new StoreError(
+        "moved-on",
+        `found the ledger at size ${tip.size}; allowed is ${input.expectedSize}, on which this was decided`,
+      );
+    }
+    return writeEntries(store, tx, { tip, by: input.by, payloads, clock: input.clock });
+  }) as Promise<Appended>;
+}
+
+export type WriteInput = {
+  tip: Tip;
+  by: Entry["by"];
+  payloads: PreparedPayload[];
+  clock: Clock | undefined;
+};
+
+/** The rest of an append, once the tip is locked. Statements that need no answer go out together. */
+export async function writeEntries(
+  store: Store,
+  tx: Queries,
+  input: WriteInput,
+): Promise<Appended> {
+  const { tip, by, payloads } = input;
+  const extended = extendLedger(store, input);
+  const changes = extended.entries.map((entry, index) =>
+    changesOf({
+      seq: entry.seq,
+      at: entry.at,
+      by,
+      kind: (payloads[index] as PreparedPayload).kind,
+      payload: (payloads[index] as PreparedPayload).value,
+    }),
+  );
+  const projector = new Projector(await currentRows(tx, tip.campaignId, changes.flat()));
+  changes.forEach((each, index) => projector.apply(tip.size + index, each));
+  await Promise.all([
+    ...extended.write(tx),
+    ...writeRows(tx, tip.campaignId, projector),
+    ...visibilityWrites(tx, tip.campaignId, payloads),
+    queueScoring(tx, tip.campaign),
+    tx`select pg_notify(${CHANNEL}, ${JSON.stringify({
+      campaign: tip.campaign,
+      size: extended.size,
+      what: "appended",
+    })})`,
+  ]);
+  return {
+    from: tip.size,
+    to: extended.size,
+    at: extended.entries.map((entry) => entry.at),
+    treeHead: extended.treeHead,
+  };
+}
+
+/** Who may read is no part of the document, so it stands in the campaign's own row. */
+function visibilityWrites(tx: Queries, campaignId: number, payloads: PreparedPayload[]) {
+  const last = payloads.findLast(({ kind }) => kind === "campaign.amended");
+  if (last === undefined) return [];
+  const { visibility } = last.value as { visibility: string };
+  return [tx`update campaigns set visibility = ${visibility} where id = ${campaignId}`];
 }

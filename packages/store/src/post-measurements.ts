@@ -1,6 +1,16 @@
+import type { MeasurementContent } from "@weighhouse/campaign/entries";
+import { canonicalBytes, canonicalJson } from "@weighhouse/ledger/canonical";
+import { hex } from "@weighhouse/ledger/bytes";
 import type { Entry } from "@weighhouse/ledger/entry";
+import { nodeHasher } from "@weighhouse/ledger/node-hasher";
+import { writeEntries } from "./append";
 import type { Appended, Clock } from "./append";
+import { lockTip } from "./lock-tip";
 import type { Store } from "./open-store";
+import { splitPosting } from "./split-posting";
+import type { Correlation } from "./split-posting";
+import { preparePayload } from "./prepare-payload";
+import type { Queries } from "./queries";
 import { StoreError } from "./store-error";
 
 export type PostMeasurementsInput = {
@@ -8,7 +18,7 @@ export type PostMeasurementsInput = {
   by: Entry["by"];
   /** As in the payload of `measurements.posted`; an `id` may be absent. */
   measurements: Record<string, unknown>[];
-  correlations?: { a: string; b: string; coefficient: number }[];
+  correlations?: Correlation[];
   clock?: Clock | undefined;
 };
 
@@ -22,15 +32,123 @@ export type Posted = {
   appended: Appended | null;
 };
 
-/** Posts measurements idempotently: what is already there with the same content changes nothing. */
+type Content = Record<string, unknown>;
+
+/**
+ * Posts measurements idempotently, as many entries of one transaction as they need: an id that is
+ * there with the same content changes nothing, with other content it is a conflict, and a conflict
+ * anywhere posts nothing at all. Looked up under the campaign's lock.
+ *
+ * @throws {StoreError} `invalid-payload`, with pointers into `{ measurements, correlations }`
+ */
 export async function postMeasurements(
-  _store: Store,
-  _input: PostMeasurementsInput,
+  store: Store,
+  input: PostMeasurementsInput,
 ): Promise<Posted> {
-  throw new StoreError("no-signer", "");
+  const given = input.measurements.map(withId);
+  const payloads = splitPosting(given, input.correlations ?? []);
+  const contents = payloads.flatMap(({ value }) => value.measurements);
+  const correlations = payloads.flatMap(({ value }) => value.correlations);
+  return store.sql.begin(async (tx) => {
+    const tip = await lockTip(tx, input.campaign);
+    const sorted = sortOut(
+      [...contents.map(asItem), ...correlations.map(asPairItem)],
+      await contentsThere(tx, tip.campaignId, contents, correlations),
+    );
+    const outcome = { posted: [], alreadyThere: sorted.alreadyThere, conflicts: sorted.conflicts };
+    if (sorted.conflicts.length > 0) return { ...outcome, appended: null };
+    const fresh = contents.filter((content) => sorted.fresh.delete(content.id));
+    const pairs = correlations.filter((pair) => sorted.fresh.delete(pairKey(pair)));
+    if (fresh.length === 0 && pairs.length === 0) return { ...outcome, appended: null };
+    const unchanged = fresh.length === contents.length && pairs.length === correlations.length;
+    const appended = await writeEntries(store, tx, {
+      tip,
+      by: input.by,
+      payloads: unchanged ? payloads : splitPosting(fresh, pairs),
+      clock: input.clock,
+    });
+    return { ...outcome, posted: fresh.map(({ id }) => id), appended };
+  }) as Promise<Posted>;
 }
 
-/** The id of a measurement that was posted without one: `<facility>:<observedAt>:<12 hex digits>`. */
-export function defaultMeasurementId(_measurement: Record<string, unknown>): string {
-  throw new StoreError("no-signer", "");
+/**
+ * The id of a measurement that was posted without one: `<facility>:<observedAt>:<12 hex digits>` of
+ * the SHA-256 of its canonical form with defaults written out; what it doesn't have is left out.
+ */
+export function defaultMeasurementId(measurement: Content): string {
+  const { value } = preparePayload({
+    kind: "measurements.posted",
+    payload: { measurements: [{ ...measurement, id: "-" }] },
+  });
+  const [content] = (value as { measurements: MeasurementContent[] }).measurements;
+  const { id: _, ...rest } = content as MeasurementContent;
+  const digest = hex(nodeHasher(canonicalBytes(rest))).slice(0, 12);
+  return [rest.facility, rest.observedAt, digest].filter((each) => each !== null).join(":");
+}
+
+function withId(measurement: Content, index: number): Content {
+  if (measurement["id"] !== undefined && measurement["id"] !== null) return measurement;
+  try {
+    return { ...measurement, id: defaultMeasurementId(measurement) };
+  } catch (error) {
+    if (!(error instanceof StoreError)) throw error;
+    const problems = error.problems.map((problem) => ({
+      ...problem,
+      pointer: problem.pointer.replace(/^\/measurements\/0/, `/measurements/${index}`),
+    }));
+    throw new StoreError(error.code, error.message, { cause: error, problems });
+  }
+}
+
+type Item = { id: string; content: Content };
+const asItem = (content: MeasurementContent): Item => ({ id: content.id, content });
+const asPairItem = (pair: Correlation): Item => ({ id: pairKey(pair), content: pair });
+const pairKey = ({ a, b }: Correlation) => `${a} ${b}`;
+
+/** What was first posted under these ids. */
+async function contentsThere(
+  tx: Queries,
+  campaignId: number,
+  contents: MeasurementContent[],
+  correlations: Correlation[],
+): Promise<Map<string, Content>> {
+  const [measurements, pairs] = await Promise.all([
+    tx<{ id: string; content: string }[]>`
+      select distinct on (id) id, content from measurements
+      where campaign_id = ${campaignId} and id = any(${contents.map(({ id }) => id)}::text[])
+      order by id, from_size`,
+    correlations.length === 0
+      ? []
+      : tx<{ id: string; content: string }[]>`
+          select distinct on (key) key as id, content from parts
+          where campaign_id = ${campaignId} and part = 'correlation'
+            and key = any(${correlations.map(pairKey)}::text[])
+          order by key, from_size`,
+  ]);
+  return new Map(
+    [...measurements, ...pairs].map((row) => [row.id, JSON.parse(row.content) as Content]),
+  );
+}
+
+/** Parts what is posted into new, already there (also twice in one posting), and conflicting. */
+function sortOut(items: Item[], there: Map<string, Content>) {
+  const fresh = new Set<string>();
+  const alreadyThere: string[] = [];
+  const conflicts: Conflict[] = [];
+  for (const { id, content } of items) {
+    const before = there.get(id);
+    if (before === undefined) {
+      fresh.add(id);
+      there.set(id, content);
+      continue;
+    }
+    const differing = Object.keys(content).filter(
+      (field) => canonicalJson(content[field]) !== canonicalJson(before[field] ?? null),
+    );
+    if (differing.length === 0) alreadyThere.push(id);
+    for (const field of differing) {
+      conflicts.push({ id, field, there: before[field] ?? null, posted: content[field] });
+    }
+  }
+  return { fresh, alreadyThere, conflicts };
 }

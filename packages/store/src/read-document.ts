@@ -1,6 +1,15 @@
+import type { PartContent, PartName } from "@weighhouse/campaign/changes";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
+import { documentFromParts } from "@weighhouse/campaign/fold";
+import type { Part } from "@weighhouse/campaign/fold";
+import { and, asc, eq, gt, isNull, lte, or } from "drizzle-orm";
+import { findCampaign } from "./campaigns";
+import type { CampaignRow } from "./campaigns";
 import type { Store } from "./open-store";
+import { readEntry } from "./read-ledger";
+import { measurements, parts } from "./schema/tables";
 import { StoreError } from "./store-error";
+import { rootAt } from "./tree-root";
 
 export type DocumentAsOf = {
   document: CampaignDocument;
@@ -12,11 +21,62 @@ export type DocumentAsOf = {
   at: string;
 };
 
-/** The campaign document as of a size (entries [0, size)); the latest unless given. */
+/**
+ * The campaign document as of a size (entries [0, size)); the latest unless given. Any size: also
+ * one in the middle of a transaction, which no signed head has.
+ *
+ * @throws {StoreError} `no-such-campaign`, `no-such-size`
+ */
 export async function readDocument(
-  _store: Store,
-  _campaign: string,
-  _size?: number,
+  store: Store,
+  campaign: string,
+  size?: number,
 ): Promise<DocumentAsOf> {
-  throw new StoreError("no-such-campaign", "");
+  const found = await findCampaign(store, campaign);
+  const asOf = size ?? found.size;
+  if (!Number.isInteger(asOf) || asOf < 1 || asOf > found.size) {
+    throw new StoreError(
+      "no-such-size",
+      `found the size ${asOf}; allowed are 1 to ${found.size}, the ledger's entries`,
+    );
+  }
+  const [documentParts, treeHead, at] = await Promise.all([
+    readParts(store, found, asOf),
+    rootAt(store, campaign, asOf),
+    asOf === found.size
+      ? found.lastAt
+      : readEntry(store, { campaign, seq: asOf - 1 }).then(({ entry }) => entry.at),
+  ]);
+  const document = documentFromParts(documentParts);
+  return { document, size: asOf, latestSize: found.size, treeHead, at };
+}
+
+/** Versions that hold at a size never change again, so this needs no lock and no snapshot. */
+async function readParts(store: Store, { id }: CampaignRow, size: number): Promise<Part[]> {
+  const holds = (table: typeof parts | typeof measurements) =>
+    and(
+      eq(table.campaignId, id),
+      lte(table.fromSize, size),
+      or(isNull(table.toSize), gt(table.toSize, size)),
+    );
+  const [others, posted] = await Promise.all([
+    store.readDb
+      .select({ part: parts.part, key: parts.key, content: parts.content })
+      .from(parts)
+      .where(holds(parts))
+      .orderBy(asc(parts.firstSeq), asc(parts.firstPlace)),
+    store.readDb
+      .select({ key: measurements.id, content: measurements.content })
+      .from(measurements)
+      .where(holds(measurements))
+      .orderBy(asc(measurements.firstSeq), asc(measurements.firstPlace)),
+  ]);
+  return [
+    ...others.map(({ part, key, content }) => partOf(part as PartName, key, content)),
+    ...posted.map(({ key, content }) => partOf("measurement", key, content)),
+  ];
+}
+
+function partOf(part: PartName, key: string, content: string): Part {
+  return { part, key, content: JSON.parse(content) as PartContent };
 }

@@ -1,11 +1,66 @@
+import { changesOf } from "@weighhouse/campaign/changes";
+import type { LedgerRecord } from "@weighhouse/campaign/changes";
+import { lockTip } from "./lock-tip";
 import type { Store } from "./open-store";
+import { writeRows } from "./projection-rows";
+import { Projector } from "./projector";
+import type { Queries } from "./queries";
+import { streamEntries } from "./read-ledger";
 
-export type Difference = { table: string; key: string; found: string; expected: string };
+/** A row that wasn't as the entries say; both sides as text, null where there is no row. */
+export type Difference = {
+  table: string;
+  key: string;
+  found: string | null;
+  expected: string | null;
+};
 
-/** Rebuilds a campaign's projections from its entries and says where they differed. */
+/**
+ * Rebuilds a campaign's projections from its entries alone, says where those in the database
+ * differed, and puts the rebuilt ones in their place if any did. Appends wait meanwhile.
+ */
 export async function rebuildProjections(
-  _store: Store,
-  _campaign: string,
+  store: Store,
+  campaign: string,
 ): Promise<{ same: boolean; differences: Difference[] }> {
-  return { same: true, differences: [] };
+  return store.sql.begin(async (tx) => {
+    const { campaignId, size } = await lockTip(tx, campaign);
+    const projector = new Projector();
+    for await (const { entry, payload } of streamEntries(store, { campaign, size })) {
+      const { seq, at, by, kind } = entry;
+      const record = { seq, at, by, kind, payload: JSON.parse(payload) as unknown };
+      projector.apply(seq, changesOf(record as LedgerRecord));
+    }
+    // Temporary tables of the same names come before the real ones in every statement that follows.
+    await tx`create temporary table parts (like public.parts) on commit drop`;
+    await tx`create temporary table measurements (like public.measurements) on commit drop`;
+    await Promise.all(writeRows(tx, campaignId, projector));
+    const differences = [
+      ...(await differencesIn(tx, campaignId, "parts", ["part", "key", "from_size"])),
+      ...(await differencesIn(tx, campaignId, "measurements", ["id", "from_size"])),
+    ];
+    if (differences.length > 0) {
+      for (const table of ["parts", "measurements"]) {
+        await tx`delete from ${tx(`public.${table}`)} where campaign_id = ${campaignId}`;
+        await tx`insert into ${tx(`public.${table}`)} select * from ${tx(`pg_temp.${table}`)}`;
+      }
+    }
+    return { same: differences.length === 0, differences };
+  }) as Promise<{ same: boolean; differences: Difference[] }>;
+}
+
+async function differencesIn(
+  tx: Queries,
+  campaignId: number,
+  table: string,
+  key: string[],
+): Promise<Difference[]> {
+  const keyText = tx.unsafe(key.map((column) => `${column}::text`).join(", "));
+  const side = (schema: string) => tx`
+    select array_to_string(array[${keyText}], ' ') as key, t::text as row
+    from ${tx(`${schema}.${table}`)} t where campaign_id = ${campaignId}`;
+  return tx<Difference[]>`
+    select ${table} as table, key, found.row as found, expected.row as expected
+    from (${side("public")}) found full join (${side("pg_temp")}) expected using (key)
+    where found.row is distinct from expected.row order by key`;
 }

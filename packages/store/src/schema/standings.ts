@@ -73,6 +73,8 @@ export const timelinePoints = pgTable(
     engine: engineColumn(),
     size: integer("size").notNull(),
     hypothesis: text("hypothesis").notNull(),
+    /** The engine's order: the document's hypotheses, then the two that stand beside them. */
+    place: integer("place").notNull(),
     /** Natural log; null: the likelihood is zero. */
     lnEvidence: doublePrecision("ln_evidence"),
   },
