@@ -1,0 +1,26 @@
+import { auditRouter } from "./routers/audit";
+import { campaignsRouter } from "./routers/campaigns";
+import { declareRouter } from "./routers/declare";
+import { eventsRouter } from "./routers/events";
+import { hypothesesRouter } from "./routers/hypotheses";
+import { ledgerRouter } from "./routers/ledger";
+import { measurementsRouter } from "./routers/measurements";
+import { membersRouter, teamsRouter } from "./routers/people";
+import { standingsRouter } from "./routers/standings";
+
+import { router } from "./trpc";
+
+export const appRouter = router({
+  campaigns: campaignsRouter,
+  declare: declareRouter,
+  teams: teamsRouter,
+  members: membersRouter,
+  standings: standingsRouter,
+  hypotheses: hypothesesRouter,
+  measurements: measurementsRouter,
+  ledger: ledgerRouter,
+  audit: auditRouter,
+  events: eventsRouter,
+});
+
+export type AppRouter = typeof appRouter;

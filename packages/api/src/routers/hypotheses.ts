@@ -1,0 +1,12 @@
+import { amendHypothesis, amendHypothesisInput } from "@weighhouse/desk/amend-hypothesis";
+import { registerHypothesis, registerHypothesisInput } from "@weighhouse/desk/register-hypothesis";
+import { procedure, router, takes } from "../trpc";
+
+export const hypothesesRouter = router({
+  register: procedure
+    .input(takes(registerHypothesisInput))
+    .mutation(({ ctx, input }) => registerHypothesis(ctx.desk, ctx.actor, input)),
+  amend: procedure
+    .input(takes(amendHypothesisInput))
+    .mutation(({ ctx, input }) => amendHypothesis(ctx.desk, ctx.actor, input)),
+});

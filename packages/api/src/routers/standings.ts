@@ -1,0 +1,12 @@
+import { readStandings, readStandingsInput } from "@weighhouse/desk/read-standings";
+import { readTimeline, readTimelineInput } from "@weighhouse/desk/read-timeline";
+import { procedure, router, takes } from "../trpc";
+
+export const standingsRouter = router({
+  get: procedure
+    .input(takes(readStandingsInput))
+    .query(({ ctx, input }) => readStandings(ctx.desk, ctx.actor, input)),
+  timeline: procedure
+    .input(takes(readTimelineInput))
+    .query(({ ctx, input }) => readTimeline(ctx.desk, ctx.actor, input)),
+});

@@ -1,0 +1,73 @@
+import { findCampaign } from "@weighhouse/store/campaigns";
+import type { CampaignRow, Visibility } from "@weighhouse/store/campaigns";
+import { findMembership } from "@weighhouse/store/members";
+import type { Membership } from "@weighhouse/store/members";
+import type { Actor, Desk } from "./desk";
+import { DeskError } from "./desk-error";
+import { may, permission } from "./roles";
+import type { Action, Role } from "./roles";
+import { onStore } from "./store-refusals";
+
+/** An actor's place in one campaign. */
+export type Access = {
+  campaign: CampaignRow;
+  actor: Actor;
+  role: Role;
+  team: string | null;
+  /** The opaque id that stands in entries; null for those without a membership. */
+  member: string | null;
+};
+
+/**
+ * The actor's place in a campaign, once the table allows the action there.
+ *
+ * @param of the team that the thing acted on belongs to, for actions allowed on one's own team's
+ * @throws {DeskError} `not-found` also for a campaign that the actor may not even read: whether it
+ *   exists is its members' business
+ */
+export async function enter(
+  desk: Desk,
+  actor: Actor,
+  campaignKey: string,
+  action: Action,
+): Promise<Access> {
+  const campaign = await onStore(() => findCampaign(desk.store, campaignKey));
+  const place =
+    actor && (await findMembership(desk.store, { campaign: campaignKey, userId: actor.userId }));
+  const role = roleOf(actor, campaign.visibility, place);
+  if (permission(role, "read-campaign") === "no") throw noSuchCampaign(campaignKey);
+  if (permission(role, action) === "no") throw notAllowed(actor, role, action);
+  return { campaign, actor, role, team: place?.team ?? null, member: place?.member ?? null };
+}
+
+/** Refuses what the table allows only on one's own team's things, where `of` is another team. */
+export function requireOwnTeam(access: Access, action: Action, of: string | null): void {
+  if (may(access.role, action, { own: access.team, of })) return;
+  const own = access.team === null ? "no team" : `the team ${access.team}`;
+  const found = of === null ? "no team" : `the team ${of}`;
+  throw new DeskError("not-allowed", `found ${action} for ${found}; allowed for ${own}`);
+}
+
+/** The actor, where an account is needed and no campaign is concerned yet. */
+export function requireAccount(actor: Actor, action: Action): NonNullable<Actor> {
+  if (actor && permission("account", action) === "yes") return actor;
+  throw notAllowed(actor, actor ? "account" : "visitor", action);
+}
+
+export function roleOf(actor: Actor, visibility: Visibility, place: Membership | null): Role {
+  if (place) return place.role;
+  if (visibility === "public") return "reader";
+  return actor ? "account" : "visitor";
+}
+
+function noSuchCampaign(key: string): DeskError {
+  return new DeskError("not-found", `found no campaign ${key}; allowed are those in the list`);
+}
+
+function notAllowed(actor: Actor, role: Role, action: Action): DeskError {
+  if (!actor) return new DeskError("not-signed-in", `${action}: sign in first`);
+  return new DeskError(
+    "not-allowed",
+    `found ${action} by a ${role}; the campaign's rules allow it to others`,
+  );
+}
