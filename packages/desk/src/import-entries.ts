@@ -3,6 +3,7 @@ import type {
   Hypothesis,
   Measurand,
   Measurement,
+  Prediction,
 } from "@weighhouse/campaign/document";
 import type { MeasurementContent, Payload } from "@weighhouse/campaign/entries";
 import type { NewEntry } from "./document-after";
@@ -66,10 +67,15 @@ function hypothesisEntry(hypothesis: Hypothesis): NewEntry {
     kind: "hypothesis.registered",
     payload: {
       ...content,
-      predictions: predictions.map(({ registeredAt: _, ...prediction }) => prediction),
+      predictions: predictions.map(undated),
       claimed: dated ? { registeredAt, predictions: Object.fromEntries(dates) } : null,
     },
   };
+}
+
+function undated(prediction: Prediction) {
+  const { registeredAt: _, ...content } = prediction;
+  return content;
 }
 
 function measurementContent({ postedAt, ...content }: Measurement): MeasurementContent {

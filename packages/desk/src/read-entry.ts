@@ -3,9 +3,7 @@ import { hex } from "@weighhouse/ledger/bytes";
 import { leafHash } from "@weighhouse/ledger/entry";
 import type { Entry } from "@weighhouse/ledger/entry";
 import { nodeHasher } from "@weighhouse/ledger/node-hasher";
-import { inclusionNodes, inclusionProof } from "@weighhouse/ledger/proof";
 import {
-  nodeReader,
   readEntry as readStored,
   readLatestHead,
   readSigningKeys,
@@ -13,6 +11,7 @@ import {
 import type { StoredHead } from "@weighhouse/store/read-ledger";
 import { enter } from "./access";
 import type { Actor, Desk } from "./desk";
+import { proveInclusion } from "./ledger-proofs";
 import { parseInput } from "./parse-input";
 import { authorName, memberNames } from "./read-entries";
 import { onStore } from "./store-refusals";
@@ -56,17 +55,7 @@ export async function readEntry(
     payload,
     leafHash: hex(leafHash(nodeHasher, entry)),
     head,
-    proof: (await proofOf(desk, key, { index: seq, size: head.size })).map(hex),
+    proof: await proveInclusion(desk, key, { index: seq, size: head.size }),
     keys,
   };
-}
-
-async function proofOf(desk: Desk, key: string, at: { index: number; size: number }) {
-  const read = await nodeReader(desk.store, key);
-  const addresses = inclusionNodes(at);
-  const hashes = await Promise.all(addresses.map(({ level, index }) => read(level, index)));
-  const nodes = new Map(
-    addresses.map(({ level, index }, i) => [`${level}/${index}`, hashes[i]!] as const),
-  );
-  return inclusionProof(nodeHasher, at, ({ level, index }) => nodes.get(`${level}/${index}`)!);
 }

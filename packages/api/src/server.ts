@@ -1,0 +1,68 @@
+import type { Desk } from "@weighhouse/desk/desk";
+import { openKeys } from "@weighhouse/store/keys";
+import { openStore } from "@weighhouse/store/open-store";
+import type { Log } from "@weighhouse/store/open-store";
+import { readSettings } from "@weighhouse/store/settings";
+import { StoreError } from "@weighhouse/store/store-error";
+import { createAuth } from "./auth";
+import type { Auth } from "./auth";
+import { closing } from "./closing";
+import { createContext } from "./context";
+import type { Context } from "./context";
+import { hubOf } from "./event-hub";
+
+/** What all requests of a process share. */
+export type Server = {
+  desk: Desk;
+  auth: Auth;
+  log: Log;
+  context(headers: Headers): Promise<Context>;
+};
+
+// On the global object: a bundler may give pages and route handlers a copy each of this module.
+const place = globalThis as { weighhouseServer?: Promise<Server> };
+
+/** The process's store, desk and accounts, opened from its settings when first asked for. */
+export function server(environment: NodeJS.ProcessEnv, log: Log): Promise<Server> {
+  place.weighhouseServer ??= openServer(environment, log).catch((error: unknown) => {
+    // A database that isn't up yet is tried again by the next request.
+    delete place.weighhouseServer;
+    throw error;
+  });
+  return place.weighhouseServer;
+}
+
+/** Ends open streams, which else would keep the process from exiting, and closes the store. */
+export async function closeServer(): Promise<void> {
+  closing.abort();
+  const opened = place.weighhouseServer;
+  delete place.weighhouseServer;
+  if (!opened) return;
+  const { store } = (await opened).desk;
+  await hubOf(store).close();
+  await store.close();
+}
+
+async function openServer(environment: NodeJS.ProcessEnv, log: Log): Promise<Server> {
+  const settings = readSettings(environment);
+  const { DATABASE_URL, WEIGHHOUSE_KEYS, WEIGHHOUSE_SECRET } = settings;
+  const missing = Object.entries({ DATABASE_URL, WEIGHHOUSE_KEYS, WEIGHHOUSE_SECRET })
+    .filter(([, value]) => value === undefined)
+    .map(([name]) => name);
+  if (!DATABASE_URL || !WEIGHHOUSE_KEYS || !WEIGHHOUSE_SECRET) {
+    const found = `found ${missing.join(" and ")} not set`;
+    throw new StoreError("bad-settings", `${found}; npm start sets them, others must`);
+  }
+  const origin = settings.WEIGHHOUSE_ORIGIN ?? `http://localhost:${settings.PORT}`;
+  const name = new URL(origin).hostname;
+  const store = await openStore({
+    url: DATABASE_URL,
+    readUrl: settings.DATABASE_READ_URL,
+    signer: await openKeys({ folder: WEIGHHOUSE_KEYS, name, make: false }),
+    log,
+  });
+  const desk: Desk = { store };
+  const auth = createAuth({ store, origin, secret: WEIGHHOUSE_SECRET });
+  const context = (headers: Headers) => createContext({ desk, auth, log, headers });
+  return { desk, auth, log, context };
+}
