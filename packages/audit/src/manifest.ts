@@ -2,7 +2,7 @@ import * as z from "zod";
 import { utf8, hex } from "@weighhouse/ledger/bytes";
 import type { Hasher } from "@weighhouse/ledger/hasher";
 import { ARCHIVE_FORMAT } from "./layout";
-import type { ArchiveFile } from "./zip-write";
+import type { ArchiveFile } from "./zip/write";
 
 /** What an archive is of, and the SHA-256 of every file in it but the manifest's own two. */
 export const manifestSchema = z.strictObject({

@@ -18,8 +18,8 @@ import { listFiles, manifestNoteText } from "./manifest";
 import type { Manifest } from "./manifest";
 import { readmeText } from "./read-me";
 import { tablesOf } from "./tables";
-import { packFiles } from "./zip-write";
-import type { ArchiveFile } from "./zip-write";
+import { packFiles } from "./zip/write";
+import type { ArchiveFile } from "./zip/write";
 
 export type ArchiveInput = {
   /** All entries, from 0. */

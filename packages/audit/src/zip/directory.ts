@@ -1,7 +1,7 @@
-import { AuditError } from "./audit-error";
-import { RATIO_FROM_BYTES } from "./zip-limits";
-import type { ZipLimits } from "./zip-limits";
-import { nameFault } from "./zip-names";
+import { AuditError } from "../audit-error";
+import { RATIO_FROM_BYTES } from "./limits";
+import type { ZipLimits } from "./limits";
+import { nameFault } from "./names";
 
 /** One file as the directory declares it, checked against the header before its data. */
 export type DirectoryRow = {

@@ -1,10 +1,10 @@
 import { inflateSync } from "fflate";
-import { AuditError } from "./audit-error";
+import { AuditError } from "../audit-error";
 import { crc32 } from "./crc32";
-import { readDirectory } from "./zip-directory";
-import type { DirectoryRow } from "./zip-directory";
-import { ZIP_LIMITS } from "./zip-limits";
-import type { ZipLimits } from "./zip-limits";
+import { readDirectory } from "./directory";
+import type { DirectoryRow } from "./directory";
+import { ZIP_LIMITS } from "./limits";
+import type { ZipLimits } from "./limits";
 
 /**
  * The files of a ZIP, by path.

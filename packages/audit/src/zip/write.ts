@@ -1,6 +1,6 @@
 import { zipSync } from "fflate";
-import { AuditError } from "./audit-error";
-import { ZIP_LIMITS } from "./zip-limits";
+import { AuditError } from "../audit-error";
+import { ZIP_LIMITS } from "./limits";
 
 export type ArchiveFile = { path: string; bytes: Uint8Array };
 

@@ -1,0 +1,62 @@
+/** Why a file can't be used, with its path. */
+export type TextFault = { ok: false; fault: string };
+
+/** A file of the archive as text. UTF-8 without a byte order mark, or a fault. */
+export function readText(
+  files: ReadonlyMap<string, Uint8Array>,
+  path: string,
+): { ok: true; text: string } | TextFault {
+  const bytes = files.get(path);
+  if (bytes === undefined) return { ok: false, fault: `${path} is missing` };
+  try {
+    const text = new TextDecoder("utf-8", { fatal: true, ignoreBOM: true }).decode(bytes);
+    return { ok: true, text };
+  } catch {
+    return { ok: false, fault: `${path} is not UTF-8` };
+  }
+}
+
+/** The lines of a file in which each line ends in a newline. */
+export function readLines(
+  files: ReadonlyMap<string, Uint8Array>,
+  path: string,
+): { ok: true; lines: string[] } | TextFault {
+  const read = readText(files, path);
+  if (!read.ok) return read;
+  if (!read.text.endsWith("\n")) return { ok: false, fault: `${path} doesn't end in a newline` };
+  return { ok: true, lines: read.text.slice(0, -1).split("\n") };
+}
+
+/**
+ * A JSON file of the archive. One form only, as the export writes it: a doubled name, which JSON
+ * readers take one way or the other, is another form.
+ */
+export function readJson(
+  files: ReadonlyMap<string, Uint8Array>,
+  path: string,
+): { ok: true; value: unknown; text: string } | TextFault {
+  const read = readText(files, path);
+  if (!read.ok) return read;
+  let value: unknown;
+  try {
+    value = JSON.parse(read.text);
+  } catch (error) {
+    return { ok: false, fault: `${path} is not JSON: ${(error as Error).message.slice(0, 100)}` };
+  }
+  const line = firstLineThatDiffers(read.text, `${JSON.stringify(value, null, 2)}\n`);
+  if (line !== null) {
+    return {
+      ok: false,
+      fault: `${path}, line ${line}: not in the form that the export writes (indented by two, each name once)`,
+    };
+  }
+  return { ok: true, value, text: read.text };
+}
+
+function firstLineThatDiffers(found: string, expected: string): number | null {
+  if (found === expected) return null;
+  const expectedLines = expected.split("\n");
+  const foundLines = found.split("\n");
+  const at = foundLines.findIndex((line, index) => line !== expectedLines[index]);
+  return (at < 0 ? foundLines.length : at) + 1;
+}

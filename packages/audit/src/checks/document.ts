@@ -1,0 +1,37 @@
+import { CampaignError } from "@weighhouse/campaign/campaign-error";
+import type { LedgerRecord } from "@weighhouse/campaign/changes";
+import type { CampaignDocument } from "@weighhouse/campaign/document";
+import { foldRecords } from "@weighhouse/campaign/fold";
+import { readJson } from "./archive-text";
+import type { Files } from "./container";
+import { counted, failed, judged } from "./line";
+import type { Checked } from "./line";
+import { compareJson } from "./differences";
+import { DOCUMENT } from "../layout";
+
+/** `campaign.json` is what the entries add up to. Gives the document folded from the entries. */
+export function checkDocument(
+  files: Files,
+  records: readonly LedgerRecord[],
+): Checked<CampaignDocument> {
+  const check = "campaign document";
+  let folded: CampaignDocument;
+  try {
+    folded = foldRecords(records);
+  } catch (error) {
+    if (!(error instanceof CampaignError)) throw error;
+    return { line: failed(check, `the entries don't add up: ${error.message}`), value: null };
+  }
+  const read = readJson(files, DOCUMENT);
+  if (!read.ok) return { line: failed(check, read.fault), value: folded };
+  const { differences } = compareJson(read.value, folded, { tolerance: 0 });
+  const detail = `${counted(folded.hypotheses.length, "hypothesis", "hypotheses")} and ${counted(folded.measurements.length, "measurement")}, folded from the entries`;
+  return {
+    line: judged(
+      check,
+      differences.map((difference) => `${DOCUMENT}, ${difference}`),
+      detail,
+    ),
+    value: folded,
+  };
+}

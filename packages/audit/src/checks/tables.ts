@@ -1,0 +1,58 @@
+import type { CampaignDocument } from "@weighhouse/campaign/document";
+import type { Standings } from "@weighhouse/campaign/standings";
+import { readRecords } from "@weighhouse/tables/records";
+import { writeCsv } from "@weighhouse/tables/write-csv";
+import type { CsvCell } from "@weighhouse/tables/write-csv";
+import { readText } from "./archive-text";
+import type { Files } from "./container";
+import { counted, judged } from "./line";
+import type { CheckLine } from "./line";
+import { tablePath } from "../layout";
+import { tablesOf } from "../tables";
+import type { ArchiveTable } from "../tables";
+
+/** Each cell of `tables/*.csv` is the document's or the standings' value; numbers as numbers. */
+export function checkTables(
+  files: Files,
+  document: CampaignDocument,
+  standings: Standings,
+): CheckLine {
+  const tables = tablesOf(document, standings);
+  const faults = tables.flatMap((table) => tableFaults(files, table));
+  const cells = tables.reduce((sum, { header, rows }) => sum + header.length * rows.length, 0);
+  return judged("tables", faults, `${counted(tables.length, "table")}, ${cells} cells as computed`);
+}
+
+function tableFaults(files: Files, table: ArchiveTable): string[] {
+  const path = tablePath(table.name);
+  const read = readText(files, path);
+  if (!read.ok) return [read.fault];
+  if (read.text === writeCsv(table.header, table.rows)) return [];
+  const parsed = readRecords(read.text);
+  if (parsed.problems.length > 0) {
+    return parsed.problems.map(({ line, found }) => `${path}, line ${line ?? "?"}: found ${found}`);
+  }
+  const expected: readonly (readonly CsvCell[])[] = [table.header, ...table.rows];
+  if (parsed.records.length !== expected.length) {
+    return [`${path}: found ${parsed.records.length - 1} rows, allowed ${table.rows.length}`];
+  }
+  return parsed.records.flatMap(({ line, cells }, index) => {
+    const row = expected[index] as readonly CsvCell[];
+    if (cells.length !== row.length) {
+      return [`${path}, line ${line}: found ${cells.length} cells, allowed ${row.length}`];
+    }
+    return cells.flatMap((found, column) => {
+      const cell = row[column] as CsvCell;
+      if (sameCell(found, cell)) return [];
+      return [
+        `${path}, line ${line}, ${table.header[column]}: found ${JSON.stringify(found)}, computed ${JSON.stringify(cell)}`,
+      ];
+    });
+  });
+}
+
+/** The reader trims cells, so texts are compared trimmed. */
+function sameCell(found: string, cell: CsvCell): boolean {
+  if (typeof cell === "number") return found !== "" && Number(found) === cell;
+  return found === String(cell ?? "").trim();
+}
