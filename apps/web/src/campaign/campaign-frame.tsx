@@ -6,7 +6,7 @@ import { ButtonLink } from "@/look/button";
 import { Notice } from "@/look/notice";
 import { Tabs } from "@/look/tabs";
 import { Time } from "@/look/time";
-import { readCampaign } from "@/server/campaign";
+import { readCampaign, readStandings } from "@/server/campaign";
 import type { CampaignView } from "@/server/campaign";
 
 /**
@@ -20,6 +20,7 @@ export async function CampaignFrame(props: {
 }) {
   const size = props.size ?? null;
   const view = await readCampaign(props.campaignKey, size);
+  const { state } = await readStandings(props.campaignKey, size);
   const { campaign } = view.document;
   const base = `/campaigns/${campaign.key}`;
   return (
@@ -34,7 +35,11 @@ export async function CampaignFrame(props: {
         <h1 className="my-1 min-w-0 max-w-[34em]">{campaign.title}</h1>
         <Actions view={view} base={base} />
       </div>
-      <StateLine view={view} historic={size !== null && size < view.latestSize} />
+      <StateLine
+        view={view}
+        historic={size !== null && size < view.latestSize}
+        scored={state === "current"}
+      />
       <Tabs label="Campaign" tabs={tabsOf(view, base)} />
       {view.clock === "simulated" ? (
         <Notice label="Simulated clock.">
@@ -47,7 +52,8 @@ export async function CampaignFrame(props: {
   );
 }
 
-function StateLine({ view, historic }: { view: CampaignView; historic: boolean }) {
+function StateLine(props: { view: CampaignView; historic: boolean; scored: boolean }) {
+  const { view, historic, scored } = props;
   const { campaign, measurements, facilities } = view.document;
   const counted = measurements.filter((measurement) => measurement.setAside === null).length;
   return (
@@ -56,7 +62,7 @@ function StateLine({ view, historic }: { view: CampaignView; historic: boolean }
         {historic ? (
           <strong className="font-semibold text-brass">as it was at entry {view.size - 1}</strong>
         ) : (
-          <LiveState campaignKey={campaign.key} at={view.at} />
+          <LiveState campaignKey={campaign.key} at={view.at} shown={{ size: view.size, scored }} />
         )}
       </li>
       <li>

@@ -2,10 +2,10 @@
 
 import { formatDuration } from "@weighhouse/figures/times";
 import { useRouter } from "next/navigation";
-import { useEffect, useState } from "react";
+import { useEffect, useEffectEvent, useRef, useState, useTransition } from "react";
 import { useTRPCClient } from "@/trpc/client";
 import { followCampaign } from "./stream";
-import type { StreamState } from "./stream";
+import type { CampaignEvent, StreamState } from "./stream";
 
 const words: Record<StreamState, string> = {
   connecting: "connecting",
@@ -17,19 +17,27 @@ const words: Record<StreamState, string> = {
  * Keeps the page it stands on at the campaign's newest state: each event makes the server's part
  * of the page be asked for again, without a reload. Says since when nothing has come.
  */
-export function LiveState({ campaignKey, at }: { campaignKey: string; at: string }) {
-  const router = useRouter();
+export function LiveState(props: {
+  campaignKey: string;
+  at: string;
+  /** Entries that the page shows, and whether its standings are of all of them. */
+  shown: { size: number; scored: boolean };
+}) {
+  const { campaignKey, shown } = props;
   const client = useTRPCClient();
+  const refresh = useRefresh();
   const [state, setState] = useState<StreamState>("connecting");
-  const since = useSecondsSince(at);
+  const since = useSecondsSince(props.at);
 
+  const onEvent = useEffectEvent((event: CampaignEvent) => {
+    const news =
+      event.size > shown.size ||
+      (event.size === shown.size && event.what === "scored" && !shown.scored);
+    if (news) refresh();
+  });
   useEffect(
-    () =>
-      followCampaign(client, campaignKey, {
-        onState: setState,
-        onEvent: () => router.refresh(),
-      }),
-    [client, campaignKey, router],
+    () => followCampaign(client, campaignKey, { onState: setState, onEvent }),
+    [client, campaignKey],
   );
 
   return (
@@ -42,6 +50,22 @@ export function LiveState({ campaignKey, at }: { campaignKey: string; at: string
       {since === null ? "" : `, last entry ${formatDuration(since * 1000)} ago`}
     </span>
   );
+}
+
+/** Asks for the page's data again; news that come while it is on its way make it ask once more. */
+function useRefresh(): () => void {
+  const router = useRouter();
+  const [pending, start] = useTransition();
+  const again = useRef(false);
+  useEffect(() => {
+    if (pending || !again.current) return;
+    again.current = false;
+    start(() => router.refresh());
+  }, [pending, router]);
+  return () => {
+    if (pending) again.current = true;
+    else start(() => router.refresh());
+  };
 }
 
 /** Null on the server and until the browser's clock is read, so that both paint alike. */

@@ -10,12 +10,14 @@ export function Measured(props: {
   sd: number | null;
   scale: string;
   unit: string | null;
-  /** JSON Pointer of the object that holds `value` and `sd`. */
+  /** JSON Pointer of the object that holds value and sd. */
   at?: string;
+  /** What the value is called there: `value`, or `mean`. */
+  valueName?: "value" | "mean";
 }) {
   const { value, sd, at } = props;
   const unit = props.unit !== null && props.unit !== "1" ? `\u00a0${props.unit}` : "";
-  const valueAt = at ? `${at}/value` : undefined;
+  const valueAt = at ? `${at}/${props.valueName ?? "value"}` : undefined;
   if (sd === null || !(sd > 0)) {
     return (
       <span className="whitespace-nowrap">

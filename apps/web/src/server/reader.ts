@@ -30,11 +30,15 @@ export async function readFor<T>(path: string, read: (caller: Caller) => Promise
   try {
     return await read(caller);
   } catch (error) {
-    const cause = error instanceof Error && error.cause instanceof DeskError ? error.cause : error;
-    if (cause instanceof DeskError && cause.code === "not-found") notFound();
-    if (cause instanceof DeskError && cause.code === "not-signed-in") {
-      redirect(`/sign-in?next=${encodeURIComponent(path)}`);
-    }
+    const refusal = refusalOf(error);
+    if (refusal?.code === "not-found" || refusal?.code === "not-allowed") notFound();
+    if (refusal?.code === "not-signed-in") redirect(`/sign-in?next=${encodeURIComponent(path)}`);
     throw error;
   }
+}
+
+/** The desk's refusal in what a call threw; null where it was something else. */
+export function refusalOf(error: unknown): DeskError | null {
+  const cause = error instanceof Error && error.cause ? error.cause : error;
+  return cause instanceof DeskError ? cause : null;
 }

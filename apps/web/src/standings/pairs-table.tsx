@@ -6,10 +6,14 @@ import { Table } from "@/look/table";
 import type { RankedHypothesis } from "./table-rows";
 
 /** Each pair twice weighed: on everything, and on the common ground that both predict. */
-export function PairsTable(props: { pairs: readonly Pair[]; hypotheses: RankedHypothesis[] }) {
+export function PairsTable(props: {
+  /** With their places in the standings' `pairs`. */
+  pairs: readonly { pair: Pair; index: number }[];
+  hypotheses: RankedHypothesis[];
+}) {
   const byKey = new Map(props.hypotheses.map((each) => [each.key, each]));
-  const whole = tailOf(props.pairs.map((pair) => formatLog10B(pair.log10BayesFactor)));
-  const common = tailOf(props.pairs.map((pair) => commonText(pair)));
+  const whole = tailOf(props.pairs.map(({ pair }) => formatLog10B(pair.log10BayesFactor)));
+  const common = tailOf(props.pairs.map(({ pair }) => commonText(pair)));
   return (
     <Table
       caption="Pairs of hypotheses"
@@ -32,7 +36,7 @@ export function PairsTable(props: { pairs: readonly Pair[]; hypotheses: RankedHy
         </tr>
       }
     >
-      {props.pairs.map((pair, index) => (
+      {props.pairs.map(({ pair, index }) => (
         <tr key={`${pair.a} ${pair.b}`}>
           <th scope="row">
             <Name hypothesis={byKey.get(pair.a)} fallback={pair.a} />

@@ -98,7 +98,10 @@ export async function StandingsView(props: { campaignKey: string; size: number |
       <TimelineSection steps={steps} size={scored.size} hypotheses={hypotheses} />
       {standings.pairs.length > 0 ? (
         <Section title="Pairs" gloss="where the two figures disagree, silence decides" id="pairs">
-          <PairsTable pairs={standings.pairs} hypotheses={hypotheses} />
+          <PairsTable
+            pairs={standings.pairs.map((pair, index) => ({ pair, index }))}
+            hypotheses={hypotheses}
+          />
         </Section>
       ) : null}
     </div>

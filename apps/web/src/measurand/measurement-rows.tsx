@@ -1,0 +1,72 @@
+import type { CampaignDocument, Measurement, Observable } from "@weighhouse/campaign/document";
+import { formatNumber } from "@weighhouse/figures/numbers";
+import { resultInWords } from "@/campaign/plain-words";
+import { Table } from "@/look/table";
+import { Time } from "@/look/time";
+
+/** The measurements of one quantity as they were posted. */
+export function MeasurementRows(props: {
+  measurements: readonly Measurement[];
+  observable: Observable;
+  facilities: CampaignDocument["facilities"];
+}) {
+  const facilities = new Map(props.facilities.map((each) => [each.key, each.title]));
+  return (
+    <Table
+      caption="Measurements"
+      stackBelow="middle"
+      head={
+        <tr>
+          <th scope="col">Result</th>
+          <th scope="col">Facility</th>
+          <th scope="col">Observed</th>
+          <th scope="col">Posted</th>
+          <th scope="col">Id</th>
+        </tr>
+      }
+    >
+      {props.measurements.map((measurement) => (
+        <tr key={measurement.id}>
+          <th scope="row" className="whitespace-nowrap">
+            <span
+              className={measurement.setAside ? "line-through decoration-quiet" : "font-medium"}
+            >
+              {resultInWords(measurement, props.observable)}
+            </span>
+            <Remarks measurement={measurement} />
+          </th>
+          <td data-label="Facility">
+            {measurement.facility
+              ? (facilities.get(measurement.facility) ?? measurement.facility)
+              : null}
+          </td>
+          <td data-label="Observed">
+            {measurement.observedAt ? <Time at={measurement.observedAt} /> : null}
+          </td>
+          <td data-label="Posted">
+            {measurement.postedAt ? <Time at={measurement.postedAt} /> : null}
+          </td>
+          <td data-label="Id">
+            <code>{measurement.id}</code>
+          </td>
+        </tr>
+      ))}
+    </Table>
+  );
+}
+
+function Remarks({ measurement }: { measurement: Measurement }) {
+  const remarks = [
+    measurement.setAside ? `set aside: ${measurement.setAside.reason}` : null,
+    measurement.status === "provisional" ? "provisional" : null,
+    ...Object.entries(measurement.conditions).map(([key, at]) => `${key} ${formatNumber(at)}`),
+    ...measurement.shared.map(({ error, coefficient }) =>
+      coefficient === 1 ? `shares ${error}` : `shares ${formatNumber(coefficient)} × ${error}`,
+    ),
+    measurement.sameData ? `same data as ${measurement.sameData}` : null,
+  ].filter((remark) => remark !== null);
+  if (remarks.length === 0) return null;
+  return (
+    <span className="block text-[13px] whitespace-normal text-quiet">{remarks.join("; ")}</span>
+  );
+}
