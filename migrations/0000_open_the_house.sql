@@ -117,7 +117,7 @@ CREATE TABLE "scorer_states" (
 	"engine" text NOT NULL,
 	"state_version" integer NOT NULL,
 	"size" integer NOT NULL,
-	"state" text NOT NULL,
+	"state" text,
 	CONSTRAINT "scorer_states_pkey" PRIMARY KEY("campaign_id","engine","state_version")
 );
 --> statement-breakpoint
@@ -219,6 +219,7 @@ ALTER TABLE "timeline_steps" ADD CONSTRAINT "timeline_steps_campaign_id_campaign
 ALTER TABLE "tips" ADD CONSTRAINT "tips_campaign_id_campaigns_id_fk" FOREIGN KEY ("campaign_id") REFERENCES "public"."campaigns"("id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 CREATE INDEX "account_user_id_index" ON "account" USING btree ("user_id");--> statement-breakpoint
 CREATE UNIQUE INDEX "measurements_current_unique" ON "measurements" USING btree ("campaign_id","id") WHERE "measurements"."to_size" is null;--> statement-breakpoint
+CREATE INDEX "measurements_from_size_index" ON "measurements" USING btree ("campaign_id","from_size");--> statement-breakpoint
 CREATE INDEX "measurements_order_index" ON "measurements" USING btree ("campaign_id","first_seq","first_place");--> statement-breakpoint
 CREATE INDEX "measurements_measurand_index" ON "measurements" USING btree ("campaign_id","measurand","observed_at");--> statement-breakpoint
 CREATE INDEX "measurements_facility_index" ON "measurements" USING btree ("campaign_id","facility","observed_at");--> statement-breakpoint

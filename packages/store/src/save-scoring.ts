@@ -5,8 +5,8 @@ import type { Queries } from "./queries";
 import { writeStandings } from "./standings";
 import type { Outcome, TimelineStep } from "./standings";
 
-/** The engine's state and the size it stands at. */
-export type ScorerState = { size: number; state: string };
+/** The engine's state and the size it stands at; null: the document of that size can't be scored. */
+export type ScorerState = { size: number; state: string | null };
 
 export type Scoring = {
   campaign: string;
@@ -16,8 +16,7 @@ export type Scoring = {
   /** Steps since the last scoring; all of them where the state was built anew. */
   steps: TimelineStep[];
   stateVersion: number;
-  /** null: the document can't be scored, so there is no state. */
-  state: string | null;
+  state: ScorerState["state"];
 };
 
 /**
@@ -31,16 +30,14 @@ export async function saveScoring(store: Store, scoring: Scoring): Promise<void>
   await store.sql.begin(async (tx) => {
     await writeStandings(tx, { campaignId, size, engine, ...scoring.outcome });
     await writeSteps(tx, campaignId, scoring);
-    if (state !== null) {
-      await tx`
-        insert into scorer_states as s (campaign_id, engine, state_version, size, state)
-        values (${campaignId}, ${engine}, ${stateVersion}, ${size}, ${state})
-        on conflict (campaign_id, engine, state_version) do update
-          set size = excluded.size, state = excluded.state where s.size < excluded.size`;
-      await tx`
-        delete from scorer_states where campaign_id = ${campaignId} and engine = ${engine}
-          and state_version < ${stateVersion}`;
-    }
+    await tx`
+      insert into scorer_states as s (campaign_id, engine, state_version, size, state)
+      values (${campaignId}, ${engine}, ${stateVersion}, ${size}, ${state})
+      on conflict (campaign_id, engine, state_version) do update
+        set size = excluded.size, state = excluded.state where s.size < excluded.size`;
+    await tx`
+      delete from scorer_states where campaign_id = ${campaignId}
+        and (engine <> ${engine} or state_version < ${stateVersion})`;
     await tx`select pg_notify(${CHANNEL}, ${event})`;
   });
 }

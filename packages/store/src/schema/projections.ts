@@ -61,6 +61,7 @@ export const measurements = pgTable(
     uniqueIndex("measurements_current_unique")
       .on(table.campaignId, table.id)
       .where(sql`${table.toSize} is null`),
+    index("measurements_from_size_index").on(table.campaignId, table.fromSize),
     index("measurements_order_index").on(table.campaignId, table.firstSeq, table.firstPlace),
     index("measurements_measurand_index").on(table.campaignId, table.measurand, table.observedAt),
     index("measurements_facility_index").on(table.campaignId, table.facility, table.observedAt),

@@ -99,7 +99,8 @@ export const scorerStates = pgTable(
     engine: engineColumn(),
     stateVersion: integer("state_version").notNull(),
     size: integer("size").notNull(),
-    state: text("state").notNull(),
+    /** null: the document of that size can't be scored. */
+    state: text("state"),
   },
   (table) => [
     primaryKey({

@@ -1,0 +1,70 @@
+import { EventEmitter } from "node:events";
+import { ENGINE_VERSION } from "@weighhouse/engine/version";
+import type { Store } from "@weighhouse/store/open-store";
+import { queueScoring, queueUnscored, SCORE_TASK } from "@weighhouse/store/scoring-queue";
+import { StoreError } from "@weighhouse/store/store-error";
+import { workerLogger } from "@weighhouse/store/worker-logger";
+import { run } from "graphile-worker";
+import type { JobHelpers, WorkerEvents } from "graphile-worker";
+import { watchScorers } from "./living-scorers";
+import { scoreCampaign } from "./score-campaign";
+
+export type RunningScorer = { stop(): Promise<void>; ended: Promise<void> };
+
+export type ScorerOptions = {
+  /** Campaigns scored at once; scoring is computing, so more than one per processor gains nothing. */
+  concurrency?: number;
+  /** How often lost scorers and unscored campaigns are looked for. */
+  everyMs?: number;
+};
+
+/** Starts a scorer on a store. Any number of them, on any machines, share the campaigns. */
+export async function runScorer(store: Store, options: ScorerOptions = {}): Promise<RunningScorer> {
+  const { concurrency = 1, everyMs = 10_000 } = options;
+  const watch = await watchScorers(store, { everyMs });
+  const events = new EventEmitter() as WorkerEvents;
+  events.on("pool:create", ({ workerPool }) => {
+    watch
+      .join(workerPool.id)
+      .catch((error: unknown) => store.log.warn({ error }, "could not mark this scorer as alive"));
+  });
+  const runner = await run({
+    connectionString: store.url,
+    concurrency,
+    maxPoolSize: concurrency + 2,
+    noHandleSignals: true,
+    logger: workerLogger(store.log),
+    events,
+    taskList: { [SCORE_TASK]: (payload, helpers) => scoreTask(store, payload, helpers) },
+  });
+  await queueUnscored(store, ENGINE_VERSION);
+  const timer = setInterval(() => {
+    queueUnscored(store, ENGINE_VERSION).catch((error: unknown) =>
+      store.log.warn({ error }, "could not look for unscored campaigns"),
+    );
+  }, 6 * everyMs);
+  return {
+    ended: runner.promise,
+    async stop() {
+      clearInterval(timer);
+      await runner.stop();
+      await watch.leave();
+    },
+  };
+}
+
+async function scoreTask(store: Store, payload: unknown, helpers: JobHelpers): Promise<void> {
+  const { campaign } = payload as { campaign: string };
+  const from = performance.now();
+  try {
+    const stopping = () => helpers.abortSignal.aborted;
+    const done = await scoreCampaign(store, campaign, stopping);
+    if (!done) await queueScoring(store.sql, campaign);
+  } catch (error) {
+    // A campaign that isn't there won't come: to try again would be for nothing.
+    if (error instanceof StoreError && error.code === "no-such-campaign") return;
+    throw error;
+  }
+  const milliseconds = Math.round(performance.now() - from);
+  store.log.info({ campaign, milliseconds }, "scored");
+}

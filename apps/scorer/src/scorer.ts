@@ -1,0 +1,39 @@
+/** The scorer's process: takes scoring jobs until SIGTERM or SIGINT, then ends cleanly. */
+import { openStore } from "@weighhouse/store/open-store";
+import { readSettings } from "@weighhouse/store/settings";
+import { StoreError } from "@weighhouse/store/store-error";
+import { pino } from "pino";
+import { runScorer } from "./run-scorer";
+
+async function main(): Promise<number> {
+  const settings = readSettings(process.env);
+  const log = pino({ name: "scorer", level: settings.LOG_LEVEL });
+  if (settings.DATABASE_URL === undefined) {
+    throw new StoreError(
+      "bad-settings",
+      "DATABASE_URL: found none; allowed is a postgres:// address",
+    );
+  }
+  const store = await openStore({ url: settings.DATABASE_URL, signer: null, log, connections: 3 });
+  const scorer = await runScorer(store);
+  log.info({}, "scoring");
+  await Promise.race([scorer.ended, signalled()]);
+  await scorer.stop();
+  await store.close();
+  return 0;
+}
+
+async function signalled(): Promise<void> {
+  return new Promise((resolve) => {
+    process.once("SIGTERM", () => resolve());
+    process.once("SIGINT", () => resolve());
+  });
+}
+
+try {
+  process.exit(await main());
+} catch (error) {
+  if (!(error instanceof StoreError)) throw error;
+  process.stderr.write(`${error.message}\n`);
+  process.exit(1);
+}
