@@ -102,7 +102,7 @@ export const measurandFields = {
     .nullish()
     .transform((window) => window ?? { from: null, to: null }),
   where: record(name, range),
-  shape: defaulted(z.enum(["constant", "curve"]), "constant"),
+  shape: defaulted(z.enum(["constant", "curve"]), "constant" as const),
   scatter: defaulted(notNegative, 0),
   reference: optional(referenceSchema),
   thresholds: list(thresholdSchema),
