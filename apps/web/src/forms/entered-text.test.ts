@@ -1,5 +1,6 @@
 import { describe, expect, test } from "vitest";
 import {
+  followingKey,
   keyFromTitle,
   numberFromText,
   numberToText,
@@ -63,4 +64,10 @@ test("a key comes from a title's letters and digits alone", () => {
 test("blank text is absent", () => {
   expect(textOrNull("  ")).toBeNull();
   expect(textOrNull(" a ")).toBe("a");
+});
+
+test("a key follows its title until it is somebody's own", () => {
+  expect(followingKey("", { before: "", now: "W" })).toBe("w");
+  expect(followingKey("warm", { before: "Warm", now: "Warm bed" })).toBe("warm-bed");
+  expect(followingKey("own", { before: "Warm", now: "Warm bed" })).toBe("own");
 });

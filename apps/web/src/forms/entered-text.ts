@@ -59,3 +59,8 @@ export function keyFromTitle(title: string): string {
     .slice(0, 64)
     .replace(/^-+|-+$/g, "");
 }
+
+/** The key for a title being typed: it follows the title until somebody gives one of their own. */
+export function followingKey(key: string, titles: { before: string; now: string }): string {
+  return key === keyFromTitle(titles.before) ? keyFromTitle(titles.now) : key;
+}

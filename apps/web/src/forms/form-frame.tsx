@@ -13,18 +13,22 @@ import type { Failure } from "./use-sending";
 export function DraftNote({ draft }: { draft: KeptDraft }) {
   if (draft.notKept)
     return (
-      <Notice role="status" label="Not kept.">
-        This browser does not let the page keep what you type; send it before you leave.
-      </Notice>
+      <output className="block">
+        <Notice label="Not kept.">
+          This browser does not let the page keep what you type; send it before you leave.
+        </Notice>
+      </output>
     );
   if (draft.restoredFrom === null) return null;
   return (
-    <Notice role="status" label="Restored.">
-      What you had typed on <Time at={draft.restoredFrom} /> is back.{" "}
-      <button type="button" className="link cursor-pointer" onClick={draft.startAfresh}>
-        Start afresh
-      </button>
-    </Notice>
+    <output className="block">
+      <Notice label="Restored.">
+        What you had typed on <Time at={draft.restoredFrom} /> is back.{" "}
+        <button type="button" className="link cursor-pointer" onClick={draft.startAfresh}>
+          Start afresh
+        </button>
+      </Notice>
+    </output>
   );
 }
 

@@ -1,9 +1,12 @@
-import { expect, test } from "vitest";
+import { expect, test, vi } from "vitest";
 import { z } from "zod";
 import { formSchema, stepsOfPointer } from "./form-schema";
 
 const schema = formSchema({
-  schema: z.strictObject({ title: z.string().min(1, "a title"), at: z.object({ sd: z.number() }) }),
+  schema: z.strictObject({
+    title: z.string().min(1),
+    at: z.object({ sd: z.number() }),
+  }),
   content: (values: { name: string; sd: string }) => ({
     title: values.name,
     at: { sd: values.sd === "" ? null : Number(values.sd) },
@@ -11,14 +14,32 @@ const schema = formSchema({
   field: (_values, path) => (path[0] === "title" ? "name" : "sd"),
 });
 
-test("content that the server's schema accepts comes out as the server reads it", () => {
-  expect(schema.parse({ name: "A", sd: "2" })).toEqual({ title: "A", at: { sd: 2 } });
+test("content that the server's schema accepts comes out as the server reads it", async () => {
+  expect(await schema.parseAsync({ name: "A", sd: "2" })).toEqual({ title: "A", at: { sd: 2 } });
 });
 
-test("each issue stands at the field that its content came from", () => {
-  const issues = schema.safeParse({ name: "", sd: "" }).error?.issues ?? [];
+test("each problem stands at the field that its content came from", async () => {
+  const issues = (await schema.safeParseAsync({ name: "", sd: "" })).error?.issues ?? [];
   expect(issues.map((issue) => issue.path.join("."))).toEqual(["name", "sd"]);
-  expect(issues[0]?.message).toBe("a title");
+  expect(issues[0]?.message).toBe("Empty: allowed is a text of at least 1 characters.");
+});
+
+test("what only the campaign shows is asked once the schema is content, and stands at its field", async () => {
+  const further = vi.fn(async () => [
+    { pointer: "/at/sd", code: "out-of-range" as const, found: "2", allowed: "below 1" },
+  ]);
+  const strict = formSchema({
+    schema: z.object({ at: z.object({ sd: z.number() }) }),
+    content: (values: { sd: string }) => ({
+      at: { sd: values.sd === "" ? null : Number(values.sd) },
+    }),
+    field: () => "sd",
+    further,
+  });
+  expect((await strict.safeParseAsync({ sd: "" })).success).toBe(false);
+  expect(further).not.toHaveBeenCalled();
+  const issue = (await strict.safeParseAsync({ sd: "2" })).error?.issues[0];
+  expect(issue).toMatchObject({ path: ["sd"], message: "Found 2: allowed is below 1." });
 });
 
 test("a JSON Pointer is taken apart as RFC 6901 says", () => {

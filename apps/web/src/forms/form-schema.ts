@@ -1,3 +1,4 @@
+import { readForm } from "@weighhouse/campaign/form";
 import type { Problem } from "@weighhouse/campaign/problem";
 import { z } from "zod";
 
@@ -10,31 +11,38 @@ export interface FormReading<Values, Content> {
   content: (values: Values) => unknown;
   /** The form's field for a place in the content, where they differ. */
   field?: (values: Values, path: Path) => string;
-  /** Words for one issue, where the schema's own are not for people at a form. */
-  words?: (issue: z.core.$ZodIssue, content: unknown) => string;
+  /** What only the whole campaign shows, once the schema is content: pointers into the content. */
+  further?: (content: Content) => Promise<readonly Problem[]>;
 }
 
 /**
  * The server's schema, read through a form: text becomes content, the schema judges the content,
- * and each of its issues goes back to the field that the content came from.
+ * and each of its problems goes back to the field that the content came from.
  */
 export function formSchema<Values, Content>(
   reading: FormReading<Values, Content>,
 ): z.ZodType<Content, Values> {
-  return z.custom<Values>().transform((values, context) => {
+  const { schema, further } = reading;
+  return z.custom<Values>().transform(async (values, context) => {
     const content = reading.content(values);
-    const result = reading.schema.safeParse(content);
-    if (result.success) return result.data;
-    for (const issue of result.error.issues) {
-      const path = issue.path.map((step) => (typeof step === "symbol" ? String(step) : step));
+    const put = (problem: Problem) => {
+      const path = stepsOfPointer(problem.pointer);
       const field = reading.field?.(values, path) ?? path.join(".");
       context.addIssue({
         code: "custom",
         path: field === "" ? [] : field.split("."),
-        message: reading.words?.(issue, content) ?? issue.message,
+        message: problemWords(problem),
       });
+    };
+    const read = readForm(schema, content, "");
+    if (read.problems.length > 0) {
+      read.problems.forEach(put);
+      return z.NEVER;
     }
-    return z.NEVER;
+    const whole = read.value as Content;
+    const problems = (await further?.(whole)) ?? [];
+    problems.forEach(put);
+    return problems.length > 0 ? z.NEVER : whole;
   }) as z.ZodType<Content, Values>;
 }
 
@@ -49,8 +57,7 @@ export function stepsOfPointer(pointer: string): (string | number)[] {
 }
 
 /** What a problem says at its field: the place is plain there, so only found and allowed. */
-export function problemWords(problem: Problem): string {
-  return problem.found === ""
-    ? problem.allowed
-    : `Found ${problem.found}; allowed ${problem.allowed}.`;
+export function problemWords({ found, allowed }: Pick<Problem, "found" | "allowed">): string {
+  const empty = found === '""' || found === "null" || found === "nothing";
+  return empty ? `Empty: allowed is ${allowed}.` : `Found ${found}: allowed is ${allowed}.`;
 }

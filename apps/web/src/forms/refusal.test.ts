@@ -34,13 +34,13 @@ test("a failure of the network says that what was typed is kept", () => {
 
 test("problems stand at their fields, and what has no field is listed with its place", () => {
   const options = {
-    under: "/hypothesis",
+    under: /^\/hypothesis(?=\/|$)/,
     field: (path: (string | number)[]) => path.join("."),
     isField: (name: string) => name === "weight",
   };
   const elsewhere = { ...problem, pointer: "/campaign", found: "closed", allowed: "an open one" };
   expect(placeProblems([problem, elsewhere] as never, options)).toEqual({
-    placed: [{ field: "weight", message: "Found -1; allowed a number above 0." }],
-    loose: ["/campaign: Found closed; allowed an open one."],
+    placed: [{ field: "weight", message: "Found -1: allowed is a number above 0." }],
+    loose: ["/campaign: Found closed: allowed is an open one."],
   });
 });

@@ -33,7 +33,7 @@ export function placeProblems(
   problems: readonly Problem[],
   options: {
     /** The part of a pointer that leads to the form's content, `/hypothesis` say. */
-    under: string;
+    under: RegExp;
     field: (path: (string | number)[]) => string;
     isField: (name: string) => boolean;
   },
@@ -41,10 +41,7 @@ export function placeProblems(
   const placed: { field: string; message: string }[] = [];
   const loose: string[] = [];
   for (const problem of problems) {
-    const within = problem.pointer.startsWith(options.under)
-      ? problem.pointer.slice(options.under.length)
-      : problem.pointer;
-    const name = options.field(stepsOfPointer(within));
+    const name = options.field(stepsOfPointer(problem.pointer.replace(options.under, "")));
     if (options.isField(name)) placed.push({ field: name, message: problemWords(problem) });
     else loose.push(`${problem.pointer || "The whole"}: ${problemWords(problem)}`);
   }

@@ -22,10 +22,10 @@ export function useSending<Values extends FieldValues, Content, Answer>(options:
   send: (content: Content) => Promise<Answer>;
   done: (answer: Answer, content: Content) => void;
   /** The part of the server's pointers that leads to the form's content. */
-  under?: string;
+  under?: RegExp;
   field?: (values: Values, path: (string | number)[]) => string;
 }) {
-  const { form, draft, send, done, under = "", field } = options;
+  const { form, draft, send, done, under = /^$/, field } = options;
   const [failure, setFailure] = useState<Failure | null>(null);
   const [sending, setSending] = useState(false);
 

@@ -10,6 +10,8 @@ export interface PredictionDraft {
   sd: string;
   sharing: "common" | "each";
   decisive: boolean;
+  /** For the preview only: the uncertainty that a measurement is supposed to have. */
+  supposedSd: string;
 }
 
 export interface HypothesisDraft {
@@ -31,6 +33,7 @@ export function silentOn(measurand: string): PredictionDraft {
     sd: "",
     sharing: "common",
     decisive: false,
+    supposedSd: "",
   };
 }
 
@@ -52,7 +55,7 @@ export function emptyHypothesisDraft(
 /** Measurands that still take predictions, by the start of their window; undated ones last. */
 export function openMeasurands(document: CampaignDocument): CampaignDocument["measurands"] {
   const opens = (measurand: CampaignDocument["measurands"][number]) =>
-    measurand.window?.from ?? "9999";
+    measurand.window.from ?? "9999";
   return document.measurands
     .filter((measurand) => measurand.closed === null)
     .toSorted((a, b) => opens(a).localeCompare(opens(b)));
@@ -98,11 +101,15 @@ export function hypothesisField(
   return `predictions.${at}.${field === "decisive" ? "decisive" : "expected"}`;
 }
 
+type Shown = Pick<Hypothesis, "title" | "key" | "statement" | "team" | "group" | "weight"> & {
+  predictions: Pick<
+    Hypothesis["predictions"][number],
+    "measurand" | "expected" | "tolerance" | "decisive"
+  >[];
+};
+
 /** A registered hypothesis back in the form, to be amended. */
-export function draftOfHypothesis(
-  document: CampaignDocument,
-  hypothesis: Hypothesis,
-): HypothesisDraft {
+export function draftOfHypothesis(document: CampaignDocument, hypothesis: Shown): HypothesisDraft {
   const said = new Map(hypothesis.predictions.map((each) => [each.measurand, each]));
   return {
     title: hypothesis.title,
@@ -118,10 +125,10 @@ export function draftOfHypothesis(
   };
 }
 
-function draftOfPrediction(prediction: Hypothesis["predictions"][number]): PredictionDraft {
+function draftOfPrediction(prediction: Shown["predictions"][number]): PredictionDraft {
   const { tolerance } = prediction;
   return {
-    measurand: prediction.measurand,
+    ...silentOn(prediction.measurand),
     says: "number",
     expected: numberToText(prediction.expected),
     tolerance: tolerance?.family === "normal" ? "normal" : "exact",
