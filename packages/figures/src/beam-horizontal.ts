@@ -1,4 +1,11 @@
-import { composeLabel, placeLabel, placeText, type Label, type LabelStyle } from "./beam-labels";
+import {
+  composeFlatLabel,
+  composeLabel,
+  placeLabel,
+  placeText,
+  type Label,
+  type LabelStyle,
+} from "./beam-labels";
 import type { BeamBand, BeamLayout, BeamMark, BeamPlan, BeamTick } from "./beam";
 import {
   BEAM_PX,
@@ -14,6 +21,7 @@ import { clampInto, overlap, type Box } from "./boxes";
 const MARGIN_PX = 10;
 const DROP_PX = 26;
 const GAP_PX = 8;
+const MOST_TALL_LABELS = 6;
 
 /**
  * The beam across the frame, the leader at its right end. Labels stand to the right of their stems
@@ -22,8 +30,7 @@ const GAP_PX = 8;
  */
 export function layoutHorizontal(plan: BeamPlan): BeamLayout {
   const { style, width } = plan;
-  const labelWidth = Math.min(230, Math.max(130, width * 0.2));
-  const labels = plan.items.map((item) => composeLabel(item, labelWidth, style));
+  const labels = composeLabels(plan);
   const { scale, right, length } = fitScale(plan, labels);
 
   const ticksTop = 4;
@@ -57,6 +64,16 @@ export function layoutHorizontal(plan: BeamPlan): BeamLayout {
     statement,
     legend,
   };
+}
+
+/** Many labels are flat, so that they don't hang too deep. */
+function composeLabels({ items, width, style }: BeamPlan): Label[] {
+  if (items.length > MOST_TALL_LABELS) {
+    const flatWidth = Math.min(340, Math.max(130, width * 0.3));
+    return items.map((item) => composeFlatLabel(item, flatWidth, style));
+  }
+  const tallWidth = Math.min(230, Math.max(130, width * 0.2));
+  return items.map((item) => composeLabel(item, tallWidth, style));
 }
 
 /** Leaves as much room right of the beam's end as the labels there need. */

@@ -32,7 +32,12 @@ export const LABEL_STYLE: LabelStyle = {
 };
 
 /** A label's lines before it has a place: its own box starts at 0, 0. */
-export type Label = { width: number; height: number; lines: { text: string; bold: boolean }[] };
+export type Label = {
+  width: number;
+  height: number;
+  /** `row` from the top; `dx` from the label's inner left edge. */
+  lines: { text: string; bold: boolean; row: number; dx: number }[];
+};
 
 /**
  * The lines of a label: the title in at most two, then number and note in as many as they need,
@@ -41,23 +46,44 @@ export type Label = { width: number; height: number; lines: { text: string; bold
 export function composeLabel(item: BeamItem, width: number, style: LabelStyle): Label {
   const inner = width - 2 * style.padding;
   const { measure, fontSize } = style;
-  const remark = item.note === null ? item.number : `${item.number}, ${item.note}`;
+  const titles = wrapText(item.title, inner, { measure, fontSize, bold: true, maxLines: 2 });
+  const remarks = wrapText(remarkOf(item), inner, { measure, fontSize, bold: false });
   const lines = [
-    ...wrapText(item.title, inner, { measure, fontSize, bold: true, maxLines: 2 }).map((text) => ({
-      text,
-      bold: true,
-    })),
-    ...wrapText(remark, inner, { measure, fontSize, bold: false }).map((text) => ({
-      text,
-      bold: false,
-    })),
-  ];
-  const widest = Math.max(...lines.map((line) => measure(line.text, fontSize, line.bold)));
+    ...titles.map((text) => ({ text, bold: true })),
+    ...remarks.map((text) => ({ text, bold: false })),
+  ].map((line, row) => ({ ...line, row, dx: 0 }));
+  const widest = Math.max(...lines.map(({ text, bold }) => measure(text, fontSize, bold)));
   return {
     lines,
     width: Math.min(width, Math.ceil(widest) + 2 * style.padding),
     height: lines.length * style.lineHeight + style.padding,
   };
+}
+
+/** The whole label on one line, for when many hang close together; only the title is cut. */
+export function composeFlatLabel(item: BeamItem, width: number, style: LabelStyle): Label {
+  const { measure, fontSize, padding, lineHeight } = style;
+  const gap = fontSize * 0.6;
+  const remark = remarkOf(item);
+  const remarkWidth = measure(remark, fontSize, false);
+  const room = width - 2 * padding - gap - remarkWidth;
+  const titles = wrapText(item.title, room, { measure, fontSize, bold: true, maxLines: 1 });
+  const title = titles[0] ?? "";
+  const titleWidth = measure(title, fontSize, true);
+  if (titleWidth > room) return composeLabel(item, width, style);
+  const dx = title === "" ? 0 : titleWidth + gap;
+  return {
+    lines: [
+      { text: title, bold: true, row: 0, dx: 0 },
+      { text: remark, bold: false, row: 0, dx },
+    ],
+    width: Math.ceil(dx + remarkWidth) + 2 * padding,
+    height: lineHeight + padding,
+  };
+}
+
+function remarkOf(item: BeamItem): string {
+  return item.note === null ? item.number : `${item.number}, ${item.note}`;
 }
 
 /** Puts a label's lines into a box of its size at the given corner. */
@@ -67,10 +93,10 @@ export function placeLabel(
   style: LabelStyle,
 ): { box: Box; lines: PlacedText[] } {
   const box = { ...corner, width: label.width, height: label.height };
-  const lines = label.lines.map((line, index) =>
+  const lines = label.lines.map((line) =>
     placeText(line.text, {
-      x: corner.x + style.padding,
-      top: corner.y + style.padding / 2 + index * style.lineHeight,
+      x: corner.x + style.padding + line.dx,
+      top: corner.y + style.padding / 2 + line.row * style.lineHeight,
       bold: line.bold,
       style,
     }),
