@@ -106,7 +106,12 @@ function Hung(props: {
       <rect {...mark.label} rx="2" fill="var(--sheet)" stroke={ink} strokeWidth="1.8" />
       {props.hatch ? <rect {...mark.label} rx="2" fill={props.hatch} opacity="0.55" /> : null}
       {mark.lines.map((line) => (
-        <Line key={line.y} line={line} number={line.bold ? undefined : place} quiet={!line.bold} />
+        <Line
+          key={`${line.x} ${line.y}`}
+          line={line}
+          number={line.bold ? undefined : place}
+          quiet={!line.bold}
+        />
       ))}
     </g>
   );
@@ -125,7 +130,7 @@ function NoModel({ mark, number }: { mark: BeamMark; number: MarkedNumber }) {
         strokeWidth="1.4"
       />
       {mark.lines.map((line) => (
-        <Line key={line.y} line={{ ...line, bold: false }} number={number} quiet />
+        <Line key={`${line.x} ${line.y}`} line={{ ...line, bold: false }} number={number} quiet />
       ))}
     </g>
   );
@@ -136,7 +141,7 @@ function Statement({ box, lines }: NonNullable<BeamLayout["statement"]>) {
     <g>
       <rect {...box} fill="var(--sheet)" stroke="var(--rust)" strokeWidth="1.5" />
       {lines.map((line) => (
-        <Line key={line.y} line={line} />
+        <Line key={`${line.x} ${line.y}`} line={line} />
       ))}
     </g>
   );
