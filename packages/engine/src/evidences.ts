@@ -1,4 +1,7 @@
-import type { EngineState } from "./state";
+import { scoreHypothesis, scoreSilence } from "./hypothesis-scores";
+import type { ScoreOptions } from "./score-options";
+import type { EngineState } from "./engine-state";
+import { createWorkspace } from "./workspace";
 
 export interface EvidencePoint {
   /** A hypothesis's key, `noneOfThese` (where its weight is above 0), or `noModel`. */
@@ -8,6 +11,17 @@ export interface EvidencePoint {
 }
 
 /** One point of the timeline: every hypothesis in the document's order, then noneOfThese, then noModel. */
-export function evidencesOf(_state: EngineState): EvidencePoint[] {
-  throw new Error("being built");
+export function evidencesOf(
+  { frame, sums, tally }: EngineState,
+  { includeAfter = false }: Pick<ScoreOptions, "includeAfter"> = {},
+): EvidencePoint[] {
+  const workspace = createWorkspace(frame, sums);
+  const context = { dates: tally.dates, includeAfter };
+  const scores = frame.hypotheses.map((one) => scoreHypothesis(workspace, one, context));
+  const silence = scoreSilence(workspace);
+  const points = silence.share > 0 ? [...scores, silence] : scores;
+  return [...points, { ...silence, key: "noModel" }].map(({ key, lnEvidence }) => ({
+    hypothesis: key,
+    lnEvidence: Number.isFinite(lnEvidence) ? lnEvidence : null,
+  }));
 }

@@ -1,14 +1,8 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { Result } from "@weighhouse/campaign/problem";
 import type { Standings } from "@weighhouse/campaign/standings";
+import type { ScoreOptions } from "./score-options";
 import { createState, standingsOf } from "./state";
-
-export interface ScoreOptions {
-  /** Predictions filed after data count as the others do. */
-  includeAfter?: boolean;
-  /** Where in the ledger the document was folded; null for a file. */
-  asOf?: Standings["asOf"];
-}
 
 /** Scores a whole campaign; what isn't supported yet is refused by name, never scored wrongly. */
 export function scoreCampaign(
@@ -18,3 +12,5 @@ export function scoreCampaign(
   const state = createState(document);
   return state.ok ? { ok: true, value: standingsOf(state.value, options) } : state;
 }
+
+export type { ScoreOptions } from "./score-options";

@@ -1,16 +1,27 @@
 import type { CampaignDocument, Measurement } from "@weighhouse/campaign/document";
-import type { Result } from "@weighhouse/campaign/problem";
+import type { Problem, Result } from "@weighhouse/campaign/problem";
 import type { Standings } from "@weighhouse/campaign/standings";
-import type { ScoreOptions } from "./score";
-
-/** What the engine keeps between measurements; its fields are the engine's own. */
-export interface EngineState {
-  readonly version: number;
-}
+import { compileFrame } from "./compile-frame";
+import type { EngineState } from "./engine-state";
+import type { Frame } from "./frame";
+import { unsupportedMeasurements } from "./not-yet-supported";
+import { readMeasurement, type Reading } from "./readings";
+import type { ScoreOptions } from "./score-options";
+import { standings } from "./standings";
+import { addReading, createSums } from "./sums";
+import { createTally, noteMeasurement } from "./tally";
+import { createWorkspace } from "./workspace";
 
 /** The state of a campaign with all measurements of its document in it. */
-export function createState(_document: CampaignDocument): Result<EngineState> {
-  throw new Error("being built");
+export function createState(document: CampaignDocument): Result<EngineState> {
+  const compiled = compileFrame(document);
+  if (!compiled.ok) {
+    const problems = [...compiled.problems, ...unsupportedMeasurements(document)];
+    return { ok: false, problems };
+  }
+  const frame = compiled.value;
+  const sums = createSums(frame.measurands.length);
+  return addMeasurements({ frame, sums, tally: createTally(frame) }, document.measurements);
 }
 
 /**
@@ -20,23 +31,53 @@ export function createState(_document: CampaignDocument): Result<EngineState> {
  * Problems' pointers count on from the measurements already in: `/measurements/{size + i}`.
  */
 export function addMeasurements(
-  _state: EngineState,
-  _measurements: Measurement[],
+  state: EngineState,
+  measurements: readonly Measurement[],
 ): Result<EngineState> {
-  throw new Error("being built");
+  const { frame, sums, tally } = state;
+  const readings: (Reading | null)[] = [];
+  const problems: Problem[] = [];
+  measurements.forEach((measurement, i) => {
+    const read = readCounted(frame, measurement, tally.size + i);
+    if (read.ok) readings.push(read.value);
+    else problems.push(...read.problems);
+  });
+  if (problems.length > 0) return { ok: false, problems };
+  measurements.forEach((measurement, i) => {
+    const reading = readings[i]!;
+    noteMeasurement(tally, frame, { measurement, reading });
+    if (reading !== null) addReading(sums, reading, frame.measurands[reading.measurand]!);
+  });
+  return { ok: true, value: state };
+}
+
+/** Null for a measurement that is listed and not counted, whatever its form. */
+function readCounted(
+  frame: Frame,
+  measurement: Measurement,
+  place: number,
+): Result<Reading | null> {
+  const pointer = `/measurements/${place}`;
+  const measurand = frame.measurandIndex.get(measurement.measurand);
+  if (measurand === undefined) {
+    const found = `"${measurement.measurand}"`;
+    const allowed = "a measurand of the campaign";
+    const at = `${pointer}/measurand`;
+    return { ok: false, problems: [{ pointer: at, code: "unknown-key", found, allowed }] };
+  }
+  if (measurement.setAside !== null || frame.measurands[measurand]!.closed) {
+    return { ok: true, value: null };
+  }
+  return readMeasurement(frame, measurement, pointer);
 }
 
 /** The standings document of a state. */
-export function standingsOf(_state: EngineState, _options: ScoreOptions = {}): Standings {
-  throw new Error("being built");
+export function standingsOf(
+  { frame, sums, tally }: EngineState,
+  options: ScoreOptions = {},
+): Standings {
+  return standings(createWorkspace(frame, sums), tally, options);
 }
 
-/** JSON text; `restoreState` reads it back to the same numbers, bit for bit. */
-export function serialiseState(_state: EngineState): string {
-  throw new Error("being built");
-}
-
-/** Null when the text was written by another engine or state version. */
-export function restoreState(_text: string): EngineState | null {
-  throw new Error("being built");
-}
+export type { EngineState } from "./engine-state";
+export { restoreState, serialiseState } from "./state-text";

@@ -1,18 +1,8 @@
+import type { Box, LogIntegral } from "./box";
 import { logConcaveIntegral } from "./log-concave-integral";
 import { latticeBoxIntegral } from "./box-lattice";
 import { LN_SQRT_2PI, logNormalInterval } from "./normal";
 import type { TriangularSystem } from "./triangular-system";
-
-export interface Box {
-  lower: Float64Array;
-  upper: Float64Array;
-}
-
-/** Natural log of an integral; `error` is a quadrature's bound or a lattice's standard error. */
-export interface LogIntegral {
-  ln: number;
-  error: number;
-}
 
 /**
  * ln of the integral of a Gaussian over a box,

@@ -1,4 +1,4 @@
-import type { Box, LogIntegral } from "./box-integral";
+import type { Box, LogIntegral } from "./box";
 import { logSumExp } from "./log-sum-exp";
 import { LN_SQRT_2PI, logNormalInterval, truncatedNormalQuantile } from "./normal";
 import type { TriangularSystem } from "./triangular-system";

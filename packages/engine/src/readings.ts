@@ -1,0 +1,83 @@
+import type { Measurement } from "@weighhouse/campaign/document";
+import { below } from "@weighhouse/campaign/pointer";
+import type { Problem, Result } from "@weighhouse/campaign/problem";
+import { conversion } from "@weighhouse/campaign/units";
+import type { Frame, MeasurandFrame } from "./frame";
+import { unsupportedMeasurement } from "./not-yet-supported";
+import { sdInScoringSpace, toScoringSpace } from "./scoring-space";
+
+export interface Loading {
+  error: number;
+  batch: string | null;
+  /** coefficient x sd: what one standard deviation of the shared error does to the reading. */
+  value: number;
+}
+
+/** A measurement that counts, in scoring space. */
+export interface Reading {
+  measurand: number;
+  y: number;
+  /** Its own variance, without scatter. */
+  variance: number;
+  loadings: Loading[];
+  provisional: boolean;
+  /** No conversion was possible: the value stands as it was given. */
+  unknownUnit: string | null;
+}
+
+/** Brings a measurement into scoring space, or says why it can't be scored. */
+export function readMeasurement(
+  frame: Frame,
+  measurement: Measurement,
+  pointer: string,
+): Result<Reading> {
+  const measurand = frame.measurandIndex.get(measurement.measurand)!;
+  const problems = unsupportedMeasurement(measurement, pointer, frame.relativeErrors);
+  if (problems.length > 0) return { ok: false, problems };
+  const read = readValue(measurement, frame.measurands[measurand]!, pointer);
+  if ("pointer" in read) return { ok: false, problems: [read] };
+  const loadings: Loading[] = [];
+  for (const { error: key, coefficient } of measurement.shared) {
+    const error = frame.errorIndex.get(key)!;
+    const { sd, perBatch } = frame.errors[error]!;
+    const batch = perBatch ? measurement.batch : null;
+    loadings.push({ error, batch, value: coefficient * sd });
+  }
+  const provisional = measurement.status === "provisional";
+  return { ok: true, value: { measurand, ...read, loadings, provisional } };
+}
+
+function readValue(
+  measurement: Measurement,
+  { unit, scale }: MeasurandFrame,
+  pointer: string,
+): Pick<Reading, "y" | "variance" | "unknownUnit"> | Problem {
+  const { value: given, sd: givenSd, sdDex } = measurement;
+  if (given === null) return missing(below(pointer, "value"), "a value");
+  let factor = 1;
+  let offset = 0;
+  let unknownUnit: string | null = null;
+  if (measurement.unit !== null && unit !== null && measurement.unit !== unit) {
+    const converted = conversion(measurement.unit, unit);
+    if (converted.kind === "other-dimension") {
+      const at = below(pointer, "unit");
+      return { pointer: at, code: "wrong-dimension", found: measurement.unit, allowed: unit };
+    }
+    if (converted.kind === "unknown") unknownUnit = measurement.unit;
+    else ({ factor, offset } = converted);
+  }
+  const value = factor * given + offset;
+  if (scale === "log10" && !(value > 0)) {
+    const at = below(pointer, "value");
+    return { pointer: at, code: "not-positive", found: String(given), allowed: "a value above 0" };
+  }
+  const y = toScoringSpace(value, scale);
+  if (scale === "log10" && sdDex !== null) return { y, variance: sdDex * sdDex, unknownUnit };
+  if (givenSd === null) return missing(below(pointer, "sd"), "a standard uncertainty");
+  const sd = sdInScoringSpace(Math.abs(factor) * givenSd, value, scale);
+  return { y, variance: sd * sd, unknownUnit };
+}
+
+function missing(pointer: string, allowed: string): Problem {
+  return { pointer, code: "missing", found: "none", allowed };
+}

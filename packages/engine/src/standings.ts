@@ -1,0 +1,177 @@
+import type {
+  HypothesisStanding,
+  MeasurandStanding,
+  Standings,
+  VerdictRow,
+} from "@weighhouse/campaign/standings";
+import { STANDINGS_FORMAT } from "@weighhouse/campaign/standings";
+import { normalCdf } from "@weighhouse/numerics/normal";
+import { combine } from "./combination";
+import { log10BayesFactor, pairsOf, posteriors, ranked } from "./comparison";
+import {
+  isSilenced,
+  scoreHypothesis,
+  scoreSilence,
+  type HypothesisScore,
+  type ListedPrediction,
+} from "./hypothesis-scores";
+import { naturalInterval, toNatural } from "./scoring-space";
+import type { ScoreOptions } from "./score-options";
+import type { Tally } from "./tally";
+import { verdictOf, verdictOfWithheld } from "./verdict";
+import { ENGINE_VERSION } from "./version";
+import { warningsOf } from "./warnings";
+import type { Workspace } from "./workspace";
+
+/** The standings document, keys in schema order: the same input gives the same bytes. */
+export function standings(
+  workspace: Workspace,
+  tally: Tally,
+  { includeAfter = false, asOf = null }: ScoreOptions,
+): Standings {
+  const { frame } = workspace;
+  const context = { dates: tally.dates, includeAfter };
+  const scores = frame.hypotheses.map((one) => scoreHypothesis(workspace, one, context));
+  const silence = scoreSilence(workspace);
+  const inRank = ranked(silence.share > 0 ? [...scores, silence] : scores);
+  const rows = scores.flatMap((score) =>
+    score.listed.map((listed) => ({ score, listed, row: verdictRow(workspace, score, listed) })),
+  );
+  const chances = posteriors(inRank);
+  const hypotheses = inRank.map((score, i) => {
+    const own = rows.filter((one) => one.score === score);
+    return hypothesisStanding(score, {
+      rank: i + 1,
+      leader: inRank[0]!,
+      posterior: chances[i]!,
+      ...countVerdicts(own, includeAfter),
+    });
+  });
+  const pairs = pairsOf(workspace, inRank);
+  return {
+    format: STANDINGS_FORMAT,
+    engine: ENGINE_VERSION,
+    campaign: frame.document.campaign.key,
+    asOf: asOf === null ? null : { size: asOf.size, treeHead: asOf.treeHead },
+    measurements: { counted: tally.counted, setAside: tally.setAside },
+    noModel: { lnEvidence: finite(silence.lnEvidence) },
+    hypotheses,
+    pairs,
+    verdicts: rows.map(({ row }) => row),
+    measurands: frame.measurands.map((_, m) => measurandStanding(workspace, m)),
+    warnings: warningsOf({ workspace, tally, scores, silence, hypotheses, pairs, includeAfter }),
+  };
+}
+
+/** A listed prediction with its row. */
+interface ListedRow {
+  listed: ListedPrediction;
+  row: VerdictRow;
+}
+
+function countVerdicts(rows: readonly ListedRow[], includeAfter: boolean) {
+  const verdicts: HypothesisStanding["verdicts"] = {
+    pass: 0,
+    fail: 0,
+    undecided: 0,
+    awaiting: 0,
+    notMeasured: 0,
+    withheld: 0,
+    void: 0,
+  };
+  const failedDecisive: string[] = [];
+  for (const { listed, row } of rows) {
+    if (row.order !== "after") verdicts[row.verdict] += 1;
+    const decisive = listed.kind === "open" && listed.prediction.decisive;
+    if (decisive && row.verdict === "fail" && !isSilenced(row.order, includeAfter)) {
+      failedDecisive.push(row.measurand);
+    }
+  }
+  return { verdicts, failedDecisive };
+}
+
+function hypothesisStanding(
+  score: HypothesisScore,
+  rest: Pick<HypothesisStanding, "rank" | "posterior" | "failedDecisive" | "verdicts"> & {
+    leader: HypothesisScore;
+  },
+): HypothesisStanding {
+  const lnEvidence = finite(score.lnEvidence);
+  return {
+    key: score.key,
+    rank: rest.rank,
+    compared: score.compared,
+    silent: score.silent,
+    chiSquare: score.fit?.chiSquare ?? null,
+    degreesOfFreedom: score.fit?.degreesOfFreedom ?? 0,
+    pValue: score.fit?.pValue ?? null,
+    lnEvidence,
+    lnEvidenceError: lnEvidence === null ? 0 : score.lnEvidenceError,
+    log10BayesFactor: log10BayesFactor(score.lnEvidence, rest.leader.lnEvidence),
+    posterior: rest.posterior,
+    failedDecisive: rest.failedDecisive,
+    verdicts: rest.verdicts,
+    parameters: [],
+  };
+}
+
+function verdictRow(
+  workspace: Workspace,
+  { key }: HypothesisScore,
+  listed: ListedPrediction,
+): VerdictRow {
+  const m = listed.kind === "open" ? listed.prediction.measurand : listed.measurand;
+  const { key: measurand, scale } = workspace.frame.measurands[m]!;
+  const { counted, provisional } = workspace.sums.measurands[m]!;
+  const verdict =
+    listed.kind === "open"
+      ? verdictOf(workspace, listed.prediction)
+      : verdictOfWithheld(workspace, m);
+  const natural = (value: number | null) => (value === null ? null : toNatural(value, scale));
+  const interval =
+    listed.kind === "open"
+      ? naturalInterval(listed.prediction, scale)
+      : { lower: null, upper: null };
+  return {
+    hypothesis: key,
+    measurand,
+    verdict: verdict.word,
+    conformance: verdict.conformance,
+    tension: verdict.tension,
+    value: natural(verdict.value),
+    sd: verdict.sd,
+    lower: interval.lower,
+    upper: interval.upper,
+    inflated: verdict.inflated,
+    provisional: counted > 0 && provisional > 0,
+    order: listed.order,
+  };
+}
+
+function measurandStanding(workspace: Workspace, m: number): MeasurandStanding {
+  const { key, scale, thresholds } = workspace.frame.measurands[m]!;
+  const combination = combine(workspace, m);
+  return {
+    key,
+    measurements: workspace.sums.measurands[m]!.counted,
+    combined:
+      combination === null
+        ? null
+        : {
+            value: toNatural(combination.value, scale),
+            sd: combination.sd,
+            chiSquare: combination.chiSquare,
+            degreesOfFreedom: combination.degreesOfFreedom,
+            birgeRatio: combination.birgeRatio,
+          },
+    thresholds: thresholds.map(({ key, value }) => ({
+      key,
+      probabilityAbove:
+        combination === null ? null : normalCdf((combination.value - value) / combination.sd),
+    })),
+  };
+}
+
+function finite(value: number): number | null {
+  return Number.isFinite(value) ? value : null;
+}

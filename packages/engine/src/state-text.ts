@@ -1,0 +1,68 @@
+import type { CampaignDocument } from "@weighhouse/campaign/document";
+import { compileFrame } from "./compile-frame";
+import type { EngineState } from "./engine-state";
+import { indexSums, type Draw, type Group, type MeasurandSums } from "./sums";
+import type { Tally } from "./tally";
+import { ENGINE_VERSION, STATE_VERSION } from "./version";
+
+/** The state as JSON holds it: typed arrays as lists, maps as pairs, frames as their documents. */
+interface StateText {
+  engine: string;
+  state: number;
+  document: CampaignDocument;
+  draws: Draw[];
+  measurands: (Omit<MeasurandSums, "groups"> & {
+    groups: (Omit<Group, "sums"> & { sums: number[] })[];
+  })[];
+  tally: Omit<Tally, "sameData" | "unknownUnits"> & {
+    sameData: [string, Tally["sameData"] extends Map<string, infer V> ? V : never][];
+    unknownUnits: [string, Tally["unknownUnits"] extends Map<string, infer V> ? V : never][];
+  };
+}
+
+/** JSON text; `restoreState` reads it back to the same numbers, bit for bit. */
+export function serialiseState({ frame, sums, tally }: EngineState): string {
+  const text: StateText = {
+    engine: ENGINE_VERSION,
+    state: STATE_VERSION,
+    document: frame.document,
+    draws: sums.draws,
+    measurands: sums.measurands.map((one) => ({
+      ...one,
+      groups: one.groups.map((group) => ({ ...group, sums: [...group.sums] })),
+    })),
+    tally: {
+      ...tally,
+      sameData: [...tally.sameData],
+      unknownUnits: [...tally.unknownUnits],
+    },
+  };
+  return JSON.stringify(text);
+}
+
+/**
+ * @param text what `serialiseState` wrote, and nobody else: it isn't checked further
+ * @returns null when it was written by another engine or state version
+ */
+export function restoreState(text: string): EngineState | null {
+  const { engine, state, document, draws, measurands, tally } = JSON.parse(text) as StateText;
+  if (engine !== ENGINE_VERSION || state !== STATE_VERSION) return null;
+  const frame = compileFrame(document);
+  if (!frame.ok) return null;
+  const sums = indexSums({
+    draws,
+    measurands: measurands.map((one) => ({
+      ...one,
+      groups: one.groups.map((group) => ({ ...group, sums: Float64Array.from(group.sums) })),
+    })),
+  });
+  return {
+    frame: frame.value,
+    sums,
+    tally: {
+      ...tally,
+      sameData: new Map(tally.sameData),
+      unknownUnits: new Map(tally.unknownUnits),
+    },
+  };
+}

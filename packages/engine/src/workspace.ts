@@ -1,0 +1,64 @@
+import type { LogIntegral } from "@weighhouse/numerics/box";
+import { couplingDraws } from "./blocks";
+import type { Frame } from "./frame";
+import { createMarginals, type Marginals } from "./marginal";
+import type { Level } from "./solve";
+import type { Sums } from "./sums";
+
+/** A measurand's measurements taken together, in scoring space. */
+export interface Combination {
+  value: number;
+  sd: number;
+  chiSquare: number;
+  degreesOfFreedom: number;
+  /** sqrt(chi2 / dof); null without degrees of freedom. */
+  birgeRatio: number | null;
+  /** Of the measurements agreeing with one another; null without degrees of freedom. */
+  pValue: number | null;
+}
+
+/** What one hypothesis says of each measurand: an index of its roles, or null for left out. */
+export type Roles = readonly (number | null)[];
+
+/**
+ * One scoring: a campaign and its sums, with all that has been worked out of them so far. Good
+ * until a reading is added.
+ */
+export interface Workspace {
+  frame: Frame;
+  sums: Sums;
+  marginals: Marginals;
+  coupling: Map<number, number[]>;
+  evidences: Map<string, LogIntegral>;
+  combinations: Map<number, Combination | null>;
+}
+
+export function createWorkspace(frame: Frame, sums: Sums): Workspace {
+  return {
+    frame,
+    sums,
+    marginals: createMarginals(sums),
+    coupling: couplingDraws(sums),
+    evidences: new Map(),
+    combinations: new Map(),
+  };
+}
+
+/** Roles that leave out all measurands but one. */
+export function onlyMeasurand({ frame }: Workspace, measurand: number, role: number): Roles {
+  return frame.measurands.map((_, m) => (m === measurand ? role : null));
+}
+
+/** The measurands that have a role and counted measurements, in increasing order. */
+export function measuredIn({ sums }: Workspace, roles: Roles): number[] {
+  const measured: number[] = [];
+  roles.forEach((role, m) => {
+    if (role !== null && sums.measurands[m]!.counted > 0) measured.push(m);
+  });
+  return measured;
+}
+
+export function levelOf({ frame, sums }: Workspace, measurand: number, role: number): Level {
+  const { centre } = sums.measurands[measurand]!;
+  return { role: frame.measurands[measurand]!.roles[role]!, centre };
+}
