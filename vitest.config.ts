@@ -1,4 +1,5 @@
 import { defineConfig } from "vitest/config";
+import webAlias from "./apps/web/import-alias.cjs";
 
 const excluded = ["**/node_modules/**", "**/dist/**", "**/.next/**", "test/e2e/**"];
 
@@ -10,6 +11,7 @@ export default defineConfig({
   test: {
     projects: [
       {
+        resolve: webAlias.resolve,
         test: {
           name: "pure",
           include: [
