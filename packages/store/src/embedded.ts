@@ -5,11 +5,11 @@ import path from "node:path";
 import { setTimeout as sleep } from "node:timers/promises";
 import postgres from "postgres";
 import type { Sql } from "postgres";
-import { installBinaries } from "./embedded/binaries";
-import { freePort, initialise, OWNER, prepareFolder, start, stop } from "./embedded/cluster";
-import type { Cluster } from "./embedded/cluster";
-import { isAlive, readServerFile } from "./embedded/postmaster-file";
-import { requireReachable, serverUser } from "./embedded/server-user";
+import { installBinaries } from "./embedded-server/binaries";
+import { freePort, initialise, OWNER, prepareFolder, start, stop } from "./embedded-server/cluster";
+import type { Cluster } from "./embedded-server/cluster";
+import { isAlive, readServerFile } from "./embedded-server/postmaster-file";
+import { requireReachable, serverUser } from "./embedded-server/server-user";
 import type { Log } from "./log";
 import { StoreError } from "./store-error";
 
