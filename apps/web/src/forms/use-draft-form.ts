@@ -1,7 +1,7 @@
 "use client";
 
 import { zodResolver } from "@hookform/resolvers/zod";
-import { useEffect, useState } from "react";
+import { useEffect, useRef, useState } from "react";
 import { useForm, type DefaultValues, type FieldValues, type UseFormReturn } from "react-hook-form";
 import { z } from "zod";
 import { clearDraft, readDraft, saveDraft } from "./draft-store";
@@ -25,14 +25,16 @@ export interface KeptDraft {
 /**
  * A form on the server's schema whose text is kept in this browser until it is sent.
  *
- * @param name of the draft: one per form and subject, `post:CAMPAIGN` say
+ * @param name of the draft: one per form and subject, `post-one:CAMPAIGN` say
+ * @param afterSending whether the form is empty again, or keeps what was sent as what there is now
  */
 export function useDraftForm<Values extends FieldValues, Content>(options: {
   name: string;
   defaults: Values;
   schema: z.ZodType<Content, Values>;
+  afterSending?: "empty" | "keep";
 }): { form: UseFormReturn<Values, unknown, Content>; draft: KeptDraft } {
-  const { name, defaults, schema } = options;
+  const { name, defaults, schema, afterSending = "empty" } = options;
   const form = useForm<Values, unknown, Content>({
     defaultValues: defaults as DefaultValues<Values>,
     resolver: zodResolver(schema as never) as never,
@@ -40,30 +42,36 @@ export function useDraftForm<Values extends FieldValues, Content>(options: {
   });
   const [restoredFrom, setRestoredFrom] = useState<string | null>(null);
   const [notKept, setNotKept] = useState(false);
+  const blank = useRef(defaults);
 
   useEffect(() => {
-    const kept = readDraft(localStorage, name, defaults);
+    const kept = readDraft(localStorage, name, blank.current);
     if (kept === null) return;
     form.reset(kept.values, { keepDefaultValues: true });
     setRestoredFrom(kept.savedAt);
-    // Only on arrival: afterwards the form is newer than the draft.
-    // eslint-disable-next-line react-hooks/exhaustive-deps
-  }, [name]);
+  }, [form, name]);
+
+  useEffect(() => {
+    // What the form starts from may change under it; what somebody typed is never touched.
+    const before = blank.current;
+    blank.current = defaults;
+    if (!same(before, defaults) && same(form.getValues(), before)) form.reset(defaults);
+  }, [form, defaults]);
 
   useEffect(() => {
     let timer: ReturnType<typeof setTimeout> | undefined;
     let pending: Values | null = null;
     const save = () => {
-      if (pending !== null)
-        setNotKept(
-          !saveDraft(localStorage, name, { savedAt: new Date().toISOString(), values: pending }),
-        );
+      clearTimeout(timer);
+      if (pending === null) return;
+      const draft = { savedAt: new Date().toISOString(), values: pending };
       pending = null;
+      if (same(draft.values, blank.current)) clearDraft(localStorage, name);
+      else setNotKept(!saveDraft(localStorage, name, draft));
     };
     const stop = form.subscribe({
-      formState: { values: true, isDirty: true },
-      callback: ({ values, isDirty }) => {
-        if (isDirty === false) return;
+      formState: { values: true },
+      callback: ({ values }) => {
         pending = structuredClone(values);
         clearTimeout(timer);
         timer = setTimeout(save, saveAfterMs);
@@ -72,13 +80,14 @@ export function useDraftForm<Values extends FieldValues, Content>(options: {
     window.addEventListener("pagehide", save);
     return () => {
       stop();
-      clearTimeout(timer);
       save();
       window.removeEventListener("pagehide", save);
     };
   }, [form, name]);
 
-  const forget = () => {
+  const forget = (values: Values) => {
+    blank.current = values;
+    form.reset(values);
     clearDraft(localStorage, name);
     setRestoredFrom(null);
   };
@@ -87,14 +96,12 @@ export function useDraftForm<Values extends FieldValues, Content>(options: {
     draft: {
       restoredFrom,
       notKept,
-      startAfresh: () => {
-        form.reset(defaults);
-        forget();
-      },
-      sent: () => {
-        form.reset(defaults);
-        forget();
-      },
+      startAfresh: () => forget(defaults),
+      sent: () => forget(afterSending === "keep" ? form.getValues() : defaults),
     },
   };
+}
+
+function same(a: unknown, b: unknown): boolean {
+  return JSON.stringify(a) === JSON.stringify(b);
 }

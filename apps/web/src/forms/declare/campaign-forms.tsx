@@ -49,6 +49,7 @@ export function AmendCampaignForm(props: {
       name={`amend-campaign:${campaign.key}`}
       label="Title, rule and dates"
       button="Save changes"
+      afterSending="keep"
       defaults={defaults}
       schema={schema}
       under={/^\/campaign(?=\/|$)/}

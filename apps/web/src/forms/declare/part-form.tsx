@@ -16,6 +16,7 @@ export function PartForm<Values extends FieldValues, Content>(props: {
   label: string;
   button: string;
   defaults: Values;
+  afterSending?: "empty" | "keep";
   schema: z.ZodType<Content, Values>;
   send: (content: Content) => Promise<unknown>;
   /** What to say once it is done, of what was sent. */
@@ -32,6 +33,7 @@ export function PartForm<Values extends FieldValues, Content>(props: {
     name: props.name,
     defaults: props.defaults,
     schema: props.schema,
+    afterSending: props.afterSending,
   });
   const { submit, sending, failure } = useSending({
     form,

@@ -1,6 +1,7 @@
 import type { CampaignDocument, Hypothesis } from "@weighhouse/campaign/document";
 import { expect, test } from "vitest";
 import {
+  alignedPredictions,
   draftOfHypothesis,
   emptyHypothesisDraft,
   hypothesisContent,
@@ -66,4 +67,16 @@ test("a registered hypothesis comes back into the form as it was", () => {
   const content = hypothesisContent(drafted());
   const registered = { ...content, statement: null } as unknown as Hypothesis;
   expect(hypothesisContent(draftOfHypothesis(document, registered))).toEqual(content);
+});
+
+test("a draft from before a quantity was declared keeps what was typed and is silent on the new one", () => {
+  const draft = drafted();
+  const older = draft.predictions.slice(0, 2);
+  const aligned = alignedPredictions(document, older);
+  expect(aligned.map(({ measurand, says }) => `${measurand} ${says}`)).toEqual([
+    "may silent",
+    "june number",
+    "undated silent",
+  ]);
+  expect(alignedPredictions(document, draft.predictions)).toBe(draft.predictions);
 });

@@ -52,6 +52,19 @@ export function emptyHypothesisDraft(
   };
 }
 
+/** Predictions for exactly the quantities that there are now; the same list where nothing changed. */
+export function alignedPredictions(
+  document: CampaignDocument,
+  predictions: PredictionDraft[],
+): PredictionDraft[] {
+  const keys = openMeasurands(document).map(({ key }) => key);
+  const there = predictions.map(({ measurand }) => measurand);
+  if (keys.length === there.length && keys.every((key, index) => key === there[index]))
+    return predictions;
+  const drafts = new Map(predictions.map((draft) => [draft.measurand, draft]));
+  return keys.map((key) => drafts.get(key) ?? silentOn(key));
+}
+
 /** Measurands that still take predictions, by the start of their window; undated ones last. */
 export function openMeasurands(document: CampaignDocument): CampaignDocument["measurands"] {
   const opens = (measurand: CampaignDocument["measurands"][number]) =>

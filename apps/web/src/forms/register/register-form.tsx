@@ -3,7 +3,7 @@
 import type { CampaignDocument, Hypothesis } from "@weighhouse/campaign/document";
 import { payloadSchemas, type HypothesisContent } from "@weighhouse/campaign/entries";
 import { useRouter, useSearchParams } from "next/navigation";
-import { useMemo } from "react";
+import { useEffect, useMemo } from "react";
 import { FormProvider } from "react-hook-form";
 import { Button } from "@/look/button";
 import { useTRPCClient } from "@/trpc/client";
@@ -13,6 +13,7 @@ import { formSchema } from "../form-schema";
 import { useDraftForm } from "../use-draft-form";
 import { useSending } from "../use-sending";
 import {
+  alignedPredictions,
   draftOfHypothesis,
   emptyHypothesisDraft,
   hypothesisContent,
@@ -66,6 +67,12 @@ export function RegisterForm(props: {
       router.refresh();
     },
   });
+  useEffect(() => {
+    // A draft may be older than a quantity, and quantities are declared while somebody types.
+    const predictions = form.getValues("predictions");
+    const aligned = alignedPredictions(document, predictions);
+    if (aligned !== predictions) form.setValue("predictions", aligned);
+  }, [document, form]);
   const go = (next: Step) => {
     window.history.pushState(null, "", `?step=${next}`);
     window.scrollTo({ top: 0 });
