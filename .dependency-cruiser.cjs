@@ -73,7 +73,7 @@ module.exports = {
     tsPreCompilationDeps: true,
     doNotFollow: { path: "node_modules" },
     exclude: { path: "(^|/)(dist|\\.next)/" },
-    webpackConfig: { fileName: "apps/web/import-alias.cjs" },
+    webpackConfig: { fileName: require.resolve("./apps/web/import-alias.cjs") },
     enhancedResolveOptions: {
       exportsFields: ["exports"],
       conditionNames: ["import", "node", "default", "types"],
