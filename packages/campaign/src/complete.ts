@@ -14,6 +14,8 @@ import { earlier } from "./instants";
  * Fills what depends on other parts: units, conditions computed from time, posting times,
  * registration times, the first dates of measurands, which derived values are scored. Both a
  * document read from a file and one folded from a ledger pass through here.
+ *
+ * @param form the caller's own: its measurements, which may be very many, are filled in place
  */
 export function completeDocument(form: DocumentForm): CampaignDocument {
   const observables = new Map(form.observables.map((one) => [one.key, one]));
@@ -22,32 +24,27 @@ export function completeDocument(form: DocumentForm): CampaignDocument {
     const observable = observables.get(measurand.observable);
     if (observable !== undefined) observableOf.set(measurand.key, observable);
   }
-  const measurements = form.measurements.map((one) =>
-    completeMeasurement(one, observableOf.get(one.measurand)),
-  );
+  for (const one of form.measurements) completeMeasurement(one, observableOf.get(one.measurand));
   return {
     ...form,
-    measurands: completeMeasurands(form.measurands, measurements),
+    measurands: completeMeasurands(form.measurands, form.measurements),
     derived: form.derived.map((one) => completeDerived(one, form.hypotheses)),
     hypotheses: form.hypotheses.map(completeHypothesis),
-    measurements,
   };
 }
 
-function completeMeasurement(given: Measurement, observable: Observable | undefined): Measurement {
-  const measurement = { ...given };
+function completeMeasurement(measurement: Measurement, observable: Observable | undefined): void {
   measurement.postedAt ??= measurement.observedAt;
-  if (observable === undefined) return measurement;
+  if (observable === undefined) return;
   measurement.unit ??= observable.unit;
   const { observedAt } = measurement;
-  if (observedAt === null) return measurement;
+  if (observedAt === null) return;
   for (const condition of observable.conditions) {
     if (condition.time === null || condition.key in measurement.conditions) continue;
     const computed = conditionFromTime(condition, observedAt);
     if (computed === null) continue;
     measurement.conditions = { ...measurement.conditions, [condition.key]: computed };
   }
-  return measurement;
 }
 
 function completeMeasurands(given: Measurand[], measurements: Measurement[]): Measurand[] {

@@ -30,9 +30,11 @@ export const time = z
   .describe("an RFC 3339 time in UTC, such as 2031-03-01T00:00:00Z");
 
 /** Texts are bounded so that no document can be made of one of them. */
-export const line = z.string().min(1).max(500);
+export const LINE_LENGTH = 500;
+export const UNIT_LENGTH = 100;
+export const line = z.string().min(1).max(LINE_LENGTH);
 export const prose = z.string().max(20_000);
-export const unit = z.string().min(1).max(100);
+export const unit = z.string().min(1).max(UNIT_LENGTH);
 
 export const number = z.number();
 export const positive = z.number().positive();

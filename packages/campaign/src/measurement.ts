@@ -25,6 +25,8 @@ export const loadingSchema = z.strictObject({
   coefficient: defaulted(coefficient, 1),
 });
 
+export const SOURCE_LENGTH = 2000;
+
 export const limits = ["upper", "lower", "fainter", "brighter"] as const;
 
 const identity = {
@@ -55,7 +57,7 @@ const report = {
   background: optional(notNegative),
   unit: optional(unit),
   status: defaulted(z.enum(["final", "provisional"]), "final" as const),
-  source: optional(z.string().min(1).max(2000)),
+  source: optional(z.string().min(1).max(SOURCE_LENGTH)),
   extra: record(
     z.string().min(1).max(200),
     z

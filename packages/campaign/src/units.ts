@@ -52,24 +52,28 @@ export function unitOf(text: string): Unit | null {
   return unit;
 }
 
-/** Parentheses are bounded: the parser's own recursion must not decide. */
-const COMPOUND = /^[\w%°µμΩÅ‰ .*/^()+-]{1,100}$/;
-const SYMBOL = /[A-Za-z%°µμΩÅ‰]+/g;
+const COMPOUND = /^[\w%°µμΩÅ‰ .·*/^()+-]{1,100}$/;
+const SYMBOL = /([A-Za-z%°µμΩÅ‰]+)(-?\d+)?/g;
 
 /**
  * Parses with mathjs, symbols replaced by plain names (it has no letter for `%` and `°`, and words
- * of its own for `in` and `mod`); a product without a sign binds closer than a quotient's stroke,
- * as the SI Brochure wants it made plain and as `erg / s cm^2` is commonly meant.
+ * of its own for `in` and `mod`). `m2` and `s-1` are powers and a point is a product, as the FITS
+ * standard (4.0, section 4.3) writes them. A product without a sign binds closer than a stroke:
+ * `erg / s cm^2` is per second and per square centimetre (common practice).
  */
 function compoundOf(text: string): Unit | null {
   if (!COMPOUND.test(text)) return null;
   const symbols: string[] = [];
-  const written = text.replaceAll("**", "^").replace(SYMBOL, (symbol) => {
-    symbols.push(symbol);
-    return ` _${symbols.length - 1} `;
-  });
+  const written = text
+    .replaceAll("**", "^")
+    .replaceAll(/·|\.(?!\d)/g, "*")
+    .replaceAll(SYMBOL, (_all, symbol: string, power: string | undefined) => {
+      symbols.push(symbol);
+      return ` _${symbols.length - 1}${power === undefined ? "" : `^(${power})`} `;
+    });
   try {
-    return evaluate(parseText(written), symbols);
+    const unit = evaluate(parseText(written), symbols);
+    return unit !== null && unit.factor > 0 && Number.isFinite(unit.factor) ? unit : null;
   } catch (error) {
     if (error instanceof SyntaxError) return null;
     throw error;

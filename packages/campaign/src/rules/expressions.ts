@@ -1,0 +1,117 @@
+import type { Hypothesis, Table } from "../document";
+import { compileExpression } from "../expression";
+import type { Expression } from "../expression";
+import type { Legible } from "../form";
+import { below } from "../pointer";
+import { conditionKeys } from "./measurands";
+import type { PredictionPlace } from "./predictions";
+import { legible } from "./reading";
+import type { Reading } from "./reading";
+import { hasValueSomewhere } from "./sampling";
+
+/**
+ * An expectation that is an expression: it parses, names what it may, sees no name twice, uses no
+ * conditions on a constant, and has a value somewhere in its priors' range.
+ */
+export function checkExpression(reading: Reading, place: PredictionPlace, text: string): void {
+  const { hypothesis, observable, measurand, prediction } = place;
+  const pointer = below(place.pointer, "expected");
+  const conditions = observable === undefined ? new Set<string>() : conditionKeys(observable);
+  const own = ownNames(hypothesis);
+  const tables = lookUps(hypothesis);
+  const compiled = compileExpression(text, { names: new Set([...own, ...conditions]), tables });
+  // The names of an unreadable part can't be told from unknown ones.
+  const telling = observable !== undefined && place.whole;
+  if (!compiled.ok) {
+    for (const { found, allowed } of compiled.faults) {
+      if (found.startsWith("the unknown name") && !telling) continue;
+      reading.refuse(pointer, "bad-expression", found, allowed);
+    }
+    return;
+  }
+  const { expression } = compiled;
+  const used = [...expression.names].filter((name) => conditions.has(name) && !own.has(name));
+  const derived = reading.derived.has(prediction.measurand ?? "");
+  if (used.length > 0 && (measurand?.shape === "constant" || derived)) {
+    const found = `the condition ${used.join(", ")} on a constant`;
+    const allowed = "no conditions: a constant has one true value; or the shape curve";
+    reading.refuse(pointer, "not-applicable", found, allowed);
+    return;
+  }
+  if (measurand?.shape === "curve") checkSeenOnce(reading, place, conditions);
+  if (telling && !hasValueSomewhere(expression, place, conditions)) {
+    const allowed = "a finite value somewhere between the 1 % and 99 % of the priors";
+    const log10 = observable?.scale === "log10" ? ", above 0 on the scale log10" : "";
+    const found = "an expression without a value at any parameter tried";
+    reading.refuse(pointer, "bad-expression", found, allowed + log10);
+  }
+}
+
+/** What each expression of a hypothesis that compiles needs of its measurements' conditions. */
+export function conditionsUsed(
+  hypothesis: Legible<Hypothesis>,
+  text: string,
+  conditions: ReadonlySet<string>,
+): string[] {
+  const names = new Set([...ownNames(hypothesis), ...conditions]);
+  const compiled = compileExpression(text, { names, tables: lookUps(hypothesis) });
+  return compiled.ok ? used(compiled.expression, conditions) : [];
+}
+
+function used(expression: Expression, conditions: ReadonlySet<string>): string[] {
+  return [...expression.names].filter((name) => conditions.has(name));
+}
+
+function ownNames(hypothesis: Legible<Hypothesis>): ReadonlySet<string> {
+  const names = new Set(Object.keys(hypothesis.ensemble?.columns ?? {}));
+  for (const [, { key }] of legible(hypothesis.parameters)) if (key !== undefined) names.add(key);
+  return names;
+}
+
+/** Tables by key. One that isn't right has its own problem; here it only has to be known. */
+function lookUps(hypothesis: Legible<Hypothesis>): Map<string, Pick<Table, "at" | "values">> {
+  const tables = new Map<string, Pick<Table, "at" | "values">>();
+  for (const [, { key, at, values }] of legible(hypothesis.tables)) {
+    if (key === undefined) continue;
+    tables.set(key, { at: (at ?? [[]]) as number[][], values: (values ?? []) as number[] });
+  }
+  return tables;
+}
+
+/** Whether all that expressions name could be read. */
+export function isWhole(hypothesis: Legible<Hypothesis>): boolean {
+  const { parameters, tables, ensemble } = hypothesis;
+  if (parameters === undefined || tables === undefined || ensemble === undefined) return false;
+  return !JSON.stringify([parameters, tables, ensemble], (_name, value: unknown) =>
+    value === undefined ? UNREADABLE : value,
+  ).includes(UNREADABLE);
+}
+
+const UNREADABLE = "\u0000unreadable";
+
+/** A parameter named like a condition of the curve that an expression describes would hide it. */
+function checkSeenOnce(
+  reading: Reading,
+  { hypothesis, hypothesisPointer, prediction }: PredictionPlace,
+  conditions: ReadonlySet<string>,
+): void {
+  const places = [
+    ...[...legible(hypothesis.parameters)].map(
+      ([index, { key }]) => [key, below(hypothesisPointer, "parameters", index, "key")] as const,
+    ),
+    ...Object.keys(hypothesis.ensemble?.columns ?? {}).map(
+      (name) => [name, below(hypothesisPointer, "ensemble", "columns", name)] as const,
+    ),
+    ...[...legible(hypothesis.tables)].map(
+      ([index, { key }]) => [key, below(hypothesisPointer, "tables", index, "key")] as const,
+    ),
+  ];
+  for (const [name, pointer] of places) {
+    if (name === undefined || !conditions.has(name)) continue;
+    // Several predictions may see the same pair; it is one mistake.
+    if (reading.problems.some((one) => one.pointer === pointer && one.code === "duplicate"))
+      continue;
+    const found = `the name ${name}, also a condition of ${prediction.measurand ?? "the curve"}`;
+    reading.refuse(pointer, "duplicate", found, "a name of its own");
+  }
+}
