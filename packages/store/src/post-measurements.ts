@@ -5,6 +5,7 @@ import type { Entry } from "@weighhouse/ledger/entry";
 import { nodeHasher } from "@weighhouse/ledger/node-hasher";
 import { writeEntries } from "./append";
 import type { Appended, Clock } from "./append";
+import { findCampaign } from "./campaigns";
 import { lockTip } from "./lock-tip";
 import type { Store } from "./open-store";
 import { splitPosting } from "./split-posting";
@@ -69,6 +70,20 @@ export async function postMeasurements(
     });
     return { ...outcome, posted: fresh.map(({ id }) => id), appended };
   }) as Promise<Posted>;
+}
+
+/**
+ * What posting these measurements would find, as of now: ids that are there with the same content,
+ * and what differs of those with another. Changes nothing.
+ */
+export async function comparePosting(
+  store: Store,
+  input: { campaign: string; measurements: MeasurementContent[] },
+): Promise<{ alreadyThere: string[]; conflicts: Conflict[] }> {
+  const { id } = await findCampaign(store, input.campaign);
+  const there = await contentsThere(store.sql, id, input.measurements, []);
+  const { alreadyThere, conflicts } = sortOut(input.measurements.map(asItem), there);
+  return { alreadyThere, conflicts };
 }
 
 /**
