@@ -26,7 +26,7 @@ import type { CheckLine, CheckName, VerifyReport } from "./checks/line";
 import { checkManifest, checkManifestFacts, checkManifestNote } from "./checks/manifest";
 import type { Manifest } from "./manifest";
 import { checkOrder } from "./checks/order";
-import { checkStandings } from "./checks/standings";
+import { checkStandings, readStandings } from "./checks/standings";
 import type { Score } from "./checks/standings";
 import { checkTables } from "./checks/tables";
 import { checkHeadHeld, checkKeysHeld } from "./checks/trust";
@@ -75,8 +75,9 @@ function verifyFiles(files: Files, options: VerifyOptions, add: Add): void {
   const signers = verifySignatures(files, options, add);
   add(checkKeysHeld(signers, options.trustedKeys ?? []));
   verifyTree(files, { roots, opening, trustedHead: options.trustedHead }, add);
-  add(factsLine(manifest.value, { entries: entries.value, roots, opening }));
-  verifyContent(files, { entries: entries.value, roots, manifest: manifest.value }, options, add);
+  const { standings } = readStandings(files);
+  add(factsLine(manifest.value, { entries: entries.value, roots, opening, standings }));
+  verifyContent(files, { entries: entries.value, roots }, options, add);
 }
 
 function verifySignatures(files: Files, options: VerifyOptions, add: Add): Signers {
@@ -109,9 +110,17 @@ function verifyTree(files: Files, { roots, opening, trustedHead }: TreeParts, ad
   add(checkHeadHeld(trustedHead, roots, opening.ledger));
 }
 
-type FactParts = { entries: ReadEntries | null; roots: Roots | null; opening: Opening | null };
+type FactParts = {
+  entries: ReadEntries | null;
+  roots: Roots | null;
+  opening: Opening | null;
+  standings: Standings | null;
+};
 
-function factsLine(manifest: Manifest | null, { entries, roots, opening }: FactParts): CheckLine {
+function factsLine(
+  manifest: Manifest | null,
+  { entries, roots, opening, standings }: FactParts,
+): CheckLine {
   const check = "manifest against the ledger";
   const last = entries?.entries.at(-1) ?? null;
   if (manifest === null) return notChecked(check, "files against the manifest");
@@ -124,10 +133,11 @@ function factsLine(manifest: Manifest | null, { entries, roots, opening }: FactP
     root: base64(roots.of(roots.size) as Uint8Array),
     at: last.at,
     clock: opening.clock,
+    ...(standings === null ? {} : { engine: standings.engine }),
   });
 }
 
-type ContentParts = { entries: ReadEntries | null; roots: Roots | null; manifest: Manifest | null };
+type ContentParts = { entries: ReadEntries | null; roots: Roots | null };
 
 function verifyContent(files: Files, parts: ContentParts, options: VerifyOptions, add: Add): void {
   const { entries, roots } = parts;
@@ -162,7 +172,7 @@ function verifyScores(files: Files, parts: ScoreParts, options: VerifyOptions, a
     add(notChecked("tables", "standings"));
     return;
   }
-  add(checkOrder(records, document, standings.value as Standings));
+  add(checkOrder(records, document, standings.value));
   add(checkTables(files, document, standings.value));
 }
 

@@ -103,13 +103,15 @@ function orderOf(
       return { order: "after", because: `${by}, when a measurement was known since ${known}` };
     }
   }
+  // An undated observation can't be said to come before the filing; its posting didn't.
   const seen = posted
     .flatMap(({ observedAt }) => observedAt)
-    .find((at) => at === null || compareInstants(at, filed.at) <= 0);
-  if (seen === undefined)
-    return { order: "before-observation", because: `${by}, before every observation` };
+    .find((at) => at !== null && compareInstants(at, filed.at) <= 0);
+  if (seen === undefined) {
+    return { order: "before-observation", because: `${by}, before every dated observation` };
+  }
   return {
     order: "before-posting",
-    because: `${by}, before the posting and not before an observation (${seen ?? "undated"})`,
+    because: `${by}, before the posting and not before the observation of ${seen}`,
   };
 }

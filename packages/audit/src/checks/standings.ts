@@ -39,7 +39,10 @@ export function checkStandings(
   const check = "standings";
   const { standings, fault } = readStandings(files);
   if (standings === null) return { line: failed(check, fault as string), value: null };
-  const scored = score(computed.document, { asOf: computed.asOf });
+  const scored = attempt(() => score(computed.document, { asOf: computed.asOf }));
+  if (typeof scored === "string") {
+    return { line: failed(check, `the document can't be scored: ${scored}`), value: standings };
+  }
   if (!scored.ok) {
     const problems = scored.problems.map(problemLine);
     return { line: failed(check, ["the document can't be scored", ...problems]), value: standings };
@@ -60,4 +63,13 @@ export function checkStandings(
     line: judged(check, faults, `${numbers} numbers computed anew, all within 1e-9; ${engines}`),
     value: standings,
   };
+}
+
+/** A forged document may be one that no engine was written for: that is an answer, not a crash. */
+function attempt(score: () => Result<Standings>): Result<Standings> | string {
+  try {
+    return score();
+  } catch (error) {
+    return (error as Error).message;
+  }
 }
