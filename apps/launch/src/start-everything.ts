@@ -20,7 +20,7 @@ const host = "127.0.0.1";
 
 /** Starts it all on one machine and runs until it is told to stop or a part ends. */
 export async function startEverything(settings: Settings): Promise<number> {
-  const stopped = stopSignal();
+  const stopping = stopSignal();
   const home = settings.WEIGHHOUSE_HOME ?? defaultHome();
   mkdirSync(home, { recursive: true });
   const parts: Running[] = [];
@@ -58,13 +58,13 @@ export async function startEverything(settings: Settings): Promise<number> {
     const ended = Promise.race(
       parts.map(async ({ name, exited }) => ({ name, code: await exited })),
     );
-    const answers = await Promise.race([untilAnswers(`http://${host}:${port}/`, stopped), ended]);
+    const answers = await Promise.race([untilAnswers(`http://${host}:${port}/`, stopping), ended]);
     if (answers === true) {
       writeAddress(home, origin);
       announce(origin, home, database !== null);
     }
 
-    const first = await Promise.race([stopped, ended]);
+    const first = await Promise.race([aborted(stopping), ended]);
     if (first === "stop") {
       say("stopping");
       return 0;
@@ -97,19 +97,24 @@ function ownSecret(home: string): string {
   return readFileSync(file, "utf8").trim();
 }
 
-function stopSignal(): Promise<"stop"> {
+function stopSignal(): AbortSignal {
+  const controller = new AbortController();
+  for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"] as const) {
+    process.on(signal, () => controller.abort());
+  }
+  return controller.signal;
+}
+
+function aborted(signal: AbortSignal): Promise<"stop"> {
   return new Promise((resolve) => {
-    for (const signal of ["SIGINT", "SIGTERM", "SIGHUP"] as const) {
-      process.on(signal, () => resolve("stop"));
-    }
+    if (signal.aborted) resolve("stop");
+    signal.addEventListener("abort", () => resolve("stop"));
   });
 }
 
 /** True once the page is there; false when told to stop before. */
-async function untilAnswers(address: string, stopped: Promise<"stop">): Promise<boolean> {
-  let stopping = false;
-  void stopped.then(() => (stopping = true));
-  while (!stopping) {
+async function untilAnswers(address: string, stopping: AbortSignal): Promise<boolean> {
+  while (!stopping.aborted) {
     const answer = await fetch(address, { redirect: "manual" }).catch(() => null);
     if (answer && answer.status < 500) return true;
     await new Promise((resolve) => setTimeout(resolve, 150));

@@ -1,3 +1,4 @@
+import type { PayloadInput } from "@weighhouse/campaign/entries";
 import { createAuth } from "@weighhouse/api/auth";
 import { addMember } from "@weighhouse/desk/add-member";
 import { addTeam } from "@weighhouse/desk/add-team";
@@ -9,21 +10,20 @@ import {
   declareSharedError,
 } from "@weighhouse/desk/declare";
 import type { Actor, Desk } from "@weighhouse/desk/desk";
+import { listCampaigns } from "@weighhouse/desk/list-campaigns";
 import { openCampaign } from "@weighhouse/desk/open-campaign";
 import { postMeasurements } from "@weighhouse/desk/post-measurements";
 import { registerHypothesis } from "@weighhouse/desk/register-hypothesis";
-import { listCampaigns } from "@weighhouse/store/campaigns";
 import { openKeys } from "@weighhouse/store/keys";
 import { openStore } from "@weighhouse/store/open-store";
 import type { Store } from "@weighhouse/store/open-store";
 import { say } from "../say";
 import { demoPassword, demoPeople } from "./accounts";
-import type { DemoPerson } from "./accounts";
 import { postings } from "./readings";
 import * as scenario from "./scenario";
 
 type Place = { home: string; url: string; keys: string; origin: string; secret: string };
-type Act = (who: DemoPerson["email"]) => { desk: Desk; actor: NonNullable<Actor> };
+type Act = (email: string) => { desk: Desk; actor: NonNullable<Actor> };
 
 /**
  * Makes the demo campaign on the first start, by the use-cases that the pages call. Its clock is
@@ -37,7 +37,7 @@ export async function makeDemo(place: Place): Promise<void> {
   });
   const store = await openStore({ url: place.url, signer });
   try {
-    const there = await listCampaigns(store, { userId: null });
+    const there = await listCampaigns({ store }, null);
     if (there.some(({ key }) => key === scenario.demoKey)) return;
     say("making the demo campaign");
     const actors = await makeAccounts(store, place);
@@ -52,7 +52,10 @@ async function makeAccounts(store: Store, place: Place): Promise<Map<string, Non
   const password = demoPassword(place.home);
   const actors = new Map<string, NonNullable<Actor>>();
   for (const { email, name } of demoPeople) {
-    const { user } = await auth.api.signUpEmail({ body: { email, name, password } });
+    // A first start that was cut short has left accounts: they are the same people.
+    const { user } = await auth.api
+      .signUpEmail({ body: { email, name, password } })
+      .catch(() => auth.api.signInEmail({ body: { email, password } }));
     actors.set(email, { userId: user.id, name });
   }
   return actors;
@@ -61,9 +64,9 @@ async function makeAccounts(store: Store, place: Place): Promise<Map<string, Non
 async function play(store: Store, actors: Map<string, NonNullable<Actor>>): Promise<void> {
   let now = "2025-01-06T08:00:00Z";
   const desk: Desk = { store, clock: () => now.replace(/Z$/, ".000000Z") };
-  const as: Act = (who) => {
-    const actor = actors.get(who);
-    if (!actor) throw new Error(`no demo account ${who}`);
+  const as: Act = (email) => {
+    const actor = actors.get(email);
+    if (!actor) throw new Error(`no demo account ${email}`);
     return { desk, actor };
   };
 
@@ -110,11 +113,7 @@ async function declare(as: Act): Promise<void> {
   }
 }
 
-async function register(
-  as: Act,
-  hypothesis:
-    (typeof scenario.hypotheses)[number]["content"] | (typeof scenario.lateHypothesis)["content"],
-): Promise<void> {
+async function register(as: Act, hypothesis: PayloadInput<"hypothesis.registered">): Promise<void> {
   const { desk, actor } = as(`${hypothesis.team}@demo.example`);
   await registerHypothesis(desk, actor, { key: scenario.demoKey, hypothesis });
 }

@@ -1,3 +1,5 @@
+import type { PayloadInput } from "@weighhouse/campaign/entries";
+
 /**
  * The demo campaign: an invented ice rise, invented teams, invented numbers. Heat reaches the bed
  * of the ice and four teams disagree about where it comes from. The readings were written so that
@@ -18,7 +20,7 @@ export const campaign = {
   noneOfThese: { weight: 0.25 },
 };
 
-export const observables = [
+export const observables: PayloadInput<"observable.declared">[] = [
   { key: "heat-flux", title: "Heat flux at the bed", unit: "mW/m^2", scale: "log10" },
   {
     key: "bed-temperature",
@@ -36,14 +38,14 @@ export const observables = [
   { key: "sliding-speed", title: "Sliding speed of the ice", unit: "m/yr", scale: "linear" },
   { key: "uplift", title: "Surface uplift", unit: "mm", scale: "linear" },
   { key: "melt-rate", title: "Basal melt rate", unit: "mm/yr", scale: "linear" },
-] as const;
+];
 
 const within = (from: string, to: string | null) => ({
   from: `${from}T00:00:00Z`,
   to: to === null ? null : `${to}T00:00:00Z`,
 });
 
-export const measurands = [
+export const measurands: PayloadInput<"measurand.declared">[] = [
   {
     key: "heat-flux-a",
     observable: "heat-flux",
@@ -110,33 +112,35 @@ export const measurands = [
     reference: { family: "uniform", lower: 0, upper: 60 },
     thresholds: [{ key: "drains", title: "Water drains faster than it melts", value: 9 }],
   },
-] as const;
+];
 
-export const sharedErrors = [
+export const sharedErrors: PayloadInput<"shared-error.declared">[] = [
   { key: "probe-scale", title: "Heat probe calibration", sd: 0.03 },
   { key: "thermistor-zero", title: "Thermistor zero of a descent", sd: 0.06, per: "batch" },
   { key: "stake-survey", title: "Stake survey datum", sd: 0.5 },
-] as const;
+];
 
-export const facilities = [
+export const facilities: PayloadInput<"facility.declared">[] = [
   { key: "borehole-a", title: "Borehole A" },
   { key: "borehole-b", title: "Borehole B" },
   { key: "stake-line", title: "Stake line" },
   { key: "tilt-array", title: "Tiltmeter array" },
   { key: "wet-lab", title: "Wet laboratory" },
-] as const;
+];
 
-export const teams = [
+export const teams: PayloadInput<"team.joined">[] = [
   { key: "deep-heat", title: "Deep Heat" },
   { key: "sliders", title: "Sliders" },
   { key: "brine-group", title: "Brine Group" },
   { key: "relict-water", title: "Relict Water" },
-] as const;
+];
 
-const dex = (sd: number) => ({ family: "normal", sd });
+const dex = (sd: number) => ({ family: "normal" as const, sd });
+
+type Registration = { at: string; content: PayloadInput<"hypothesis.registered"> };
 
 /** Registered before the first measurement, on the days given. */
-export const hypotheses = [
+export const hypotheses: Registration[] = [
   {
     at: "2025-01-20T10:12:00Z",
     content: {
@@ -215,10 +219,10 @@ export const hypotheses = [
       ],
     },
   },
-] as const;
+];
 
 /** Registered when half of the data were in: marked so, and left out of the standings. */
-export const lateHypothesis = {
+export const lateHypothesis: Registration = {
   at: "2025-06-10T12:00:00Z",
   content: {
     key: "tidal-pumping",
@@ -230,4 +234,4 @@ export const lateHypothesis = {
       { measurand: "sliding-spring", expected: 10.5, tolerance: { family: "normal", sd: 1 } },
     ],
   },
-} as const;
+};
