@@ -1,0 +1,81 @@
+import { verifyArchive } from "@weighhouse/audit/verify";
+import { scoreCampaign } from "@weighhouse/engine/score";
+import { nodeHasher } from "@weighhouse/ledger/node-hasher";
+import { defineCommand } from "citty";
+import { readBytes } from "../document-file";
+import { Refusal } from "../refusal";
+import { harmless, terminalOf, wrap, type Terminal } from "../terminal";
+
+type VerifyReport = ReturnType<typeof verifyArchive>;
+type CheckLine = VerifyReport["lines"][number];
+
+export const verify = defineCommand({
+  meta: { name: "verify", description: "Recompute everything in an audit trail, a line per check" },
+  args: {
+    archive: { type: "positional", description: "Audit trail (ZIP)", required: true },
+    key: {
+      type: "string",
+      description: "File with a public key that you hold (name+hash+base64, a line each)",
+      valueHint: "FILE",
+    },
+    head: {
+      type: "string",
+      description: "File with a signed tree head that you kept",
+      valueHint: "NOTE",
+    },
+    json: { type: "boolean", description: "Write the report as JSON" },
+  },
+  async run({ args }) {
+    const archive = await readBytes(args.archive);
+    const report = verifyArchive(archive, {
+      hasher: nodeHasher,
+      score: scoreCampaign,
+      trustedKeys: args.key === undefined ? [] : linesOf(await readText(args.key)),
+      ...(args.head === undefined ? {} : { trustedHead: await readText(args.head) }),
+    });
+    process.stdout.write(
+      args.json ? `${JSON.stringify(report, null, 2)}\n` : reportText(report, args.archive),
+    );
+    if (!report.ok) throw new Refusal(1, failures(report));
+  },
+});
+
+function failures(report: VerifyReport): string[] {
+  return report.lines
+    .filter(({ outcome }) => outcome === "failed")
+    .map(({ check, detail }) => `${check}: ${harmless(detail)}`);
+}
+
+function reportText(report: VerifyReport, path: string): string {
+  const terminal = terminalOf(process.stdout);
+  const widest = Math.max(...report.lines.map(({ check }) => check.length));
+  const lines = report.lines.map((line) => lineText(line, widest, terminal));
+  const verdict = report.ok ? "Nothing failed" : "Failed";
+  return `${[...lines, terminal.style("bold", `${verdict}: ${path}`)].join("\n")}\n`;
+}
+
+function lineText(
+  { check, outcome, detail }: CheckLine,
+  widest: number,
+  terminal: Terminal,
+): string {
+  const style = { ok: "green", failed: "red", "not present": "dim" } as const;
+  const column = outcome.padEnd("not present".length);
+  const text = `${column}  ${check.padEnd(widest)}  ${harmless(detail)}`;
+  const indent = " ".repeat(Math.min(column.length + widest + 4, Math.floor(terminal.columns / 2)));
+  const wrapped = wrap(text.replaceAll(/ {2,}/g, keepSpaces), terminal.columns, indent);
+  return wrapped.replaceAll("\u00a0", " ").replace(column, terminal.style(style[outcome], column));
+}
+
+/** Padding must outlive the wrapping at spaces. */
+function keepSpaces(spaces: string): string {
+  return `${"\u00a0".repeat(spaces.length - 1)} `;
+}
+
+async function readText(path: string): Promise<string> {
+  return new TextDecoder().decode(await readBytes(path));
+}
+
+function linesOf(text: string): string[] {
+  return text.split("\n").flatMap((line) => (line.trim() === "" ? [] : [line.trim()]));
+}
