@@ -38,8 +38,18 @@ export function readMeasurement(
   if ("pointer" in read) return { ok: false, problems: [read] };
   const loadings: Loading[] = [];
   for (const { error: key, coefficient } of measurement.shared) {
-    const error = frame.errorIndex.get(key)!;
+    const error = frame.errorIndex.get(key);
+    if (error === undefined) {
+      const found = `"${key}"`;
+      const allowed = "a shared error of the campaign";
+      const at = below(pointer, "shared");
+      return { ok: false, problems: [{ pointer: at, code: "unknown-key", found, allowed }] };
+    }
     const { sd, perBatch } = frame.errors[error]!;
+    if (perBatch && measurement.batch === null) {
+      const allowed = `a batch, as "${key}" is drawn per batch`;
+      return { ok: false, problems: [missing(below(pointer, "batch"), allowed)] };
+    }
     const batch = perBatch ? measurement.batch : null;
     loadings.push({ error, batch, value: coefficient * sd });
   }
