@@ -19,7 +19,8 @@ export const addMemberInput = z.strictObject({
 
 /**
  * Gives somebody with an account here a place in the campaign, or another place than before. A
- * member is always of a team, a reader of none; a coordinator may be of one.
+ * member may be of a team, a coordinator too; a member of none is an observer, who posts
+ * measurements and registers nothing. A reader is of none.
  */
 export async function addMember(
   desk: Desk,
@@ -41,7 +42,6 @@ export async function addMember(
 function refuseTeam(role: Membership["role"], team: string | null, teams: string[]): void {
   const listed = teams.length === 0 ? "none yet: add a team first" : teams.join(", ");
   if (team !== null && !teams.includes(team)) throw refused("/team", "unknown-key", team, listed);
-  if (role === "member" && team === null) throw refused("/team", "missing", "no team", listed);
   if (role === "reader" && team !== null) {
     throw refused("/team", "not-applicable", team, "no team for a reader");
   }

@@ -10,7 +10,8 @@ export type Role = (typeof roles)[number];
 
 /**
  * `own-team`: only on what belongs to the actor's own team. A coordinator who is in no team acts
- * for no team: the hypotheses that nobody's team stands behind are theirs to register.
+ * for no team: the hypotheses that nobody's team stands behind are theirs to register. A member of
+ * no team is an observer: nothing of any team is theirs.
  */
 export type Permission = "no" | "own-team" | "yes";
 
@@ -59,5 +60,6 @@ export function permission(role: Role, action: Action): Permission {
 /** Whether an actor of this role and team may do it to something that belongs to `of`. */
 export function may(role: Role, action: Action, teams: { own: string | null; of: string | null }) {
   const allowed: Permission = permission(role, action);
-  return allowed === "yes" || (allowed === "own-team" && teams.own === teams.of);
+  const isObserver = role === "member" && teams.own === null;
+  return allowed === "yes" || (allowed === "own-team" && teams.own === teams.of && !isObserver);
 }
