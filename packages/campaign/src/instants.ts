@@ -6,9 +6,11 @@ const TO_SECONDS = 19;
 
 /** Negative when a is earlier than b, 0 for the same instant, positive when later. */
 export function compareInstants(a: string, b: string): number {
-  const secondsOfA = a.slice(0, TO_SECONDS);
-  const secondsOfB = b.slice(0, TO_SECONDS);
-  if (secondsOfA !== secondsOfB) return secondsOfA < secondsOfB ? -1 : 1;
+  if (a === b) return 0;
+  // Up to the second the texts are of one form; behind it .5 and .500 are the same.
+  let digit = TO_SECONDS - 1;
+  while (digit >= 0 && a.charCodeAt(digit) === b.charCodeAt(digit)) digit -= 1;
+  if (digit >= 0) return a < b ? -1 : 1;
   const fractionOfA = fraction(a);
   const fractionOfB = fraction(b);
   if (fractionOfA === fractionOfB) return 0;

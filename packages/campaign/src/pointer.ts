@@ -1,13 +1,12 @@
-/** JSON Pointer (RFC 6901) from a path: `~` becomes `~0`, `/` becomes `~1`. */
-export function pointerOf(path: readonly PropertyKey[]): string {
-  return path.map((step) => `/${escapeStep(String(step))}`).join("");
-}
-
-/** One more step below a pointer. */
+/** A JSON Pointer (RFC 6901) some steps below another; "" is the whole document. */
 export function below(pointer: string, ...steps: (string | number)[]): string {
-  return pointer + pointerOf(steps);
+  let longer = pointer;
+  for (const step of steps) longer += `/${typeof step === "number" ? step : escaped(step)}`;
+  return longer;
 }
 
-function escapeStep(step: string): string {
+/** In a step, `~` is written `~0` and `/` is written `~1`. */
+function escaped(step: string): string {
+  if (!step.includes("~") && !step.includes("/")) return step;
   return step.replaceAll("~", "~0").replaceAll("/", "~1");
 }

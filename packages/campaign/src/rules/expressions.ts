@@ -79,15 +79,15 @@ function lookUps(hypothesis: Legible<Hypothesis>): Map<string, Pick<Table, "at" 
 }
 
 /** Whether all that expressions name could be read. */
-export function isWhole(hypothesis: Legible<Hypothesis>): boolean {
-  const { parameters, tables, ensemble } = hypothesis;
-  if (parameters === undefined || tables === undefined || ensemble === undefined) return false;
-  return !JSON.stringify([parameters, tables, ensemble], (_name, value: unknown) =>
-    value === undefined ? UNREADABLE : value,
-  ).includes(UNREADABLE);
+export function isWhole({ parameters, tables, ensemble }: Legible<Hypothesis>): boolean {
+  return isLegible(parameters) && isLegible(tables) && isLegible(ensemble);
 }
 
-const UNREADABLE = "\u0000unreadable";
+function isLegible(value: unknown): boolean {
+  if (value === undefined) return false;
+  if (typeof value !== "object" || value === null) return true;
+  return Object.values(value).every(isLegible);
+}
 
 /** A parameter named like a condition of the curve that an expression describes would hide it. */
 function checkSeenOnce(

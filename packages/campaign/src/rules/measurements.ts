@@ -1,5 +1,5 @@
 import { conditionFromTime } from "../conditions";
-import type { Condition, Measurand, Measurement, Observable } from "../document";
+import type { Condition, Measurand, Measurement, Observable, SharedError } from "../document";
 import type { Legible } from "../form";
 import { compareInstants } from "../instants";
 import { below } from "../pointer";
@@ -27,7 +27,10 @@ export type Target = {
 export function checkMeasurements(reading: Reading): void {
   const targets = targetsOf(reading);
   const ids = new Set<string>();
-  for (const [index, measurement] of legible(reading.form.measurements)) {
+  const { measurements = [] } = reading.form;
+  for (let index = 0; index < measurements.length; index++) {
+    const measurement = measurements[index];
+    if (measurement === undefined) continue;
     const { id, measurand } = measurement;
     if (id !== undefined && ids.has(id)) {
       const place = below("/measurements", index, "id");
@@ -68,26 +71,55 @@ function checkReferences(reading: Reading, measurement: Legible<Measurement>, in
 }
 
 function checkShared(reading: Reading, measurement: Legible<Measurement>, index: number): void {
-  const { shared, batch, measurand } = measurement;
-  const scale = reading.observableOf(measurand)?.scale;
-  const earlier = new Set<string>();
-  for (const [position, { error: key }] of legible(shared)) {
+  const { shared = [] } = measurement;
+  for (let position = 0; position < shared.length; position++) {
+    const key = shared[position]?.error;
+    if (key === undefined) continue;
+    const error = reading.sharedErrors.get(key);
+    const again = shared.findIndex((one) => one?.error === key) < position;
+    if (error !== undefined && !again && isLoadable(reading, measurement, error)) continue;
     const place = below("/measurements", index, "shared", position, "error");
-    reading.refer(place, key, reading.sharedErrors, "shared error");
-    reading.distinct(place, key, earlier, "the shared error");
-    const error = reading.sharedErrors.get(key ?? "");
-    if (error === undefined) continue;
-    if (error.per === "batch" && batch === null) {
-      const found = `nothing, with the shared error ${key}, drawn per batch`;
-      reading.refuse(below("/measurements", index, "batch"), "missing", found, "a batch");
+    if (again) {
+      const found = `the shared error ${key} a second time`;
+      reading.refuse(place, "duplicate", found, "each key once");
     }
-    if (scale === "event" || scale === "count") {
-      const found = `a shared error on the scale ${scale}`;
-      reading.refuse(place, "not-applicable", found, "none: it shifts values");
-    } else if (scale === "cyclic" && error.relative === true) {
-      const found = `the relative shared error ${key} on the scale cyclic`;
-      reading.refuse(place, "not-applicable", found, "one whose relative is false");
-    }
+    if (error === undefined) reading.refer(place, key, reading.sharedErrors, "shared error");
+    else refuseLoading(reading, { measurement, error, place, index });
+  }
+}
+
+/** Whether a shared error can shift this measurement. */
+function isLoadable(
+  reading: Reading,
+  { measurand, batch }: Legible<Measurement>,
+  error: Legible<SharedError>,
+): boolean {
+  if (error.per === "batch" && batch === null) return false;
+  const scale = reading.observableOf(measurand)?.scale;
+  return scale !== "event" && scale !== "count" && !(scale === "cyclic" && error.relative);
+}
+
+function refuseLoading(
+  reading: Reading,
+  at: {
+    measurement: Legible<Measurement>;
+    error: Legible<SharedError>;
+    place: string;
+    index: number;
+  },
+): void {
+  const { measurement, error, place, index } = at;
+  const scale = reading.observableOf(measurement.measurand)?.scale;
+  if (error.per === "batch" && measurement.batch === null) {
+    const found = `nothing, with the shared error ${error.key}, drawn per batch`;
+    reading.refuse(below("/measurements", index, "batch"), "missing", found, "a batch");
+  }
+  if (scale === "event" || scale === "count") {
+    const found = `a shared error on the scale ${scale}`;
+    reading.refuse(place, "not-applicable", found, "none: it shifts values");
+  } else if (scale === "cyclic" && error.relative === true) {
+    const found = `the relative shared error ${error.key} on the scale cyclic`;
+    reading.refuse(place, "not-applicable", found, "one whose relative is false");
   }
 }
 
@@ -101,7 +133,7 @@ function checkAgainst(
   if (typeof observedAt === "string") checkWindow(reading, observedAt, target, index);
   if (unit !== null && unit !== undefined) checkUnit(reading, unit, target, index);
   if (conditions === undefined || target.conditions.size === 0) {
-    for (const name of Object.keys(conditions ?? {})) refuseCondition(reading, name, target, index);
+    for (const name in conditions) refuseCondition(reading, name, target, index);
     return;
   }
   checkConditions(reading, { measurement, conditions, target, index });

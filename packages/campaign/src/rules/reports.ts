@@ -1,5 +1,4 @@
 import { below } from "../pointer";
-import { legible } from "./reading";
 import type { Reading } from "./reading";
 
 /** What the reports of one event have ruled out so far, each by which measurement. */
@@ -14,9 +13,10 @@ type Ruled = { yes: string | null; no: string | null };
  */
 export function checkReports(reading: Reading): void {
   const events = new Map<string, Ruled>();
-  for (const [index, measurement] of legible(reading.form.measurements)) {
+  for (const [index, measurement] of (reading.form.measurements ?? []).entries()) {
+    if (typeof measurement?.occurred !== "boolean") continue;
     const { occurred, efficiency, falseAlarm, measurand, id, setAside } = measurement;
-    if (typeof occurred !== "boolean" || measurand === undefined || setAside !== null) continue;
+    if (measurand === undefined || setAside !== null) continue;
     const target = reading.measurands.get(measurand);
     if (target === undefined || target.closed !== null) continue;
     const ruled = events.get(measurand) ?? { yes: null, no: null };
