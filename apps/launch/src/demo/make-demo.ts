@@ -74,7 +74,7 @@ async function play(store: Store, actors: Map<string, NonNullable<Actor>>): Prom
     { at: now, act: () => declare(as) },
     ...scenario.hypotheses.map(({ at, content }) => ({ at, act: () => register(as, content) })),
     {
-      at: scenario.campaign.registrationCloses,
+      at: scenario.registrationClosedAt,
       act: () => {
         const { actor } = as("coordinator@demo.example");
         return closeRegistration(desk, actor, { key: scenario.demoKey });

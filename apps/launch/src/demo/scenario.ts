@@ -20,6 +20,9 @@ export const campaign = {
   noneOfThese: { weight: 0.25 },
 };
 
+/** The coordinator closes it a little before its time. */
+export const registrationClosedAt = "2025-02-28T18:00:00Z";
+
 export const observables: PayloadInput<"observable.declared">[] = [
   { key: "heat-flux", title: "Heat flux at the bed", unit: "mW/m^2", scale: "log10" },
   {
