@@ -1,18 +1,15 @@
-import type { CampaignDocument, Measurement } from "@weighhouse/campaign/document";
+import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { MeasurementContent } from "@weighhouse/campaign/entries";
 import { measurementContentSchema } from "@weighhouse/campaign/entries";
 import { readForm } from "@weighhouse/campaign/form";
 import type { Problem } from "@weighhouse/campaign/problem";
 import { readCampaign } from "@weighhouse/campaign/read";
 import { createState } from "@weighhouse/engine/state";
-import { defaultMeasurementId } from "@weighhouse/store/post-measurements";
+import { comparePosting, defaultMeasurementId } from "@weighhouse/store/post-measurements";
+import type { Conflict } from "@weighhouse/store/post-measurements";
 import type { Access } from "./access";
-import { documentAfter } from "./document-after";
-import type { Moment } from "./document-after";
-import { firstDifference } from "./measurement-difference";
-import type { Difference } from "./measurement-difference";
-import { measurementEntries } from "./measurement-entries";
-import type { ReadRow, RowProblem } from "./read-rows";
+import type { Desk } from "./desk";
+import type { ReadRow, ReadRows, RowProblem } from "./read-rows";
 
 /** What would become of one row, were it posted now. */
 export type JudgedRow = {
@@ -23,7 +20,7 @@ export type JudgedRow = {
   /** Why it is refused, by field; empty otherwise. */
   problems: RowProblem[];
   /** The first field that differs from what is there under that id. */
-  conflict: Difference | null;
+  conflict: Conflict | null;
   /** As it would be entered; null for a row that doesn't read. */
   measurement: MeasurementContent | null;
 };
@@ -35,22 +32,16 @@ export type Judgement = {
 };
 
 /** Judges rows against the campaign as it is: each new, already there, in conflict or refused. */
-export function judgeRows(
-  document: CampaignDocument,
-  rows: ReadRow[],
-  poster: { access: Access; moment: Moment },
-): Judgement {
-  const judged = refuseRepeated(rows.map((row) => readRow(row, poster.access)));
-  const completed = completedMeasurements(document, contentsOf(judged), poster.moment);
-  const there = new Map(document.measurements.map((one) => [one.id, one]));
-  for (const row of judged) {
-    const before = there.get(row.id ?? "");
-    const posted = completed.get(row.id ?? "");
-    if (row.fate !== "new" || !before || !posted) continue;
-    row.conflict = firstDifference(before, posted);
-    row.fate = row.conflict ? "conflict" : "alreadyThere";
-  }
-  return applyRules(document, judged, poster.moment);
+export async function judgeRows(
+  desk: Desk,
+  table: ReadRows,
+  against: { document: CampaignDocument; access: Access; at: string },
+): Promise<Judgement> {
+  const judged = refuseRepeated(table.rows.map((row) => readRow(row, against.access)));
+  await compareWithThere(desk, against.access, judged);
+  const fresh = judged.filter(({ fate }) => fate === "new");
+  const problems = applyRules(fresh, against);
+  return { rows: judged.map((row) => inColumns(row, table.columns)), problems };
 }
 
 /** Stands for an id that is made from the content once that reads. */
@@ -101,21 +92,32 @@ function refuseRepeated(rows: JudgedRow[]): JudgedRow[] {
   });
 }
 
-/** The measurements as the document would hold them, with units and conditions filled in. */
-function completedMeasurements(
-  document: CampaignDocument,
-  contents: MeasurementContent[],
-  moment: Moment,
-): Map<string, Measurement> {
-  const alone = documentOf(document, contents, moment);
-  return new Map(alone.measurements.map((one) => [one.id, one]));
+/** The store's own comparison, so that a preview promises what posting then does. */
+async function compareWithThere(desk: Desk, access: Access, rows: JudgedRow[]): Promise<void> {
+  const campaign = access.campaign.key;
+  const measurements = rows.flatMap(({ fate, measurement }) =>
+    fate === "new" && measurement ? [measurement] : [],
+  );
+  const found = await comparePosting(desk.store, { campaign, measurements });
+  const byId = new Map(rows.filter(({ fate }) => fate === "new").map((row) => [row.id, row]));
+  for (const id of found.alreadyThere) byId.get(id)!.fate = "alreadyThere";
+  for (const conflict of found.conflicts) {
+    const row = byId.get(conflict.id)!;
+    row.fate = "conflict";
+    row.conflict ??= conflict;
+  }
 }
 
-/** The rules of the document and what the engine can score, for the rows that would be new. */
-function applyRules(document: CampaignDocument, rows: JudgedRow[], moment: Moment): Judgement {
-  const fresh = rows.filter(({ fate }) => fate === "new");
-  const alone = documentOf(document, contentsOf(fresh), moment);
-  const read = readCampaign(alone);
+/**
+ * The rules of the document and what the engine can score, for the rows that would be new, beside
+ * the declarations alone: what was posted before was judged before.
+ */
+function applyRules(
+  fresh: JudgedRow[],
+  { document, at }: { document: CampaignDocument; at: string },
+): Problem[] {
+  const measurements = fresh.map((row) => documentMeasurement(row.measurement!, at));
+  const read = readCampaign({ ...document, measurements, correlations: [] });
   const outcome = read.ok ? createState(read.value) : read;
   const problems: Problem[] = [];
   for (const problem of outcome.ok ? [] : outcome.problems) {
@@ -124,22 +126,15 @@ function applyRules(document: CampaignDocument, rows: JudgedRow[], moment: Momen
     if (!row) problems.push(problem);
     else {
       row.fate = "refused";
-      row.problems.push(rowProblem({ ...problem, pointer: within ?? "" }));
+      row.problems = [...row.problems, rowProblem({ ...problem, pointer: within ?? "" })];
     }
   }
-  return { rows, problems };
+  return problems;
 }
 
-/** The campaign with these measurements alone: what was posted before was judged before. */
-function documentOf(document: CampaignDocument, contents: MeasurementContent[], moment: Moment) {
-  const bare = { ...document, measurements: [], correlations: [] };
-  return documentAfter(bare, measurementEntries(contents), moment);
-}
-
-function contentsOf(rows: JudgedRow[]): MeasurementContent[] {
-  return rows.flatMap(({ measurement, fate }) =>
-    measurement && fate !== "refused" ? [measurement] : [],
-  );
+function documentMeasurement(measurement: MeasurementContent, postedAt: string) {
+  const { claimed: _, ...content } = measurement;
+  return { ...content, postedAt };
 }
 
 /** `/sd` is the field sd; `/conditions/depth` is conditions.depth, as in a table's columns. */
@@ -147,4 +142,14 @@ function rowProblem({ pointer, found, allowed }: Problem): RowProblem {
   const [, field, within] = pointer.split("/");
   const column = field === "conditions" && within ? `conditions.${within}` : (field ?? null);
   return { column, found, allowed };
+}
+
+/** Problems by the columns' own names, where a field was read from a column. */
+function inColumns(row: JudgedRow, columns: ReadRows["columns"]): JudgedRow {
+  const names = new Map(columns.map(({ column, field }) => [field, column]));
+  const named = row.problems.map((problem) => ({
+    ...problem,
+    column: names.get(problem.column) ?? problem.column,
+  }));
+  return { ...row, problems: named };
 }

@@ -1,28 +1,17 @@
-import { MEASUREMENTS_PER_ENTRY } from "@weighhouse/campaign/entries";
 import type { MeasurementContent, Payload } from "@weighhouse/campaign/entries";
+import { splitPosting } from "@weighhouse/store/split-posting";
 import type { NewEntry } from "./document-after";
 
 type Correlations = Payload<"measurements.posted">["correlations"];
 
-/** Entries for any number of measurements; a correlation stands with the later of its two. */
+/** The entries that any number of measurements becomes, as the store parts a posting. */
 export function measurementEntries(
   measurements: MeasurementContent[],
   correlations: Correlations = [],
 ): NewEntry[] {
-  const block = new Map(
-    measurements.map(({ id }, i) => [id, Math.floor(i / MEASUREMENTS_PER_ENTRY)]),
-  );
-  const laterBlock = ({ a, b }: Correlations[number]) =>
-    Math.max(block.get(a) ?? 0, block.get(b) ?? 0);
-  const entries: NewEntry[] = [];
-  for (let from = 0; from < measurements.length; from += MEASUREMENTS_PER_ENTRY) {
-    entries.push({
-      kind: "measurements.posted",
-      payload: {
-        measurements: measurements.slice(from, from + MEASUREMENTS_PER_ENTRY),
-        correlations: correlations.filter((one) => laterBlock(one) === entries.length),
-      },
-    });
-  }
-  return entries;
+  if (measurements.length === 0) return [];
+  return splitPosting(measurements, correlations).map(({ value }) => ({
+    kind: "measurements.posted",
+    payload: value,
+  }));
 }

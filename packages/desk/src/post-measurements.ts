@@ -52,7 +52,7 @@ export async function postMeasurements(
   const by = authorOf(access);
   const { document } = await onStore(() => readDocument(desk.store, key));
   const table = readRows(source, document);
-  const judged = judgeRows(document, table.rows, { access, moment: { by, at: timeAt(desk) } });
+  const judged = await judgeRows(desk, table, { document, access, at: timeAt(desk) });
   const place = placeIn(source.from);
   const faults = [
     ...table.problems.map(({ line, ...fault }) => place.text(fault, line)),

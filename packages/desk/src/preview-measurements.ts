@@ -51,7 +51,7 @@ export async function previewMeasurements(
   const moment = { by: authorOf(access), at: timeAt(desk) };
   const { document, size } = await onStore(() => readDocument(desk.store, key));
   const table = readRows(source, document);
-  const judged = judgeRows(document, table.rows, { access, moment });
+  const judged = await judgeRows(desk, table, { document, access, at: moment.at });
   const problems = [...table.problems, ...judged.problems.map(wholeProblem)];
   const counts = countFates(judged.rows);
   const postable =

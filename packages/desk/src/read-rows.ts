@@ -19,11 +19,22 @@ export type ReadRows = {
   problems: TableProblem[];
 };
 
-/** The rows of a CSV text or of a form's drafts. */
+/** The rows of a CSV text or of a form's drafts; none at all is a problem of the whole. */
 export function readRows(source: MeasurementSource, document: CampaignDocument): ReadRows {
-  if (source.from === "csv") {
-    return readMeasurementTable(source.text, { document, defaults: source.defaults });
-  }
-  const rows = source.drafts.map((draft, i) => ({ line: i + 1, draft, problems: [] }));
+  const read = source.from === "csv" ? readText(source, document) : readDrafts(source.drafts);
+  if (read.rows.length > 0 || read.problems.length > 0) return read;
+  const problem = { line: null, column: null, found: "no row", allowed: "one measurement or more" };
+  return { ...read, problems: [problem] };
+}
+
+function readText(
+  { text, defaults }: Extract<MeasurementSource, { from: "csv" }>,
+  document: CampaignDocument,
+): ReadRows {
+  return readMeasurementTable(text, { document, defaults });
+}
+
+function readDrafts(drafts: Record<string, unknown>[]): ReadRows {
+  const rows = drafts.map((draft, i) => ({ line: i + 1, draft, problems: [] }));
   return { rows, columns: [], problems: [] };
 }

@@ -1,0 +1,176 @@
+import { afterAll, beforeAll, describe, expect, it } from "vitest";
+import { addMember } from "./add-member";
+import { addTeam } from "./add-team";
+import { amendCampaign } from "./amend-campaign";
+import { amendHypothesis } from "./amend-hypothesis";
+import { closeRegistration } from "./close-registration";
+import { declareFacility } from "./declare";
+import type { Actor, Desk } from "./desk";
+import { DeskError } from "./desk-error";
+import { exportAuditTrail } from "./export-audit-trail";
+import { importCampaign } from "./import-campaign";
+import { listCampaigns } from "./list-campaigns";
+import { listMembers } from "./list-members";
+import { openCampaign } from "./open-campaign";
+import { postMeasurements } from "./post-measurements";
+import { previewMeasurements } from "./preview-measurements";
+import { readCampaign } from "./read-campaign";
+import { registerHypothesis } from "./register-hypothesis";
+import { actions, may, permission, roles } from "./roles";
+import type { Action, Permission, Role } from "./roles";
+import { setAsideMeasurement } from "./set-aside-measurement";
+import { hypothesis, openLagoon, reading } from "./testing/lagoon";
+import type { Lagoon } from "./testing/lagoon";
+import { openTestDesk } from "./testing/test-desk";
+import type { TestDesk } from "./testing/test-desk";
+
+// The roles as the design states them: the coordinator declares, a team's member registers that
+// team's hypotheses, members and the coordinator post, everyone reads a public campaign.
+const [y, n, o] = ["yes", "no", "own-team"] as const;
+// prettier-ignore
+const stated: Record<Action, [visitor: Permission, account: Permission, reader: Permission, member: Permission, coordinator: Permission]> = {
+  "list-campaigns": [y, y, y, y, y],
+  "open-campaign": [n, y, n, n, n],
+  "import-campaign": [n, y, n, n, n],
+  "read-campaign": [n, n, y, y, y],
+  "export-audit-trail": [n, n, y, y, y],
+  "list-members": [n, n, n, y, y],
+  "register-hypothesis": [n, n, n, o, o],
+  "amend-hypothesis": [n, n, n, o, o],
+  "preview-measurements": [n, n, n, y, y],
+  "post-measurements": [n, n, n, y, y],
+  "set-aside-measurement": [n, n, n, o, y],
+  "amend-campaign": [n, n, n, n, y],
+  declare: [n, n, n, n, y],
+  "add-team": [n, n, n, n, y],
+  "add-member": [n, n, n, n, y],
+  "close-registration": [n, n, n, n, y],
+};
+
+describe("the table of roles", () => {
+  const cells = actions.flatMap((action) => roles.map((role, i) => ({ action, role, i })));
+
+  it.each(cells)("$action by a $role is as stated", ({ action, role, i }) => {
+    const cell = stated[action][i]!;
+    expect(permission(role, action)).toBe(cell);
+    expect(may(role, action, { own: "a", of: "a" })).toBe(cell !== "no");
+    expect(may(role, action, { own: "a", of: "b" })).toBe(cell === "yes");
+    expect(may(role, action, { own: null, of: "b" })).toBe(cell === "yes");
+  });
+
+  it("has no action that this test doesn't know", () => {
+    expect(Object.keys(stated).sort()).toEqual([...actions].sort());
+  });
+});
+
+describe("every use-case asks the table", () => {
+  let house: TestDesk;
+  let open: Lagoon;
+  let closed: Lagoon;
+
+  beforeAll(async () => {
+    house = await openTestDesk();
+    open = await openLagoon(house);
+    closed = await openLagoon(house, { key: "lagoon-members", visibility: "members" });
+    for (const lagoon of [open, closed]) {
+      const { key, member } = lagoon;
+      await registerHypothesis(house.desk, member, { key, hypothesis: hypothesis("algae", 40) });
+      const source = { from: "drafts" as const, drafts: [reading("night-1", 41)] };
+      await postMeasurements(house.desk, member, { key, source });
+    }
+  });
+  afterAll(() => house.close());
+
+  /** Each action as a use-case that would go through, or be refused for another reason than role. */
+  const attempts: Record<Action, (desk: Desk, actor: Actor, key: string) => Promise<unknown>> = {
+    "list-campaigns": (desk, actor) => listCampaigns(desk, actor, {}),
+    "open-campaign": (desk, actor) =>
+      openCampaign(desk, actor, { campaign: { key: "lagoon-glow", title: "Taken" } }),
+    "import-campaign": (desk, actor) => importCampaign(desk, actor, { text: "{}" }),
+    "read-campaign": (desk, actor, key) => readCampaign(desk, actor, { key }),
+    "export-audit-trail": (desk, actor, key) => exportAuditTrail(desk, actor, { key }),
+    "list-members": (desk, actor, key) => listMembers(desk, actor, { key }),
+    "register-hypothesis": (desk, actor, key) =>
+      registerHypothesis(desk, actor, {
+        key,
+        hypothesis: { ...hypothesis("algae", 41), team: "algae" },
+      }),
+    "amend-hypothesis": (desk, actor, key) =>
+      amendHypothesis(desk, actor, { key, hypothesis: hypothesis("algae", 41) }),
+    "preview-measurements": (desk, actor, key) =>
+      previewMeasurements(desk, actor, { key, source: { from: "csv", text: "" } }),
+    "post-measurements": (desk, actor, key) =>
+      postMeasurements(desk, actor, { key, source: { from: "csv", text: "" } }),
+    "set-aside-measurement": (desk, actor, key) =>
+      setAsideMeasurement(desk, actor, { key, id: "night-1", reason: "clouds" }),
+    "amend-campaign": (desk, actor, key) =>
+      amendCampaign(desk, actor, {
+        key,
+        campaign: { key: "another", title: "Another", visibility: "public" },
+      }),
+    declare: (desk, actor, key) => declareFacility(desk, actor, { key, facility: { key: "pier" } }),
+    "add-team": (desk, actor, key) => addTeam(desk, actor, { key, team: { key: "algae" } }),
+    "add-member": (desk, actor, key) =>
+      addMember(desk, actor, { key, email: "nobody@people.example", role: "reader" }),
+    "close-registration": (desk, actor, key) => closeRegistration(desk, actor, { key }),
+  };
+
+  const whole = ["list-campaigns", "open-campaign", "import-campaign"];
+
+  /** What a use-case says of the actor's role: let through, whatever it said of the rest. */
+  async function refusal(action: Action, actor: Actor, key: string): Promise<string | null> {
+    try {
+      await attempts[action](house.desk, actor, key);
+      return null;
+    } catch (error) {
+      if (!(error instanceof DeskError)) throw error;
+      const ofRole = ["not-signed-in", "not-allowed"].includes(error.code);
+      const hidden = error.code === "not-found" && error.message.includes("found no campaign");
+      return ofRole || hidden ? error.code : null;
+    }
+  }
+
+  /** Who holds which role where, and what a refusal looks like there. */
+  const holders: [Role, () => Actor, () => string, refused: string][] = [
+    ["visitor", () => null, () => closed.key, "not-found"],
+    ["account", () => closed.stranger, () => closed.key, "not-found"],
+    ["reader", () => open.reader, () => open.key, "not-allowed"],
+    ["reader", () => closed.reader, () => closed.key, "not-allowed"],
+    ["reader", () => open.stranger, () => open.key, "not-allowed"],
+    ["reader", () => null, () => open.key, "not-signed-in"],
+    ["member", () => open.member, () => open.key, "not-allowed"],
+    ["coordinator", () => open.coordinator, () => open.key, "not-allowed"],
+  ];
+
+  const cells = holders.flatMap(([role, actor, key, refused]) =>
+    actions.map((action) => ({ role, actor, key, refused, action })),
+  );
+
+  it.each(cells)("$action by a $role", async ({ role, actor, key, refused, action }) => {
+    const who = actor();
+    const said = await refusal(action, who, key());
+    if (whole.includes(action)) {
+      // These concern no campaign: only whether there is an account matters.
+      expect(said).toBe(who === null && action !== "list-campaigns" ? "not-signed-in" : null);
+      return;
+    }
+    const cell = permission(role, action);
+    const ownTeam = role === "member";
+    const letThrough = cell === "yes" || (cell === "own-team" && ownTeam);
+    expect(said).toBe(letThrough ? null : refused);
+  });
+
+  it("another team's member may neither amend nor register for it, nor set aside its measurements", async () => {
+    const { key, rival } = open;
+    const { desk } = house;
+    const forOthers = { ...hypothesis("algae-2", 1), team: "algae" };
+    const refusedCalls = [
+      () => registerHypothesis(desk, rival, { key, hypothesis: forOthers }),
+      () => amendHypothesis(desk, rival, { key, hypothesis: hypothesis("algae", 3) }),
+      () => setAsideMeasurement(desk, rival, { key, id: "night-1", reason: "clouds" }),
+    ];
+    for (const call of refusedCalls) {
+      await expect(call()).rejects.toMatchObject({ code: "not-allowed" });
+    }
+  });
+});
