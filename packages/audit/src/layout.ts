@@ -57,7 +57,20 @@ export function isKeyPath(path: string): boolean {
   return /^keys\/[0-9a-f]{16}\.pub$/.test(path);
 }
 
-/** A JSON file of the archive: indented for readers, one form only. */
-export function jsonText(value: unknown): string {
-  return `${JSON.stringify(value, null, 2)}\n`;
+/**
+ * A JSON object as a file of the archive, in one form only: each member on a line, each item of a
+ * list that is a member on a line of its own. A measurement, a verdict, a file is then one line,
+ * which a reader can find and a difference can name, and long lists stay small.
+ */
+export function jsonText(value: object): string {
+  const members = Object.entries(value).map(([name, member]) => {
+    const text = Array.isArray(member) ? listText(member) : JSON.stringify(member);
+    return `  ${JSON.stringify(name)}: ${text}`;
+  });
+  return `{\n${members.join(",\n")}\n}\n`;
+}
+
+function listText(items: readonly unknown[]): string {
+  if (items.length === 0) return "[]";
+  return `[\n${items.map((item) => `    ${JSON.stringify(item)}`).join(",\n")}\n  ]`;
 }

@@ -9,10 +9,11 @@ import { formatTreeHead, parseTreeHead, signTreeHead } from "@weighhouse/ledger/
 import { encodeVerifierKey, fingerprint } from "@weighhouse/ledger/verifier-key";
 import { CHECKS } from "./checks/line";
 import type { CheckName, VerifyReport } from "./checks/line";
+import { jsonText } from "./layout";
 import { forge, line, replacing, tamper } from "./testing/forge";
 import type { Change } from "./testing/forge";
 import { archiveInput, LEDGER_ID, marshTransactions } from "./testing/marsh-campaign";
-import { fixedSigner } from "./testing/synthetic-ledger";
+import { appendTransactions, fixedSigner } from "./testing/synthetic-ledger";
 import { verifyArchive } from "./verify";
 import type { VerifyOptions } from "./verify";
 import { writeArchive } from "./write";
@@ -219,7 +220,7 @@ describe("what a forger changes is found though the manifest is made good", () =
     ],
     [
       "a number of the campaign document",
-      { "campaign.json": replacing('"expected": 21', '"expected": 20') },
+      { "campaign.json": replacing('"expected":21', '"expected":20') },
       "campaign document",
       "campaign.json, /hypotheses/0/predictions/0/expected: found 20, computed 21",
     ],
@@ -227,8 +228,8 @@ describe("what a forger changes is found though the manifest is made good", () =
       "a date of the campaign document",
       {
         "campaign.json": replacing(
-          /"registeredAt": "[^"]+"/,
-          '"registeredAt": "2031-01-01T00:00:00Z"',
+          /"registeredAt":"[^"]+"/,
+          '"registeredAt":"2031-01-01T00:00:00Z"',
         ),
       },
       "campaign document",
@@ -257,7 +258,7 @@ describe("what a forger changes is found though the manifest is made good", () =
     ],
     [
       "a prediction said to be filed before observation",
-      { "standings.json": replacing('"order": "after"', '"order": "before-observation"') },
+      { "standings.json": replacing('"order":"after"', '"order":"before-observation"') },
       "before and after data",
       "found before-observation, but entry 12 of 2031-02-01T04:00:00.000000Z files it, after entry 11 posted a measurement",
     ],
@@ -474,6 +475,39 @@ it("a payload that is well hashed and signed but of no known kind is refused at 
   );
 });
 
+it.each([
+  [
+    "a measurement of an unknown measurand",
+    "measurements.posted",
+    { measurements: [{ id: "x", measurand: "no-such", value: 1, sd: 1 }] },
+  ],
+  [
+    "a prediction of an unknown measurand",
+    "hypothesis.registered",
+    { key: "x", title: "X", predictions: [{ measurand: "no-such", expected: 1 }] },
+  ],
+] as const)("%s is refused at the document, and never scored", (_, kind, payload) => {
+  const ledger = appendTransactions(
+    "steaming-marsh",
+    LEDGER_ID,
+    [...marshTransactions(), [{ kind, payload }]],
+    house,
+  );
+  const scored: unknown[] = [];
+  const report = verify(writeArchive({ ...input, ...ledger }), {
+    score: (document, options) => {
+      scored.push(document);
+      return scoreCampaign(document, options);
+    },
+  });
+  expect(detailOf(report, "campaign document")).toContain("failed: ");
+  expect(detailOf(report, "campaign document")).toContain("no-such");
+  expect(detailOf(report, "standings")).toBe(
+    'failed: not checked, because "campaign document" failed',
+  );
+  expect(scored).toEqual([]);
+});
+
 it("what is no archive fails in its first line, and nothing else is claimed", () => {
   const report = verify(new TextEncoder().encode("not an archive"));
   expect(report.ok).toBe(false);
@@ -512,9 +546,9 @@ function dropLine(number: number): Change {
 
 // oxlint-disable-next-line typescript/no-explicit-any -- tests reach anywhere into a document.
 function json(text: string, change: (value: any) => unknown): string {
-  const value: unknown = JSON.parse(text);
+  const value: object = JSON.parse(text);
   change(value);
-  return `${JSON.stringify(value, null, 2)}\n`;
+  return jsonText(value);
 }
 
 /** Whole numbers from 0 below a limit: mulberry32, so that a failure can be run again. */

@@ -1,3 +1,5 @@
+import { jsonText } from "../layout";
+
 /** Why a file can't be used, with its path. */
 export type TextFault = { ok: false; fault: string };
 
@@ -28,13 +30,13 @@ export function readLines(
 }
 
 /**
- * A JSON file of the archive. One form only, as the export writes it: a doubled name, which JSON
+ * A JSON object of the archive. One form only, as the export writes it: a doubled name, which JSON
  * readers take one way or the other, is another form.
  */
 export function readJson(
   files: ReadonlyMap<string, Uint8Array>,
   path: string,
-): { ok: true; value: unknown; text: string } | TextFault {
+): { ok: true; value: object; text: string } | TextFault {
   const read = readText(files, path);
   if (!read.ok) return read;
   let value: unknown;
@@ -43,11 +45,14 @@ export function readJson(
   } catch (error) {
     return { ok: false, fault: `${path} is not JSON: ${(error as Error).message.slice(0, 100)}` };
   }
-  const line = firstLineThatDiffers(read.text, `${JSON.stringify(value, null, 2)}\n`);
+  if (typeof value !== "object" || value === null || Array.isArray(value)) {
+    return { ok: false, fault: `${path} is not a JSON object` };
+  }
+  const line = firstLineThatDiffers(read.text, jsonText(value));
   if (line !== null) {
     return {
       ok: false,
-      fault: `${path}, line ${line}: not in the form that the export writes (indented by two, each name once)`,
+      fault: `${path}, line ${line}: not in the form that the export writes (members and items a line each, each name once)`,
     };
   }
   return { ok: true, value, text: read.text };

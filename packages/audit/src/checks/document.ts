@@ -2,6 +2,8 @@ import { CampaignError } from "@weighhouse/campaign/campaign-error";
 import type { LedgerRecord } from "@weighhouse/campaign/changes";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { foldRecords } from "@weighhouse/campaign/fold";
+import { problemLine } from "@weighhouse/campaign/problem";
+import { readCampaign } from "@weighhouse/campaign/read";
 import { readJson } from "./archive-text";
 import type { Files } from "./container";
 import { counted, failed, judged } from "./line";
@@ -25,6 +27,13 @@ export function checkDocument(
   const read = readJson(files, DOCUMENT);
   if (!read.ok) return { line: failed(check, read.fault), value: folded };
   const { differences } = compareJson(read.value, folded, { tolerance: 0 });
+  const fits = readCampaign(folded);
+  const problems = fits.ok ? [] : fits.problems.map(problemLine);
+  if (problems.length > 0) {
+    // No engine is asked to score what no campaign can be.
+    const places = problems.map((problem) => `the entries add up to no campaign: ${problem}`);
+    return { line: failed(check, places), value: null };
+  }
   const detail = `${counted(folded.hypotheses.length, "hypothesis", "hypotheses")} and ${counted(folded.measurements.length, "measurement")}, folded from the entries`;
   return {
     line: judged(
