@@ -1,9 +1,9 @@
-import * as fc from "fast-check";
+import { assert, constantFrom, property } from "fast-check";
 import { describe, expect, test } from "vitest";
 import { campaignDocumentSchema } from "./document";
 import { problemLine } from "./problem";
 import { readCampaign, readCampaignText } from "./read";
-import { duneDocument, problemsAfter, readWhole } from "./testing/documents";
+import { duneDocument, junk, placesOf, problemsAfter, put, readWhole } from "./testing/documents";
 import type { Open } from "./testing/documents";
 
 describe("a right document", () => {
@@ -188,21 +188,9 @@ describe("all errors come at once", () => {
   });
 
   test("whatever stands at one place, that place (or its holder) is complained of", () => {
-    const places = placesOf(duneDocument(), []);
-    const junk = fc.constantFrom<Open>(
-      { odd: true },
-      ["odd"],
-      true,
-      "Odd Text!\u0001",
-      -7.5,
-      Number.NaN,
-      { __proto__: null, a: { b: 1 } },
-    );
-    fc.assert(
-      fc.property(fc.constantFrom(...places), junk, (path, value) => {
-        const document = duneDocument();
-        const holder = path.slice(0, -1).reduce<Open>((at, step) => at[step], document);
-        holder[path.at(-1)!] = value;
+    assert(
+      property(constantFrom(...placesOf(duneDocument())), junk, (path, value) => {
+        const document = put(duneDocument(), path, value);
         const read = readCampaign(document);
         if (read.ok) return;
         for (const { pointer, found, allowed } of read.problems) {
@@ -222,16 +210,6 @@ describe("all errors come at once", () => {
     );
   });
 });
-
-function placesOf(value: Open, path: (string | number)[]): (string | number)[][] {
-  if (typeof value !== "object" || value === null) return [path];
-  return [
-    ...(path.length > 0 ? [path] : []),
-    ...Object.keys(value).flatMap((name) =>
-      placesOf(value[name], [...path, Array.isArray(value) ? Number(name) : name]),
-    ),
-  ];
-}
 
 describe("what is no campaign document at all", () => {
   test.each([[null], [3], ["text"], [[]], [true]])("%j", (value) => {

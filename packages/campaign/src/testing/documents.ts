@@ -1,3 +1,4 @@
+import { constantFrom } from "fast-check";
 import type { CampaignDocument, Measurement } from "../document";
 import { measurementSchema } from "../measurement";
 import type { Problem } from "../problem";
@@ -27,6 +28,43 @@ export function problemsAfter(change: (document: Open) => void): Problem[] {
   const read = readCampaign(document);
   return read.ok ? [] : read.problems;
 }
+
+/** Every place in a document, as the steps that lead there. */
+export function placesOf(value: Open, path: (string | number)[] = []): (string | number)[][] {
+  if (typeof value !== "object" || value === null) return [path];
+  return [
+    ...(path.length > 0 ? [path] : []),
+    ...Object.keys(value).flatMap((name) =>
+      placesOf(value[name], [...path, Array.isArray(value) ? Number(name) : name]),
+    ),
+  ];
+}
+
+/** The document with another value at one place. */
+export function put(document: Open, path: (string | number)[], value: unknown): Open {
+  const holder = path.slice(0, -1).reduce<Open>((at, step) => at[step], document);
+  holder[path.at(-1)!] = structuredClone(value);
+  return document;
+}
+
+/** Values that belong nowhere, or nearly so. */
+export const junk = constantFrom<unknown>(
+  { odd: true },
+  { family: "odd" },
+  {},
+  ["odd"],
+  [],
+  true,
+  null,
+  "",
+  "Odd Text!\u0001",
+  "odd-key",
+  "x".repeat(501),
+  "2031-02-29T00:00:00Z",
+  -7.5,
+  0,
+  1e300,
+);
 
 export function readWhole(document: unknown): CampaignDocument {
   const read = readCampaign(document);
