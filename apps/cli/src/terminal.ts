@@ -6,6 +6,8 @@ type Style = Parameters<typeof styleText>[0];
 /** What a report is written for: how wide, and whether styles are seen. */
 export type Terminal = {
   columns: number;
+  /** Where sentences wrap: in a pipe nowhere, so that a finding stays on its line. */
+  proseColumns: number;
   style(style: Style, text: string): string;
 };
 
@@ -13,9 +15,13 @@ const COLUMNS_IN_A_FILE = 120;
 
 export function terminalOf(stream: NodeJS.WriteStream): Terminal {
   const wanted = Number(process.env.COLUMNS);
-  const columns = stream.columns ?? (wanted > 0 ? wanted : COLUMNS_IN_A_FILE);
+  const known = stream.columns ?? (wanted > 0 ? wanted : null);
   const colour = hasColour(stream);
-  return { columns, style: (style, text) => (colour ? styleText(style, text) : text) };
+  return {
+    columns: known ?? COLUMNS_IN_A_FILE,
+    proseColumns: known ?? Infinity,
+    style: (style, text) => (colour ? styleText(style, text) : text),
+  };
 }
 
 /** NO_COLOR set to anything, a dumb terminal or a pipe: no colour. */

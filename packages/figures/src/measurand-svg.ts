@@ -82,7 +82,7 @@ export function measurandSvg(input: MeasurandInput, options: { widthPx: number }
 
 function rowsOf({ predictions, measurements, combined, observable }: MeasurandInput): Row[] {
   const named = measurements.length <= MOST_NAMED;
-  const height = named ? ROW : Math.max(2, 440 / measurements.length);
+  const height = named ? ROW : (MOST_NAMED * ROW) / measurements.length;
   return [
     ...predictions.map((prediction) => ({
       name: prediction.title,

@@ -1,6 +1,7 @@
 import { rename, rm, writeFile } from "node:fs/promises";
 import { defineCommand } from "citty";
 import { Refusal, wrongUsage } from "../refusal";
+import { harmless } from "../terminal";
 
 const DEFAULT_URL = "http://localhost:3000";
 
@@ -64,24 +65,25 @@ function addressOf(campaign: string): URL {
   return new URL(`${base.replace(/\/+$/, "")}/api/v1/campaigns/${campaign}/audit.zip`);
 }
 
+const STATUS_WORDS: Record<number, string> = {
+  401: "it asks for an API key (WEIGHHOUSE_API_KEY), or refuses the one given",
+  403: "not allowed",
+  404: "no such campaign, or none that may be read without an account",
+  429: "too many requests; try again later",
+};
+
 function refused(address: URL, response: Response, body: Uint8Array): Refusal {
-  const words: Record<number, string> = {
-    401: "it asks for an API key (WEIGHHOUSE_API_KEY), or refuses the one given",
-    403: "not allowed",
-    404: "no such campaign, or none that one may read without an account",
-    429: "too many requests: try again later",
-  };
-  const said = messageOf(body);
-  const why = [words[response.status] ?? response.statusText, said].filter(Boolean).join("; ");
-  return new Refusal(3, [`${address.href} answered ${response.status}: ${why}`]);
+  const { status, statusText } = response;
+  const why = [STATUS_WORDS[status] ?? statusText, detailOf(body)].filter(Boolean).join("; ");
+  return new Refusal(3, [`${address.href} answered ${status}: ${why}`]);
 }
 
-/** The server's own words, where it answers with JSON. */
-function messageOf(body: Uint8Array): string | null {
+/** The server's own words, where it answers with problem details (RFC 9457). */
+function detailOf(body: Uint8Array): string | null {
   try {
     const answer: unknown = JSON.parse(new TextDecoder().decode(body.subarray(0, 10_000)));
-    const message = (answer as { message?: unknown } | null)?.message;
-    return typeof message === "string" ? message.replaceAll(/\p{Cc}+/gu, " ") : null;
+    const detail = (answer as { detail?: unknown } | null)?.detail;
+    return typeof detail === "string" ? harmless(detail) : null;
   } catch {
     return null;
   }

@@ -62,8 +62,10 @@ function lineText(
   const style = { ok: "green", failed: "red", "not present": "dim" } as const;
   const column = outcome.padEnd("not present".length);
   const text = `${column}  ${check.padEnd(widest)}  ${harmless(detail)}`;
-  const indent = " ".repeat(Math.min(column.length + widest + 4, Math.floor(terminal.columns / 2)));
-  const wrapped = wrap(text.replaceAll(/ {2,}/g, keepSpaces), terminal.columns, indent);
+  const indent = " ".repeat(
+    Math.min(column.length + widest + 4, Math.floor(terminal.proseColumns / 2)),
+  );
+  const wrapped = wrap(text.replaceAll(/ {2,}/g, keepSpaces), terminal.proseColumns, indent);
   return wrapped.replaceAll("\u00a0", " ").replace(column, terminal.style(style[outcome], column));
 }
 

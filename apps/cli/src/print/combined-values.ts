@@ -48,7 +48,7 @@ export function combinedLines(
   const prose = rows.flatMap(({ thresholds }) => thresholds);
   if (tableWidth(columns) <= terminal.columns) {
     const table = tableLines(columns, (head) => terminal.style("dim", head));
-    return [...table, ...prose.map((line) => wrap(line, terminal.columns, "  "))];
+    return [...table, ...prose.map((line) => wrap(line, terminal.proseColumns, "  "))];
   }
   return [...rows.map(asText), ...prose].map((line) => wrap(line, terminal.columns, "  "));
 }

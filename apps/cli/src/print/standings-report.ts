@@ -18,8 +18,11 @@ export function standingsReport(
   const measured = `${formatCount(used)} ${used === 1 ? "measurement" : "measurements"} counted`;
   const sections = [
     [
-      heading(wrap(harmless(document.campaign.title), terminal.columns)),
-      `${measured}, ${formatCount(setAside)} set aside; engine ${standings.engine}`,
+      heading(wrap(harmless(document.campaign.title), terminal.proseColumns)),
+      wrap(
+        `${measured}, ${formatCount(setAside)} set aside; engine ${standings.engine}`,
+        terminal.proseColumns,
+      ),
     ],
     standingLines(document, standings, terminal),
     [heading("Verdicts"), ...verdictLines(document, standings, terminal)],

@@ -25,7 +25,7 @@ export function standingLines(
   const rows = rowsOf(document, standings);
   const legend = wrap(
     "log10 B is against the first; its words are those of Kass & Raftery (1995). These compare the hypotheses listed, under their stated priors and theory errors: no posterior is the probability that one is true.",
-    terminal.columns,
+    terminal.proseColumns,
   );
   const table = fittingTable(rows, terminal);
   return [...(table ?? stackedLines(rows, terminal)), legend];

@@ -6,7 +6,7 @@ export function warningLines(warnings: readonly Warning[], terminal: Terminal): 
   return warnings
     .map(({ code, at, text }) => {
       const place = at === "" ? "" : ` (${harmless(at)})`;
-      const line = wrap(`${code}: ${harmless(text)}${place}`, terminal.columns, "  ");
+      const line = wrap(`${code}: ${harmless(text)}${place}`, terminal.proseColumns, "  ");
       return `${line.replace(code, terminal.style("yellow", code))}\n`;
     })
     .join("");
