@@ -22,13 +22,15 @@ export default async function RootLayout({ children }: { children: ReactNode }) 
           <main id="main" className="page-width pt-4 pb-10">
             {children}
           </main>
-          <footer className="page-width border-t border-rule py-4 text-[13.5px] text-quiet">
-            <p>
-              A standing compares the hypotheses on one campaign&rsquo;s table under their stated
-              priors and theory errors; it is not the probability that any of them is true. Where a
-              campaign bears on hazards, decisions belong to the responsible authority and its own
-              procedures.
-            </p>
+          <footer className="border-t border-rule py-4 text-[13.5px] text-quiet">
+            <div className="page-width">
+              <p className="max-w-[100ch]">
+                A standing compares the hypotheses on one campaign&rsquo;s table under their stated
+                priors and theory errors; it is not the probability that any of them is true. Where
+                a campaign bears on hazards, decisions belong to the responsible authority and its
+                own procedures.
+              </p>
+            </div>
           </footer>
         </ApiProvider>
       </body>

@@ -45,7 +45,7 @@ export function EntryRows({ entries, path }: { entries: readonly ListedEntry[]; 
           <td data-label="By">
             <By listed={listed} />
           </td>
-          <td data-label="Leaf">
+          <td data-label="Leaf" className="max-sm:hidden!">
             <code title={listed.leafHash}>{listed.leafHash.slice(0, 8)}</code>
           </td>
         </tr>

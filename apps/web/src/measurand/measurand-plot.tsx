@@ -1,7 +1,7 @@
 "use client";
 
 import { formatNumber, formatWithUncertainty } from "@weighhouse/figures/numbers";
-import { formatDate, formatTime } from "@weighhouse/figures/times";
+import { formatTime } from "@weighhouse/figures/times";
 import {
   CartesianGrid,
   ErrorBar,
@@ -15,6 +15,7 @@ import {
   YAxis,
 } from "recharts";
 import type { TooltipContentProps } from "recharts";
+import { linearTicks, logTicks, timeTicks } from "@/look/axis-ticks";
 import { inkOf } from "@/look/hypothesis-mark";
 import type { MeasurandPlotData, PlotBand, PlotPoint } from "./plot-data";
 
@@ -30,6 +31,9 @@ export function MeasurandPlot({ data }: { data: MeasurandPlotData }) {
   const { x, y } = data;
   const width = x[1] - x[0];
   const end = x[1] + width * (LANES / (1 - LANES));
+  const along = data.timed
+    ? timeTicks(x[0], x[1], 3)
+    : { ticks: data.points.map((point) => point.x), text: formatNumber };
   return (
     <div className="h-80 w-full">
       <ResponsiveContainer width="100%" height="100%">
@@ -51,7 +55,7 @@ export function MeasurandPlot({ data }: { data: MeasurandPlotData }) {
               {...clipped(band, y)}
               ifOverflow="hidden"
               fill={inkOf(band.index)}
-              fillOpacity={0.1}
+              fillOpacity={band.lower === band.upper ? 0.5 : 0.1}
               stroke="none"
             />
           ))}
@@ -88,10 +92,8 @@ export function MeasurandPlot({ data }: { data: MeasurandPlotData }) {
             dataKey="x"
             type="number"
             domain={[x[0], end]}
-            ticks={xTicks(data)}
-            tickFormatter={(at: number) =>
-              data.timed ? formatDate(new Date(at).toISOString()) : formatNumber(at)
-            }
+            ticks={along.ticks}
+            tickFormatter={along.text}
             tick={{ fill: "var(--quiet)", fontSize: 12.5 }}
             stroke="var(--edge)"
             minTickGap={20}
@@ -103,8 +105,8 @@ export function MeasurandPlot({ data }: { data: MeasurandPlotData }) {
             domain={[...y]}
             allowDataOverflow
             width={64}
-            tickCount={7}
-            tickFormatter={(value: number) => formatNumber(value, 3)}
+            ticks={data.log ? logTicks(...y) : linearTicks(...y)}
+            tickFormatter={(value: number) => formatNumber(value, 6)}
             tick={{ fill: "var(--quiet)", fontSize: 12.5 }}
             stroke="var(--edge)"
           />
@@ -117,6 +119,7 @@ export function MeasurandPlot({ data }: { data: MeasurandPlotData }) {
             <ErrorBar
               dataKey="error"
               direction="y"
+              isAnimationActive={false}
               stroke="var(--ink)"
               strokeWidth={1.5}
               width={4}
@@ -135,15 +138,6 @@ function clipped(band: PlotBand, y: readonly [number, number]): { y1: number; y2
   return lower === upper
     ? { y1: lower - hair, y2: upper + hair }
     : { y1: Math.max(lower, y[0]), y2: Math.min(upper, y[1]) };
-}
-
-function xTicks({ x, points, timed }: MeasurandPlotData): number[] {
-  if (!timed) return points.map((point) => point.x);
-  const count = 4;
-  return Array.from(
-    { length: count },
-    (_, index) => x[0] + ((x[1] - x[0]) * (index + 0.5)) / count,
-  );
 }
 
 /** A dot; hollow when set aside; an arrow from a limit in the direction that it allows. */

@@ -37,46 +37,19 @@ export function MeasurandView(props: {
   });
   return (
     <>
-      <Section title={measurand.title ?? measurand.key} gloss={observable.title} id="plot">
-        {measurements.length > 0 || plot.bands.length > 0 ? (
-          <>
-            {observable.unit && observable.unit !== "1" ? (
-              <p className="text-[13.5px] text-quiet">in {observable.unit}</p>
-            ) : null}
-            <MeasurandPlot data={plot} />
-            <PlotLegend data={plot} />
-          </>
-        ) : (
-          <Empty title="Nothing is measured or predicted yet.">
-            <p>Once a team predicts it or an observer measures it, both are drawn here.</p>
-          </Empty>
-        )}
-      </Section>
-      <Section title="Predictions" gloss="with their theory error (tolerance)" id="predictions">
-        {rows.length > 0 ? (
-          <PredictionRows
-            rows={rows}
-            observable={observable}
-            base={`/campaigns/${document.campaign.key}`}
-          />
-        ) : (
-          <p className="text-quiet">No hypothesis is registered yet.</p>
-        )}
-      </Section>
-      <div className="grid gap-x-5 lg:grid-cols-[1.6fr_1fr]">
-        <Section title="Measurements" id="measurements">
-          {measurements.length > 0 ? (
-            <MeasurementRows
-              measurements={measurements}
-              observable={observable}
-              facilities={document.facilities}
-            />
+      <div className="grid gap-x-5 lg:grid-cols-[1.9fr_1fr]">
+        <Section title={measurand.title ?? measurand.key} gloss={observable.title} id="plot">
+          {measurements.length > 0 || plot.bands.length > 0 ? (
+            <>
+              {observable.unit && observable.unit !== "1" ? (
+                <p className="text-[13.5px] text-quiet">in {observable.unit}</p>
+              ) : null}
+              <MeasurandPlot data={plot} />
+              <PlotLegend data={plot} />
+            </>
           ) : (
-            <Empty title="None yet.">
-              <p className="mb-3">An observer posts the first; the page moves by itself then.</p>
-              <ButtonLink href={`/campaigns/${document.campaign.key}/post`}>
-                Post measurements
-              </ButtonLink>
+            <Empty title="Nothing is measured or predicted yet.">
+              <p>Once a team predicts it or an observer measures it, both are drawn here.</p>
             </Empty>
           )}
         </Section>
@@ -89,6 +62,33 @@ export function MeasurandView(props: {
           />
         </Section>
       </div>
+      <Section title="Predictions" gloss="with their theory error (tolerance)" id="predictions">
+        {rows.length > 0 ? (
+          <PredictionRows
+            rows={rows}
+            observable={observable}
+            base={`/campaigns/${document.campaign.key}`}
+          />
+        ) : (
+          <p className="text-quiet">No hypothesis is registered yet.</p>
+        )}
+      </Section>
+      <Section title="Measurements" id="measurements">
+        {measurements.length > 0 ? (
+          <MeasurementRows
+            measurements={measurements}
+            observable={observable}
+            facilities={document.facilities}
+          />
+        ) : (
+          <Empty title="None yet.">
+            <p className="mb-3">An observer posts the first; the page moves by itself then.</p>
+            <ButtonLink href={`/campaigns/${document.campaign.key}/post`}>
+              Post measurements
+            </ButtonLink>
+          </Empty>
+        )}
+      </Section>
     </>
   );
 }

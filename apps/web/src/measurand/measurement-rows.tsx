@@ -46,7 +46,7 @@ export function MeasurementRows(props: {
           <td data-label="Posted">
             {measurement.postedAt ? <Time at={measurement.postedAt} /> : null}
           </td>
-          <td data-label="Id">
+          <td data-label="Id" className="min-w-[16ch]">
             <code>{measurement.id}</code>
           </td>
         </tr>

@@ -62,7 +62,7 @@ function Row({
 }: {
   hypothesis: RankedHypothesis;
   base: string;
-  tails: Record<"bayes" | "posterior" | "chi" | "p" | "evidence", number>;
+  tails: ReturnType<typeof columnTails>;
 }) {
   const { standing, at } = hypothesis;
   return (
@@ -82,7 +82,7 @@ function Row({
           <span className="ml-2 text-[13px] text-rust">failed a decisive prediction</span>
         ) : null}
       </th>
-      <td className="number" data-label="log₁₀ B against the leader">
+      <td className="number" data-label="log₁₀ B">
         <Num
           text={formatLog10B(standing.log10BayesFactor)}
           exact={standing.log10BayesFactor}
@@ -108,7 +108,7 @@ function Row({
             absent="nothing compared"
           />{" "}
           <span className="text-quiet">/</span>{" "}
-          <span className="inline-block min-w-[3ch] max-sm:min-w-0">
+          <span className="inline-block text-left" style={{ minWidth: `${tails.dof}ch` }}>
             <Num
               text={String(standing.degreesOfFreedom)}
               exact={standing.degreesOfFreedom}
@@ -166,7 +166,7 @@ function Counts({ standing, at }: { standing: RankedHypothesis["standing"]; at: 
     ...shownIfAny.filter(([verdict]) => standing.verdicts[verdict] > 0),
   ];
   return (
-    <span className="inline-flex flex-wrap gap-x-2.5">
+    <span className="inline-flex flex-wrap gap-x-2.5 min-[1101px]:flex-nowrap">
       {words.map(([verdict, word]) => (
         <span key={verdict} className="whitespace-nowrap">
           <Num
@@ -186,6 +186,7 @@ function columnTails(hypotheses: RankedHypothesis[]) {
   return {
     bayes: tailOf(standings.map((each) => formatLog10B(each.log10BayesFactor))),
     posterior: tailOf(standings.map((each) => formatPosterior(each.posterior))),
+    dof: Math.max(...standings.map((each) => String(each.degreesOfFreedom).length)),
     chi: tailOf(standings.map((each) => chiText(each.chiSquare))),
     p: tailOf(standings.map((each) => (each.pValue === null ? null : formatP(each.pValue)))),
     evidence: tailOf(

@@ -55,7 +55,7 @@ export async function StandingsView(props: { campaignKey: string; size: number |
           <Notice>Newer entries are being scored; this is the last state before them.</Notice>
         </output>
       ) : null}
-      <Section title="The beam" gloss={<>log₁₀ Bayes factor against the leader</>} id="beam">
+      <Section title="The beam" id="beam">
         {hypotheses.length > 0 ? (
           <Beam view={beamView(standings, hypotheses)} />
         ) : (
@@ -95,7 +95,11 @@ export async function StandingsView(props: { campaignKey: string; size: number |
           <NoQuantity view={view} base={base} />
         )}
       </Section>
-      <TimelineSection steps={steps} size={scored.size} hypotheses={hypotheses} />
+      <TimelineSection
+        steps={steps}
+        now={{ size: scored.size, at: view.at }}
+        hypotheses={hypotheses}
+      />
       {standings.pairs.length > 0 ? (
         <Section title="Pairs" gloss="where the two figures disagree, silence decides" id="pairs">
           <PairsTable

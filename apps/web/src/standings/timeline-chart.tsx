@@ -2,7 +2,7 @@
 
 import { formatNumber } from "@weighhouse/figures/numbers";
 import { formatLnEvidence } from "@weighhouse/figures/standing-numbers";
-import { formatDate, formatTime } from "@weighhouse/figures/times";
+import { formatTime } from "@weighhouse/figures/times";
 import { useMemo, useState } from "react";
 import {
   CartesianGrid,
@@ -14,6 +14,7 @@ import {
   YAxis,
 } from "recharts";
 import type { TooltipContentProps } from "recharts";
+import { linearTicks, timeTicks } from "@/look/axis-ticks";
 import { inkOf } from "@/look/hypothesis-mark";
 import type { TimelineRow } from "./timeline-rows";
 
@@ -36,6 +37,11 @@ export function TimelineChart(props: { rows: TimelineRow[]; series: Series[] }) 
       })),
     [props.rows, axis],
   );
+  const [first, last] = [rows[0]?.x ?? 0, rows.at(-1)?.x ?? 0];
+  const along =
+    axis === "time"
+      ? timeTicks(first, last, 6)
+      : { ticks: linearTicks(first, last).filter(Number.isInteger), text: String };
   return (
     <>
       <fieldset className="no-print mb-1 flex flex-wrap gap-4 text-[14px] text-quiet">
@@ -65,14 +71,11 @@ export function TimelineChart(props: { rows: TimelineRow[]; series: Series[] }) 
               dataKey="x"
               type="number"
               domain={["dataMin", "dataMax"]}
-              tickFormatter={(x: number) =>
-                axis === "time" ? formatDate(new Date(x).toISOString()) : String(x)
-              }
+              ticks={along.ticks}
+              tickFormatter={along.text}
               tick={{ fill: "var(--quiet)", fontSize: 12.5 }}
               stroke="var(--edge)"
-              minTickGap={32}
-              tickCount={6}
-              allowDecimals={false}
+              minTickGap={24}
             />
             <YAxis
               width={62}

@@ -9,10 +9,13 @@ export interface TimelineRow {
   values: Record<string, number | null>;
 }
 
-/** The timeline up to a size, as rows for the chart and for its table. */
-export function timelineRows(steps: readonly TimelineStep[], size: number): TimelineRow[] {
-  return steps
-    .filter((step) => step.size <= size)
+/** The timeline up to a size, as rows for the chart and for its table; the last lasts until then. */
+export function timelineRows(
+  steps: readonly TimelineStep[],
+  now: { size: number; at: string },
+): TimelineRow[] {
+  const rows = steps
+    .filter((step) => step.size <= now.size)
     .map((step) => ({
       time: Date.parse(step.at),
       at: step.at,
@@ -20,6 +23,10 @@ export function timelineRows(steps: readonly TimelineStep[], size: number): Time
       movedBy: movedByText(step.movedBy),
       values: Object.fromEntries(step.points.map((point) => [point.hypothesis, point.lnEvidence])),
     }));
+  const last = rows.at(-1);
+  if (last === undefined || last.size >= now.size) return rows;
+  const time = Date.parse(now.at);
+  return [...rows, { ...last, ...now, time, movedBy: "still so: later entries moved nothing" }];
 }
 
 /** What a step was moved by: `2 measurements from sobral`, `a hypothesis registered`. */

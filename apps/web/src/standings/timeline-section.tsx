@@ -11,10 +11,10 @@ import type { TimelineRow } from "./timeline-rows";
 /** ln evidence over time: the chart, and the same as a table for those who read or hear it. */
 export function TimelineSection(props: {
   steps: readonly TimelineStep[];
-  size: number;
+  now: { size: number; at: string };
   hypotheses: RankedHypothesis[];
 }) {
-  const rows = timelineRows(props.steps, props.size);
+  const rows = timelineRows(props.steps, props.now);
   return (
     <Section title="ln evidence over time" gloss="in steps, at what moved it" id="timeline">
       {rows.length > 0 ? (
