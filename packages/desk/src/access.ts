@@ -43,9 +43,12 @@ export async function enter(
 /** Refuses what the table allows only on one's own team's things, where `of` is another team. */
 export function requireOwnTeam(access: Access, action: Action, of: string | null): void {
   if (may(access.role, action, { own: access.team, of })) return;
-  const own = access.team === null ? "no team" : `the team ${access.team}`;
-  const found = of === null ? "no team" : `the team ${of}`;
-  throw new DeskError("not-allowed", `found ${action} for ${found}; allowed for ${own}`);
+  const named = (team: string | null) => (team === null ? "no team" : `the team ${team}`);
+  const allowed =
+    access.role === "member" && access.team === null
+      ? "to members of a team"
+      : `for ${named(access.team)}`;
+  throw new DeskError("not-allowed", `found ${action} for ${named(of)}; allowed ${allowed}`);
 }
 
 /** The actor, where an account is needed and no campaign is concerned yet. */

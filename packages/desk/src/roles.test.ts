@@ -58,6 +58,13 @@ describe("the table of roles", () => {
     expect(may(role, action, { own: null, of: "b" })).toBe(cell === "yes");
   });
 
+  it("gives a member of no team nothing that is a team's, nor anything that is of no team", () => {
+    for (const action of actions.filter((each) => permission("member", each) === "own-team")) {
+      expect(may("member", action, { own: null, of: null })).toBe(false);
+      expect(may("coordinator", action, { own: null, of: null })).toBe(true);
+    }
+  });
+
   it("has no action that this test doesn't know", () => {
     expect(Object.keys(stated).sort()).toEqual([...actions].sort());
   });
