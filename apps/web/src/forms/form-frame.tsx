@@ -98,11 +98,26 @@ export function Tick({
   );
 }
 
-/** Fields side by side where there is room, one below the other where there is none. */
+/**
+ * Fields side by side where there is room, one below the other where there is none. Labels, help,
+ * boxes and errors of one row share four lines (a subgrid), so that boxes stay level.
+ */
 export function FieldRow({ children }: { children: ReactNode }) {
+  return <div className={fieldRow}>{children}</div>;
+}
+
+const fieldRow = [
+  "grid gap-x-5 sm:grid-cols-[repeat(auto-fit,minmax(200px,1fr))]",
+  "sm:*:row-span-4 sm:*:grid sm:*:grid-rows-subgrid",
+  "sm:[&>div>label]:row-start-1 sm:[&>div>[id$='-help']]:row-start-2",
+  "sm:[&>div>:is(input,select,textarea,button)]:row-start-3 sm:[&>div>[id$='-error']]:row-start-4",
+].join(" ");
+
+/** A button in a row of fields, level with their boxes. */
+export function FieldRowButton(props: ComponentProps<typeof Button>) {
   return (
-    <div className="grid items-end gap-x-5 sm:grid-cols-[repeat(auto-fit,minmax(200px,1fr))]">
-      {children}
+    <div className="mb-3.5">
+      <Button {...props} />
     </div>
   );
 }

@@ -21,7 +21,7 @@ test("content that the server's schema accepts comes out as the server reads it"
 test("each problem stands at the field that its content came from", async () => {
   const issues = (await schema.safeParseAsync({ name: "", sd: "" })).error?.issues ?? [];
   expect(issues.map((issue) => issue.path.join("."))).toEqual(["name", "sd"]);
-  expect(issues[0]?.message).toBe("Empty: allowed is a text of at least 1 characters.");
+  expect(issues[0]?.message).toBe("Empty; allowed is a text of at least 1 characters.");
 });
 
 test("what only the campaign shows is asked once the schema is content, and stands at its field", async () => {
@@ -39,7 +39,7 @@ test("what only the campaign shows is asked once the schema is content, and stan
   expect((await strict.safeParseAsync({ sd: "" })).success).toBe(false);
   expect(further).not.toHaveBeenCalled();
   const issue = (await strict.safeParseAsync({ sd: "2" })).error?.issues[0];
-  expect(issue).toMatchObject({ path: ["sd"], message: "Found 2: allowed is below 1." });
+  expect(issue).toMatchObject({ path: ["sd"], message: "Found 2; allowed is below 1." });
 });
 
 test("a JSON Pointer is taken apart as RFC 6901 says", () => {

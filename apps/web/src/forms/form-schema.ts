@@ -59,5 +59,5 @@ export function stepsOfPointer(pointer: string): (string | number)[] {
 /** What a problem says at its field: the place is plain there, so only found and allowed. */
 export function problemWords({ found, allowed }: Pick<Problem, "found" | "allowed">): string {
   const empty = found === '""' || found === "null" || found === "nothing";
-  return empty ? `Empty: allowed is ${allowed}.` : `Found ${found}: allowed is ${allowed}.`;
+  return empty ? `Empty; allowed is ${allowed}.` : `Found ${found}; allowed is ${allowed}.`;
 }

@@ -40,7 +40,7 @@ test("problems stand at their fields, and what has no field is listed with its p
   };
   const elsewhere = { ...problem, pointer: "/campaign", found: "closed", allowed: "an open one" };
   expect(placeProblems([problem, elsewhere] as never, options)).toEqual({
-    placed: [{ field: "weight", message: "Found -1: allowed is a number above 0." }],
-    loose: ["/campaign: Found closed: allowed is an open one."],
+    placed: [{ field: "weight", message: "Found -1; allowed is a number above 0." }],
+    loose: ["/campaign: Found closed; allowed is an open one."],
   });
 });

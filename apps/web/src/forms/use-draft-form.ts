@@ -39,6 +39,8 @@ export function useDraftForm<Values extends FieldValues, Content>(options: {
     defaultValues: defaults as DefaultValues<Values>,
     resolver: zodResolver(schema as never) as never,
     mode: "onTouched",
+    // An error that appears as a field is left would move the button that is just being pressed.
+    delayError: 400,
   });
   const [restoredFrom, setRestoredFrom] = useState<string | null>(null);
   const [notKept, setNotKept] = useState(false);

@@ -5,6 +5,7 @@ import { useState } from "react";
 import { Button } from "@/look/button";
 import { Notice } from "@/look/notice";
 import { useTRPCClient } from "@/trpc/client";
+import { FormBody } from "../form-body";
 import { Tick } from "../form-frame";
 import { refusalOf } from "../refusal";
 
@@ -28,7 +29,7 @@ export function CloseRegistration({ campaign }: { campaign: string }) {
     }
   };
   return (
-    <>
+    <FormBody>
       <Tick
         label="Close it for good, now"
         help="Whoever registers later is marked as filed after data and leaves the standings alone."
@@ -43,6 +44,6 @@ export function CloseRegistration({ campaign }: { campaign: string }) {
       <Button kind="grave" disabled={!sure || closing} onClick={() => void close()}>
         Close registration
       </Button>
-    </>
+    </FormBody>
   );
 }

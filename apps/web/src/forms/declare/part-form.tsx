@@ -5,6 +5,7 @@ import { useState, type ReactNode } from "react";
 import { FormProvider, type FieldValues } from "react-hook-form";
 import type { z } from "zod";
 import { Notice } from "@/look/notice";
+import { FormBody } from "../form-body";
 import { DraftNote, FailureNote, SendRow } from "../form-frame";
 import { useDraftForm } from "../use-draft-form";
 import { useSending } from "../use-sending";
@@ -58,10 +59,12 @@ export function PartForm<Values extends FieldValues, Content>(props: {
           void submit(event);
         }}
       >
-        <DraftNote draft={draft} />
-        {props.children}
-        <FailureNote failure={failure} />
-        <SendRow sending={sending} label={props.button} />
+        <FormBody>
+          <DraftNote draft={draft} />
+          {props.children}
+          <FailureNote failure={failure} />
+          <SendRow sending={sending} label={props.button} />
+        </FormBody>
         <output className="mt-2 block">
           {doneWords === null ? null : <Notice tone="good">{doneWords}</Notice>}
         </output>

@@ -24,8 +24,8 @@ export function ReferenceFields(props: { unit: string | null; spread: string | n
       </p>
       <FieldRow>
         <Choice label="Shape of the range" {...register("reference.family")}>
-          <option value="uniform">between two bounds, all alike</option>
-          <option value="normal">about a middle, normal</option>
+          <option value="uniform">between two bounds</option>
+          <option value="normal">normal, about a middle</option>
         </Choice>
         {family === "uniform" ? (
           <>
@@ -65,6 +65,7 @@ export function ReferenceFields(props: { unit: string | null; spread: string | n
         <Field
           label="Scatter of the range"
           gloss={props.spread ?? undefined}
+          help="0 if none."
           {...number}
           error={errors?.scatter?.message}
           {...register("reference.scatter")}

@@ -3,14 +3,19 @@
 import { useFieldArray, useFormContext } from "react-hook-form";
 import { Button } from "@/look/button";
 import { Field } from "@/look/field";
-import { FieldRow } from "../form-frame";
-import type { MeasurandDraft } from "./part-drafts";
+import { FieldRow, FieldRowButton } from "../form-frame";
+import type { MeasurandDraft, ThresholdDraft } from "./part-drafts";
 
 /** Values that matter to somebody: the standings give the probability of lying above each. */
 export function ThresholdFields({ unit }: { unit: string | null }) {
   const { register, control, formState } = useFormContext<MeasurandDraft>();
   const { fields, append, remove } = useFieldArray({ control, name: "thresholds" });
-  const errors = formState.errors.thresholds;
+  const { errors, touchedFields, submitCount } = formState;
+  // A new row is not at fault before somebody has been in it.
+  const wrong = (index: number, name: keyof ThresholdDraft) =>
+    submitCount > 0 || touchedFields.thresholds?.[index]?.[name]
+      ? errors.thresholds?.[index]?.[name]?.message
+      : undefined;
   return (
     <fieldset className="mb-3 min-w-0 border-t border-rule pt-3">
       <legend className="font-serif text-[16px] font-semibold">Thresholds</legend>
@@ -23,13 +28,13 @@ export function ThresholdFields({ unit }: { unit: string | null }) {
             <Field
               label="Threshold title"
               autoComplete="off"
-              error={errors?.[index]?.title?.message}
+              error={wrong(index, "title")}
               {...register(`thresholds.${index}.title`)}
             />
             <Field
               label="Threshold key"
               autoComplete="off"
-              error={errors?.[index]?.key?.message}
+              error={wrong(index, "key")}
               {...register(`thresholds.${index}.key`)}
             />
             <Field
@@ -37,12 +42,12 @@ export function ThresholdFields({ unit }: { unit: string | null }) {
               gloss={unit ?? undefined}
               inputMode="decimal"
               autoComplete="off"
-              error={errors?.[index]?.value?.message}
+              error={wrong(index, "value")}
               {...register(`thresholds.${index}.value`)}
             />
-            <Button className="mb-3.5" onClick={() => remove(index)}>
+            <FieldRowButton onClick={() => remove(index)}>
               Remove threshold {index + 1}
-            </Button>
+            </FieldRowButton>
           </FieldRow>
         </fieldset>
       ))}

@@ -8,6 +8,7 @@ import { z } from "zod";
 import { Button } from "@/look/button";
 import { Choice, Field, TextArea } from "@/look/field";
 import { useTRPCClient } from "@/trpc/client";
+import { FormBody } from "../form-body";
 import { DraftNote, FailureNote, FieldRow } from "../form-frame";
 import { problemWords } from "../form-schema";
 import { refusalOf, type Refusal } from "../refusal";
@@ -72,76 +73,78 @@ export function ImportForm() {
       aria-label="Import a campaign document"
       onSubmit={(event) => void run("previewing")(event)}
     >
-      <DraftNote draft={draft} />
-      <Field
-        label="Campaign document"
-        type="file"
-        accept=".json,application/json"
-        help="A JSON file in the format weighhouse-campaign/1. Its text appears below."
-        onChange={(event) => {
-          const file = event.target.files?.[0];
-          forget();
-          void file
-            ?.text()
-            .then((read) => setValue("text", read, { shouldDirty: true, shouldValidate: true }));
-        }}
-      />
-      <TextArea
-        label="Document as text"
-        help="Or paste it."
-        rows={10}
-        spellCheck={false}
-        wrap="off"
-        className="font-mono text-[13px]"
-        error={formState.errors.text?.message}
-        {...register("text", changed)}
-      />
-      <FieldRow>
+      <FormBody>
+        <DraftNote draft={draft} />
         <Field
-          label="Key here"
-          help="Empty: the document’s own key."
-          autoComplete="off"
-          error={
-            formState.errors.key?.message ??
-            (plan?.taken
-              ? `A campaign here has the key ${plan.key} already; choose another.`
-              : undefined)
-          }
-          {...register("key", changed)}
+          label="Campaign document"
+          type="file"
+          accept=".json,application/json"
+          help="A JSON file in the format weighhouse-campaign/1. Its text appears below."
+          onChange={(event) => {
+            const file = event.target.files?.[0];
+            forget();
+            void file
+              ?.text()
+              .then((read) => setValue("text", read, { shouldDirty: true, shouldValidate: true }));
+          }}
         />
-        <Choice
-          label="Seen by"
-          help="Who may read the standings and the ledger."
-          {...register("visibility", changed)}
-        >
-          <option value="public">everybody</option>
-          <option value="members">members only</option>
-        </Choice>
-      </FieldRow>
-      <Button kind={ready ? "plain" : "main"} type="submit" disabled={busy !== null}>
-        {busy === "previewing" ? "Reading the document…" : "Preview import"}
-      </Button>
-      {preview === null ? null : <ImportPreviewView preview={preview} />}
-      <div className="mt-3">
-        <FailureNote
-          failure={
-            refusal === null
-              ? null
-              : {
-                  message: refusal.message,
-                  signedOut: refusal.signedOut,
-                  loose: refusal.problems.map(
-                    (problem) => `${problem.pointer}: ${problemWords(problem)}`,
-                  ),
-                }
-          }
+        <TextArea
+          label="Document as text"
+          help="Or paste it."
+          rows={10}
+          spellCheck={false}
+          wrap="off"
+          className="font-mono text-[13px]"
+          error={formState.errors.text?.message}
+          {...register("text", changed)}
         />
-        {ready ? (
-          <Button kind="main" disabled={busy !== null} onClick={() => void run("importing")()}>
-            {busy === "importing" ? "Importing…" : "Import campaign"}
-          </Button>
-        ) : null}
-      </div>
+        <FieldRow>
+          <Field
+            label="Key here"
+            help="Empty: the document’s own key."
+            autoComplete="off"
+            error={
+              formState.errors.key?.message ??
+              (plan?.taken
+                ? `A campaign here has the key ${plan.key} already; choose another.`
+                : undefined)
+            }
+            {...register("key", changed)}
+          />
+          <Choice
+            label="Seen by"
+            help="Who may read the standings and the ledger."
+            {...register("visibility", changed)}
+          >
+            <option value="public">everybody</option>
+            <option value="members">members only</option>
+          </Choice>
+        </FieldRow>
+        <Button kind={ready ? "plain" : "main"} type="submit" disabled={busy !== null}>
+          {busy === "previewing" ? "Reading the document…" : "Preview import"}
+        </Button>
+        {preview === null ? null : <ImportPreviewView preview={preview} />}
+        <div className="mt-3">
+          <FailureNote
+            failure={
+              refusal === null
+                ? null
+                : {
+                    message: refusal.message,
+                    signedOut: refusal.signedOut,
+                    loose: refusal.problems.map(
+                      (problem) => `${problem.pointer}: ${problemWords(problem)}`,
+                    ),
+                  }
+            }
+          />
+          {ready ? (
+            <Button kind="main" disabled={busy !== null} onClick={() => void run("importing")()}>
+              {busy === "importing" ? "Importing…" : "Import campaign"}
+            </Button>
+          ) : null}
+        </div>
+      </FormBody>
     </form>
   );
 }

@@ -35,7 +35,7 @@ test("a count names only the fates that there are", () => {
 test("a refused row says its column, what was found and what is allowed", () => {
   const problems = [{ column: "sd", found: "-1", allowed: "a number above 0" }];
   expect(reasonsOf(row(2, "refused", { problems }))).toEqual([
-    "sd: Found -1: allowed is a number above 0.",
+    "sd: Found -1; allowed is a number above 0.",
   ]);
 });
 

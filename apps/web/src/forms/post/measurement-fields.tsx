@@ -4,7 +4,7 @@ import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { useFieldArray, useFormContext, useWatch } from "react-hook-form";
 import { Button } from "@/look/button";
 import { Choice, Field } from "@/look/field";
-import { FieldRow } from "../form-frame";
+import { FieldRow, FieldRowButton } from "../form-frame";
 import type { MeasurementDraft } from "./measurement-draft";
 
 const typed = { autoComplete: "off" } as const;
@@ -148,9 +148,9 @@ function SharedErrors({ document }: { document: CampaignDocument }) {
             error={errors?.[index]?.coefficient?.message}
             {...register(`shared.${index}.coefficient`)}
           />
-          <Button className="mb-3.5" onClick={() => remove(index)}>
+          <FieldRowButton onClick={() => remove(index)}>
             Remove shared error {index + 1}
-          </Button>
+          </FieldRowButton>
         </FieldRow>
       ))}
       <Button onClick={() => append({ error: first.key, coefficient: "1" })}>

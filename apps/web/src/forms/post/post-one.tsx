@@ -4,6 +4,7 @@ import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { useEffect, useMemo } from "react";
 import { FormProvider } from "react-hook-form";
 import { Button } from "@/look/button";
+import { FormBody } from "../form-body";
 import { DraftNote } from "../form-frame";
 import { formSchema } from "../form-schema";
 import { useDraftForm } from "../use-draft-form";
@@ -54,27 +55,29 @@ export function PostOne({ document }: { document: CampaignDocument }) {
         // What was previewed is no longer what stands in the form.
         onChange={() => (previewed === null ? undefined : posting.forget())}
       >
-        <DraftNote draft={draft} />
-        <PostedNote campaign={key} posted={posting.posted} />
-        <MeasurementFields document={document} />
-        <Button kind={previewed ? "plain" : "main"} type="submit" disabled={busy !== null}>
-          {busy === "previewing" ? "Looking…" : "Preview"}
-        </Button>
-        {previewed === null ? null : (
-          <PreviewView document={document} preview={previewed.preview} />
-        )}
-        <div className="mt-3">
-          <PostingRefused refusal={posting.refusal} />
-          {previewed?.preview.postable ? (
-            <Button
-              kind="main"
-              disabled={busy !== null}
-              onClick={() => void posting.post(draft.sent)}
-            >
-              {busy === "posting" ? "Posting…" : "Post measurement"}
-            </Button>
-          ) : null}
-        </div>
+        <FormBody>
+          <DraftNote draft={draft} />
+          <PostedNote campaign={key} posted={posting.posted} />
+          <MeasurementFields document={document} />
+          <Button kind={previewed ? "plain" : "main"} type="submit" disabled={busy !== null}>
+            {busy === "previewing" ? "Looking…" : "Preview"}
+          </Button>
+          {previewed === null ? null : (
+            <PreviewView document={document} preview={previewed.preview} />
+          )}
+          <div className="mt-3">
+            <PostingRefused refusal={posting.refusal} />
+            {previewed?.preview.postable ? (
+              <Button
+                kind="main"
+                disabled={busy !== null}
+                onClick={() => void posting.post(draft.sent)}
+              >
+                {busy === "posting" ? "Posting…" : "Post measurement"}
+              </Button>
+            ) : null}
+          </div>
+        </FormBody>
       </form>
     </FormProvider>
   );

@@ -6,6 +6,7 @@ import { useWatch } from "react-hook-form";
 import { z } from "zod";
 import { Button } from "@/look/button";
 import { Choice, Field, TextArea } from "@/look/field";
+import { FormBody } from "../form-body";
 import { DraftNote, FieldRow } from "../form-frame";
 import { useDraftForm } from "../use-draft-form";
 import { postLabel } from "./fates";
@@ -47,67 +48,71 @@ export function PostTable({ document }: { document: CampaignDocument }) {
   const { previewed, busy } = posting;
   return (
     <form noValidate aria-label="Post a table" onSubmit={(event) => void submit(event)}>
-      <DraftNote draft={draft} />
-      <PostedNote campaign={key} posted={posting.posted} />
-      <ColumnHelp document={document} />
-      <Field
-        label="CSV file"
-        type="file"
-        accept=".csv,text/csv,text/plain"
-        help="Read here in the browser; its rows appear below."
-        onChange={(event) => {
-          const file = event.target.files?.[0];
-          posting.forget();
-          void file
-            ?.text()
-            .then((read) => setValue("text", read, { shouldDirty: true, shouldValidate: true }));
-        }}
-      />
-      <TextArea
-        label="Rows"
-        gloss={lines > 1 ? `${lines - 1} below the header` : undefined}
-        help="Or paste them, with the header line first."
-        rows={8}
-        spellCheck={false}
-        wrap="off"
-        className="font-mono text-[13px]"
-        error={formState.errors.text?.message}
-        {...register("text", changed)}
-      />
-      <FieldRow>
-        <Choice label="Quantity of rows that name none" {...register("measurand", changed)}>
-          <option value="">every row names its own</option>
-          {document.measurands.map((measurand) => (
-            <option key={measurand.key} value={measurand.key}>
-              {measurand.title}
-            </option>
-          ))}
-        </Choice>
-        <Choice label="Facility of rows that name none" {...register("facility", changed)}>
-          <option value="">every row names its own</option>
-          {document.facilities.map((facility) => (
-            <option key={facility.key} value={facility.key}>
-              {facility.title}
-            </option>
-          ))}
-        </Choice>
-      </FieldRow>
-      <Button kind={previewed ? "plain" : "main"} type="submit" disabled={busy !== null}>
-        {busy === "previewing" ? "Reading the rows…" : "Preview rows"}
-      </Button>
-      {previewed === null ? null : <PreviewView document={document} preview={previewed.preview} />}
-      <div className="mt-3">
-        <PostingRefused refusal={posting.refusal} />
-        {previewed?.preview.postable ? (
-          <Button
-            kind="main"
-            disabled={busy !== null}
-            onClick={() => void posting.post(draft.sent)}
-          >
-            {busy === "posting" ? "Posting…" : postLabel(previewed.preview.counts.new)}
-          </Button>
-        ) : null}
-      </div>
+      <FormBody>
+        <DraftNote draft={draft} />
+        <PostedNote campaign={key} posted={posting.posted} />
+        <ColumnHelp document={document} />
+        <Field
+          label="CSV file"
+          type="file"
+          accept=".csv,text/csv,text/plain"
+          help="Read here in the browser; its rows appear below."
+          onChange={(event) => {
+            const file = event.target.files?.[0];
+            posting.forget();
+            void file
+              ?.text()
+              .then((read) => setValue("text", read, { shouldDirty: true, shouldValidate: true }));
+          }}
+        />
+        <TextArea
+          label="Rows"
+          gloss={lines > 1 ? `${lines - 1} below the header` : undefined}
+          help="Or paste them, with the header line first."
+          rows={8}
+          spellCheck={false}
+          wrap="off"
+          className="font-mono text-[13px]"
+          error={formState.errors.text?.message}
+          {...register("text", changed)}
+        />
+        <FieldRow>
+          <Choice label="Quantity of rows that name none" {...register("measurand", changed)}>
+            <option value="">every row names its own</option>
+            {document.measurands.map((measurand) => (
+              <option key={measurand.key} value={measurand.key}>
+                {measurand.title}
+              </option>
+            ))}
+          </Choice>
+          <Choice label="Facility of rows that name none" {...register("facility", changed)}>
+            <option value="">every row names its own</option>
+            {document.facilities.map((facility) => (
+              <option key={facility.key} value={facility.key}>
+                {facility.title}
+              </option>
+            ))}
+          </Choice>
+        </FieldRow>
+        <Button kind={previewed ? "plain" : "main"} type="submit" disabled={busy !== null}>
+          {busy === "previewing" ? "Reading the rows…" : "Preview rows"}
+        </Button>
+        {previewed === null ? null : (
+          <PreviewView document={document} preview={previewed.preview} />
+        )}
+        <div className="mt-3">
+          <PostingRefused refusal={posting.refusal} />
+          {previewed?.preview.postable ? (
+            <Button
+              kind="main"
+              disabled={busy !== null}
+              onClick={() => void posting.post(draft.sent)}
+            >
+              {busy === "posting" ? "Posting…" : postLabel(previewed.preview.counts.new)}
+            </Button>
+          ) : null}
+        </div>
+      </FormBody>
     </form>
   );
 }

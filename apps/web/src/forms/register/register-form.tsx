@@ -8,6 +8,7 @@ import { FormProvider } from "react-hook-form";
 import { Button } from "@/look/button";
 import { useTRPCClient } from "@/trpc/client";
 import { problemsInCampaign } from "../check-in-campaign";
+import { FormBody } from "../form-body";
 import { DraftNote, FailureNote, SendRow } from "../form-frame";
 import { formSchema } from "../form-schema";
 import { useDraftForm } from "../use-draft-form";
@@ -87,34 +88,36 @@ export function RegisterForm(props: {
   return (
     <FormProvider {...form}>
       <form onSubmit={(event) => void submit(event)} noValidate aria-label="Register a hypothesis">
-        <DraftNote draft={draft} />
-        <Steps current={step} go={go} />
-        {step === "statement" ? (
-          <StatementStep document={document} registrant={registrant} amending={amending !== null}>
-            <Button kind="main" onClick={() => void goOn("predictions")}>
-              Continue to predictions
-            </Button>
-          </StatementStep>
-        ) : null}
-        {step === "predictions" ? (
-          <PredictionsStep document={document}>
-            <Button kind="main" onClick={() => void goOn("review")}>
-              Continue to review
-            </Button>
-            <Button onClick={() => go("statement")}>Back to the statement</Button>
-          </PredictionsStep>
-        ) : null}
-        {step === "review" ? (
-          <ReviewStep document={document} registrant={registrant} amending={amending} go={go}>
-            <FailureNote failure={failure} />
-            <SendRow
-              sending={sending}
-              label={amending === null ? "Register hypothesis" : "Register new version"}
-            >
-              <Button onClick={() => go("predictions")}>Back to predictions</Button>
-            </SendRow>
-          </ReviewStep>
-        ) : null}
+        <FormBody>
+          <DraftNote draft={draft} />
+          <Steps current={step} go={go} />
+          {step === "statement" ? (
+            <StatementStep document={document} registrant={registrant} amending={amending !== null}>
+              <Button kind="main" onClick={() => void goOn("predictions")}>
+                Continue to predictions
+              </Button>
+            </StatementStep>
+          ) : null}
+          {step === "predictions" ? (
+            <PredictionsStep document={document}>
+              <Button kind="main" onClick={() => void goOn("review")}>
+                Continue to review
+              </Button>
+              <Button onClick={() => go("statement")}>Back to the statement</Button>
+            </PredictionsStep>
+          ) : null}
+          {step === "review" ? (
+            <ReviewStep document={document} registrant={registrant} amending={amending} go={go}>
+              <FailureNote failure={failure} />
+              <SendRow
+                sending={sending}
+                label={amending === null ? "Register hypothesis" : "Register new version"}
+              >
+                <Button onClick={() => go("predictions")}>Back to predictions</Button>
+              </SendRow>
+            </ReviewStep>
+          ) : null}
+        </FormBody>
       </form>
     </FormProvider>
   );
