@@ -1,5 +1,6 @@
 import { connect } from "@weighhouse/store/open-store";
 import type { Store } from "@weighhouse/store/open-store";
+import { SCORE_TASK } from "@weighhouse/store/scoring-queue";
 
 /** First half of the advisory locks by which scorers show that they live. */
 const SCORERS = 7_205_513;
@@ -29,7 +30,7 @@ export async function watchScorers(
       const [lock] = await sql<{ free: boolean }[]>`
         select pg_try_advisory_lock(${SCORERS}, hashtext(${id})) as free`;
       if (lock?.free !== true) continue;
-      await sql`select graphile_worker.force_unlock_workers(array[${id}]::text[])`;
+      await freeJobs(sql, id);
       await sql`select pg_advisory_unlock(${SCORERS}, hashtext(${id}))`;
       store.log.warn({ scorer: id }, "freed the job of a scorer that is gone");
     }
@@ -43,7 +44,19 @@ export async function watchScorers(
     join,
     async leave() {
       clearInterval(timer);
+      // The queue's stop can leave a job locked that it had just taken.
+      for (const poolId of own) await freeJobs(sql, poolId);
       await sql.end({ timeout: 5 });
     },
   };
+}
+
+/** Gives back what a scorer holds; a job without a key was superseded by a newer one and is dropped. */
+async function freeJobs(sql: Store["sql"], poolId: string): Promise<void> {
+  await sql`select graphile_worker.force_unlock_workers(array[${poolId}]::text[])`;
+  await sql`
+    select graphile_worker.complete_jobs(array(
+      select id from graphile_worker.jobs
+      where task_identifier = ${SCORE_TASK} and key is null and locked_at is null
+    ))`;
 }

@@ -5,7 +5,7 @@ import { queueScoring, queueUnscored, SCORE_TASK } from "@weighhouse/store/scori
 import { StoreError } from "@weighhouse/store/store-error";
 import { workerLogger } from "@weighhouse/store/worker-logger";
 import { run } from "graphile-worker";
-import type { JobHelpers, WorkerEvents } from "graphile-worker";
+import type { WorkerEvents } from "graphile-worker";
 import { watchScorers } from "./living-scorers";
 import { scoreCampaign } from "./score-campaign";
 
@@ -22,6 +22,7 @@ export type ScorerOptions = {
 export async function runScorer(store: Store, options: ScorerOptions = {}): Promise<RunningScorer> {
   const { concurrency = 1, everyMs = 10_000 } = options;
   const watch = await watchScorers(store, { everyMs });
+  let stopping = false;
   const events = new EventEmitter() as WorkerEvents;
   events.on("pool:create", ({ workerPool }) => {
     watch
@@ -35,7 +36,7 @@ export async function runScorer(store: Store, options: ScorerOptions = {}): Prom
     noHandleSignals: true,
     logger: workerLogger(store.log),
     events,
-    taskList: { [SCORE_TASK]: (payload, helpers) => scoreTask(store, payload, helpers) },
+    taskList: { [SCORE_TASK]: (payload) => scoreTask(store, payload, () => stopping) },
   });
   await queueUnscored(store, ENGINE_VERSION);
   const timer = setInterval(() => {
@@ -46,6 +47,7 @@ export async function runScorer(store: Store, options: ScorerOptions = {}): Prom
   return {
     ended: runner.promise,
     async stop() {
+      stopping = true;
       clearInterval(timer);
       await runner.stop();
       await watch.leave();
@@ -53,11 +55,10 @@ export async function runScorer(store: Store, options: ScorerOptions = {}): Prom
   };
 }
 
-async function scoreTask(store: Store, payload: unknown, helpers: JobHelpers): Promise<void> {
+async function scoreTask(store: Store, payload: unknown, stopping: () => boolean): Promise<void> {
   const { campaign } = payload as { campaign: string };
   const from = performance.now();
   try {
-    const stopping = () => helpers.abortSignal.aborted;
     const done = await scoreCampaign(store, campaign, stopping);
     if (!done) await queueScoring(store.sql, campaign);
   } catch (error) {
