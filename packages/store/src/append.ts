@@ -2,9 +2,10 @@ import { changesOf } from "@weighhouse/campaign/changes";
 import type { EntryKind } from "@weighhouse/campaign/entries";
 import type { Entry } from "@weighhouse/ledger/entry";
 import type { Queries } from "./queries";
+import type { Clock } from "./clock";
 import { extendLedger } from "./extend-ledger";
+import type { WriteInput } from "./extend-ledger";
 import { lockTip } from "./lock-tip";
-import type { Tip } from "./lock-tip";
 import type { Store } from "./open-store";
 import { preparePayload } from "./prepare-payload";
 import type { PreparedPayload } from "./prepare-payload";
@@ -13,8 +14,7 @@ import { Projector } from "./projector";
 import { queueScoring } from "./scoring-queue";
 import { StoreError } from "./store-error";
 
-/** Returns an instant, `2031-03-01T00:00:00.000000Z`. Only tests and the demo pass one. */
-export type Clock = () => string;
+export type { Clock } from "./clock";
 
 export type NewEntry = { kind: EntryKind; payload: unknown };
 
@@ -60,13 +60,6 @@ export async function appendEntries(store: Store, input: AppendInput): Promise<A
     return writeEntries(store, tx, { tip, by: input.by, payloads, clock: input.clock });
   }) as Promise<Appended>;
 }
-
-export type WriteInput = {
-  tip: Tip;
-  by: Entry["by"];
-  payloads: PreparedPayload[];
-  clock: Clock | undefined;
-};
 
 /** The rest of an append, once the tip is locked. Statements that need no answer go out together. */
 export async function writeEntries(

@@ -6,12 +6,19 @@ import { appendLeaf, rootOf } from "@weighhouse/ledger/tree";
 import type { Edge, TreeNode } from "@weighhouse/ledger/tree";
 import { formatTreeHead, signTreeHead } from "@weighhouse/ledger/tree-head";
 import type { Queries } from "./queries";
-import type { WriteInput } from "./append";
+import type { Clock } from "./clock";
 import { instantOfMicros, microsOfInstant } from "./instant";
 import type { Tip } from "./lock-tip";
 import type { Store } from "./open-store";
 import type { PreparedPayload } from "./prepare-payload";
 import { StoreError } from "./store-error";
+
+export type WriteInput = {
+  tip: Tip;
+  by: Entry["by"];
+  payloads: PreparedPayload[];
+  clock: Clock | undefined;
+};
 
 export type Extended = {
   entries: Entry[];
