@@ -46,6 +46,9 @@ export function createAuth({ store, origin, secret }: AuthOptions) {
       cookiePrefix: "weighhouse",
       // A Secure cookie never comes back over plain HTTP, as on a laptop or in a local network.
       useSecureCookies: origin.startsWith("https://"),
+      // Said outright: by default the library leaves both checks out where NODE_ENV is "test".
+      disableOriginCheck: false,
+      disableCSRFCheck: false,
       defaultCookieAttributes: { httpOnly: true, sameSite: "lax", path: "/" },
     },
     telemetry: { enabled: false },

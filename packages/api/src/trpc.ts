@@ -17,7 +17,8 @@ const trpc = initTRPC.context<Context>().create({
     // What nobody foresaw is logged where it happened; its words may hold what is nobody's business.
     const message =
       refused || error.code !== "INTERNAL_SERVER_ERROR" ? shape.message : "Internal error";
-    return { ...shape, message, data: { ...shape.data, stack: undefined, refusal } };
+    const { stack: _, ...data } = shape.data;
+    return { ...shape, message, data: { ...data, refusal } };
   },
   sse: {
     ping: { enabled: true, intervalMs: 15_000 },

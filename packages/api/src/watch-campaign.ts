@@ -18,37 +18,70 @@ export function eventId({ size, what }: Pick<StoreEvent, "size" | "what">): stri
 /**
  * What happens to a campaign, first how it stands now unless the watcher has seen that. Ends when
  * the watcher goes or the process is told to stop.
+ *
+ * @throws {DeskError} when the actor may not read the campaign
  */
-export async function* watchCampaign(
+export async function watchCampaign(
   ctx: Context,
-  input: WatchInput,
+  { key, lastEventId }: WatchInput,
   leaving: AbortSignal | undefined,
-): AsyncGenerator<StoreEvent> {
-  const stop = AbortSignal.any([closing.signal, ...(leaving ? [leaving] : [])]);
+): Promise<AsyncGenerator<StoreEvent>> {
   // Whether the actor may watch is asked before anything is listened to.
-  await readProgress(ctx.desk, ctx.actor, { key: input.key });
-  let newest: StoreEvent | null = null;
-  let wake = () => {};
-  const unwatch = await hubOf(ctx.desk.store).watch(input.key, (event) => {
-    newest = event;
-    wake();
-  });
-  stop.addEventListener("abort", () => wake());
+  await readProgress(ctx.desk, ctx.actor, { key });
+  const stop = AbortSignal.any([closing.signal, ...(leaving ? [leaving] : [])]);
+  const latest = new Latest();
+  stop.addEventListener("abort", () => latest.wake());
+  const unwatch = await hubOf(ctx.desk.store).watch(key, (event) => latest.put(event));
+  // Read after listening has begun, so that nothing falls between the two.
+  const { size, scoredSize } = await readProgress(ctx.desk, ctx.actor, { key });
+  const now = { campaign: key, size, what: scoredSize === size ? "scored" : "appended" } as const;
+  return follow(latest, { now, seen: lastEventId ?? null, stop, unwatch });
+}
+
+async function* follow(
+  latest: Latest,
+  watch: { now: StoreEvent; seen: string | null; stop: AbortSignal; unwatch: () => void },
+): AsyncGenerator<StoreEvent> {
+  let { seen } = watch;
+  let event: StoreEvent | null = watch.now;
   try {
-    // Read after listening has begun, so that nothing falls between the two.
-    const { size, scoredSize } = await readProgress(ctx.desk, ctx.actor, { key: input.key });
-    newest ??= { campaign: input.key, size, what: scoredSize === size ? "scored" : "appended" };
-    let seen = input.lastEventId ?? null;
-    while (!stop.aborted) {
-      const event: StoreEvent | null = newest;
-      newest = null;
-      if (event === null) await new Promise<void>((resolve) => (wake = resolve));
-      else if (eventId(event) !== seen) {
+    while (!watch.stop.aborted) {
+      if (event !== null && eventId(event) !== seen) {
         seen = eventId(event);
         yield event;
       }
+      event = latest.take();
+      if (event === null) await latest.news();
     }
   } finally {
-    unwatch();
+    watch.unwatch();
+  }
+}
+
+/** Holds the newest event until it is taken; what came before it is in it. */
+class Latest {
+  #event: StoreEvent | null = null;
+  #wake = () => {};
+
+  put(event: StoreEvent): void {
+    this.#event = event;
+    this.#wake();
+  }
+
+  take(): StoreEvent | null {
+    const event = this.#event;
+    this.#event = null;
+    return event;
+  }
+
+  wake(): void {
+    this.#wake();
+  }
+
+  /** Resolves when there is something to take, or `wake` was called. */
+  news(): Promise<void> {
+    return new Promise((resolve) => {
+      this.#wake = resolve;
+    });
   }
 }

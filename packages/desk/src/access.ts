@@ -2,11 +2,11 @@ import { findCampaign } from "@weighhouse/store/campaigns";
 import type { CampaignRow, Visibility } from "@weighhouse/store/campaigns";
 import { findMembership } from "@weighhouse/store/members";
 import type { Membership } from "@weighhouse/store/members";
+import { StoreError } from "@weighhouse/store/store-error";
 import type { Actor, Desk } from "./desk";
 import { DeskError } from "./desk-error";
 import { may, permission } from "./roles";
 import type { Action, Role } from "./roles";
-import { onStore } from "./store-refusals";
 
 /** An actor's place in one campaign. */
 export type Access = {
@@ -31,7 +31,7 @@ export async function enter(
   campaignKey: string,
   action: Action,
 ): Promise<Access> {
-  const campaign = await onStore(() => findCampaign(desk.store, campaignKey));
+  const campaign = await campaignOf(desk, campaignKey);
   const place =
     actor && (await findMembership(desk.store, { campaign: campaignKey, userId: actor.userId }));
   const role = roleOf(actor, campaign.visibility, place);
@@ -61,6 +61,16 @@ export function roleOf(actor: Actor, visibility: Visibility, place: Membership |
   if (place) return place.role;
   if (visibility === "public") return "reader";
   return actor ? "account" : "visitor";
+}
+
+/** In the same words as for one that is hidden, or the words would tell the two apart. */
+async function campaignOf(desk: Desk, key: string): Promise<CampaignRow> {
+  try {
+    return await findCampaign(desk.store, key);
+  } catch (error) {
+    if (error instanceof StoreError && error.code === "no-such-campaign") throw noSuchCampaign(key);
+    throw error;
+  }
 }
 
 function noSuchCampaign(key: string): DeskError {

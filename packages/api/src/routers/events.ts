@@ -1,5 +1,6 @@
 import * as z from "zod";
 import { tracked } from "@trpc/server";
+import type { StoreEvent } from "@weighhouse/store/listen";
 import { eventId, watchCampaign } from "../watch-campaign";
 import { procedure, router } from "../trpc";
 
@@ -7,9 +8,13 @@ import { procedure, router } from "../trpc";
 const watchInput = z.object({ key: z.string(), lastEventId: z.string().nullish() });
 
 export const eventsRouter = router({
-  watch: procedure.input(watchInput).subscription(async function* ({ ctx, input, signal }) {
-    for await (const event of watchCampaign(ctx, input, signal)) {
-      yield tracked(eventId(event), event);
-    }
+  // The watch begins, or is refused, before the stream: so the refusal gets its own code.
+  watch: procedure.input(watchInput).subscription(async ({ ctx, input, signal }) => {
+    const events = await watchCampaign(ctx, input, signal);
+    return trackedEvents(events);
   }),
 });
+
+async function* trackedEvents(events: AsyncIterable<StoreEvent>) {
+  for await (const event of events) yield tracked(eventId(event), event);
+}
