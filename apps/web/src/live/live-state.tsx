@@ -13,6 +13,8 @@ const words: Record<StreamState, string> = {
   lost: "not live: reload to see what is new",
 };
 
+const SCORED_WITHIN_MS = 400;
+
 /**
  * Keeps the page it stands on at the campaign's newest state: each event makes the server's part
  * of the page be asked for again, without a reload. Says since when nothing has come.
@@ -29,11 +31,14 @@ export function LiveState(props: {
   const [state, setState] = useState<StreamState>("connecting");
   const since = useSecondsSince(props.at);
 
+  const waiting = useRef<ReturnType<typeof setTimeout>>(undefined);
   const onEvent = useEffectEvent((event: CampaignEvent) => {
-    const news =
-      event.size > shown.size ||
-      (event.size === shown.size && event.what === "scored" && !shown.scored);
-    if (news) refresh();
+    const scored = event.what === "scored";
+    if (event.size < shown.size || (event.size === shown.size && (shown.scored || !scored))) return;
+    clearTimeout(waiting.current);
+    if (scored) refresh();
+    // Scoring mostly follows at once: then the page is asked for once, not twice.
+    else waiting.current = setTimeout(refresh, SCORED_WITHIN_MS);
   });
   useEffect(
     () => followCampaign(client, campaignKey, { onState: setState, onEvent }),

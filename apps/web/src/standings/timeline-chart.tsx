@@ -40,7 +40,7 @@ export function TimelineChart(props: { rows: TimelineRow[]; series: Series[] }) 
   const [first, last] = [rows[0]?.x ?? 0, rows.at(-1)?.x ?? 0];
   const along =
     axis === "time"
-      ? timeTicks(first, last, 6)
+      ? timeTicks(first, Math.max(last, first + 1), 6)
       : { ticks: linearTicks(first, last).filter(Number.isInteger), text: String };
   return (
     <>
