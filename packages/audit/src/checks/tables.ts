@@ -1,10 +1,10 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { Standings } from "@weighhouse/campaign/standings";
-import { readRecords } from "@weighhouse/tables/records";
 import { writeCsv } from "@weighhouse/tables/write-csv";
 import type { CsvCell } from "@weighhouse/tables/write-csv";
 import { readText } from "./archive-text";
 import type { Files } from "./container";
+import { readCells } from "./csv-cells";
 import { counted, judged } from "./line";
 import type { CheckLine } from "./line";
 import { tablePath } from "../layout";
@@ -28,15 +28,13 @@ function tableFaults(files: Files, table: ArchiveTable): string[] {
   const read = readText(files, path);
   if (!read.ok) return [read.fault];
   if (read.text === writeCsv(table.header, table.rows)) return [];
-  const parsed = readRecords(read.text);
-  if (parsed.problems.length > 0) {
-    return parsed.problems.map(({ line, found }) => `${path}, line ${line ?? "?"}: found ${found}`);
-  }
+  const records = readCells(read.text);
+  if (typeof records === "string") return [`${path}, ${records}`];
   const expected: readonly (readonly CsvCell[])[] = [table.header, ...table.rows];
-  if (parsed.records.length !== expected.length) {
-    return [`${path}: found ${parsed.records.length - 1} rows, allowed ${table.rows.length}`];
+  if (records.length !== expected.length) {
+    return [`${path}: found ${records.length - 1} rows, computed ${table.rows.length}`];
   }
-  return parsed.records.flatMap(({ line, cells }, index) => {
+  return records.flatMap(({ line, cells }, index) => {
     const row = expected[index] as readonly CsvCell[];
     if (cells.length !== row.length) {
       return [`${path}, line ${line}: found ${cells.length} cells, allowed ${row.length}`];
@@ -51,8 +49,7 @@ function tableFaults(files: Files, table: ArchiveTable): string[] {
   });
 }
 
-/** The reader trims cells, so texts are compared trimmed. */
 function sameCell(found: string, cell: CsvCell): boolean {
   if (typeof cell === "number") return found !== "" && Number(found) === cell;
-  return found === String(cell ?? "").trim();
+  return found === String(cell ?? "");
 }
