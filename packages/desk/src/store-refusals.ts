@@ -20,7 +20,6 @@ const meanings: Record<StoreErrorCode, DeskErrorCode | null> = {
   "owner-runs": null,
   "not-migrated": null,
   "ledger-broken": null,
-  "member-exists": "conflict",
   "no-such-member": "not-found",
   "embedded-failed": null,
 };

@@ -1,5 +1,5 @@
 import { randomBytes } from "node:crypto";
-import { existsSync, mkdirSync, readFileSync, writeFileSync } from "node:fs";
+import { chmodSync, existsSync, mkdirSync, readFileSync, writeFileSync } from "node:fs";
 import { homedir } from "node:os";
 import path from "node:path";
 import { setTimeout as sleep } from "node:timers/promises";
@@ -51,6 +51,11 @@ export function defaultHome(): string {
 export async function startEmbeddedPostgres(options: EmbeddedOptions): Promise<EmbeddedPostgres> {
   const home = path.resolve(options.home);
   const folder = path.join(home, "database");
+  if (!existsSync(home)) {
+    mkdirSync(home, { recursive: true });
+    // Whatever root's umask: the server's user must pass.
+    chmodSync(home, 0o755);
+  }
   mkdirSync(folder, { recursive: true });
   const data = path.join(folder, "data");
   const user = serverUser(data);

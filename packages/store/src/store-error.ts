@@ -16,7 +16,6 @@ export type StoreErrorCode =
   | "owner-runs"
   | "not-migrated"
   | "ledger-broken"
-  | "member-exists"
   | "no-such-member"
   | "embedded-failed";
 
