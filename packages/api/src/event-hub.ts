@@ -45,6 +45,7 @@ export class EventHub {
     };
   }
 
+  /** Stops listening; who watches hears nothing more. */
   async close(): Promise<void> {
     for (const { timer } of this.#channels.values()) if (timer) clearTimeout(timer);
     this.#channels.clear();

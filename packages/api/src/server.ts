@@ -6,18 +6,9 @@ import { readSettings } from "@weighhouse/store/settings";
 import { StoreError } from "@weighhouse/store/store-error";
 import { createAuth } from "./auth";
 import type { Auth } from "./auth";
-import { closing } from "./closing";
-import { createContext } from "./context";
-import type { Context } from "./context";
-import { hubOf } from "./event-hub";
 
 /** What all requests of a process share. */
-export type Server = {
-  desk: Desk;
-  auth: Auth;
-  log: Log;
-  context(headers: Headers): Promise<Context>;
-};
+export type Server = { desk: Desk; auth: Auth; log: Log };
 
 // On the global object: a bundler may give pages and route handlers a copy each of this module.
 const place = globalThis as { weighhouseServer?: Promise<Server> };
@@ -30,17 +21,6 @@ export function server(environment: NodeJS.ProcessEnv, log: Log): Promise<Server
     throw error;
   });
   return place.weighhouseServer;
-}
-
-/** Ends open streams, which else would keep the process from exiting, and closes the store. */
-export async function closeServer(): Promise<void> {
-  closing.abort();
-  const opened = place.weighhouseServer;
-  delete place.weighhouseServer;
-  if (!opened) return;
-  const { store } = (await opened).desk;
-  await hubOf(store).close();
-  await store.close();
 }
 
 async function openServer(environment: NodeJS.ProcessEnv, log: Log): Promise<Server> {
@@ -63,6 +43,5 @@ async function openServer(environment: NodeJS.ProcessEnv, log: Log): Promise<Ser
   });
   const desk: Desk = { store };
   const auth = createAuth({ store, origin, secret: WEIGHHOUSE_SECRET });
-  const context = (headers: Headers) => createContext({ desk, auth, log, headers });
-  return { desk, auth, log, context };
+  return { desk, auth, log };
 }

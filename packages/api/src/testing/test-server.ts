@@ -4,6 +4,7 @@ import { silentLog } from "@weighhouse/store/log";
 import { createAuth } from "../auth";
 import type { Auth } from "../auth";
 import { createContext } from "../context";
+import { hubOf } from "../event-hub";
 import type { Context } from "../context";
 
 export const ORIGIN = "http://localhost:3000";
@@ -21,6 +22,10 @@ export async function openTestServer(): Promise<TestServer> {
   const auth = createAuth({ store: desk.store, origin: ORIGIN, secret: "s".repeat(32) });
   return {
     ...house,
+    async close() {
+      await hubOf(desk.store).close();
+      await house.close();
+    },
     auth,
     context: (headers = new Headers()) => createContext({ desk, auth, log: silentLog, headers }),
     async signUp(name) {
