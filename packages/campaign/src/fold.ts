@@ -1,8 +1,20 @@
 import { changesOf, contentAfter, partNames } from "./changes";
 import type { LedgerRecord, PartContent, PartName } from "./changes";
 import { completeDocument } from "./complete";
+import {
+  campaignSchema,
+  derivedSchema,
+  facilitySchema,
+  measurandSchema,
+  observableSchema,
+  sharedErrorSchema,
+  teamSchema,
+} from "./declarations";
 import { CAMPAIGN_FORMAT } from "./document";
 import type { CampaignDocument, DocumentForm } from "./document";
+import { hypothesisSchema } from "./hypothesis";
+import { correlationSchema, measurementSchema } from "./measurement";
+import { membersOf } from "./schema-def";
 
 /** A part as the fold leaves it: what the projections hold a row of. */
 export type Part = { part: PartName; key: string; content: PartContent };
@@ -68,7 +80,7 @@ export function documentFromParts(parts: Iterable<Part>): CampaignDocument {
     measurement: [],
     correlation: [],
   };
-  for (const { part, content } of parts) lists[part].push(documentContent(content));
+  for (const { part, content } of parts) lists[part].push(documentContent(part, content));
   const form = {
     format: CAMPAIGN_FORMAT,
     campaign: lists.campaign[0],
@@ -86,7 +98,22 @@ export function documentFromParts(parts: Iterable<Part>): CampaignDocument {
   return completeDocument(form as unknown as DocumentForm);
 }
 
-function documentContent(content: PartContent): PartContent {
-  const { claimed: _1, ledger: _2, clock: _3, visibility: _4, ...fields } = content;
+/** The fields that the document has, in the schema's order; what only the ledger has is left out. */
+function documentContent(part: PartName, content: PartContent): PartContent {
+  const fields: PartContent = {};
+  for (const name of fieldsOf[part]) fields[name] = content[name];
   return fields;
 }
+
+const fieldsOf: Record<PartName, readonly string[]> = {
+  campaign: membersOf(campaignSchema),
+  observable: membersOf(observableSchema),
+  measurand: membersOf(measurandSchema),
+  derived: membersOf(derivedSchema),
+  sharedError: membersOf(sharedErrorSchema),
+  facility: membersOf(facilitySchema),
+  team: membersOf(teamSchema),
+  hypothesis: membersOf(hypothesisSchema),
+  measurement: membersOf(measurementSchema),
+  correlation: membersOf(correlationSchema),
+};

@@ -18,3 +18,10 @@ export function checksOf(def: Checked): CheckDef[] {
 export function descriptionOf(schema: z.core.$ZodType): string | undefined {
   return (schema as unknown as z.ZodType).description;
 }
+
+/** The members of an object's schema, in its order; a transform behind it doesn't matter. */
+export function membersOf(schema: z.core.$ZodType): string[] {
+  const def = defOf(schema);
+  if (def.type === "pipe") return membersOf(def.in);
+  return def.type === "object" ? Object.keys(def.shape) : [];
+}

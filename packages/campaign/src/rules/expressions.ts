@@ -1,6 +1,5 @@
 import type { Hypothesis, Table } from "../document";
 import { compileExpression } from "../expression";
-import type { Expression } from "../expression";
 import type { Legible } from "../form";
 import { below } from "../pointer";
 import { conditionKeys } from "./measurands";
@@ -19,10 +18,20 @@ export function checkExpression(reading: Reading, place: PredictionPlace, text: 
   const conditions = observable === undefined ? new Set<string>() : conditionKeys(observable);
   const own = ownNames(hypothesis);
   const tables = lookUps(hypothesis);
-  const compiled = compileExpression(text, { names: new Set([...own, ...conditions]), tables });
+  const constant =
+    measurand?.shape === "constant" || reading.derived.has(prediction.measurand ?? "");
+  const seen = constant ? own : new Set([...own, ...conditions]);
+  const compiled = compileExpression(text, { names: seen, tables });
   // The names of an unreadable part can't be told from unknown ones.
   const telling = observable !== undefined && place.whole;
   if (!compiled.ok) {
+    const used = constant ? conditionsUsed(hypothesis, text, conditions) : [];
+    if (used.length > 0) {
+      const found = `the condition ${used.join(", ")} on a constant`;
+      const allowed = "no conditions: a constant has one true value; or the shape curve";
+      reading.refuse(pointer, "not-applicable", found, allowed);
+      return;
+    }
     for (const { found, allowed } of compiled.faults) {
       if (found.startsWith("the unknown name") && !telling) continue;
       reading.refuse(pointer, "bad-expression", found, allowed);
@@ -30,14 +39,6 @@ export function checkExpression(reading: Reading, place: PredictionPlace, text: 
     return;
   }
   const { expression } = compiled;
-  const used = [...expression.names].filter((name) => conditions.has(name) && !own.has(name));
-  const derived = reading.derived.has(prediction.measurand ?? "");
-  if (used.length > 0 && (measurand?.shape === "constant" || derived)) {
-    const found = `the condition ${used.join(", ")} on a constant`;
-    const allowed = "no conditions: a constant has one true value; or the shape curve";
-    reading.refuse(pointer, "not-applicable", found, allowed);
-    return;
-  }
   if (measurand?.shape === "curve") checkSeenOnce(reading, place, conditions);
   if (telling && !hasValueSomewhere(expression, place, conditions)) {
     const allowed = "a finite value somewhere between the 1 % and 99 % of the priors";
@@ -47,7 +48,7 @@ export function checkExpression(reading: Reading, place: PredictionPlace, text: 
   }
 }
 
-/** What each expression of a hypothesis that compiles needs of its measurements' conditions. */
+/** The conditions that an expression uses; none where it doesn't compile even with them. */
 export function conditionsUsed(
   hypothesis: Legible<Hypothesis>,
   text: string,
@@ -55,11 +56,7 @@ export function conditionsUsed(
 ): string[] {
   const names = new Set([...ownNames(hypothesis), ...conditions]);
   const compiled = compileExpression(text, { names, tables: lookUps(hypothesis) });
-  return compiled.ok ? used(compiled.expression, conditions) : [];
-}
-
-function used(expression: Expression, conditions: ReadonlySet<string>): string[] {
-  return [...expression.names].filter((name) => conditions.has(name));
+  return compiled.ok ? [...compiled.expression.names].filter((one) => conditions.has(one)) : [];
 }
 
 function ownNames(hypothesis: Legible<Hypothesis>): ReadonlySet<string> {

@@ -165,7 +165,8 @@ export function checkRange(
   },
 ): void {
   const { lower, upper, observable, pointer } = range;
-  const cyclic = observable?.scale === "cyclic";
+  // Without a known scale it may be a circle.
+  const cyclic = observable?.scale === undefined || observable.scale === "cyclic";
   positiveOnLog10(reading, lower, observable, below(pointer, "lower"));
   if (lower === undefined || upper === undefined) return;
   if (cyclic ? lower !== upper : lower < upper) return;

@@ -108,7 +108,7 @@ const dune = {
     {
       key: "pitch-curve",
       observable: "pitch",
-      window: spring,
+      window: { ...spring },
       where: { slope: [20, 40] },
       shape: "curve",
       reference: { family: "polynomial", in: "slope", degree: 2, centre: 80, sd: 20 },
@@ -116,7 +116,7 @@ const dune = {
     {
       key: "pitch-crest",
       observable: "pitch",
-      window: spring,
+      window: { ...spring },
       where: { slope: [25, 35] },
       reference: { family: "uniform", lower: 20, upper: 200 },
       thresholds: [{ key: "audible", value: 25 }],
