@@ -1,4 +1,12 @@
-import { mkdirSync, readdirSync, renameSync, statSync } from "node:fs";
+import {
+  mkdirSync,
+  readdirSync,
+  renameSync,
+  rmSync,
+  statSync,
+  utimesSync,
+  writeFileSync,
+} from "node:fs";
 import { join } from "node:path";
 import { fileURLToPath } from "node:url";
 
@@ -22,17 +30,21 @@ export function isStale() {
   return sources.some((path) => newerThan(path, built));
 }
 
-/** One minified file; a command's parts are evaluated only when it runs. */
+/**
+ * A minified entry and chunks named for their content, so that a command reads only what it needs
+ * (one file would evaluate three times as much for `score`).
+ */
 export async function build() {
   const { build: bundleWith } = await import("esbuild");
-  mkdirSync(join(here, "dist"), { recursive: true });
-  // Several commands may build at once: each writes its own file, and the rename is atomic.
-  const draft = join(here, `dist/weighhouse.${process.pid}.mjs`);
-  await bundleWith({
+  const started = new Date();
+  const { outputFiles } = await bundleWith({
     absWorkingDir: here,
-    entryPoints: ["src/main.ts"],
-    outfile: draft,
+    entryPoints: { weighhouse: "src/main.ts" },
+    outdir: "dist",
+    outExtension: { ".js": ".mjs" },
+    write: false,
     bundle: true,
+    splitting: true,
     minify: true,
     platform: "node",
     target: "node20",
@@ -43,7 +55,26 @@ export async function build() {
       js: 'import{createRequire as makeRequire}from"node:module";const require=makeRequire(import.meta.url);',
     },
   });
-  renameSync(draft, bundle);
+  mkdirSync(join(here, "dist"), { recursive: true });
+  // Several commands may build at once: each file appears whole, the entry after all its chunks.
+  const entryLast = outputFiles.toSorted((a, b) => (a.path === bundle) - (b.path === bundle));
+  for (const { path, contents } of entryLast) {
+    const draft = `${path}.${process.pid}.part`;
+    writeFileSync(draft, contents);
+    // A source saved during the build is newer than this.
+    utimesSync(draft, started, started);
+    renameSync(draft, path);
+  }
+  removeOldChunks(new Set(outputFiles.map(({ path }) => path)));
+}
+
+/** Chunks of earlier builds, but for those that a command still running may yet read. */
+function removeOldChunks(current) {
+  const hourAgo = Date.now() - 3_600_000;
+  for (const name of readdirSync(join(here, "dist"))) {
+    const path = join(here, "dist", name);
+    if (!current.has(path) && (modified(path) ?? hourAgo) < hourAgo) rmSync(path, { force: true });
+  }
 }
 
 function newerThan(path, time) {

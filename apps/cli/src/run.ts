@@ -1,15 +1,27 @@
 import { stripVTControlCharacters } from "node:util";
 import { ENGINE_VERSION } from "@weighhouse/engine/version";
 import { renderUsage, runCommand, type ArgDef, type CommandDef } from "citty";
+import { descriptions } from "./descriptions";
 import { Refusal, wrongUsage, type ExitCode } from "./refusal";
 import { hasColour } from "./terminal";
 
-type Commands = Record<string, () => Promise<CommandDef>>;
+/** Each command loads only when it runs: `--help` needs no engine. */
+type Commands = Record<keyof typeof descriptions, () => Promise<CommandDef>>;
 
 const about = {
   name: "weighhouse",
   version: ENGINE_VERSION,
   description: "Scores physical hypotheses against measurements, and checks audit trails",
+};
+
+const whole: CommandDef = {
+  meta: about,
+  subCommands: Object.fromEntries(
+    Object.entries(descriptions).map(([name, description]) => [
+      name,
+      { meta: { name, description } },
+    ]),
+  ),
 };
 
 /** Runs a command line and gives its exit code; errors go to stderr, one a line. */
@@ -32,22 +44,23 @@ export async function run(args: string[], commands: Commands): Promise<ExitCode>
 
 async function dispatch(args: string[], commands: Commands): Promise<ExitCode> {
   const [name, ...rest] = args;
-  const available = Object.keys(commands).join(", ");
   if (name === undefined) {
-    process.stderr.write(`${await usageOf({ meta: about, subCommands: commands })}\n`);
+    process.stderr.write(`${await usageOf(whole)}\n`);
     return 2;
   }
   if (name === "--help" || name === "-h") {
-    process.stdout.write(`${await usageOf({ meta: about, subCommands: commands })}\n`);
+    process.stdout.write(`${await usageOf(whole)}\n`);
     return 0;
   }
   if (name === "--version" || name === "-v") {
     process.stdout.write(`${about.version}\n`);
     return 0;
   }
-  const load = Object.hasOwn(commands, name) ? commands[name] : undefined;
-  if (load === undefined) throw wrongUsage(`found the command ${name}; allowed ${available}`);
-  const command = await load();
+  if (!isCommand(name)) {
+    const available = Object.keys(descriptions).join(", ");
+    throw wrongUsage(`found the command ${name}; allowed ${available}`);
+  }
+  const command = await commands[name]();
   if (rest.includes("--help") || rest.includes("-h")) {
     process.stdout.write(`${await usageOf(command, { meta: about })}\n`);
     return 0;
@@ -55,6 +68,10 @@ async function dispatch(args: string[], commands: Commands): Promise<ExitCode> {
   refuseUnknownArguments(rest, command.args as Record<string, ArgDef>);
   const { result } = await runCommand(command, { rawArgs: rest });
   return (result as ExitCode | undefined) ?? 0;
+}
+
+function isCommand(name: string): name is keyof typeof descriptions {
+  return Object.hasOwn(descriptions, name);
 }
 
 async function usageOf(command: CommandDef, parent?: CommandDef): Promise<string> {

@@ -1,11 +1,12 @@
 import { scoreCampaign } from "@weighhouse/engine/score";
 import { defineCommand } from "citty";
+import { descriptions } from "../descriptions";
 import { invalid, readDocumentFile } from "../document-file";
 import { counted, warningLines } from "../print/warnings";
 import { terminalOf } from "../terminal";
 
 export const check = defineCommand({
-  meta: { name: "check", description: "List every error and warning of a campaign document" },
+  meta: { name: "check", description: descriptions.check },
   args: {
     campaign: {
       type: "positional",

@@ -1,12 +1,13 @@
 import { rename, rm, writeFile } from "node:fs/promises";
 import { defineCommand } from "citty";
+import { descriptions } from "../descriptions";
 import { Refusal, wrongUsage } from "../refusal";
 import { harmless } from "../terminal";
 
 const DEFAULT_URL = "http://localhost:3000";
 
 export const exportTrail = defineCommand({
-  meta: { name: "export", description: "Save a campaign's audit trail from a server" },
+  meta: { name: "export", description: descriptions.export },
   args: {
     campaign: {
       type: "string",

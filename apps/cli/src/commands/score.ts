@@ -1,11 +1,12 @@
 import { scoreCampaign } from "@weighhouse/engine/score";
 import { defineCommand } from "citty";
+import { descriptions } from "../descriptions";
 import { invalid, readDocumentFile } from "../document-file";
 import { standingsReport } from "../print/standings-report";
 import { terminalOf } from "../terminal";
 
 export const score = defineCommand({
-  meta: { name: "score", description: "Score a campaign document" },
+  meta: { name: "score", description: descriptions.score },
   args: {
     campaign: {
       type: "positional",

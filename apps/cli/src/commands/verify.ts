@@ -2,6 +2,7 @@ import { verifyArchive } from "@weighhouse/audit/verify";
 import { scoreCampaign } from "@weighhouse/engine/score";
 import { nodeHasher } from "@weighhouse/ledger/node-hasher";
 import { defineCommand } from "citty";
+import { descriptions } from "../descriptions";
 import { readBytes } from "../document-file";
 import { Refusal } from "../refusal";
 import { harmless, terminalOf, wrap, type Terminal } from "../terminal";
@@ -10,7 +11,7 @@ type VerifyReport = ReturnType<typeof verifyArchive>;
 type CheckLine = VerifyReport["lines"][number];
 
 export const verify = defineCommand({
-  meta: { name: "verify", description: "Recompute everything in an audit trail, a line per check" },
+  meta: { name: "verify", description: descriptions.verify },
   args: {
     archive: { type: "positional", description: "Audit trail (ZIP)", required: true },
     key: {
