@@ -1,6 +1,6 @@
 import { eq, sql } from "drizzle-orm";
 import { instantFromPostgres } from "./instant";
-import type { Store } from "./open-store";
+import type { Database, Store } from "./open-store";
 import { campaigns, tips } from "./schema/tables";
 import { StoreError } from "./store-error";
 
@@ -19,10 +19,15 @@ export type CampaignRow = {
 /**
  * The campaign's row and tip.
  *
+ * @param db what to ask: writers ask the primary, since a replica may not have the campaign yet
  * @throws {StoreError} `no-such-campaign`
  */
-export async function findCampaign(store: Store, key: string): Promise<CampaignRow> {
-  const [row] = await store.readDb
+export async function findCampaign(
+  store: Store,
+  key: string,
+  db: Database = store.readDb,
+): Promise<CampaignRow> {
+  const [row] = await db
     .select({
       id: campaigns.id,
       key: campaigns.key,

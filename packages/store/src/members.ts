@@ -66,7 +66,7 @@ export async function addMember(
   store: Store,
   input: { campaign: string; email: string; role: Role; team: string | null },
 ): Promise<Membership> {
-  const { id } = await findCampaign(store, input.campaign);
+  const { id } = await findCampaign(store, input.campaign, store.db);
   const email = input.email.trim().toLowerCase();
   const [person] = await store.db.select().from(user).where(eq(user.email, email));
   if (person === undefined) {

@@ -5,7 +5,6 @@ import type { Store } from "./open-store";
 import { writeRows } from "./projection-rows";
 import { Projector } from "./projector";
 import type { Queries } from "./queries";
-import { streamEntries } from "./read-ledger";
 
 /** A row that wasn't as the entries say; both sides as text, null where there is no row. */
 export type Difference = {
@@ -24,12 +23,10 @@ export async function rebuildProjections(
   campaign: string,
 ): Promise<{ same: boolean; differences: Difference[] }> {
   return store.sql.begin(async (tx) => {
-    const { campaignId, size } = await lockTip(tx, campaign);
+    const { campaignId } = await lockTip(tx, campaign);
     const projector = new Projector();
-    for await (const { entry, payload } of streamEntries(store, { campaign, size })) {
-      const { seq, at, by, kind } = entry;
-      const record = { seq, at, by, kind, payload: JSON.parse(payload) as unknown };
-      projector.apply(seq, changesOf(record as LedgerRecord));
+    for await (const record of records(tx, campaignId)) {
+      projector.apply(record.seq, changesOf(record));
     }
     // Temporary tables of the same names come before the real ones in every statement that follows.
     await tx`create temporary table parts (like public.parts) on commit drop`;
@@ -47,6 +44,26 @@ export async function rebuildProjections(
     }
     return { same: differences.length === 0, differences };
   }) as Promise<{ same: boolean; differences: Difference[] }>;
+}
+
+type EntryRow = Omit<LedgerRecord, "by" | "payload"> & {
+  member: string | null;
+  team: string | null;
+  payload: string;
+};
+
+/** The entries as the transaction that holds the lock sees them, a thousand at a time. */
+async function* records(tx: Queries, campaignId: number): AsyncGenerator<LedgerRecord> {
+  for (let from = 0; ; from += 1000) {
+    const rows = await tx<EntryRow[]>`
+      select seq, at, member, team, kind, payload from entries
+      where campaign_id = ${campaignId} and seq >= ${from} and seq < ${from + 1000} order by seq`;
+    if (rows.length === 0) return;
+    for (const { seq, at, member, team, kind, payload } of rows) {
+      const by = member === null ? ({ system: true } as const) : { member, team };
+      yield { seq, at, by, kind, payload: JSON.parse(payload) as unknown };
+    }
+  }
 }
 
 async function differencesIn(

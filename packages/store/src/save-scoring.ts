@@ -24,7 +24,7 @@ export type Scoring = {
  * no harm: the same size gives the same rows, and an older state never replaces a newer one.
  */
 export async function saveScoring(store: Store, scoring: Scoring): Promise<void> {
-  const { id: campaignId } = await findCampaign(store, scoring.campaign);
+  const { id: campaignId } = await findCampaign(store, scoring.campaign, store.db);
   const { size, engine, stateVersion, state } = scoring;
   const event = JSON.stringify({ campaign: scoring.campaign, size, what: "scored" });
   await store.sql.begin(async (tx) => {
@@ -47,7 +47,7 @@ export async function readState(
   store: Store,
   input: { campaign: string; engine: string; stateVersion: number },
 ): Promise<ScorerState | null> {
-  const { id } = await findCampaign(store, input.campaign);
+  const { id } = await findCampaign(store, input.campaign, store.db);
   const [row] = await store.sql<ScorerState[]>`
     select size, state from scorer_states
     where campaign_id = ${id} and engine = ${input.engine}

@@ -40,7 +40,7 @@ export async function readTransactions(
   store: Store,
   { campaign, after, limit }: { campaign: string; after: number; limit: number },
 ): Promise<Transaction[]> {
-  const { id } = await findCampaign(store, campaign);
+  const { id } = await findCampaign(store, campaign, store.db);
   const rows = await store.sql<Row[]>`
     with bounds as (
       select lag(size, 1, ${after}::int) over (order by size) as begin, size, root, at
@@ -82,7 +82,7 @@ export async function readPosted(
   store: Store,
   { campaign, begin, size }: { campaign: string; begin: number; size: number },
 ): Promise<Measurement[]> {
-  const { id } = await findCampaign(store, campaign);
+  const { id } = await findCampaign(store, campaign, store.db);
   const rows = await store.sql<{ part: PartName; key: string; content: string }[]>`
     select part, key, content from (
       select part, key, content, first_seq, first_place from parts

@@ -50,7 +50,7 @@ export async function saveStandings(
     { standings: Standings } | { problems: Problem[] }
   ),
 ): Promise<void> {
-  const { id: campaignId } = await findCampaign(store, input.campaign);
+  const { id: campaignId } = await findCampaign(store, input.campaign, store.db);
   await writeStandings(store.sql, {
     campaignId,
     size: input.size,
