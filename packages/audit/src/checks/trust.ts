@@ -34,7 +34,9 @@ export function checkKeysHeld(signers: Signers, trustedKeys: readonly string[]):
     const by = names.length === 0 ? "no good signature" : `signed by ${names.join(", ")}`;
     return [`the ${what === "head" ? "last tree head" : "manifest"}: ${by}, which you don't hold`];
   });
-  return judged(check, faults, `signed by ${[...held].join(", ")}, which you hold`);
+  const names = new Set([...fingerprints(signers.head), ...fingerprints(signers.manifest)]);
+  const known = [...names].filter((name) => held.has(name));
+  return judged(check, faults, `signed by ${known.join(", ")}, which you hold`);
 }
 
 /** A head that the reader kept proves that nothing before it was touched, whoever signed since. */
@@ -67,7 +69,7 @@ export function checkHeadHeld(
   const later = size - head.size;
   return ok(
     check,
-    `entries 0 to ${head.size - 1} are those of the head you hold; ${later} came later`,
+    `the first ${head.size} entries are those of the head you hold; ${later} came later`,
   );
 }
 
