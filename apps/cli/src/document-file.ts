@@ -4,6 +4,7 @@ import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { problemLine, type Problem } from "@weighhouse/campaign/problem";
 import { readCampaignText } from "@weighhouse/campaign/read";
 import { Refusal, wrongUsage } from "./refusal";
+import { harmless } from "./terminal";
 
 /**
  * Reads and validates a campaign document from a file, or from stdin for `-`.
@@ -28,7 +29,10 @@ export async function readBytes(path: string): Promise<Uint8Array> {
 
 /** Every problem on a line of its own. */
 export function invalid(problems: readonly Problem[]): Refusal {
-  return new Refusal(1, problems.map(problemLine));
+  return new Refusal(
+    1,
+    problems.map((problem) => harmless(problemLine(problem))),
+  );
 }
 
 async function readStdin(): Promise<Uint8Array> {
