@@ -71,7 +71,7 @@ function compileMeasurand(measurand: Measurand, observable: Observable): Measura
     noises: [0],
     thresholds: measurand.thresholds.map(({ key, value }) => ({
       key,
-      value: scale === "log10" && value <= 0 ? -Infinity : toScoringSpace(value, scale),
+      value: toScoringSpace(value, scale),
     })),
     firstPostedAt: measurand.firstPostedAt,
     firstObservedAt: measurand.firstObservedAt,
