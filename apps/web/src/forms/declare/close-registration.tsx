@@ -29,7 +29,7 @@ export function CloseRegistration({ campaign }: { campaign: string }) {
     }
   };
   return (
-    <FormBody>
+    <FormBody busy={closing}>
       <Tick
         label="Close it for good, now"
         help="Whoever registers later is marked as filed after data and leaves the standings alone."

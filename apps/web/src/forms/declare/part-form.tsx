@@ -59,7 +59,7 @@ export function PartForm<Values extends FieldValues, Content>(props: {
           void submit(event);
         }}
       >
-        <FormBody>
+        <FormBody busy={sending}>
           <DraftNote draft={draft} />
           {props.children}
           <FailureNote failure={failure} />

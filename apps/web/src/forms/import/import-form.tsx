@@ -73,7 +73,7 @@ export function ImportForm() {
       aria-label="Import a campaign document"
       onSubmit={(event) => void run("previewing")(event)}
     >
-      <FormBody>
+      <FormBody busy={busy !== null}>
         <DraftNote draft={draft} />
         <Field
           label="Campaign document"

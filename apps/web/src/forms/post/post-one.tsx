@@ -55,7 +55,7 @@ export function PostOne({ document }: { document: CampaignDocument }) {
         // What was previewed is no longer what stands in the form.
         onChange={() => (previewed === null ? undefined : posting.forget())}
       >
-        <FormBody>
+        <FormBody busy={busy !== null}>
           <DraftNote draft={draft} />
           <PostedNote campaign={key} posted={posting.posted} />
           <MeasurementFields document={document} />

@@ -48,7 +48,7 @@ export function PostTable({ document }: { document: CampaignDocument }) {
   const { previewed, busy } = posting;
   return (
     <form noValidate aria-label="Post a table" onSubmit={(event) => void submit(event)}>
-      <FormBody>
+      <FormBody busy={busy !== null}>
         <DraftNote draft={draft} />
         <PostedNote campaign={key} posted={posting.posted} />
         <ColumnHelp document={document} />

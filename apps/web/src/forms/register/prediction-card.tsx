@@ -24,10 +24,10 @@ export function PredictionCard(props: {
   });
   const fallbackSd = supposedSd(document, quantity);
   const speaks = draft.says === "number";
-  const preview = usePreview(
-    document,
-    speaks ? requestOfDraft(draft, fallbackSd) : requestOfRival(quantity, draft, fallbackSd),
-  );
+  const request = speaks
+    ? requestOfDraft(draft, fallbackSd)
+    : requestOfRival(quantity, draft, fallbackSd);
+  const preview = usePreview(document, request);
   const at = `predictions.${index}` as const;
   const wrong = (name: string): string | undefined =>
     get(formState.errors, `${at}.${name}.message`) as string | undefined;
@@ -97,7 +97,7 @@ export function PredictionCard(props: {
         ) : null}
         <div className="min-w-0">
           {speaks ? (
-            <PredictionEffect quantity={quantity} state={preview} />
+            <PredictionEffect quantity={quantity} state={preview} sd={request?.sd ?? null} />
           ) : (
             <SilenceEffect state={preview} />
           )}

@@ -2,19 +2,19 @@
 
 import type { PredictionPreview } from "@weighhouse/engine/prediction-preview";
 import { kassRaftery } from "@weighhouse/engine/kass-raftery";
-import {
-  formatFixed,
-  formatInterval,
-  formatNumber,
-  formatPercent,
-} from "@weighhouse/figures/numbers";
+import { formatFixed, formatInterval, formatPercent } from "@weighhouse/figures/numbers";
 import type { ReactNode } from "react";
 import { BandFigure } from "./band-figure";
-import { unitAfter, type Quantity } from "./quantity";
+import { formatReading, unitAfter, type Quantity } from "./quantity";
 import type { PreviewState } from "./use-preview";
 
 /** What a prediction commits to: its band, what passes and fails, what a hit earns, a miss costs. */
-export function PredictionEffect(props: { quantity: Quantity; state: PreviewState }) {
+export function PredictionEffect(props: {
+  quantity: Quantity;
+  state: PreviewState;
+  /** The uncertainty that the measurement is supposed to have; readings are rounded to it. */
+  sd: number | null;
+}) {
   const { quantity, state } = props;
   if (state.state === "refused") return <p className="text-[14px] text-rust">{state.words}</p>;
   if (state.state === "waiting")
@@ -23,11 +23,13 @@ export function PredictionEffect(props: { quantity: Quantity; state: PreviewStat
         Give the expected value and the theory error to see what would pass and what would fail.
       </p>
     );
-  return <Effect quantity={quantity} preview={state.preview} />;
+  return <Effect quantity={quantity} preview={state.preview} sd={props.sd} />;
 }
 
-function Effect({ quantity, preview }: { quantity: Quantity; preview: PredictionPreview }) {
+function Effect(props: { quantity: Quantity; preview: PredictionPreview; sd: number | null }) {
+  const { quantity, preview } = props;
   const unit = unitAfter(quantity);
+  const reading = (value: number) => formatReading(value, props.sd, quantity);
   const { interval, passes, miss } = preview;
   const exact = interval.lower === interval.upper;
   return (
@@ -43,14 +45,14 @@ function Effect({ quantity, preview }: { quantity: Quantity; preview: Prediction
         <Line term="passes">
           {passes === null
             ? "nothing: a measurement this coarse can’t decide for you"
-            : `measured ${formatInterval(passes.lower, passes.upper)}${unit}`}
+            : `measured ${rangeWords(passes, reading)}${unit}`}
         </Line>
-        <Line term="fails">{failWords(preview, unit)}</Line>
+        <Line term="fails">{failWords(preview, (value) => `${reading(value)}${unit}`)}</Line>
         <Line term="a hit earns">{weight(preview.hit.log10BayesFactor)}</Line>
         <Line term="a miss costs">
           {miss === null
             ? "nothing: no value measured like this would fail"
-            : `${weight(miss.log10BayesFactor)}, at ${formatNumber(miss.value, 4)}${unit}`}
+            : `${weight(miss.log10BayesFactor)}, at ${reading(miss.value)}${unit}`}
         </Line>
       </dl>
     </div>
@@ -85,10 +87,19 @@ function Line({ term, children }: { term: string; children: ReactNode }) {
   );
 }
 
-function failWords({ fails }: PredictionPreview, unit: string): string {
+type Reading = (value: number) => string;
+
+function rangeWords(range: { lower: number | null; upper: number | null }, reading: Reading) {
+  if (range.lower === null)
+    return range.upper === null ? "anything" : `${reading(range.upper)} or less`;
+  if (range.upper === null) return `${reading(range.lower)} or more`;
+  return `${reading(range.lower)} to ${reading(range.upper)}`;
+}
+
+function failWords({ fails }: PredictionPreview, reading: Reading): string {
   const ends = [
-    fails.below === null ? null : `${formatNumber(fails.below, 4)}${unit} or less`,
-    fails.above === null ? null : `${formatNumber(fails.above, 4)}${unit} or more`,
+    fails.below === null ? null : `${reading(fails.below)} or less`,
+    fails.above === null ? null : `${reading(fails.above)} or more`,
   ].filter((end) => end !== null);
   return ends.length === 0 ? "nothing measured like this" : `measured ${ends.join(", or ")}`;
 }

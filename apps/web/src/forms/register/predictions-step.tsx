@@ -33,12 +33,14 @@ export function PredictionsStep(props: { document: CampaignDocument; children: R
           The coordinator declares the quantities first. What you typed so far is kept here.
         </Empty>
       ) : null}
-      {predictions.map(({ measurand }, index) => {
-        const quantity = quantities.get(measurand);
-        return quantity === undefined ? null : (
-          <PredictionCard key={measurand} document={document} quantity={quantity} index={index} />
-        );
-      })}
+      <div>
+        {predictions.map(({ measurand }, index) => {
+          const quantity = quantities.get(measurand);
+          return quantity === undefined ? null : (
+            <PredictionCard key={measurand} document={document} quantity={quantity} index={index} />
+          );
+        })}
+      </div>
       <div className="mt-2 flex flex-wrap gap-3">{children}</div>
     </Section>
   );

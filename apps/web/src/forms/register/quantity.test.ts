@@ -1,6 +1,7 @@
 import type { CampaignDocument, Measurement, Reference } from "@weighhouse/campaign/document";
 import { expect, test } from "vitest";
 import {
+  formatReading,
   quantitiesOf,
   referenceMiddle,
   referenceWords,
@@ -63,4 +64,12 @@ test("the no-model range is said in words, its middle taken on its own scale", (
   expect(referenceMiddle(log.quantity)).toBe(10);
   const normal = campaign("log10", { family: "normal", mean: 15, sd: 0.5 });
   expect(referenceWords(normal.quantity)).toContain("0.5 dex");
+});
+
+test("a reading is shown to what its uncertainty leaves certain", () => {
+  const linear = campaign("linear", { family: "uniform", lower: -1, upper: 4 });
+  expect(formatReading(-0.191_936, 0.1, linear.quantity)).toBe("−0.19");
+  expect(formatReading(1.5, null, linear.quantity)).toBe("1.5");
+  const log = campaign("log10", { family: "uniform", lower: 1, upper: 1000 });
+  expect(formatReading(123.456, 0.1, log.quantity)).toBe("123");
 });

@@ -1,5 +1,5 @@
 import type { CampaignDocument, Measurand, Scale } from "@weighhouse/campaign/document";
-import { formatInterval, formatNumber } from "@weighhouse/figures/numbers";
+import { formatInterval, formatNumber, roundToUncertainty } from "@weighhouse/figures/numbers";
 
 /** A measurand with what its observable says of it, as the forms show it. */
 export interface Quantity {
@@ -44,6 +44,14 @@ export function referenceWords(quantity: Quantity): string {
     return `about ${formatNumber(reference.mean)}${unitAfter(quantity)}, normal with standard deviation ${formatNumber(reference.sd)}${spread}`;
   }
   return reference.family;
+}
+
+/** A value that would be read: to the decimals that its supposed uncertainty leaves certain. */
+export function formatReading(value: number, sd: number | null, quantity: Quantity): string {
+  if (sd === null) return formatNumber(value, 4);
+  const spread = quantity.scale === "log10" ? Math.abs(value) * Math.LN10 * sd : sd;
+  const rounded = roundToUncertainty(value, spread);
+  return rounded.exponent === 0 ? rounded.value : formatNumber(value, 3);
 }
 
 /** What the no-model range expects at its middle, in the observable's unit. */

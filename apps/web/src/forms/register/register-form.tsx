@@ -88,7 +88,7 @@ export function RegisterForm(props: {
   return (
     <FormProvider {...form}>
       <form onSubmit={(event) => void submit(event)} noValidate aria-label="Register a hypothesis">
-        <FormBody>
+        <FormBody busy={sending}>
           <DraftNote draft={draft} />
           <Steps current={step} go={go} />
           {step === "statement" ? (

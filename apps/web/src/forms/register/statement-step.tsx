@@ -24,7 +24,7 @@ export function StatementStep(props: {
   const team = document.teams.find(({ key }) => key === registrant.team);
   const title = register("title");
   return (
-    <Section title="Statement" gloss={team ? `for ${team.title}` : "for no team"}>
+    <Section title="The hypothesis" gloss={team ? `for ${team.title}` : "for no team"}>
       <Field
         label="Title"
         help="A few words that name the hypothesis in tables and on the beam."
