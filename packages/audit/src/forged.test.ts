@@ -33,7 +33,19 @@ describe("what a forger changes is found though the manifest is made good", () =
       "an entry's time",
       { "ledger.ndjson": line(10, replacing("T01:", "T00:")) },
       "consistency of the tree heads",
-      "heads/0000000010.note: found root",
+      "ledger.ndjson, line 10: not what heads/0000000010.note and 6 later heads signed (found root",
+    ],
+    [
+      "an entry's author",
+      { "ledger.ndjson": line(13, replacing("m-1", "m-2")) },
+      "consistency of the tree heads",
+      "ledger.ndjson, line 13: not what heads/0000000013.note and 3 later heads signed",
+    ],
+    [
+      "an entry's author among the nine of the first transaction",
+      { "ledger.ndjson": line(4, replacing("m-1", "m-2")) },
+      "consistency of the tree heads",
+      "ledger.ndjson, lines 1 to 9: not what heads/0000000009.note and 7 later heads signed",
     ],
     [
       "an entry's time, to before the entry before it",

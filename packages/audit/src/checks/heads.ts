@@ -12,7 +12,7 @@ import { readText } from "./archive-text";
 import type { Files } from "./container";
 import { counted, failed, judged } from "./line";
 import type { Checked, CheckLine } from "./line";
-import { isKeyPath, keyPath, sizeOfHeadPath } from "../layout";
+import { isKeyPath, keyPath, LEDGER, sizeOfHeadPath } from "../layout";
 
 export type ArchiveHead = { path: string; note: string; head: TreeHead };
 
@@ -133,16 +133,42 @@ export function checkConsistency(
   roots: Roots,
   ledger: string,
 ): CheckLine {
+  const check = "consistency of the tree heads";
+  if (heads.length === 0) return failed(check, "heads/: no tree head");
   const faults = heads.flatMap(({ path, head }) => {
     if (head.origin !== ledger) return [`${path}: found ledger ${head.origin}, allowed ${ledger}`];
-    const root = roots.of(head.size);
-    if (root === null) return [`${path}: found a head of more entries than the ledger has`];
-    if (sameBytes(root, head.root)) return [];
-    return [
-      `${path}: found root ${base64(head.root)}, the first ${head.size} entries have ${base64(root)}`,
-    ];
+    if (roots.of(head.size) !== null) return [];
+    return [`${path}: found a head of more entries than the ledger has`];
   });
-  if (heads.length === 0) faults.push("heads/: no tree head");
+  const within = heads.filter(({ head }) => roots.of(head.size) !== null);
+  faults.push(...rootFaults(within, roots));
   const detail = `${counted(heads.length, "tree head")}, each of a beginning of this ledger`;
-  return judged("consistency of the tree heads", faults, detail);
+  return judged(check, faults, detail);
+}
+
+/**
+ * Where a head and all later ones differ, the entries were changed, between the last head that
+ * agrees and the first that doesn't. A head that differs before one that agrees is wrong itself.
+ */
+function rootFaults(heads: readonly ArchiveHead[], roots: Roots): string[] {
+  const agrees = heads.map(({ head }) => sameBytes(head.root, roots.of(head.size) as Uint8Array));
+  const lastGood = agrees.lastIndexOf(true);
+  const faults = heads
+    .filter((_, index) => index < lastGood && agrees[index] === false)
+    .map(({ path, head }) => `${path}: ${rootsApart(head, roots)}`);
+  const firstBad = heads[lastGood + 1];
+  if (firstBad === undefined) return faults;
+  const from = heads[lastGood]?.head.size ?? 0;
+  const to = firstBad.head.size;
+  const lines = to - from === 1 ? `line ${to}` : `lines ${from + 1} to ${to}`;
+  const later = heads.length - lastGood - 2;
+  return [
+    ...faults,
+    `${LEDGER}, ${lines}: not what ${firstBad.path} and ${counted(later, "later head")} signed (${rootsApart(firstBad.head, roots)})`,
+  ];
+}
+
+function rootsApart(head: TreeHead, roots: Roots): string {
+  const root = base64(roots.of(head.size) as Uint8Array);
+  return `found root ${base64(head.root)}, the first ${head.size} entries have ${root}`;
 }
