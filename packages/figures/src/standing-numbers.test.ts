@@ -2,7 +2,6 @@ import { expect, test } from "vitest";
 import {
   formatChiSquare,
   formatLog10B,
-  formatOrder,
   formatP,
   formatPosterior,
   formatTension,
@@ -54,8 +53,4 @@ test("tension carries its sign, zero none", () => {
   expect(formatTension(0.01)).toBe("0.0");
   expect(formatTension(null)).toBe("–");
   expect(formatTension(123.4)).toBe("+123");
-});
-
-test("the order of filing is in plain words", () => {
-  expect(formatOrder("before-observation")).toBe("before observation");
 });

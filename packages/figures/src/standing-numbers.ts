@@ -65,17 +65,6 @@ export function formatTension(tension: number | null): string {
   return tension > 0 && /[1-9]/.test(text) ? `+${text}` : text;
 }
 
-/** `before observation`, `before posting`, `after data`, `undated`. */
-export function formatOrder(order: string): string {
-  const words: Record<string, string> = {
-    "before-observation": "before observation",
-    "before-posting": "before posting",
-    after: "after data",
-    undated: "undated",
-  };
-  return words[order] ?? order;
-}
-
 function logarithm(value: number): string {
   if (value === 0) return "0";
   if (Math.abs(value) < 0.005) return inPowersOrPlain(value);

@@ -1,7 +1,6 @@
 import { describe, expect, test } from "vitest";
 import { MAX_ROWS } from "./limits";
 import { readRecords } from "./records";
-import { decodeTable } from "./text";
 
 const cells = (text: string) => readRecords(text).records.map((record) => record.cells);
 
@@ -74,6 +73,8 @@ describe("refused texts say where and what", () => {
     ["", 1, "no line with a header"],
     ["# only a comment\n", 1, "no line with a header"],
     ["a,b\n1,\0\n", 2, "a NUL character (U+0000)"],
+    // What reading UTF-16 or Latin-1 as UTF-8 leaves.
+    ["\ufffd\ufffda\0,\0b\0", 1, "a NUL character (U+0000)"],
     ["a,b\n1,2\n1,\ufffd\n", 3, "a character that was lost in decoding (U+FFFD)"],
     ['a,b\n1,"never closed\n2,3\n', 2, "a quoted field that is never closed"],
     ['a,b\r\n1,"x\r\ny"\r\n2,"never closed\r\n', 4, "a quoted field that is never closed"],
@@ -99,28 +100,5 @@ describe("refused texts say where and what", () => {
     expect(readRecords(Array.from({ length: 201 }, (_, i) => `c${i}`).join(",")).problems).toEqual([
       expect.objectContaining({ found: "201 columns", allowed: "at most 200" }),
     ]);
-  });
-});
-
-describe("bytes", () => {
-  const latin1 = (text: string) => Uint8Array.from(text, (character) => character.charCodeAt(0));
-
-  test("UTF-8 is read, its byte order mark or not", () => {
-    expect(decodeTable(new TextEncoder().encode("a,σ\n"))).toEqual({ ok: true, text: "a,σ\n" });
-    expect(decodeTable(latin1("\xef\xbb\xbfa,b"))).toEqual({ ok: true, text: "a,b" });
-  });
-
-  test("Latin-1 is refused at its line", () => {
-    expect(decodeTable(latin1("a,b\n1,2\n1,caf\xe9\n"))).toMatchObject({
-      ok: false,
-      problem: { line: 3, found: "bytes that are not UTF-8" },
-    });
-  });
-
-  test("UTF-16 is refused by its byte order mark", () => {
-    expect(decodeTable(latin1("\xff\xfea\0"))).toMatchObject({
-      ok: false,
-      problem: { line: 1, found: "a UTF-16 byte order mark" },
-    });
   });
 });

@@ -1,18 +1,9 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
-import type { Standings, VerdictRow, VerdictWord } from "@weighhouse/campaign/standings";
+import type { Standings, VerdictRow } from "@weighhouse/campaign/standings";
 import { formatTension } from "@weighhouse/figures/standing-numbers";
+import { VERDICT_WORDS } from "@weighhouse/figures/verdict-marks";
 import { cut, harmless, type Terminal } from "../terminal";
 import { tableLines, tableWidth, type TableColumn } from "./table";
-
-const WORDS: Record<VerdictWord, string> = {
-  pass: "pass",
-  fail: "fail",
-  undecided: "undecided",
-  awaiting: "awaiting",
-  notMeasured: "not measured",
-  withheld: "withheld",
-  void: "void",
-};
 
 /** Measurands by hypotheses, tension in sigma first; a list where the grid is too wide. */
 export function verdictLines(
@@ -82,7 +73,7 @@ function wordFor(row: VerdictRow | undefined): string {
     row.inflated ? "inflated" : null,
     row.provisional ? "provisional" : null,
   ].filter((remark) => remark !== null);
-  return WORDS[row.verdict] + (remarks.length > 0 ? ` (${remarks.join(", ")})` : "");
+  return VERDICT_WORDS[row.verdict] + (remarks.length > 0 ? ` (${remarks.join(", ")})` : "");
 }
 
 function cellKey({ hypothesis, measurand }: Pick<VerdictRow, "hypothesis" | "measurand">): string {
