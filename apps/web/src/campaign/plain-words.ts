@@ -5,6 +5,7 @@ import type {
   Prediction,
   Reference,
 } from "@weighhouse/campaign/document";
+import { unitText } from "@/look/unit-text";
 import { formatInterval, formatMeasured, formatNumber } from "@weighhouse/figures/numbers";
 
 /** A no-model range (reference) in words: `anything from −1 to 4 arcsec alike`. */
@@ -61,7 +62,8 @@ export function predictionInWords(prediction: Prediction, observable: Observable
 
 /** A measurement's result as it was posted, with the unit that it was posted in. */
 export function resultInWords(measurement: Measurement, observable: Observable): string {
-  const unit = measurement.unit ?? observable.unit;
+  const posted = measurement.unit ?? observable.unit;
+  const unit = posted === null ? null : unitText(posted);
   const { value } = measurement;
   if (measurement.occurred !== null) return measurement.occurred ? "occurred" : "did not occur";
   if (measurement.count !== null) return `${measurement.count} counted`;
@@ -87,7 +89,7 @@ function limitConfidence({ confidence, sigmas }: Measurement): string {
 }
 
 export function unitOf({ unit }: { unit: string | null }): string {
-  return unit === null || unit === "1" ? "" : `\u00a0${unit}`;
+  return unit === null || unit === "1" ? "" : `\u00a0${unitText(unit)}`;
 }
 
 /** Where the conditions lie that a quantity is declared for: `depth 2 to 40 m`. */

@@ -14,88 +14,97 @@ export interface StreamListener {
 }
 
 type Client = ReturnType<typeof useTRPCClient>;
+type Follow = (client: Client, key: string, listener: StreamListener, stop: AbortSignal) => void;
 type Message =
   | { type: "event"; event: CampaignEvent }
   | { type: "state"; state: StreamState }
   | { type: "hello" };
 
 /**
- * Follows a campaign's events over one connection shared by all tabs of this browser: the tab that
- * holds the lock keeps the stream and tells the others, since a browser opens only six HTTP/1.1
- * connections to a server. Where there are no locks (plain HTTP on another machine) each tab keeps
- * its own stream, only while it is to be seen.
+ * Follows a campaign's events over one connection shared by all tabs of this browser, since a
+ * browser opens only six HTTP/1.1 connections to a server. A tab that is not to be seen follows
+ * nothing; the first message after it is shown again says how things stand by then.
  *
  * @returns stops following
  */
 export function followCampaign(client: Client, key: string, listener: StreamListener): () => void {
-  const stopping = new AbortController();
-  if (navigator.locks && typeof BroadcastChannel !== "undefined") {
-    followTogether(client, key, listener, stopping.signal);
-  } else {
-    followWhileVisible(client, key, listener, stopping.signal);
-  }
-  return () => stopping.abort();
+  // Locks are missing on plain HTTP from another machine: there each tab has its own stream.
+  const follow: Follow =
+    "locks" in navigator && typeof BroadcastChannel !== "undefined" ? followTogether : followAlone;
+  let current: AbortController | null = null;
+  const update = () => {
+    if (document.visibilityState === "hidden") {
+      current?.abort();
+      current = null;
+    } else if (current === null) {
+      current = new AbortController();
+      follow(client, key, listener, current.signal);
+    }
+  };
+  document.addEventListener("visibilitychange", update);
+  update();
+  return () => {
+    document.removeEventListener("visibilitychange", update);
+    current?.abort();
+  };
 }
 
-function followTogether(client: Client, key: string, listener: StreamListener, stop: AbortSignal) {
+/** The tab that holds the lock keeps the stream and tells the others, who wait for their turn. */
+const followTogether: Follow = (client, key, listener, stop) => {
   const name = `weighhouse:${key}`;
   const channel = new BroadcastChannel(name);
   // oxlint-disable-next-line unicorn/require-post-message-target-origin -- a channel has one origin, the rule takes it for a window
   const post = (message: Message) => channel.postMessage(message);
-  let leading = false;
-  let state: StreamState = "connecting";
-  const tell = (message: Message) => {
-    deliver(message, listener);
-    post(message);
+  const told: { state: StreamState; event: CampaignEvent | null } = {
+    state: "connecting",
+    event: null,
   };
-  channel.addEventListener("message", (message: MessageEvent<Message>) => {
-    // A tab that comes later asks how things stand.
-    if (message.data.type === "hello") {
-      if (leading) post({ type: "state", state });
-    } else deliver(message.data, listener);
+  let leading = false;
+
+  channel.addEventListener("message", ({ data }: MessageEvent<Message>) => {
+    if (data.type === "event") listener.onEvent(data.event);
+    else if (data.type === "state") listener.onState(data.state);
+    else if (leading) {
+      // A tab that comes later asks how things stand.
+      post({ type: "state", state: told.state });
+      if (told.event) post({ type: "event", event: told.event });
+    }
   });
   post({ type: "hello" });
+
   const lead = () =>
     new Promise<void>((resolve) => {
       leading = true;
-      const close = openStream(client, key, {
-        onEvent: (event) => tell({ type: "event", event }),
-        onState: (next) => {
-          state = next;
-          tell({ type: "state", state });
-        },
-      });
+      const own = new AbortController();
       stop.addEventListener("abort", () => {
-        close();
+        own.abort();
         resolve();
       });
+      followAlone(
+        client,
+        key,
+        {
+          onEvent: (event) => {
+            told.event = event;
+            listener.onEvent(event);
+            post({ type: "event", event });
+          },
+          onState: (state) => {
+            told.state = state;
+            listener.onState(state);
+            post({ type: "state", state });
+          },
+        },
+        own.signal,
+      );
     });
   navigator.locks.request(name, { signal: stop }, lead).catch(() => {
-    // Aborted while waiting for its turn: this tab stopped following before it ever led.
+    // Aborted while it waited for its turn: this tab stopped following before it ever led.
   });
   stop.addEventListener("abort", () => channel.close());
-}
+};
 
-function followWhileVisible(
-  client: Client,
-  key: string,
-  listener: StreamListener,
-  stop: AbortSignal,
-) {
-  let close: (() => void) | null = null;
-  const update = () => {
-    if (document.visibilityState === "visible") close ??= openStream(client, key, listener);
-    else {
-      close?.();
-      close = null;
-    }
-  };
-  document.addEventListener("visibilitychange", update, { signal: stop });
-  stop.addEventListener("abort", () => close?.());
-  update();
-}
-
-function openStream(client: Client, key: string, listener: StreamListener): () => void {
+const followAlone: Follow = (client, key, listener, stop) => {
   const subscription = client.events.watch.subscribe(
     { key },
     {
@@ -108,10 +117,5 @@ function openStream(client: Client, key: string, listener: StreamListener): () =
       onError: () => listener.onState("lost"),
     },
   );
-  return () => subscription.unsubscribe();
-}
-
-function deliver(message: Message, listener: StreamListener) {
-  if (message.type === "event") listener.onEvent(message.event);
-  if (message.type === "state") listener.onState(message.state);
-}
+  stop.addEventListener("abort", () => subscription.unsubscribe());
+};

@@ -23,6 +23,10 @@ test("a time axis within a day says hours, over months it says dates", () => {
     "29 May, 15:00",
   ]);
   const months = timeTicks(at("2031-01-01T00:00:00Z"), at("2031-12-31T00:00:00Z"));
-  expect(months.ticks.length).toBeLessThanOrEqual(6);
-  expect(months.text(months.ticks[0] ?? 0)).toMatch(/^\d+ [A-Z][a-z]{2} 2031$/);
+  expect(months.ticks.map(months.text)).toEqual([
+    "1 Jan 2031",
+    "1 Apr 2031",
+    "1 Jul 2031",
+    "1 Oct 2031",
+  ]);
 });

@@ -37,8 +37,10 @@ const steps = [
   3 * HOUR,
   6 * HOUR,
   12 * HOUR,
-  ...[1, 2, 7, 14, 30, 91, 182, 365.25, 730.5, 3652.5, 36_525].map((days) => days * DAY),
+  ...[1, 2, 7, 14].map((days) => days * DAY),
 ];
+/** In months: beyond two weeks ticks stand at the first of a month. */
+const monthSteps = [1, 2, 3, 6, 12, 24, 60, 120, 240, 600, 1200];
 
 /** Times in [from, to], milliseconds, a round step apart in UTC, with how to write them. */
 export function timeTicks(
@@ -46,10 +48,28 @@ export function timeTicks(
   to: number,
   count = 5,
 ): { ticks: number[]; text: (at: number) => string } {
-  const step = steps.find((each) => (to - from) / each <= count) ?? (to - from) / count;
+  const step = steps.find((each) => (to - from) / each <= count);
+  if (step === undefined) return { ticks: monthTicks(from, to, count), text: dateText };
   const ticks: number[] = [];
   for (let at = Math.ceil(from / step) * step; at <= to; at += step) ticks.push(at);
   return { ticks, text: (at) => timeText(at, step) };
+}
+
+function monthTicks(from: number, to: number, count: number): number[] {
+  const months = (to - from) / (30.44 * DAY);
+  const step = monthSteps.find((each) => months / each <= count) ?? Math.ceil(months / count);
+  const first = new Date(from);
+  const ticks: number[] = [];
+  const start = first.getUTCFullYear() * 12 + first.getUTCMonth();
+  for (let month = Math.ceil(start / step) * step; ; month += step) {
+    const at = new Date(0).setUTCFullYear(Math.floor(month / 12), month % 12, 1);
+    if (at > to) return ticks;
+    if (at >= from) ticks.push(at);
+  }
+}
+
+function dateText(at: number): string {
+  return formatDate(new Date(at).toISOString());
 }
 
 function timeText(at: number, step: number): string {

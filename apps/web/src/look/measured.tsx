@@ -1,5 +1,6 @@
 import { formatNumber, roundToUncertainty, timesTenTo } from "@weighhouse/figures/numbers";
 import { Num } from "./number";
+import { unitText } from "./unit-text";
 
 /**
  * A value with its uncertainty and unit, rounded together; each of the two numbers says its own
@@ -16,7 +17,7 @@ export function Measured(props: {
   valueName?: "value" | "mean";
 }) {
   const { value, sd, at } = props;
-  const unit = props.unit !== null && props.unit !== "1" ? `\u00a0${props.unit}` : "";
+  const unit = props.unit !== null && props.unit !== "1" ? `\u00a0${unitText(props.unit)}` : "";
   const valueAt = at ? `${at}/${props.valueName ?? "value"}` : undefined;
   if (sd === null || !(sd > 0)) {
     return (

@@ -1,18 +1,5 @@
-import type { VerdictRow } from "@weighhouse/campaign/standings";
-
-type VerdictWord = VerdictRow["verdict"];
-type Order = VerdictRow["order"];
-
-/** The word that a reader sees for each verdict; a plain one where the document's is terse. */
-export const verdictWords: Record<VerdictWord, string> = {
-  pass: "pass",
-  fail: "fail",
-  undecided: "undecided",
-  awaiting: "awaiting",
-  notMeasured: "not measured",
-  withheld: "withheld",
-  void: "void",
-};
+import type { Order, VerdictWord } from "@weighhouse/campaign/standings";
+export { VERDICT_WORDS as verdictWords } from "@weighhouse/figures/verdict-marks";
 
 export const verdictMeanings: Record<VerdictWord, string> = {
   pass: "The true value lies within the theory's error with the probability that the campaign's rule asks for.",

@@ -6,6 +6,7 @@ import { formatWindow } from "@weighhouse/figures/times";
 import { conditionsInWords, referenceInWords, unitOf } from "@/campaign/plain-words";
 import { Measured } from "@/look/measured";
 import { Num } from "@/look/number";
+import { unitText } from "@/look/unit-text";
 
 /** The declaration of a quantity, and what its measurements say taken together. */
 export function MeasurandFacts(props: {
@@ -24,7 +25,8 @@ export function MeasurandFacts(props: {
       </dd>
       <dt>Kind (observable)</dt>
       <dd>
-        {observable.title}, {observable.unit ?? "no unit"}, {observable.scale} scale
+        {observable.title}, {observable.unit ? unitText(observable.unit) : "no unit"},{" "}
+        {observable.scale} scale
       </dd>
       <dt>Window</dt>
       <dd>

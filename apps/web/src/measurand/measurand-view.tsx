@@ -1,13 +1,18 @@
 import type { CampaignDocument, Measurand, Observable } from "@weighhouse/campaign/document";
-import type { Standings } from "@weighhouse/campaign/standings";
+import type { MeasurandStanding, Standings } from "@weighhouse/campaign/standings";
+import { measurandSvg } from "@weighhouse/figures/measurand-svg";
+import type { MeasurandInput } from "@weighhouse/figures/measurand-svg";
 import { ButtonLink } from "@/look/button";
+import { FigureWithoutScript } from "@/look/figure-without-script";
 import { Empty } from "@/look/notice";
 import { Section } from "@/look/section";
+import { unitText } from "@/look/unit-text";
 import { rankedHypotheses } from "@/standings/table-rows";
 import { MeasurandFacts } from "./measurand-facts";
 import { MeasurandPlot } from "./measurand-plot";
 import { MeasurementRows } from "./measurement-rows";
 import { measurandPlot } from "./plot-data";
+import type { MeasurandPlotData } from "./plot-data";
 import { PlotLegend } from "./plot-legend";
 import { PredictionRows } from "./prediction-rows";
 import type { PredictionRow } from "./prediction-rows";
@@ -42,8 +47,14 @@ export function MeasurandView(props: {
           {measurements.length > 0 || plot.bands.length > 0 ? (
             <>
               {observable.unit && observable.unit !== "1" ? (
-                <p className="text-[13.5px] text-quiet">in {observable.unit}</p>
+                <p className="text-[13.5px] text-quiet">in {unitText(observable.unit)}</p>
               ) : null}
+              <FigureWithoutScript
+                label={`${measurand.title}: predictions and measurements, as in the tables below`}
+                svg={measurandSvg(figureOf(measurand, observable, plot, standing), {
+                  widthPx: 900,
+                })}
+              />
               <MeasurandPlot data={plot} />
               <PlotLegend data={plot} />
             </>
@@ -91,6 +102,29 @@ export function MeasurandView(props: {
       </Section>
     </>
   );
+}
+
+function figureOf(
+  measurand: Measurand,
+  observable: Observable,
+  plot: MeasurandPlotData,
+  standing: MeasurandStanding | null,
+): MeasurandInput {
+  return {
+    key: measurand.key,
+    title: measurand.title ?? measurand.key,
+    observable,
+    reference: plot.reference,
+    predictions: plot.bands.map((band) => ({
+      key: band.key,
+      title: band.title,
+      place: band.index,
+      low: band.lower,
+      high: band.upper,
+    })),
+    measurements: plot.points,
+    combined: standing?.combined ?? null,
+  };
 }
 
 function predictionRows(props: {

@@ -2,7 +2,7 @@
 
 import Link from "next/link";
 import { usePathname, useRouter } from "next/navigation";
-import { useState } from "react";
+import { useState, useTransition } from "react";
 import { Button } from "@/look/button";
 import { Time } from "@/look/time";
 
@@ -21,10 +21,12 @@ export function AsOf(props: {
   const router = useRouter();
   const [chosen, setChosen] = useState<number | null>(null);
   const size = chosen ?? props.size;
-  const go = (next: number) => {
-    setChosen(null);
-    router.push(next >= props.latestSize ? path : `${path}?size=${next}`, { scroll: false });
-  };
+  const [loading, start] = useTransition();
+  const go = (next: number) =>
+    start(() => {
+      setChosen(null);
+      router.push(next >= props.latestSize ? path : `${path}?size=${next}`, { scroll: false });
+    });
   const earlier = props.steps.findLast((step) => step < props.size);
   const later = props.steps.find((step) => step > props.size);
   return (
@@ -55,7 +57,8 @@ export function AsOf(props: {
       />
       <span className="whitespace-nowrap">
         {size - 1}
-        {chosen === null || chosen === props.size ? (
+        {loading ? ", on its way" : null}
+        {!loading && (chosen === null || chosen === props.size) ? (
           <>
             , <Time at={props.at} />
             {props.size === props.latestSize ? " (now)" : ""}

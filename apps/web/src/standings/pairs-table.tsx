@@ -5,6 +5,29 @@ import { Num, tailOf } from "@/look/number";
 import { Table } from "@/look/table";
 import type { RankedHypothesis } from "./table-rows";
 
+/** The pairs with the leader, the others on demand: of twelve hypotheses there are 66. */
+export function Pairs(props: { pairs: readonly Pair[]; hypotheses: RankedHypothesis[] }) {
+  const placed = props.pairs.map((pair, index) => ({ pair, index }));
+  const leader = props.hypotheses[0]?.key;
+  const others = placed.filter(({ pair }) => pair.a !== leader);
+  return (
+    <>
+      <PairsTable
+        pairs={placed.filter(({ pair }) => pair.a === leader)}
+        hypotheses={props.hypotheses}
+      />
+      {others.length > 0 ? (
+        <details className="mt-3">
+          <summary className="cursor-pointer text-quiet">
+            Pairs without the leader ({others.length})
+          </summary>
+          <PairsTable pairs={others} hypotheses={props.hypotheses} />
+        </details>
+      ) : null}
+    </>
+  );
+}
+
 /** Each pair twice weighed: on everything, and on the common ground that both predict. */
 export function PairsTable(props: {
   /** With their places in the standings' `pairs`. */

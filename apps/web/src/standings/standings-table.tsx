@@ -79,7 +79,9 @@ function Row({
           {hypothesis.title}
         </Link>
         {standing.failedDecisive.length > 0 ? (
-          <span className="ml-2 text-[13px] text-rust">failed a decisive prediction</span>
+          <span className="block pl-[3.4em] text-[13px] text-rust max-[1100px]:pl-0">
+            failed a decisive prediction
+          </span>
         ) : null}
       </th>
       <td className="number" data-label="log₁₀ B">

@@ -9,8 +9,9 @@ import type { CampaignView } from "@/server/campaign";
 import { AsOf } from "./as-of";
 import { Beam } from "./beam";
 import { beamView } from "./beam-input";
+import { DeclaredRules } from "./declared-rules";
 import { MovedNote } from "./moved-note";
-import { PairsTable } from "./pairs-table";
+import { Pairs } from "./pairs-table";
 import { ScoringProblems } from "./scoring-problems";
 import { StandingsTable } from "./standings-table";
 import { rankedHypotheses, verdictGrid } from "./table-rows";
@@ -47,6 +48,8 @@ export async function StandingsView(props: { campaignKey: string; size: number |
   const { standings } = scored;
   const { document } = view;
   const hypotheses = rankedHypotheses(standings, document);
+  // What is silent on everything by its definition has no column.
+  const inGrid = hypotheses.filter((each) => each.index < document.hypotheses.length);
   const base = `/campaigns/${props.campaignKey}`;
   return (
     <div data-standings-size={scored.size} data-standings-state={scored.state}>
@@ -54,6 +57,9 @@ export async function StandingsView(props: { campaignKey: string; size: number |
         <output className="block">
           <Notice>Newer entries are being scored; this is the last state before them.</Notice>
         </output>
+      ) : null}
+      {document.campaign.summary ? (
+        <p className="mb-4 max-w-[105ch] whitespace-pre-line">{document.campaign.summary}</p>
       ) : null}
       <Section title="The beam" id="beam">
         {hypotheses.length > 0 ? (
@@ -87,8 +93,8 @@ export async function StandingsView(props: { campaignKey: string; size: number |
       <Section title="Verdicts" gloss="tension in σ first" id="verdicts">
         {document.measurands.length > 0 ? (
           <VerdictGrid
-            rows={verdictGrid(standings, document, hypotheses)}
-            hypotheses={hypotheses}
+            rows={verdictGrid(standings, document, inGrid)}
+            hypotheses={inGrid}
             base={base}
           />
         ) : (
@@ -102,12 +108,12 @@ export async function StandingsView(props: { campaignKey: string; size: number |
       />
       {standings.pairs.length > 0 ? (
         <Section title="Pairs" gloss="where the two figures disagree, silence decides" id="pairs">
-          <PairsTable
-            pairs={standings.pairs.map((pair, index) => ({ pair, index }))}
-            hypotheses={hypotheses}
-          />
+          <Pairs pairs={standings.pairs} hypotheses={hypotheses} />
         </Section>
       ) : null}
+      <Section title="As declared" id="declared">
+        <DeclaredRules document={document} />
+      </Section>
     </div>
   );
 }

@@ -15,16 +15,21 @@ import {
 } from "recharts";
 import type { TooltipContentProps } from "recharts";
 import { linearTicks, timeTicks } from "@/look/axis-ticks";
-import { inkOf } from "@/look/hypothesis-mark";
+import { dashOf, inkOf } from "@/look/hypothesis-mark";
 import type { TimelineRow } from "./timeline-rows";
 
 interface Series {
   key: string;
   title: string;
-  index: number;
+  /** Place in the document; null for no model, a thin dotted line. */
+  index: number | null;
 }
 
-const dashes = ["", "7 4", "2 4", "10 4 2 4", "4 2"];
+function lineOf({ index }: Series): { ink: string; dash: string | undefined } {
+  return index === null
+    ? { ink: "var(--quiet)", dash: "1 4" }
+    : { ink: inkOf(index), dash: dashOf(index) };
+}
 
 /** ln evidence over time, in steps at each transaction that moved it. */
 export function TimelineChart(props: { rows: TimelineRow[]; series: Series[] }) {
@@ -95,10 +100,10 @@ export function TimelineChart(props: { rows: TimelineRow[]; series: Series[] }) 
                 type="stepAfter"
                 dataKey={(row: TimelineRow) => row.values[each.key] ?? null}
                 name={each.title}
-                stroke={inkOf(each.index)}
-                strokeDasharray={dashes[each.index % dashes.length]}
+                stroke={lineOf(each).ink}
+                strokeDasharray={lineOf(each).dash}
                 strokeWidth={2}
-                dot={rows.length < 40 ? { r: 2.5, fill: inkOf(each.index), strokeWidth: 0 } : false}
+                dot={rows.length < 40 ? { r: 2.5, fill: lineOf(each).ink, strokeWidth: 0 } : false}
                 isAnimationActive={false}
                 connectNulls={false}
               />
@@ -115,9 +120,9 @@ export function TimelineChart(props: { rows: TimelineRow[]; series: Series[] }) 
                 y1="4"
                 x2="30"
                 y2="4"
-                stroke={inkOf(each.index)}
+                stroke={lineOf(each).ink}
                 strokeWidth="2"
-                strokeDasharray={dashes[each.index % dashes.length]}
+                strokeDasharray={lineOf(each).dash}
               />
             </svg>
             {each.title}
@@ -144,7 +149,7 @@ function Tip(props: Partial<TooltipContentProps> & { series: Series[] }) {
               <th
                 scope="row"
                 className="pr-3 text-left font-normal"
-                style={{ color: inkOf(each.index) }}
+                style={{ color: lineOf(each).ink }}
               >
                 {each.title}
               </th>

@@ -1,5 +1,7 @@
 import type { TimelineStep } from "@weighhouse/store/standings";
 import { formatLnEvidence } from "@weighhouse/figures/standing-numbers";
+import { timelineSvg } from "@weighhouse/figures/timeline-svg";
+import { FigureWithoutScript } from "@/look/figure-without-script";
 import { Section } from "@/look/section";
 import { Table } from "@/look/table";
 import { Time } from "@/look/time";
@@ -19,9 +21,26 @@ export function TimelineSection(props: {
     <Section title="ln evidence over time" gloss="in steps, at what moved it" id="timeline">
       {rows.length > 0 ? (
         <>
+          <FigureWithoutScript
+            label="ln evidence over time; the same stands in the table below"
+            svg={timelineSvg(
+              {
+                hypotheses: props.hypotheses.map(({ key, title, index }) => ({
+                  key,
+                  title,
+                  place: index,
+                })),
+                points: rows.map(({ at, values }) => ({ at, lnEvidence: values })),
+              },
+              { widthPx: 900 },
+            )}
+          />
           <TimelineChart
             rows={rows}
-            series={props.hypotheses.map(({ key, title, index }) => ({ key, title, index }))}
+            series={[
+              ...props.hypotheses.map(({ key, title, index }) => ({ key, title, index })),
+              { key: "noModel", title: "no model", index: null },
+            ]}
           />
           <details className="mt-3 text-[14px]">
             <summary className="cursor-pointer text-quiet">The same as a table</summary>

@@ -24,7 +24,7 @@ export function VerdictGrid(props: {
   return (
     <Table
       caption="Verdicts, a row for each quantity, a column for each hypothesis"
-      stackBelow={props.hypotheses.length > 5 ? "always" : "middle"}
+      stackBelow={stackBelow(props.hypotheses.length)}
       head={
         <tr>
           <th scope="col">Quantity, in window order</th>
@@ -65,6 +65,12 @@ export function VerdictGrid(props: {
       ))}
     </Table>
   );
+}
+
+/** A column for each hypothesis takes about 145 px, the two before them 350. */
+function stackBelow(columns: number): "middle" | "wide" | "always" {
+  if (columns <= 4) return "middle";
+  return columns <= 6 ? "wide" : "always";
 }
 
 function MeasuredCell({ row }: { row: GridRow }) {

@@ -1,6 +1,8 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { Warning } from "@weighhouse/campaign/standings";
+import Link from "next/link";
 import { Notice } from "@/look/notice";
+import { warnedPlace } from "./warned-place";
 
 /** What each warning means to a reader, before the engine's own sentence. */
 const words: Record<Warning["code"], string> = {
@@ -30,9 +32,23 @@ export function Warnings(props: { warnings: readonly Warning[]; document: Campai
           <Notice tone={warning.code === "every-hypothesis-fails" ? "bad" : "plain"}>
             <strong className="font-semibold">{words[warning.code]}</strong>{" "}
             <span data-at={`/warnings/${index}/text`}>{warning.text}</span>
+            <PlaceLink at={warning.at} document={props.document} />
           </Notice>
         </li>
       ))}
     </ul>
+  );
+}
+
+function PlaceLink({ at, document }: { at: string; document: CampaignDocument }) {
+  const place = warnedPlace(at, document);
+  if (place === null) return null;
+  return (
+    <>
+      {" "}
+      <Link className="link" href={`/campaigns/${document.campaign.key}/${place.path}`}>
+        {place.title}
+      </Link>
+    </>
   );
 }
