@@ -1,5 +1,6 @@
 import type { Hypothesis, Prediction } from "./document";
-import type { PartContent } from "./changes";
+
+type PartContent = Record<string, unknown>;
 
 /**
  * A hypothesis after an amendment. It keeps the time of its registration; each prediction that

@@ -30,7 +30,14 @@ export type Problem = { pointer: string; code: ProblemCode; found: string; allow
 
 export type Result<T> = { ok: true; value: T } | { ok: false; problems: Problem[] };
 
-/** A problem as one line of text, the same on the command line, in the API and on pages. */
-export function problemLine(problem: Problem): string {
-  return `${problem.pointer === "" ? "(document)" : problem.pointer}: found ${problem.found}; allowed ${problem.allowed}`;
+/**
+ * A problem as one line of text, the same on the command line, in the API and on pages: what it
+ * quotes may hold line ends and control characters, which are written as JSON escapes.
+ */
+export function problemLine({ pointer, found, allowed }: Problem): string {
+  const line = `${pointer === "" ? "(document)" : pointer}: found ${found}; allowed ${allowed}`;
+  // oxlint-disable-next-line no-control-regex -- They are what is escaped.
+  return line.replaceAll(/[\u0000-\u001f\u007f-\u009f\u2028\u2029]/g, (character) => {
+    return `\\u${character.charCodeAt(0).toString(16).padStart(4, "0")}`;
+  });
 }

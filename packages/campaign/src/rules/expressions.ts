@@ -3,7 +3,7 @@ import { compileExpression } from "../expression";
 import type { Legible } from "../form";
 import { below } from "../pointer";
 import { conditionKeys } from "./measurands";
-import type { PredictionPlace } from "./predictions";
+import type { PredictionPlace } from "./prediction-place";
 import { legible } from "./reading";
 import type { Reading } from "./reading";
 import { hasValueSomewhere } from "./sampling";

@@ -1,5 +1,5 @@
 import { conditionFromTime } from "../conditions";
-import type { Condition, Measurand, Measurement, Observable, SharedError } from "../document";
+import type { Condition, Measurement, SharedError } from "../document";
 import type { Legible } from "../form";
 import { compareInstants } from "../instants";
 import { below } from "../pointer";
@@ -10,18 +10,7 @@ import { checkReports } from "./reports";
 import { checkResult } from "./results";
 import { legible } from "./reading";
 import type { Reading } from "./reading";
-
-/** What measurements of one measurand are held against: found once, used for each of them. */
-export type Target = {
-  key: string;
-  measurand: Legible<Measurand>;
-  observable: Legible<Observable> | undefined;
-  conditions: ReadonlySet<string>;
-  fromTime: Legible<Condition>[];
-  where: [string, number | null, number | null][];
-  /** Conditions that a prediction or the reference of a curve uses, each with what uses it. */
-  needed: ReadonlyMap<string, string>;
-};
+import type { Target } from "./target";
 
 /** Measurements: known keys, inside window and conditions, a result of one form, a unit that fits. */
 export function checkMeasurements(reading: Reading): void {

@@ -1,23 +1,11 @@
-import type { Hypothesis, Measurand, Observable, Prediction, Tolerance } from "../document";
+import type { Hypothesis, Observable, Prediction, Tolerance } from "../document";
 import type { Legible } from "../form";
 import { below } from "../pointer";
 import { checkExpression, isWhole } from "./expressions";
 import { checkRange, conditionKeys, positiveOnLog10 } from "./measurands";
+import type { PredictionPlace } from "./prediction-place";
 import { legible } from "./reading";
 import type { Reading } from "./reading";
-
-/** Where a prediction stands, and what it is about. */
-export type PredictionPlace = {
-  hypothesis: Legible<Hypothesis>;
-  hypothesisPointer: string;
-  prediction: Legible<Prediction>;
-  pointer: string;
-  observable: Legible<Observable> | undefined;
-  /** Whether the names of the hypothesis could all be read. */
-  whole: boolean;
-  /** Undefined also for a derived value, which has no conditions. */
-  measurand: Legible<Measurand> | undefined;
-};
 
 /** Each measurand predicted once, and with what its scale asks for. */
 export function checkPredictions(

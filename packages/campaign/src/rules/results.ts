@@ -2,8 +2,8 @@ import type { Measurement, Observable, Scale } from "../document";
 import type { Legible } from "../form";
 import { below } from "../pointer";
 import { conversion } from "../units";
-import type { Target } from "./measurements";
 import type { Reading } from "./reading";
+import type { Target } from "./target";
 
 type Place = {
   reading: Reading;

@@ -1,7 +1,7 @@
 import type { Ensemble, Measurand, Parameter, Prior } from "../document";
 import type { Expression } from "../expression";
 import type { Legible } from "../form";
-import type { PredictionPlace } from "./predictions";
+import type { PredictionPlace } from "./prediction-place";
 
 /** Draws of parameters, and points of conditions, at which an expression is tried. */
 const DRAWS = 256;

@@ -1,0 +1,15 @@
+import type { Hypothesis, Measurand, Observable, Prediction } from "../document";
+import type { Legible } from "../form";
+
+/** Where a prediction stands, and what it is about. */
+export type PredictionPlace = {
+  hypothesis: Legible<Hypothesis>;
+  hypothesisPointer: string;
+  prediction: Legible<Prediction>;
+  pointer: string;
+  observable: Legible<Observable> | undefined;
+  /** Whether the names of the hypothesis could all be read. */
+  whole: boolean;
+  /** Undefined also for a derived value, which has no conditions. */
+  measurand: Legible<Measurand> | undefined;
+};
