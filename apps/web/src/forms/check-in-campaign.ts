@@ -12,7 +12,7 @@ type Parts = "observables" | "measurands" | "sharedErrors" | "facilities" | "tea
  */
 export async function problemsInCampaign(
   document: CampaignDocument,
-  options: { list: Parts; part: object; replaces?: string | null },
+  options: { list: Parts; part: unknown; replaces?: string | null },
 ): Promise<Problem[]> {
   const { readCampaign } = await import("@weighhouse/campaign/read");
   const { list, part, replaces = null } = options;

@@ -1,4 +1,4 @@
-import { expect, test, vi } from "vitest";
+import { expect, test } from "vitest";
 import { z } from "zod";
 import { formSchema, stepsOfPointer } from "./form-schema";
 
@@ -24,22 +24,27 @@ test("each problem stands at the field that its content came from", async () => 
   expect(issues[0]?.message).toBe("Empty; allowed is a text of at least 1 characters.");
 });
 
-test("what only the campaign shows is asked once the schema is content, and stands at its field", async () => {
-  const further = vi.fn(async () => [
-    { pointer: "/at/sd", code: "out-of-range" as const, found: "2", allowed: "below 1" },
-  ]);
+test("what only the campaign shows is said together with what the schema finds, each place once", async () => {
   const strict = formSchema({
-    schema: z.object({ at: z.object({ sd: z.number() }) }),
-    content: (values: { sd: string }) => ({
+    schema: z.object({ title: z.string().min(1), at: z.object({ sd: z.number() }) }),
+    content: (values: { title: string; sd: string }) => ({
+      title: values.title,
       at: { sd: values.sd === "" ? null : Number(values.sd) },
     }),
-    field: () => "sd",
-    further,
+    field: (_values, path) => String(path.at(-1)),
+    further: async () => [
+      { pointer: "/at/sd", code: "out-of-range" as const, found: "2", allowed: "below 1" },
+    ],
   });
-  expect((await strict.safeParseAsync({ sd: "" })).success).toBe(false);
-  expect(further).not.toHaveBeenCalled();
-  const issue = (await strict.safeParseAsync({ sd: "2" })).error?.issues[0];
-  expect(issue).toMatchObject({ path: ["sd"], message: "Found 2; allowed is below 1." });
+  const issues = async (values: { title: string; sd: string }) =>
+    (await strict.safeParseAsync(values)).error?.issues.map(
+      ({ path, message }) => `${path.join(".")}: ${message}`,
+    );
+  expect(await issues({ title: "", sd: "2" })).toEqual([
+    "title: Empty; allowed is a text of at least 1 characters.",
+    "sd: Found 2; allowed is below 1.",
+  ]);
+  expect(await issues({ title: "A", sd: "" })).toEqual(["sd: Empty; allowed is a number."]);
 });
 
 test("a JSON Pointer is taken apart as RFC 6901 says", () => {

@@ -11,8 +11,8 @@ export interface FormReading<Values, Content> {
   content: (values: Values) => unknown;
   /** The form's field for a place in the content, where they differ. */
   field?: (values: Values, path: Path) => string;
-  /** What only the whole campaign shows, once the schema is content: pointers into the content. */
-  further?: (content: Content) => Promise<readonly Problem[]>;
+  /** What only the whole campaign shows: pointers into the content, which may be wrong in places. */
+  further?: (content: unknown) => Promise<readonly Problem[]>;
 }
 
 /**
@@ -35,14 +35,11 @@ export function formSchema<Values, Content>(
       });
     };
     const read = readForm(schema, content, "");
-    if (read.problems.length > 0) {
-      read.problems.forEach(put);
-      return z.NEVER;
-    }
-    const whole = read.value as Content;
-    const problems = (await further?.(whole)) ?? [];
+    const known = new Set(read.problems.map(({ pointer }) => pointer));
+    const more = ((await further?.(content)) ?? []).filter(({ pointer }) => !known.has(pointer));
+    const problems = [...read.problems, ...more];
     problems.forEach(put);
-    return problems.length > 0 ? z.NEVER : whole;
+    return problems.length > 0 ? z.NEVER : (read.value as Content);
   }) as z.ZodType<Content, Values>;
 }
 
