@@ -51,30 +51,49 @@ export async function readDocument(
   return { document, size: asOf, latestSize: found.size, treeHead, at };
 }
 
+/**
+ * The newest document without its measurements, for who judges new ones: their number is no cost.
+ * The dates of measurands are there, since the fold keeps them with the measurands.
+ */
+export async function readDeclarations(
+  store: Store,
+  campaign: string,
+): Promise<{ document: CampaignDocument; size: number }> {
+  const found = await findCampaign(store, campaign);
+  const declared = await readDeclared(store, found, found.size);
+  const parts = declared.filter(({ part }) => part !== "correlation");
+  return { document: documentFromParts(parts), size: found.size };
+}
+
 /** Versions that hold at a size never change again, so this needs no lock and no snapshot. */
-async function readParts(store: Store, { id }: CampaignRow, size: number): Promise<Part[]> {
-  const holds = (table: typeof parts | typeof measurements) =>
-    and(
-      eq(table.campaignId, id),
-      lte(table.fromSize, size),
-      or(isNull(table.toSize), gt(table.toSize, size)),
-    );
-  const [others, posted] = await Promise.all([
-    store.readDb
-      .select({ part: parts.part, key: parts.key, content: parts.content })
-      .from(parts)
-      .where(holds(parts))
-      .orderBy(asc(parts.firstSeq), asc(parts.firstPlace)),
-    store.readDb
-      .select({ key: measurements.id, content: measurements.content })
-      .from(measurements)
-      .where(holds(measurements))
-      .orderBy(asc(measurements.firstSeq), asc(measurements.firstPlace)),
+async function readParts(store: Store, campaign: CampaignRow, size: number): Promise<Part[]> {
+  const read = await Promise.all([
+    readDeclared(store, campaign, size),
+    readPosted(store, campaign, size),
   ]);
-  return [
-    ...others.map(({ part, key, content }) => partOf(part as PartName, key, content)),
-    ...posted.map(({ key, content }) => partOf("measurement", key, content)),
-  ];
+  return read.flat();
+}
+
+async function readDeclared(store: Store, { id }: CampaignRow, size: number): Promise<Part[]> {
+  const rows = await store.readDb
+    .select({ part: parts.part, key: parts.key, content: parts.content })
+    .from(parts)
+    .where(and(eq(parts.campaignId, id), holdsAt(parts, size)))
+    .orderBy(asc(parts.firstSeq), asc(parts.firstPlace));
+  return rows.map(({ part, key, content }) => partOf(part as PartName, key, content));
+}
+
+async function readPosted(store: Store, { id }: CampaignRow, size: number): Promise<Part[]> {
+  const rows = await store.readDb
+    .select({ key: measurements.id, content: measurements.content })
+    .from(measurements)
+    .where(and(eq(measurements.campaignId, id), holdsAt(measurements, size)))
+    .orderBy(asc(measurements.firstSeq), asc(measurements.firstPlace));
+  return rows.map(({ key, content }) => partOf("measurement", key, content));
+}
+
+function holdsAt(table: typeof parts | typeof measurements, size: number) {
+  return and(lte(table.fromSize, size), or(isNull(table.toSize), gt(table.toSize, size)));
 }
 
 function partOf(part: PartName, key: string, content: string): Part {
