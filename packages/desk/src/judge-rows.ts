@@ -60,7 +60,7 @@ function readRow({ line, draft, problems }: ReadRow, access: Access): JudgedRow 
   if (draft === null || problems.length > 0) return refused;
   const content = { ...draft, team: draft["team"] ?? access.team };
   const given = draft["id"] ?? null;
-  const read = readForm(measurementContentSchema, { ...content, id: given ?? PLACEHOLDER }, "");
+  const read = readContent({ ...content, id: given ?? PLACEHOLDER });
   const faults = read.problems.map(rowProblem);
   if (access.role === "member" && content.team !== access.team) {
     const found = JSON.stringify(content.team);
@@ -70,8 +70,15 @@ function readRow({ line, draft, problems }: ReadRow, access: Access): JudgedRow 
     return { ...refused, id: typeof given === "string" ? given : null, problems: faults };
   }
   const id = typeof given === "string" ? given : defaultMeasurementId(content);
-  const measurement = { ...(read.value as MeasurementContent), id };
+  const measurement = { ...read.value!, id };
   return { ...refused, id, fate: "new", measurement };
+}
+
+/** Most rows are good, and the quick reading tells; only what fails it is read for its words. */
+function readContent(content: unknown): { value: MeasurementContent | null; problems: Problem[] } {
+  const quick = measurementContentSchema.safeParse(content);
+  if (quick.success) return { value: quick.data, problems: [] };
+  return { value: null, problems: readForm(measurementContentSchema, content, "").problems };
 }
 
 function refuseRepeated(rows: JudgedRow[]): JudgedRow[] {

@@ -4,7 +4,7 @@ import { problemLine } from "@weighhouse/campaign/problem";
 import type { Problem } from "@weighhouse/campaign/problem";
 import { postMeasurements as storeMeasurements } from "@weighhouse/store/post-measurements";
 import type { Conflict } from "@weighhouse/store/post-measurements";
-import { readDocument } from "@weighhouse/store/read-document";
+import { readDeclarations } from "@weighhouse/store/read-document";
 import { enter } from "./access";
 import { appended } from "./appended";
 import type { Appended } from "./appended";
@@ -50,7 +50,7 @@ export async function postMeasurements(
   const { key, source } = parseInput(postMeasurementsInput, input);
   const access = await enter(desk, actor, key, "post-measurements");
   const by = authorOf(access);
-  const { document } = await onStore(() => readDocument(desk.store, key));
+  const { document } = await onStore(() => readDeclarations(desk.store, key));
   const table = readRows(source, document);
   const judged = await judgeRows(desk, table, { document, access, at: timeAt(desk) });
   const place = placeIn(source.from);
