@@ -1,5 +1,7 @@
 import { execFileSync } from "node:child_process";
 import { readFileSync, statSync } from "node:fs";
+import { relative } from "node:path";
+import { fileURLToPath } from "node:url";
 import { describe, expect, test } from "vitest";
 import { bin, eclipse, weighhouse } from "./testing/command";
 
@@ -51,6 +53,16 @@ test("--version is the engine's", async () => {
 
 test("the program is committed as executable, so that npm links it", () => {
   expect(statSync(bin).mode & 0o111).toBe(0o111);
+});
+
+test("npx runs it from any folder of a checkout, paths meant from there", () => {
+  const folder = fileURLToPath(new URL("commands", import.meta.url));
+  const document = relative(folder, eclipse);
+  const out = execFileSync("npx", ["weighhouse", "check", document], {
+    cwd: folder,
+    encoding: "utf8",
+  });
+  expect(out).toMatch(/^Valid: /);
 });
 
 test("a reader that closes the pipe early ends it quietly", () => {
