@@ -19,7 +19,7 @@ const quiet = {
 
 export const say = (text) => process.stdout.write(`weighhouse: ${text}\n`);
 
-export function fail(text) {
+function fail(text) {
   process.stderr.write(`weighhouse: ${text}\n`);
   process.exit(1);
 }

@@ -3,7 +3,7 @@ import path from "node:path";
 import { fileURLToPath } from "node:url";
 
 /** The checkout's root, seen from apps/launch/dist. */
-export const root = path.resolve(path.dirname(fileURLToPath(import.meta.url)), "../../..");
+const root = path.resolve(path.dirname(fileURLToPath(import.meta.url)), "../../..");
 
 export type Program = { name: string; args: string[] };
 export type Running = { name: string; exited: Promise<number>; stop(): Promise<void> };

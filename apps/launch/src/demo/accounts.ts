@@ -47,7 +47,6 @@ export const demoPeople = [
     team: null,
   },
 ] as const;
-export type DemoPerson = (typeof demoPeople)[number];
 
 const fileIn = (home: string) => path.join(home, "demo-password");
 
