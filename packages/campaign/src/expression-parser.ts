@@ -2,8 +2,9 @@ import { create, parseDependencies } from "mathjs/number";
 import type { MathNode } from "mathjs";
 
 /**
- * mathjs, for its parser alone: nothing of it evaluates a text. Made at the first use, since
- * most documents hold no expression.
+ * mathjs, for its parser alone: nothing of it evaluates a text. The parser is made at the first
+ * use, since most documents hold no expression. The import is a plain one, so that reading
+ * stays synchronous: bundled, as every program is, it brings the parser's own modules and no others.
  */
 let parser: ((text: string) => MathNode) | null = null;
 

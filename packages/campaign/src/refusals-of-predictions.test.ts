@@ -328,6 +328,18 @@ describe("predictions", () => {
       ],
     ],
     [
+      "a rate below zero, as a number and as an expression",
+      (document) => {
+        document.hypotheses[1].predictions[4].expected = -1;
+        predict(7, { tolerance: null, expected: "-h" })(document);
+      },
+      [
+        `${place(7)}/expected: found an expression without a value at any parameter tried; allowed a finite value somewhere between the 1 % and 99 % of the priors, at least 0 on the scale count`,
+        "/hypotheses/1/predictions/4/expected: found -1; allowed a rate of at least 0",
+      ],
+    ],
+    ["a rate of zero", (document) => (document.hypotheses[1].predictions[4].expected = 0), []],
+    [
       "a relative tolerance on a circle",
       predict(4, { tolerance: { family: "normal", sd: 0.1, relative: true } }),
       [

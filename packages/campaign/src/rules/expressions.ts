@@ -1,4 +1,4 @@
-import type { Hypothesis, Table } from "../document";
+import type { Hypothesis, Scale, Table } from "../document";
 import { compileExpression } from "../expression";
 import type { Legible } from "../form";
 import { below } from "../pointer";
@@ -42,11 +42,16 @@ export function checkExpression(reading: Reading, place: PredictionPlace, text: 
   if (measurand?.shape === "curve") checkSeenOnce(reading, place, conditions);
   if (telling && !hasValueSomewhere(expression, place, conditions)) {
     const allowed = "a finite value somewhere between the 1 % and 99 % of the priors";
-    const log10 = observable?.scale === "log10" ? ", above 0 on the scale log10" : "";
+    const sign = observable?.scale === undefined ? "" : (signs[observable.scale] ?? "");
     const found = "an expression without a value at any parameter tried";
-    reading.refuse(pointer, "bad-expression", found, allowed + log10);
+    reading.refuse(pointer, "bad-expression", found, allowed + sign);
   }
 }
+
+const signs: Partial<Record<Scale, string>> = {
+  log10: ", above 0 on the scale log10",
+  count: ", at least 0 on the scale count",
+};
 
 /** The conditions that an expression uses; none where it doesn't compile even with them. */
 export function conditionsUsed(

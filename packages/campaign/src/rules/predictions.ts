@@ -75,6 +75,10 @@ function checkQuantity(reading: Reading, place: PredictionPlace): void {
   }
   if (typeof expected === "number") {
     positiveOnLog10(reading, expected, observable, below(pointer, "expected"));
+    if (observable?.scale === "count" && expected < 0) {
+      const at = below(pointer, "expected");
+      reading.refuse(at, "out-of-range", String(expected), "a rate of at least 0");
+    }
   } else if (typeof expected === "string") {
     checkExpression(reading, place, expected);
   }

@@ -1,4 +1,4 @@
-import type { Ensemble, Measurand, Parameter, Prior } from "../document";
+import type { Ensemble, Measurand, Parameter, Prior, Scale } from "../document";
 import type { Expression } from "../expression";
 import type { Legible } from "../form";
 import type { PredictionPlace } from "./prediction-place";
@@ -12,7 +12,7 @@ const HALF_NORMAL_01 = 0.012533469508069276;
 const HALF_NORMAL_99 = 2.5758293035489004;
 
 /**
- * Whether an expression is finite (and positive on log10) at one of the points tried: the middle of
+ * Whether an expression is finite (positive on log10, a rate on counts) at one of the points tried: the middle of
  * the priors, then a Halton sequence over their 1 % to 99 % range, each with an ensemble row,
  * at the ends and between the ends of the measurand's `where`.
  *
@@ -45,10 +45,16 @@ export function hasValueSomewhere(
         scope[name] = lower + (upper - lower) * spread(point, dimension);
       });
       const value = expression.evaluate(scope);
-      if (Number.isFinite(value) && (observable?.scale !== "log10" || value > 0)) return true;
+      if (Number.isFinite(value) && value > lowestBelow(observable?.scale)) return true;
     }
   }
   return false;
+}
+
+/** What a value has to lie above: a logarithm needs more than 0, a rate at least 0. */
+function lowestBelow(scale: Scale | undefined): number {
+  if (scale === "log10") return 0;
+  return scale === "count" ? -Number.MIN_VALUE : -Infinity;
 }
 
 function rangesOf(
