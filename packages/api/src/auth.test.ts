@@ -70,6 +70,18 @@ it("a page of another origin may not, cookie or no cookie", async () => {
   expect(response.status).toBe(403);
 });
 
+it("the 31st sign-in of a minute from one address is refused, from another it isn't", async () => {
+  const signInAt = async (address: string) => {
+    const wrong = { email: "nobody@people.example", password: "not the right one" };
+    const headers = { "x-forwarded-for": address };
+    return (await server.auth.handler(jsonRequest("/api/auth/sign-in/email", wrong, headers)))
+      .status;
+  };
+  for (let i = 0; i < 30; i++) expect(await signInAt("192.0.2.1")).toBe(401);
+  expect(await signInAt("192.0.2.1")).toBe(429);
+  expect(await signInAt("192.0.2.2")).toBe(401);
+});
+
 async function signInFrom(origin: string, host: string): Promise<Response> {
   const before = await server.auth.handler(jsonRequest("/api/auth/sign-in/email", credentials));
   const cookie = cookieHeaders(before).get("cookie") ?? "";

@@ -13,7 +13,10 @@ export type AuthOptions = {
 
 export type Auth = ReturnType<typeof createAuth>;
 
-export const MIN_PASSWORD_LENGTH = 10;
+const MIN_PASSWORD_LENGTH = 10;
+
+/** From one address, counted for all processes together; a team behind one router must fit in. */
+const SIGN_INS_PER_MINUTE = 30;
 
 /** Accounts by e-mail and password, and their sessions, in the store's own tables. */
 export function createAuth({ store, origin, secret }: AuthOptions) {
@@ -31,15 +34,14 @@ export function createAuth({ store, origin, secret }: AuthOptions) {
     },
     session: { expiresIn: 30 * 24 * 3600, updateAge: 24 * 3600 },
     trustedOrigins: (request) => trustedOrigins(origin, request),
-    // Shared by all processes. By address, so a whole team behind one router must fit in.
     rateLimit: {
       enabled: true,
       storage: "database",
       window: 60,
       max: 300,
       customRules: {
-        "/sign-in/email": { window: 60, max: 30 },
-        "/sign-up/email": { window: 60, max: 30 },
+        "/sign-in/email": { window: 60, max: SIGN_INS_PER_MINUTE },
+        "/sign-up/email": { window: 60, max: SIGN_INS_PER_MINUTE },
       },
     },
     advanced: {
@@ -52,6 +54,10 @@ export function createAuth({ store, origin, secret }: AuthOptions) {
       defaultCookieAttributes: { httpOnly: true, sameSite: "lax", path: "/" },
     },
     telemetry: { enabled: false },
+    logger: {
+      level: "warn",
+      log: (level, message) => store.log[level === "error" ? "error" : "warn"]({}, message),
+    },
   });
 }
 

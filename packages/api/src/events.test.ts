@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, expect, it } from "vitest";
 import { appendEntries } from "@weighhouse/store/append";
 import { openCampaign } from "@weighhouse/store/open-campaign";
+import { EVENTS_PER_SECOND } from "./event-hub";
 import { readStream, serveHttp } from "./testing/http-server";
 import { openTestServer } from "./testing/test-server";
 import type { TestServer } from "./testing/test-server";
@@ -112,7 +113,7 @@ it("a burst is told at most five times a second, the newest last", async () => {
   expect(size).toBeGreaterThan(heard.length);
   const seconds = (heard.at(-1)!.at - heard[0]!.at) / 1000;
   // One more than five a second: both ends of the span are counted.
-  expect(heard.length).toBeLessThanOrEqual(5 * seconds + 1.5);
+  expect(heard.length).toBeLessThanOrEqual(EVENTS_PER_SECOND * seconds + 1.5);
   expect(heard.map((event) => event.size)).toEqual(
     heard.map((event) => event.size).toSorted((a, b) => a - b),
   );

@@ -12,9 +12,12 @@ import { planImport } from "./plan-import";
 import { onStore } from "./store-refusals";
 import { timeAt } from "./time";
 
+/** Some 200,000 measurements with all that they may hold. */
+const MAX_DOCUMENT_CHARACTERS = 128 * 1024 * 1024;
+
 export const importCampaignInput = z.strictObject({
   /** The campaign document's text, as it is in the file. */
-  text: z.string(),
+  text: z.string().max(MAX_DOCUMENT_CHARACTERS),
   /** The key it gets here; the document's own where it is absent. */
   key: optional(z.string()),
   visibility: defaulted(z.enum(visibilities), "public" as const),
