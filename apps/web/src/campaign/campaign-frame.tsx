@@ -42,10 +42,12 @@ export async function CampaignFrame(props: {
       />
       <Tabs label="Campaign" tabs={tabsOf(view, base)} />
       {view.clock === "simulated" ? (
-        <Notice label="Simulated clock.">
-          The times of this campaign&rsquo;s ledger were set by hand, as in a demonstration; they
-          prove nothing about when anything was filed.
-        </Notice>
+        <div className="mb-4">
+          <Notice label="Simulated clock.">
+            The times of this campaign&rsquo;s ledger were set by hand, as in a demonstration; they
+            prove nothing about when anything was filed.
+          </Notice>
+        </div>
       ) : null}
       {props.children}
     </>
@@ -62,7 +64,12 @@ function StateLine(props: { view: CampaignView; historic: boolean; scored: boole
         {historic ? (
           <strong className="font-semibold text-brass">as it was at entry {view.size - 1}</strong>
         ) : (
-          <LiveState campaignKey={campaign.key} at={view.at} shown={{ size: view.size, scored }} />
+          <LiveState
+            campaignKey={campaign.key}
+            // A time set by hand says nothing about how long ago it was.
+            at={view.clock === "simulated" ? null : view.at}
+            shown={{ size: view.size, scored }}
+          />
         )}
       </li>
       <li>

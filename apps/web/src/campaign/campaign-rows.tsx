@@ -83,7 +83,7 @@ function Leader({ leader }: { leader: ListedCampaign["leader"] }) {
     <span>
       {leader.title}
       {leader.log10Lead === null ? null : (
-        <span className="text-quiet">
+        <span className="whitespace-nowrap text-quiet">
           {" "}
           by <Num text={formatLog10B(leader.log10Lead)} exact={leader.log10Lead} />
         </span>

@@ -1,6 +1,6 @@
 import { formatTension } from "@weighhouse/figures/standing-numbers";
 import { formatWindow } from "@weighhouse/figures/times";
-import Link from "next/link";
+import { KeptLink } from "@/look/kept-link";
 import { predictionInWords } from "@/campaign/plain-words";
 import { Measured } from "@/look/measured";
 import { tailOf } from "@/look/number";
@@ -21,7 +21,7 @@ export function FiledPredictions(props: { rows: readonly FiledPrediction[]; base
   return (
     <Table
       caption="Predictions"
-      stackBelow="middle"
+      stackBelow="broad"
       head={
         <tr>
           <th scope="col">Quantity</th>
@@ -42,9 +42,9 @@ export function FiledPredictions(props: { rows: readonly FiledPrediction[]; base
       {props.rows.map((row) => (
         <tr key={row.measurand.key}>
           <th scope="row">
-            <Link className="link" href={`${props.base}/quantities/${row.measurand.key}`}>
+            <KeptLink className="link" href={`${props.base}/quantities/${row.measurand.key}`}>
               {row.measurand.title}
-            </Link>
+            </KeptLink>
             {row.prediction.decisive ? <span className="ml-2 text-rust">decisive</span> : null}
             <span className="block text-[13px] text-quiet">
               {formatWindow(row.measurand.window.from, row.measurand.window.to)}

@@ -1,7 +1,7 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { Standings } from "@weighhouse/campaign/standings";
 import { formatLog10B } from "@weighhouse/figures/standing-numbers";
-import Link from "next/link";
+import { KeptLink } from "@/look/kept-link";
 import { HypothesisMark } from "@/look/hypothesis-mark";
 import { Num, tailOf } from "@/look/number";
 import { Table } from "@/look/table";
@@ -43,12 +43,12 @@ export function HypothesisRows(props: { document: CampaignDocument; standings: S
           <tr key={hypothesis.key}>
             <th scope="row" className="xl:max-w-[36em]">
               <HypothesisMark index={index} />
-              <Link
+              <KeptLink
                 className="link font-semibold"
                 href={`/campaigns/${document.campaign.key}/hypotheses/${hypothesis.key}`}
               >
                 {hypothesis.title}
-              </Link>
+              </KeptLink>
               {hypothesis.statement ? (
                 <span className="line-clamp-2 text-[13.5px] text-quiet">
                   {hypothesis.statement}

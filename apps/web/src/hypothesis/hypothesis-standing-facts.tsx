@@ -16,12 +16,16 @@ import { Time } from "@/look/time";
 export function HypothesisStandingFacts(props: {
   hypothesis: Hypothesis;
   standing: { row: HypothesisStanding; at: string } | null;
+  /** A measurand's title by its key. */
+  titleOf: (measurand: string) => string;
 }) {
   const { hypothesis, standing } = props;
   return (
     <>
       <dl className="facts">
-        {standing ? <StandingFacts row={standing.row} at={standing.at} /> : null}
+        {standing ? (
+          <StandingFacts row={standing.row} at={standing.at} titleOf={props.titleOf} />
+        ) : null}
         {hypothesis.registeredAt ? (
           <Fact term="Registered">
             <Time at={hypothesis.registeredAt} />
@@ -42,7 +46,12 @@ export function HypothesisStandingFacts(props: {
   );
 }
 
-function StandingFacts({ row, at }: { row: HypothesisStanding; at: string }) {
+function StandingFacts(props: {
+  row: HypothesisStanding;
+  at: string;
+  titleOf: (measurand: string) => string;
+}) {
+  const { row, at, titleOf } = props;
   return (
     <>
       <Fact term="Rank">
@@ -92,7 +101,7 @@ function StandingFacts({ row, at }: { row: HypothesisStanding; at: string }) {
       </Fact>
       {row.failedDecisive.length > 0 ? (
         <Fact term="Failed decisive">
-          <span className="text-rust">{row.failedDecisive.join(", ")}</span>
+          <span className="text-rust">{row.failedDecisive.map(titleOf).join(", ")}</span>
         </Fact>
       ) : null}
     </>

@@ -1,6 +1,6 @@
 import type { CampaignDocument, Hypothesis } from "@weighhouse/campaign/document";
 import type { Standings } from "@weighhouse/campaign/standings";
-import Link from "next/link";
+import { KeptLink } from "@/look/kept-link";
 import { HypothesisMark } from "@/look/hypothesis-mark";
 import { Section } from "@/look/section";
 import { PairsTable } from "@/standings/pairs-table";
@@ -47,6 +47,7 @@ export function HypothesisView(props: {
         <Section title="How it stands" id="standing">
           <HypothesisStandingFacts
             hypothesis={hypothesis}
+            titleOf={(key) => document.measurands.find((each) => each.key === key)?.title ?? key}
             standing={standing ? { row: standing, at: `/hypotheses/${place}` } : null}
           />
         </Section>
@@ -97,9 +98,9 @@ function Silent(props: { document: CampaignDocument; hypothesis: Hypothesis; bas
       <ul className="flex list-none flex-wrap gap-x-6 gap-y-1">
         {silent.map((each) => (
           <li key={each.key}>
-            <Link className="link" href={`${props.base}/quantities/${each.key}`}>
+            <KeptLink className="link" href={`${props.base}/quantities/${each.key}`}>
               {each.title}
-            </Link>
+            </KeptLink>
           </li>
         ))}
       </ul>

@@ -21,7 +21,8 @@ const SCORED_WITHIN_MS = 400;
  */
 export function LiveState(props: {
   campaignKey: string;
-  at: string;
+  /** Time of the last entry; null where it says nothing. */
+  at: string | null;
   /** Entries that the page shows, and whether its standings are of all of them. */
   shown: { size: number; scored: boolean };
 }) {
@@ -74,7 +75,7 @@ function useRefresh(): () => void {
 }
 
 /** Null on the server and until the browser's clock is read, so that both paint alike. */
-function useSecondsSince(at: string): number | null {
+function useSecondsSince(at: string | null): number | null {
   const [now, setNow] = useState<number | null>(null);
   useEffect(() => {
     const tick = () => setNow(Date.now());
@@ -82,5 +83,7 @@ function useSecondsSince(at: string): number | null {
     const timer = setInterval(tick, 5_000);
     return () => clearInterval(timer);
   }, []);
-  return now === null ? null : Math.max(0, Math.round((now - Date.parse(at)) / 1000));
+  return now === null || at === null
+    ? null
+    : Math.max(0, Math.round((now - Date.parse(at)) / 1000));
 }

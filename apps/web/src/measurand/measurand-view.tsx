@@ -134,7 +134,7 @@ function predictionRows(props: {
 }): PredictionRow[] {
   const { document, standings, measurand } = props;
   const hypotheses = standings
-    ? rankedHypotheses(standings, document)
+    ? rankedHypotheses(standings, document).filter((each) => each.registered)
     : document.hypotheses.map(({ key, title }, index) => ({ key, title: title ?? key, index }));
   return hypotheses.map(({ key, title, index }) => {
     const place =

@@ -1,7 +1,8 @@
 import type { Observable, Prediction } from "@weighhouse/campaign/document";
 import type { VerdictRow } from "@weighhouse/campaign/standings";
-import { formatNumber, formatPercent } from "@weighhouse/figures/numbers";
-import Link from "next/link";
+import { formatNumber } from "@weighhouse/figures/numbers";
+import { formatPosterior } from "@weighhouse/figures/standing-numbers";
+import { KeptLink } from "@/look/kept-link";
 import { predictionInWords, unitOf } from "@/campaign/plain-words";
 import { HypothesisMark } from "@/look/hypothesis-mark";
 import { Num } from "@/look/number";
@@ -25,7 +26,7 @@ export function PredictionRows(props: {
   return (
     <Table
       caption="Predictions of this quantity"
-      stackBelow="middle"
+      stackBelow="broad"
       head={
         <tr>
           <th scope="col">Hypothesis</th>
@@ -47,9 +48,9 @@ export function PredictionRows(props: {
         <tr key={hypothesis.key}>
           <th scope="row">
             <HypothesisMark index={hypothesis.index} />
-            <Link className="link" href={`${props.base}/hypotheses/${hypothesis.key}`}>
+            <KeptLink className="link" href={`${props.base}/hypotheses/${hypothesis.key}`}>
               {hypothesis.title}
-            </Link>
+            </KeptLink>
           </th>
           <td data-label="Predicts">
             {prediction ? (
@@ -70,7 +71,7 @@ export function PredictionRows(props: {
           <td data-label="Conformance" className="number">
             {verdict && verdict.row.conformance !== null ? (
               <Num
-                text={formatPercent(verdict.row.conformance)}
+                text={formatPosterior(verdict.row.conformance)}
                 exact={verdict.row.conformance}
                 at={`${verdict.at}/conformance`}
               />

@@ -1,7 +1,7 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { Standings } from "@weighhouse/campaign/standings";
 import { formatWindow } from "@weighhouse/figures/times";
-import Link from "next/link";
+import { KeptLink } from "@/look/kept-link";
 import { conditionsInWords, referenceInWords } from "@/campaign/plain-words";
 import { Measured } from "@/look/measured";
 import { Num } from "@/look/number";
@@ -20,7 +20,7 @@ export function QuantityRows(props: {
   return (
     <Table
       caption="Quantities"
-      stackBelow="middle"
+      stackBelow="broad"
       head={
         <tr>
           <th scope="col">Quantity</th>
@@ -44,12 +44,12 @@ export function QuantityRows(props: {
         return (
           <tr key={measurand.key}>
             <th scope="row">
-              <Link
+              <KeptLink
                 className="link font-semibold"
                 href={`/campaigns/${props.campaignKey}/quantities/${measurand.key}`}
               >
                 {measurand.title}
-              </Link>
+              </KeptLink>
               {measurand.closed ? (
                 <span className="gloss"> closed: {measurand.closed.reason}</span>
               ) : null}

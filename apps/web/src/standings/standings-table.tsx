@@ -6,7 +6,7 @@ import {
   formatP,
   formatPosterior,
 } from "@weighhouse/figures/standing-numbers";
-import Link from "next/link";
+import { KeptLink } from "@/look/kept-link";
 import { HypothesisMark } from "@/look/hypothesis-mark";
 import { Num, tailOf } from "@/look/number";
 import { Table } from "@/look/table";
@@ -42,8 +42,7 @@ export function StandingsTable(props: { hypotheses: RankedHypothesis[]; base: st
           </th>
           <th scope="col">Verdicts</th>
           <th scope="col" className="number">
-            Compared <br />
-            <span className="gloss">silent on</span>
+            Compared
           </th>
         </tr>
       }
@@ -72,14 +71,17 @@ function Row({
           <Num text={String(standing.rank)} exact={standing.rank} at={`${at}/rank`} />
         </span>
         <HypothesisMark index={hypothesis.index} />
-        <Link
-          href={`${base}/hypotheses/${hypothesis.key}`}
-          className="link font-semibold whitespace-normal"
-        >
-          {hypothesis.title}
-        </Link>
+        {hypothesis.registered ? (
+          <KeptLink href={`${base}/hypotheses/${hypothesis.key}`} className="link font-semibold">
+            {hypothesis.title}
+          </KeptLink>
+        ) : (
+          <span title="Silent on everything: charged the no-model range of every quantity">
+            {hypothesis.title}
+          </span>
+        )}
         {standing.failedDecisive.length > 0 ? (
-          <span className="block pl-[3.4em] text-[13px] text-rust max-[1100px]:pl-0">
+          <span className="block pl-[3.4em] text-[13px] text-rust max-[900px]:pl-0">
             failed a decisive prediction
           </span>
         ) : null}
@@ -139,11 +141,15 @@ function Row({
       <td data-label="Verdicts">
         <Counts standing={standing} at={at} />
       </td>
-      <td className="number" data-label="Compared, silent on">
+      <td className="number" data-label="Compared">
         <span>
           <Num text={String(standing.compared)} exact={standing.compared} at={`${at}/compared`} />
-          <span className="text-quiet">, </span>
-          <Num text={String(standing.silent)} exact={standing.silent} at={`${at}/silent`} />
+          <span className="text-[13px] text-quiet">
+            , silent on{" "}
+            <span className="inline-block min-w-[2ch]">
+              <Num text={String(standing.silent)} exact={standing.silent} at={`${at}/silent`} />
+            </span>
+          </span>
         </span>
       </td>
     </tr>

@@ -49,7 +49,7 @@ export async function StandingsView(props: { campaignKey: string; size: number |
   const { document } = view;
   const hypotheses = rankedHypotheses(standings, document);
   // What is silent on everything by its definition has no column.
-  const inGrid = hypotheses.filter((each) => each.index < document.hypotheses.length);
+  const inGrid = hypotheses.filter((each) => each.registered);
   const base = `/campaigns/${props.campaignKey}`;
   return (
     <div data-standings-size={scored.size} data-standings-state={scored.state}>

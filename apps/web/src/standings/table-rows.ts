@@ -10,6 +10,8 @@ export interface RankedHypothesis {
   at: string;
   /** Its place in the document: what gives it its colour and shape, whatever its rank. */
   index: number;
+  /** False for "none of these", which nobody registered: it has no page of its own. */
+  registered: boolean;
 }
 
 /** The hypotheses in order of rank. `noneOfThese`, where it is weighted, has no place of its own. */
@@ -26,6 +28,7 @@ export function rankedHypotheses(
       standing,
       at: `/hypotheses/${position}`,
       index: index ?? document.hypotheses.length,
+      registered: index !== undefined,
     };
   });
 }

@@ -60,7 +60,7 @@ function Steps({ rows, hypotheses }: { rows: TimelineRow[]; hypotheses: RankedHy
   return (
     <Table
       caption="ln evidence after each move, the newest first"
-      stackBelow={hypotheses.length > 5 ? "always" : "middle"}
+      stackBelow={hypotheses.length > 5 ? "always" : "broad"}
       head={
         <tr>
           <th scope="col">Entry</th>

@@ -1,6 +1,6 @@
 import { formatTension } from "@weighhouse/figures/standing-numbers";
 import { formatWindow } from "@weighhouse/figures/times";
-import Link from "next/link";
+import { KeptLink } from "@/look/kept-link";
 import { HypothesisMark } from "@/look/hypothesis-mark";
 import { Measured } from "@/look/measured";
 import { tailOf } from "@/look/number";
@@ -43,9 +43,9 @@ export function VerdictGrid(props: {
       {props.rows.map((row) => (
         <tr key={row.measurand.key} data-measurand={row.measurand.key}>
           <th scope="row" className="min-w-[12em]">
-            <Link href={`${props.base}/quantities/${row.measurand.key}`} className="link">
+            <KeptLink href={`${props.base}/quantities/${row.measurand.key}`} className="link">
               {row.measurand.title}
-            </Link>
+            </KeptLink>
             <div className="text-[13px] text-quiet">
               {formatWindow(row.measurand.window.from, row.measurand.window.to)}
             </div>
@@ -68,8 +68,9 @@ export function VerdictGrid(props: {
 }
 
 /** A column for each hypothesis takes about 145 px, the two before them 350. */
-function stackBelow(columns: number): "middle" | "wide" | "always" {
-  if (columns <= 4) return "middle";
+function stackBelow(columns: number): "middle" | "broad" | "wide" | "always" {
+  if (columns <= 3) return "middle";
+  if (columns === 4) return "broad";
   return columns <= 6 ? "wide" : "always";
 }
 

@@ -1,6 +1,6 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { Warning } from "@weighhouse/campaign/standings";
-import Link from "next/link";
+import { KeptLink } from "@/look/kept-link";
 import { Notice } from "@/look/notice";
 import { warnedPlace } from "./warned-place";
 
@@ -46,9 +46,9 @@ function PlaceLink({ at, document }: { at: string; document: CampaignDocument })
   return (
     <>
       {" "}
-      <Link className="link" href={`/campaigns/${document.campaign.key}/${place.path}`}>
+      <KeptLink className="link" href={`/campaigns/${document.campaign.key}/${place.path}`}>
         {place.title}
-      </Link>
+      </KeptLink>
     </>
   );
 }

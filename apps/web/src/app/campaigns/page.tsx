@@ -14,8 +14,8 @@ export default async function CampaignsPage() {
   ]);
   return (
     <>
-      <div className="flex flex-wrap items-baseline justify-between gap-x-8 gap-y-2">
-        <h1 className="my-3">Campaigns</h1>
+      <div className="mb-3 flex flex-wrap items-baseline justify-between gap-x-8 gap-y-2">
+        <h1 className="mt-3">Campaigns</h1>
         <div className="no-print flex flex-wrap gap-2 text-[14px]">
           <ButtonLink href="/campaigns/new">Open a campaign</ButtonLink>
           <ButtonLink href="/campaigns/import">Import a document</ButtonLink>
