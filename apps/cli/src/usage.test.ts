@@ -57,9 +57,13 @@ test("the program is committed as executable, so that npm links it", () => {
 
 test("npx runs it from any folder of a checkout, paths meant from there", () => {
   const folder = fileURLToPath(new URL("commands", import.meta.url));
-  const document = relative(folder, eclipse);
-  const out = execFileSync("npx", ["weighhouse", "check", document], {
+  // The npx that runs these tests has left its own folder in the environment.
+  const env = Object.fromEntries(
+    Object.entries(process.env).filter(([name]) => !/^npm_|^INIT_CWD$/.test(name)),
+  );
+  const out = execFileSync("npx", ["weighhouse", "check", relative(folder, eclipse)], {
     cwd: folder,
+    env,
     encoding: "utf8",
   });
   expect(out).toMatch(/^Valid: /);
