@@ -41,8 +41,10 @@ export function FailureNote({ failure }: { failure: Failure | null }) {
       {failure.signedOut ? (
         <>
           Your session has ended. What you typed is kept:{" "}
-          <Link href={`/sign-in?next=${encodeURIComponent(path)}`}>sign in again</Link> and it will
-          be here.
+          <Link className="link" href={`/sign-in?next=${encodeURIComponent(path)}`}>
+            sign in again
+          </Link>{" "}
+          and it will be here.
         </>
       ) : (
         failure.message

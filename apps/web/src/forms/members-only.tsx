@@ -13,8 +13,10 @@ export function MembersOnly(props: { path: string; signedIn: boolean; children: 
           "Ask a coordinator to add your account."
         ) : (
           <>
-            <Link href={`/sign-in?next=${encodeURIComponent(props.path)}`}>Sign in</Link> if you are
-            one.
+            <Link className="link" href={`/sign-in?next=${encodeURIComponent(props.path)}`}>
+              Sign in
+            </Link>{" "}
+            if you are one.
           </>
         )}
       </Empty>

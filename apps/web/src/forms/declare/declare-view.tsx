@@ -122,7 +122,9 @@ function NeedsObservable({ base }: { base: string }) {
   return (
     <Empty title="First an observable.">
       A quantity is an observable in a window.{" "}
-      <Link href={`${base}/declare/observables`}>Declare an observable</Link>
+      <Link className="link" href={`${base}/declare/observables`}>
+        Declare an observable
+      </Link>
     </Empty>
   );
 }

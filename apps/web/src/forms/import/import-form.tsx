@@ -12,6 +12,7 @@ import { FormBody } from "../form-body";
 import { DraftNote, FailureNote, FieldRow } from "../form-frame";
 import { problemWords } from "../form-schema";
 import { refusalOf, type Refusal } from "../refusal";
+import { TextFileField } from "../text-file-field";
 import { useDraftForm } from "../use-draft-form";
 import { ImportPreviewView } from "./import-preview-view";
 
@@ -75,17 +76,13 @@ export function ImportForm() {
     >
       <FormBody busy={busy !== null}>
         <DraftNote draft={draft} />
-        <Field
+        <TextFileField
           label="Campaign document"
-          type="file"
           accept=".json,application/json"
           help="A JSON file in the format weighhouse-campaign/1. Its text appears below."
-          onChange={(event) => {
-            const file = event.target.files?.[0];
+          onText={(read) => {
             forget();
-            void file
-              ?.text()
-              .then((read) => setValue("text", read, { shouldDirty: true, shouldValidate: true }));
+            setValue("text", read, { shouldDirty: true, shouldValidate: true });
           }}
         />
         <TextArea

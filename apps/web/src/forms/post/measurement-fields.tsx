@@ -17,6 +17,9 @@ export function MeasurementFields({ document }: { document: CampaignDocument }) 
   const measurand = document.measurands.find(({ key }) => key === chosen);
   const observable = document.observables.find(({ key }) => key === measurand?.observable);
   const unit = observable?.unit ?? undefined;
+  const wrongInside = [errors.batch, errors.status, errors.source, errors.sameData, errors.id].some(
+    (error) => error !== undefined,
+  );
   return (
     <>
       <FieldRow>
@@ -74,7 +77,7 @@ export function MeasurementFields({ document }: { document: CampaignDocument }) 
         />
       </FieldRow>
       <SharedErrors document={document} />
-      <details className="mb-3">
+      <details className="mb-3" open={wrongInside || undefined}>
         <summary className="cursor-pointer text-[14.5px]">Batch, status, source, id</summary>
         <div className="mt-2">
           <FieldRow>

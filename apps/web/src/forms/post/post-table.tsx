@@ -5,9 +5,10 @@ import { useMemo } from "react";
 import { useWatch } from "react-hook-form";
 import { z } from "zod";
 import { Button } from "@/look/button";
-import { Choice, Field, TextArea } from "@/look/field";
+import { Choice, TextArea } from "@/look/field";
 import { FormBody } from "../form-body";
 import { DraftNote, FieldRow } from "../form-frame";
+import { TextFileField } from "../text-file-field";
 import { useDraftForm } from "../use-draft-form";
 import { postLabel } from "./fates";
 import { PostedNote, PostingRefused } from "./posted-note";
@@ -52,17 +53,15 @@ export function PostTable({ document }: { document: CampaignDocument }) {
         <DraftNote draft={draft} />
         <PostedNote campaign={key} posted={posting.posted} />
         <ColumnHelp document={document} />
-        <Field
+        <TextFileField
+          // A file that was posted is done with.
+          key={posting.posted?.appended?.from ?? "next"}
           label="CSV file"
-          type="file"
           accept=".csv,text/csv,text/plain"
           help="Read here in the browser; its rows appear below."
-          onChange={(event) => {
-            const file = event.target.files?.[0];
+          onText={(read) => {
             posting.forget();
-            void file
-              ?.text()
-              .then((read) => setValue("text", read, { shouldDirty: true, shouldValidate: true }));
+            setValue("text", read, { shouldDirty: true, shouldValidate: true });
           }}
         />
         <TextArea

@@ -21,7 +21,10 @@ export function PostedNote({ campaign, posted }: { campaign: string; posted: Pos
           {posted.alreadyThere.length > 0
             ? `; ${formatCount(posted.alreadyThere.length)} were there already`
             : ""}
-          . <Link href={`/campaigns/${campaign}`}>See the standings</Link>
+          .{" "}
+          <Link className="link" href={`/campaigns/${campaign}`}>
+            See the standings
+          </Link>
         </Notice>
       )}
     </output>

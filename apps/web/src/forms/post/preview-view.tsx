@@ -29,6 +29,7 @@ const inks: Record<PreviewedRow["fate"], string> = {
 export function PreviewView(props: { document: CampaignDocument; preview: MeasurementsPreview }) {
   const { document, preview } = props;
   const shown = rowsToShow(preview.rows, mostRows);
+  const reasons = shown.some((row) => reasonsOf(row).length > 0);
   return (
     <section aria-label="Preview" className="mt-5 border-t border-rule pt-4">
       <h3 className="mb-2">
@@ -57,12 +58,12 @@ export function PreviewView(props: { document: CampaignDocument; preview: Measur
               <th scope="col" className="number">
                 Value
               </th>
-              <th scope="col">Why</th>
+              {reasons ? <th scope="col">Why</th> : null}
             </tr>
           }
         >
           {shown.map((row) => (
-            <Row key={row.line} row={row} document={document} />
+            <Row key={row.line} row={row} document={document} reasons={reasons} />
           ))}
         </Table>
       ) : null}
@@ -84,7 +85,8 @@ function NotPostable({ preview }: { preview: MeasurementsPreview }) {
   return fresh === 0 ? "There is nothing new to enter." : "";
 }
 
-function Row({ row, document }: { row: PreviewedRow; document: CampaignDocument }) {
+function Row(props: { row: PreviewedRow; document: CampaignDocument; reasons: boolean }) {
+  const { row, document, reasons } = props;
   const { measurement } = row;
   const measurand = document.measurands.find(({ key }) => key === measurement?.measurand);
   const unit = document.observables.find(({ key }) => key === measurand?.observable)?.unit ?? null;
@@ -106,11 +108,13 @@ function Row({ row, document }: { row: PreviewedRow; document: CampaignDocument 
       <td data-label="Value" className="number">
         {valueWords(row, unit)}
       </td>
-      <td data-label="Why" className="max-w-[44ch] text-[14px]">
-        {reasonsOf(row).map((reason) => (
-          <div key={reason}>{reason}</div>
-        ))}
-      </td>
+      {reasons ? (
+        <td data-label="Why" className="max-w-[44ch] text-[14px]">
+          {reasonsOf(row).map((reason) => (
+            <div key={reason}>{reason}</div>
+          ))}
+        </td>
+      ) : null}
     </tr>
   );
 }
