@@ -26,16 +26,24 @@ export async function watchCampaign(
   { key, lastEventId }: WatchInput,
   leaving: AbortSignal | undefined,
 ): Promise<AsyncGenerator<StoreEvent>> {
-  // Whether the actor may watch is asked before anything is listened to.
-  await readProgress(ctx.desk, ctx.actor, { key });
   const stop = AbortSignal.any([closing.signal, ...(leaving ? [leaving] : [])]);
   const latest = new Latest();
-  stop.addEventListener("abort", () => latest.wake());
   const unwatch = await hubOf(ctx.desk.store).watch(key, (event) => latest.put(event));
-  // Read after listening has begun, so that nothing falls between the two.
-  const { size, scoredSize } = await readProgress(ctx.desk, ctx.actor, { key });
-  const now = { campaign: key, size, what: scoredSize === size ? "scored" : "appended" } as const;
-  return follow(latest, { now, seen: lastEventId ?? null, stop, unwatch });
+  // Also for a watcher who goes before the first event is asked for.
+  stop.addEventListener("abort", () => {
+    unwatch();
+    latest.wake();
+  });
+  try {
+    // Read after listening has begun, so that nothing falls between the two.
+    const { size, scoredSize } = await readProgress(ctx.desk, ctx.actor, { key });
+    const what = scoredSize === size ? "scored" : "appended";
+    const now = { campaign: key, size, what } as const;
+    return follow(latest, { now, seen: lastEventId ?? null, stop, unwatch });
+  } catch (refused) {
+    unwatch();
+    throw refused;
+  }
 }
 
 async function* follow(
