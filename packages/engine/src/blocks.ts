@@ -4,17 +4,21 @@ import type { Sums } from "./sums";
  * Draws that more than one measurand loads, each with its measurands: what couples measurands.
  * A draw of one measurand alone is that measurand's own affair.
  */
-export function couplingDraws(sums: Sums): Map<number, number[]> {
-  const touched = new Map<number, number[]>();
-  sums.measurands.forEach(({ groups }, measurand) => {
-    for (const draw of new Set(groups.flatMap(({ draws }) => draws))) {
-      const measurands = touched.get(draw) ?? [];
-      measurands.push(measurand);
-      touched.set(draw, measurands);
+export function couplingDraws({ draws, patterns, measurands }: Sums): Map<number, number[]> {
+  const touched: number[][] = draws.map(() => []);
+  measurands.forEach((one, measurand) => {
+    for (const pattern of one.patterns) {
+      for (const draw of patterns[pattern]!.draws) {
+        const by = touched[draw]!;
+        if (by.at(-1) !== measurand) by.push(measurand);
+      }
     }
   });
-  for (const [draw, measurands] of touched) if (measurands.length < 2) touched.delete(draw);
-  return touched;
+  const coupling = new Map<number, number[]>();
+  touched.forEach((by, draw) => {
+    if (by.length > 1) coupling.set(draw, by);
+  });
+  return coupling;
 }
 
 /**
@@ -27,6 +31,7 @@ export function blocksOf(
   measurands: readonly number[],
   coupling: ReadonlyMap<number, readonly number[]>,
 ): number[][] {
+  if (measurands.length < 2) return measurands.map((measurand) => [measurand]);
   const parent = new Map(measurands.map((measurand) => [measurand, measurand]));
   const rootOf = (measurand: number): number => {
     let root = measurand;
@@ -34,10 +39,14 @@ export function blocksOf(
     parent.set(measurand, root);
     return root;
   };
+  let apart = measurands.length;
   for (const touched of coupling.values()) {
+    // All in one block: no further draw can join anything.
+    if (apart === 1) return [[...measurands]];
     const inside = touched.filter((measurand) => parent.has(measurand));
     for (let i = 1; i < inside.length; i += 1) {
       const [a, b] = [rootOf(inside[0]!), rootOf(inside[i]!)];
+      if (a !== b) apart -= 1;
       parent.set(Math.max(a, b), Math.min(a, b));
     }
   }

@@ -1,6 +1,7 @@
 import { chiSquareUpperTail } from "@weighhouse/numerics/chi-square";
 import { blocksOf } from "./blocks";
-import { marginalOf, type Part } from "./marginal";
+import { marginalOf } from "./marginal";
+import type { Part } from "./marginal-form";
 import { solve, type Level } from "./solve";
 import { levelOf, measuredIn, onlyMeasurand, type Roles, type Workspace } from "./workspace";
 

@@ -7,7 +7,8 @@ import {
   logDiagonal,
   type TriangularSystem,
 } from "@weighhouse/numerics/triangular-system";
-import { marginalOf, type Marginal, type Part } from "./marginal";
+import { marginalOf } from "./marginal";
+import type { Marginal, Part } from "./marginal-form";
 import { solve, type Level, type Solved } from "./solve";
 import type { Workspace } from "./workspace";
 

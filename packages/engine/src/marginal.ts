@@ -1,62 +1,20 @@
-import {
-  addRow,
-  createSystem,
-  logDiagonal,
-  setUnitPrior,
-  type TriangularSystem,
-} from "@weighhouse/numerics/triangular-system";
-import { groupSums, type Group, type Sums } from "./sums";
-
-/**
- * What the measurements of some measurands say of their levels and of the shared errors' draws,
- * whatever a hypothesis says of those: as a function of x = (levels minus centres, draws),
- *
- *   ln L(x) = logNorm - (squares + rss + |R x - z|^2) / 2 - N ln(2 pi) / 2
- *
- * with the draws per batch already integrated out. Every hypothesis with the same noises uses the
- * same one, so that its own work doesn't grow with the number of measurements.
- */
-export interface Marginal {
-  /** Unknowns: a level per part, in the order asked for, then `draws`. */
-  system: TriangularSystem;
-  draws: number[];
-  logNorm: number;
-  squares: number;
-}
-
-/** A measurand and the noise class that it is looked at in. */
-export interface Part {
-  measurand: number;
-  noise: number;
-}
-
-/** A group, the level that it measures, and the noise class. */
-interface Row {
-  level: number;
-  noise: number;
-  group: Group;
-}
+import { addRow, createSystem } from "@weighhouse/numerics/triangular-system";
+import { batchKinds, type BatchKind, type BatchKinds } from "./batch-kinds";
+import { addProfiles, profileOf, type Profile } from "./batch-profiles";
+import { addBatch, addGroup, type Row } from "./batch-rows";
+import type { Marginal, Part } from "./marginal-form";
+import type { Sums } from "./sums";
 
 /** The sums with what has been worked out of them; good until a reading is added. */
 export interface Marginals {
   sums: Sums;
-  /** Groups by batch, for the batches that more than one measurand draws from. */
-  crossing: Map<string, Map<number, Group[]>>;
+  kinds: BatchKinds;
   locals: Map<string, Marginal>;
+  profiles: Map<string, Profile>;
 }
 
 export function createMarginals(sums: Sums): Marginals {
-  const crossing = new Map<string, Map<number, Group[]>>();
-  sums.measurands.forEach(({ groups }, measurand) => {
-    for (const group of groups) {
-      if (group.batch === null) continue;
-      const batch = crossing.get(group.batch) ?? new Map<number, Group[]>();
-      batch.set(measurand, [...(batch.get(measurand) ?? []), group]);
-      crossing.set(group.batch, batch);
-    }
-  });
-  for (const [batch, measurands] of crossing) if (measurands.size < 2) crossing.delete(batch);
-  return { sums, crossing, locals: new Map() };
+  return { sums, kinds: batchKinds(sums), locals: new Map(), profiles: new Map() };
 }
 
 /**
@@ -68,35 +26,60 @@ export function marginalOf(
   parts: readonly Part[],
   kept: ReadonlySet<number> = new Set(),
 ): Marginal {
+  const { sums, kinds } = marginals;
   const locals = parts.map((part) => localOf(marginals, part));
-  const batches = crossingRows(marginals, parts);
-  const drawn = new Set(locals.flatMap(({ draws }) => draws));
-  for (const { group } of batches.flat()) {
-    for (const draw of group.draws) if (isOpen(marginals.sums, draw, kept)) drawn.add(draw);
+  // Kept draws must not be summed away: their batches are rotated, few as they are.
+  const rotated = rotatedRows(
+    marginals,
+    parts,
+    kept.size > 0 ? ["summed", "rotated"] : ["rotated"],
+  );
+  const profiles = kept.size > 0 ? [] : parts.map((part) => profileFor(marginals, part));
+  const drawn = new Set(kept);
+  for (const { draws } of locals) for (const draw of draws) drawn.add(draw);
+  for (const { open } of profiles) for (const draw of open) drawn.add(draw);
+  for (const { pattern } of rotated.flat()) {
+    for (const draw of pattern.draws) if (sums.draws[draw]!.batch === null) drawn.add(draw);
   }
   const draws = [...drawn].sort((a, b) => a - b);
   const columns = new Map(draws.map((draw, i) => [draw, parts.length + i]));
   const system = createSystem(parts.length + draws.length);
   const marginal: Marginal = { system, draws, logNorm: 0, squares: 0 };
   locals.forEach((local, level) => addLocal(marginal, local, { level, columns }));
-  for (const rows of batches) addBatch(marginal, rows, columns);
+  addProfiles(marginal, profiles, { kinds, columns });
+  for (const rows of rotated) addBatch(marginal, rows, columns);
   return marginal;
 }
 
-function isOpen(sums: Sums, draw: number, kept: ReadonlySet<number>): boolean {
-  return sums.draws[draw]!.batch === null || kept.has(draw);
+function profileFor({ sums, kinds, profiles }: Marginals, part: Part): Profile {
+  const key = `${part.measurand}/${part.noise}`;
+  const there = profiles.get(key);
+  if (there !== undefined) return there;
+  const profile = profileOf(sums, kinds, part);
+  profiles.set(key, profile);
+  return profile;
 }
 
-function crossingRows({ crossing }: Marginals, parts: readonly Part[]): Row[][] {
-  const batches: Row[][] = [];
-  for (const measurands of crossing.values()) {
-    const rows: Row[] = [];
-    parts.forEach(({ measurand, noise }, level) => {
-      for (const group of measurands.get(measurand) ?? []) rows.push({ level, noise, group });
+/** The parts' rows in batches of these kinds, by batch. */
+function rotatedRows(
+  { sums, kinds }: Marginals,
+  parts: readonly Part[],
+  wanted: readonly BatchKind[],
+): Row[][] {
+  const batches = new Map<number, Row[]>();
+  if (!kinds.kinds.some((kind) => wanted.includes(kind))) return [];
+  parts.forEach(({ measurand, noise }, level) => {
+    const own = sums.measurands[measurand]!;
+    own.patterns.forEach((place, group) => {
+      const batch = kinds.ofPattern[place]!;
+      if (batch < 0 || !wanted.includes(kinds.kinds[batch]!)) return;
+      const row = { level, pattern: sums.patterns[place]!, sums: own, group, noise };
+      const rows = batches.get(batch);
+      if (rows === undefined) batches.set(batch, [row]);
+      else rows.push(row);
     });
-    if (rows.length > 0) batches.push(rows);
-  }
-  return batches;
+  });
+  return [...batches.values()];
 }
 
 /** The part's own groups, but for batches shared with other measurands. */
@@ -104,80 +87,32 @@ function localOf(marginals: Marginals, { measurand, noise }: Part): Marginal {
   const key = `${measurand}/${noise}`;
   const there = marginals.locals.get(key);
   if (there !== undefined) return there;
-  const { sums, crossing } = marginals;
+  const { sums, kinds } = marginals;
+  const own = sums.measurands[measurand]!;
   const plain: Row[] = [];
-  const batches = new Map<string, Row[]>();
+  const batches = new Map<number, Row[]>();
   const drawn = new Set<number>();
-  for (const group of sums.measurands[measurand]!.groups) {
-    if (group.batch !== null && crossing.has(group.batch)) continue;
-    const row = { level: 0, noise, group };
-    if (group.batch === null) plain.push(row);
-    else batches.set(group.batch, [...(batches.get(group.batch) ?? []), row]);
-    for (const draw of group.draws) if (sums.draws[draw]!.batch === null) drawn.add(draw);
-  }
+  own.patterns.forEach((place, group) => {
+    const pattern = sums.patterns[place]!;
+    const batch = kinds.ofPattern[place]!;
+    if (batch >= 0 && kinds.kinds[batch] !== "local") return;
+    const row = { level: 0, noise, pattern, sums: own, group };
+    for (const draw of pattern.draws) if (sums.draws[draw]!.batch === null) drawn.add(draw);
+    if (batch < 0) plain.push(row);
+    else {
+      const rows = batches.get(batch);
+      if (rows === undefined) batches.set(batch, [row]);
+      else rows.push(row);
+    }
+  });
   const draws = [...drawn].sort((a, b) => a - b);
   const columns = new Map(draws.map((draw, i) => [draw, i + 1]));
   const system = createSystem(1 + draws.length);
   const local: Marginal = { system, draws, logNorm: 0, squares: 0 };
-  for (const row of plain) {
-    countScatter(local, row);
-    const place = (draw: number) => columns.get(draw)!;
-    addRow(system, equation(row, { size: system.size, level: 0, place }));
-  }
+  for (const row of plain) addGroup(local, row, columns);
   for (const rows of batches.values()) addBatch(local, rows, columns);
   marginals.locals.set(key, local);
   return local;
-}
-
-/** What levels and draws can't change: the norm, and the scatter inside the group. */
-function countScatter(marginal: Marginal, { group, noise }: Row): void {
-  const { squares, logVariance } = groupSums(group, noise);
-  marginal.squares += squares;
-  marginal.logNorm -= logVariance / 2;
-}
-
-/** A group as an equation of unit variance: sqrt(w) (level + sum of u eta) = sqrt(w) mean. */
-function equation(
-  { group, noise }: Row,
-  { size, level, place }: { size: number; level: number; place: (draw: number) => number },
-): Float64Array {
-  const { weight, mean } = groupSums(group, noise);
-  const root = Math.sqrt(weight);
-  const row = new Float64Array(size + 1);
-  row[level] = root;
-  for (let i = 0; i < group.draws.length; i += 1) {
-    row[place(group.draws[i]!)] = root * group.loadings[i]!;
-  }
-  row[size] = root * mean;
-  return row;
-}
-
-/**
- * One batch: its own draws come first, under their prior N(0, 1), and are rotated away; what is
- * left over bears on the levels and the open draws alone.
- */
-function addBatch(marginal: Marginal, rows: Row[], columns: ReadonlyMap<number, number>): void {
-  const own = new Map<number, number>();
-  const outer = new Map<number, number>();
-  for (const { group, level } of rows) {
-    for (const draw of group.draws)
-      if (!columns.has(draw) && !own.has(draw)) own.set(draw, own.size);
-    for (const column of [level, ...group.draws.map((draw) => columns.get(draw))]) {
-      if (column !== undefined && !outer.has(column)) outer.set(column, 0);
-    }
-  }
-  const ordered = [...outer.keys()].sort((a, b) => a - b);
-  ordered.forEach((column, i) => outer.set(column, own.size + i));
-  const system = createSystem(own.size + ordered.length);
-  for (let i = 0; i < own.size; i += 1) setUnitPrior(system, i);
-  const place = (draw: number) => own.get(draw) ?? outer.get(columns.get(draw)!)!;
-  for (const row of rows) {
-    countScatter(marginal, row);
-    addRow(system, equation(row, { size: system.size, level: outer.get(row.level)!, place }));
-  }
-  marginal.logNorm -= logDiagonal(system, 0, own.size);
-  marginal.squares += system.rss;
-  addRows(marginal.system, system, { first: own.size, columns: ordered });
 }
 
 function addLocal(
@@ -188,22 +123,13 @@ function addLocal(
   marginal.logNorm += local.logNorm;
   marginal.squares += local.squares + local.system.rss;
   const places = [level, ...local.draws.map((draw) => columns.get(draw)!)];
-  addRows(marginal.system, local.system, { first: 0, columns: places });
-}
-
-/** Adds the rows of a smaller system from `first` on, whose unknowns are `columns` of the larger. */
-function addRows(
-  target: TriangularSystem,
-  source: TriangularSystem,
-  { first, columns }: { first: number; columns: number[] },
-): void {
-  const width = source.size + 1;
-  for (let i = first; i < source.size; i += 1) {
-    const start = i * width;
-    if (source.data[start + i] === 0) continue;
-    const row = new Float64Array(target.size + 1);
-    for (let k = i; k < source.size; k += 1) row[columns[k - first]!] = source.data[start + k]!;
-    row[target.size] = source.data[start + source.size]!;
-    addRow(target, row, columns[i - first]);
+  const { size, data } = local.system;
+  for (let i = 0; i < size; i += 1) {
+    const start = i * (size + 1);
+    if (data[start + i] === 0) continue;
+    const row = new Float64Array(marginal.system.size + 1);
+    for (let k = i; k < size; k += 1) row[places[k]!] = data[start + k]!;
+    row[marginal.system.size] = data[start + size]!;
+    addRow(marginal.system, row, places[i]);
   }
 }

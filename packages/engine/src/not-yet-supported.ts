@@ -100,23 +100,27 @@ export function unsupportedMeasurements(document: CampaignDocument): Problem[] {
   );
 }
 
+const OTHER_FORMS: readonly [keyof Measurement, string][] = [
+  ["limit", "a limit"],
+  ["plus", "an asymmetric uncertainty"],
+  ["minus", "an asymmetric uncertainty"],
+  ["noise", "linear noise on a log10 scale"],
+  ["occurred", "a report of an event"],
+  ["count", "a count"],
+];
+
 /** The same for one measurement that counts; `relative` names the relative shared errors. */
 export function unsupportedMeasurement(
   measurement: Measurement,
   at: string,
   relative: ReadonlySet<string>,
 ): Problem[] {
-  const forms: [keyof Measurement, string][] = [
-    ["limit", "a limit"],
-    ["plus", "an asymmetric uncertainty"],
-    ["minus", "an asymmetric uncertainty"],
-    ["noise", "linear noise on a log10 scale"],
-    ["occurred", "a report of an event"],
-    ["count", "a count"],
-  ];
-  const problems = forms
-    .filter(([field]) => measurement[field] !== null)
-    .map(([field, found]) => notYetSupported(below(at, field), found, "a value with sd"));
+  const problems: Problem[] = [];
+  for (const [field, found] of OTHER_FORMS) {
+    if (measurement[field] === null) continue;
+    problems.push(notYetSupported(below(at, field), found, "a value with sd"));
+  }
+  if (relative.size === 0) return problems;
   measurement.shared.forEach(({ error }, i) => {
     if (!relative.has(error)) return;
     const found = `"${error}", a relative shared error`;

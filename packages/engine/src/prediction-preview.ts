@@ -156,7 +156,7 @@ function ifMeasured(
   prediction: PredictionFrame,
   { y, sd }: { y: number; sd: number },
 ): Outcome {
-  const sums = createSums(1);
+  const sums = createSums(frame.measurands);
   const reading = { measurand: 0, y, variance: sd * sd, loadings: [], unknownUnit: null };
   addReading(sums, { ...reading, provisional: false }, frame.measurands[0]!);
   const workspace = createWorkspace(frame, sums);

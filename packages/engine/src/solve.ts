@@ -5,7 +5,7 @@ import {
   type TriangularSystem,
 } from "@weighhouse/numerics/triangular-system";
 import type { Role } from "./frame";
-import type { Marginal } from "./marginal";
+import type { Marginal } from "./marginal-form";
 
 /** A level as it is said to be; `centre` is what the sums are kept relative to. */
 export type Level = { role: Role; centre: number };

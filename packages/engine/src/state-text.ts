@@ -1,7 +1,7 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { compileFrame } from "./compile-frame";
 import type { EngineState } from "./engine-state";
-import { indexSums, type Draw, type Group, type MeasurandSums } from "./sums";
+import { indexSums, placeOf, type Draw, type MeasurandSums, type Pattern } from "./sums";
 import type { Tally } from "./tally";
 import { ENGINE_VERSION, STATE_VERSION } from "./version";
 
@@ -11,9 +11,8 @@ interface StateText {
   state: number;
   document: CampaignDocument;
   draws: Draw[];
-  measurands: (Omit<MeasurandSums, "groups"> & {
-    groups: (Omit<Group, "sums"> & { sums: number[] })[];
-  })[];
+  patterns: Pattern[];
+  measurands: (Omit<MeasurandSums, "sums"> & { sums: number[] })[];
   tally: Omit<Tally, "sameData" | "unknownUnits"> & {
     sameData: [string, Tally["sameData"] extends Map<string, infer V> ? V : never][];
     unknownUnits: [string, Tally["unknownUnits"] extends Map<string, infer V> ? V : never][];
@@ -27,9 +26,10 @@ export function serialiseState({ frame, sums, tally }: EngineState): string {
     state: STATE_VERSION,
     document: frame.document,
     draws: sums.draws,
+    patterns: sums.patterns,
     measurands: sums.measurands.map((one) => ({
       ...one,
-      groups: one.groups.map((group) => ({ ...group, sums: [...group.sums] })),
+      sums: [...one.sums.subarray(0, placeOf(one, one.patterns.length, 0))],
     })),
     tally: {
       ...tally,
@@ -45,16 +45,16 @@ export function serialiseState({ frame, sums, tally }: EngineState): string {
  * @returns null when it was written by another engine or state version
  */
 export function restoreState(text: string): EngineState | null {
-  const { engine, state, document, draws, measurands, tally } = JSON.parse(text) as StateText;
+  const { engine, state, document, draws, patterns, measurands, tally } = JSON.parse(
+    text,
+  ) as StateText;
   if (engine !== ENGINE_VERSION || state !== STATE_VERSION) return null;
   const frame = compileFrame(document);
   if (!frame.ok) return null;
   const sums = indexSums({
     draws,
-    measurands: measurands.map((one) => ({
-      ...one,
-      groups: one.groups.map((group) => ({ ...group, sums: Float64Array.from(group.sums) })),
-    })),
+    patterns,
+    measurands: measurands.map((one) => ({ ...one, sums: Float64Array.from(one.sums) })),
   });
   return {
     frame: frame.value,

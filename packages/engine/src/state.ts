@@ -20,8 +20,16 @@ export function createState(document: CampaignDocument): Result<EngineState> {
     return { ok: false, problems };
   }
   const frame = compiled.value;
-  const sums = createSums(frame.measurands.length);
-  return addMeasurements({ frame, sums, tally: createTally(frame) }, document.measurements);
+  const state = { frame, sums: createSums(frame.measurands), tally: createTally(frame) };
+  const problems: Problem[] = [];
+  // A state of its own is thrown away when something is refused, so readings needn't be kept.
+  for (const measurement of document.measurements) {
+    const read = readCounted(frame, measurement, state.tally.size);
+    if (!read.ok) problems.push(...read.problems);
+    if (problems.length === 0) take(state, measurement, read.ok ? read.value : null);
+    else state.tally.size += 1;
+  }
+  return problems.length > 0 ? { ok: false, problems } : { ok: true, value: state };
 }
 
 /**
@@ -34,7 +42,7 @@ export function addMeasurements(
   state: EngineState,
   measurements: readonly Measurement[],
 ): Result<EngineState> {
-  const { frame, sums, tally } = state;
+  const { frame, tally } = state;
   const readings: (Reading | null)[] = [];
   const problems: Problem[] = [];
   measurements.forEach((measurement, i) => {
@@ -43,12 +51,17 @@ export function addMeasurements(
     else problems.push(...read.problems);
   });
   if (problems.length > 0) return { ok: false, problems };
-  measurements.forEach((measurement, i) => {
-    const reading = readings[i]!;
-    noteMeasurement(tally, frame, { measurement, reading });
-    if (reading !== null) addReading(sums, reading, frame.measurands[reading.measurand]!);
-  });
+  measurements.forEach((measurement, i) => take(state, measurement, readings[i]!));
   return { ok: true, value: state };
+}
+
+function take(
+  { frame, sums, tally }: EngineState,
+  measurement: Measurement,
+  reading: Reading | null,
+): void {
+  noteMeasurement(tally, frame, { measurement, reading });
+  if (reading !== null) addReading(sums, reading, frame.measurands[reading.measurand]!);
 }
 
 /** Null for a measurement that is listed and not counted, whatever its form. */

@@ -1,8 +1,5 @@
 import type { MeasurandFrame } from "./frame";
-import type { Reading } from "./readings";
-
-/** Numbers kept per noise class: weight, mean, squares, logVariance. */
-const PER_CLASS = 4;
+import type { Loading, Reading } from "./readings";
 
 /** One independent draw of a shared error: the error's only one, or its draw for one batch. */
 export interface Draw {
@@ -10,42 +7,93 @@ export interface Draw {
   batch: string | null;
 }
 
-/**
- * Measurements of one measurand that load the same draws alike. Together they are one measurement
- * of their weighted mean: a hypothesis moves that, and never the scatter about it.
- */
-export interface Group {
+/** Which draws a measurement loads, and how much, in increasing order of draws. */
+export interface Pattern {
   /** The batch whose draws are among `draws`; null when none is drawn per batch. */
   batch: string | null;
   draws: number[];
   loadings: number[];
-  /** Per noise class, of y minus the centre: sum of 1/v, weighted mean, weighted squares about it, sum of ln v. */
-  sums: Float64Array;
 }
 
+/** Numbers kept per group and noise class. */
+export const WEIGHT = 0;
+export const MEAN = 1;
+export const SQUARES = 2;
+export const LOG_VARIANCE = 3;
+export const PER_CLASS = 4;
+
+/**
+ * A measurand's measurements in groups of one pattern. Those of a group are together one
+ * measurement of their weighted mean: a hypothesis moves that, and never the scatter about it.
+ */
 export interface MeasurandSums {
   /** The first value. Everything is kept relative to it: on Julian dates plain sums lose all digits. */
   centre: number;
   counted: number;
   provisional: number;
-  groups: Group[];
+  noises: number;
+  /** The pattern of each group. */
+  patterns: number[];
+  /**
+   * Per group, per noise class, of y minus the centre: sum of 1/v, weighted mean, weighted squares
+   * about it, sum of ln v. Longer than its groups need.
+   */
+  sums: Float64Array;
 }
 
 /** All that the measurements say, in a size that hangs on the patterns of loadings, not on their number. */
 export interface Sums {
   draws: Draw[];
+  patterns: Pattern[];
   measurands: MeasurandSums[];
-  /** Places of draws and groups by their description; rebuilt when a state is restored. */
-  index: { draws: Map<string, number>; groups: Map<string, Group>[] };
+  /** Places by description; rebuilt when a state is restored. */
+  index: SumsIndex;
 }
 
-export function createSums(measurands: number): Sums {
-  const empty = () => ({ centre: 0, counted: 0, provisional: 0, groups: [] });
-  return {
+interface SumsIndex {
+  draws: Map<string, number>;
+  patterns: Map<string, number>;
+  /** Patterns by their loadings as a measurement gives them. */
+  given: Map<string, number>;
+  /** Per measurand, groups by pattern. */
+  groups: Map<number, number>[];
+}
+
+export function createSums(measurands: readonly MeasurandFrame[]): Sums {
+  return indexSums({
     draws: [],
-    measurands: Array.from({ length: measurands }, empty),
-    index: { draws: new Map(), groups: Array.from({ length: measurands }, () => new Map()) },
+    patterns: [],
+    measurands: measurands.map(({ noises }) => ({
+      centre: 0,
+      counted: 0,
+      provisional: 0,
+      noises: noises.length,
+      patterns: [],
+      sums: new Float64Array(noises.length * PER_CLASS),
+    })),
+  });
+}
+
+/** The index of sums that came from elsewhere. */
+export function indexSums({ draws, patterns, measurands }: Omit<Sums, "index">): Sums {
+  return {
+    draws,
+    patterns,
+    measurands,
+    index: {
+      draws: new Map(draws.map((draw, i) => [drawKey(draw), i])),
+      patterns: new Map(patterns.map((pattern, i) => [patternKey(pattern), i])),
+      given: new Map(),
+      groups: measurands.map(
+        (measurand) => new Map(measurand.patterns.map((pattern, group) => [pattern, group])),
+      ),
+    },
   };
+}
+
+/** Where a group's numbers of one noise class begin in its measurand's sums. */
+export function placeOf({ noises }: MeasurandSums, group: number, noise: number): number {
+  return (group * noises + noise) * PER_CLASS;
 }
 
 /** Adds one reading: West's weighted form of Welford's update, once per noise class. */
@@ -54,63 +102,72 @@ export function addReading(sums: Sums, reading: Reading, frame: MeasurandFrame):
   if (own.counted === 0) own.centre = reading.y;
   own.counted += 1;
   if (reading.provisional) own.provisional += 1;
-  const group = groupOf(sums, reading, frame.noises.length);
+  const group = groupOf(sums, reading);
   const y = reading.y - own.centre;
   const variance = reading.variance + frame.scatterVariance;
-  for (let noise = 0; noise < frame.noises.length; noise += 1) {
-    const at = noise * PER_CLASS;
+  const numbers = own.sums;
+  for (let noise = 0; noise < own.noises; noise += 1) {
+    const at = placeOf(own, group, noise);
     const v = variance + frame.noises[noise]!;
     const weight = 1 / v;
-    const total = group.sums[at]! + weight;
-    const distance = y - group.sums[at + 1]!;
-    const mean = group.sums[at + 1]! + (distance * weight) / total;
-    group.sums[at] = total;
-    group.sums[at + 1] = mean;
-    group.sums[at + 2] = group.sums[at + 2]! + weight * distance * (y - mean);
-    group.sums[at + 3] = group.sums[at + 3]! + Math.log(v);
+    const total = numbers[at + WEIGHT]! + weight;
+    const distance = y - numbers[at + MEAN]!;
+    const mean = numbers[at + MEAN]! + (distance * weight) / total;
+    numbers[at + WEIGHT] = total;
+    numbers[at + MEAN] = mean;
+    numbers[at + SQUARES] = numbers[at + SQUARES]! + weight * distance * (y - mean);
+    numbers[at + LOG_VARIANCE] = numbers[at + LOG_VARIANCE]! + Math.log(v);
   }
 }
 
-export function groupSums(group: Group, noise: number) {
-  const at = noise * PER_CLASS;
-  return {
-    weight: group.sums[at]!,
-    mean: group.sums[at + 1]!,
-    squares: group.sums[at + 2]!,
-    logVariance: group.sums[at + 3]!,
-  };
-}
-
-function groupOf(sums: Sums, { measurand, loadings }: Reading, noises: number): Group {
+function groupOf(sums: Sums, { measurand, loadings }: Reading): number {
   const groups = sums.index.groups[measurand]!;
   const pattern = patternOf(sums, loadings);
-  const key = patternKey(pattern);
-  let group = groups.get(key);
-  if (group === undefined) {
-    const batch = pattern.draws.map((draw) => sums.draws[draw]!.batch).find((b) => b !== null);
-    group = { ...pattern, batch: batch ?? null, sums: new Float64Array(noises * PER_CLASS) };
-    groups.set(key, group);
-    sums.measurands[measurand]!.groups.push(group);
+  const there = groups.get(pattern);
+  if (there !== undefined) return there;
+  const own = sums.measurands[measurand]!;
+  const group = own.patterns.push(pattern) - 1;
+  groups.set(pattern, group);
+  const needed = placeOf(own, group + 1, 0);
+  if (needed > own.sums.length) {
+    const longer = new Float64Array(2 * needed);
+    longer.set(own.sums);
+    own.sums = longer;
   }
   return group;
 }
 
-function patternKey({ draws, loadings }: Pick<Group, "draws" | "loadings">): string {
-  let key = "";
-  for (let i = 0; i < draws.length; i += 1) key += `${draws[i]}:${loadings[i]};`;
-  return key;
+function patternOf(sums: Sums, loadings: readonly Loading[]): number {
+  let given = "";
+  for (const { error, batch, value } of loadings) given += `${error} ${value} ${batch ?? ""};`;
+  const there = sums.index.given.get(given);
+  if (there !== undefined) return there;
+  const pattern = sortedPattern(sums, loadings);
+  const key = patternKey(pattern);
+  let place = sums.index.patterns.get(key);
+  if (place === undefined) {
+    place = sums.patterns.push(pattern) - 1;
+    sums.index.patterns.set(key, place);
+  }
+  sums.index.given.set(given, place);
+  return place;
 }
 
 /** Draws in increasing order, loadings of one draw added up, those that cancel left out. */
-function patternOf(sums: Sums, loadings: Reading["loadings"]): Pick<Group, "draws" | "loadings"> {
-  if (loadings.length === 0) return { draws: [], loadings: [] };
+function sortedPattern(sums: Sums, loadings: readonly Loading[]): Pattern {
   const byDraw = new Map<number, number>();
   for (const { error, batch, value } of loadings) {
     const draw = drawOf(sums, { error, batch });
     byDraw.set(draw, (byDraw.get(draw) ?? 0) + value);
   }
   const pairs = [...byDraw].filter(([, value]) => value !== 0).sort(([a], [b]) => a - b);
-  return { draws: pairs.map(([draw]) => draw), loadings: pairs.map(([, value]) => value) };
+  const draws = pairs.map(([draw]) => draw);
+  const batch = draws.map((draw) => sums.draws[draw]!.batch).find((one) => one !== null) ?? null;
+  return { batch, draws, loadings: pairs.map(([, value]) => value) };
+}
+
+function patternKey({ draws, loadings }: Pattern): string {
+  return draws.map((draw, i) => `${draw}:${loadings[i]}`).join(";");
 }
 
 function drawOf(sums: Sums, draw: Draw): number {
@@ -123,18 +180,4 @@ function drawOf(sums: Sums, draw: Draw): number {
 
 function drawKey({ error, batch }: Draw): string {
   return batch === null ? `${error}` : `${error} ${batch}`;
-}
-
-/** The index of sums that came from elsewhere. */
-export function indexSums({ draws, measurands }: Pick<Sums, "draws" | "measurands">): Sums {
-  return {
-    draws,
-    measurands,
-    index: {
-      draws: new Map(draws.map((draw, i) => [drawKey(draw), i])),
-      groups: measurands.map(
-        ({ groups }) => new Map(groups.map((group) => [patternKey(group), group])),
-      ),
-    },
-  };
 }
