@@ -13,7 +13,7 @@ const words: Record<StreamState, string> = {
   lost: "not live: reload to see what is new",
 };
 
-const SCORED_WITHIN_MS = 400;
+const SCORED_WITHIN_MS = 800;
 
 /**
  * Keeps the page it stands on at the campaign's newest state: each event makes the server's part

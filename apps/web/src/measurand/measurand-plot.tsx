@@ -34,8 +34,10 @@ export function MeasurandPlot({ data }: { data: MeasurandPlotData }) {
   const along = data.timed
     ? timeTicks(x[0], x[1], 3)
     : { ticks: data.points.map((point) => point.x), text: formatNumber };
+  // Many bands over one another would turn to mud.
+  const faint = Math.min(0.1, 0.4 / data.bands.length);
   return (
-    <div className="h-80 w-full">
+    <div className="needs-script h-80 w-full">
       <ResponsiveContainer width="100%" height="100%">
         <ScatterChart margin={{ top: 8, right: 4, bottom: 4, left: 0 }} accessibilityLayer>
           {data.reference ? (
@@ -55,7 +57,7 @@ export function MeasurandPlot({ data }: { data: MeasurandPlotData }) {
               {...clipped(band, y)}
               ifOverflow="hidden"
               fill={inkOf(band.index)}
-              fillOpacity={band.lower === band.upper ? 0.5 : 0.1}
+              fillOpacity={band.lower === band.upper ? 0.5 : faint}
               stroke="none"
             />
           ))}

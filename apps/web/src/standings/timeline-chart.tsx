@@ -48,7 +48,7 @@ export function TimelineChart(props: { rows: TimelineRow[]; series: Series[] }) 
       ? timeTicks(first, Math.max(last, first + 1), 6)
       : { ticks: linearTicks(first, last).filter(Number.isInteger), text: String };
   return (
-    <>
+    <div className="needs-script">
       <fieldset className="no-print mb-1 flex flex-wrap gap-4 text-[14px] text-quiet">
         <legend className="sr-only">Along the axis</legend>
         {(["time", "entry"] as const).map((each) => (
@@ -129,7 +129,7 @@ export function TimelineChart(props: { rows: TimelineRow[]; series: Series[] }) 
           </li>
         ))}
       </ul>
-    </>
+    </div>
   );
 }
 
