@@ -13,9 +13,6 @@ export function numberFromText(text: string | null | undefined): number | string
   return plainNumber.test(plain) ? Number(plain) : trimmed;
 }
 
-/** The same for a field that may hold an expression: what is not a number stays text. */
-export const expectedFromText = numberFromText;
-
 const dateOnly = /^\d{4}-\d{2}-\d{2}$/;
 const dateAndTime = /^(\d{4}-\d{2}-\d{2})[ T](\d{2}:\d{2})(:\d{2}(?:\.\d{1,9})?)?\s*(?:Z|UTC)?$/i;
 

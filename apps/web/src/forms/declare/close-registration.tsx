@@ -32,7 +32,7 @@ export function CloseRegistration({ campaign }: { campaign: string }) {
     <FormBody busy={closing}>
       <Tick
         label="Close it for good, now"
-        help="Whoever registers later is marked as filed after data and leaves the standings alone."
+        help="Whoever registers later is marked as filed after data, and counts as silent in the standings."
         checked={sure}
         onChange={(event) => setSure(event.target.checked)}
       />

@@ -87,26 +87,29 @@ function OwnDates({ plan }: { plan: Plan }) {
       {plan.orders.length === 0 ? (
         <p className="mb-2 text-quiet">No prediction changes its standing by that.</p>
       ) : (
-        <Table
-          caption="Predictions whose order changes by the import"
-          head={
-            <tr>
-              <th scope="col">Hypothesis</th>
-              <th scope="col">Quantity</th>
-              <th scope="col">By the document</th>
-              <th scope="col">Here</th>
-            </tr>
-          }
-        >
-          {plan.orders.map(({ hypothesis, measurand, claimed, here }) => (
-            <tr key={`${hypothesis} ${measurand}`}>
-              <th scope="row">{hypothesis}</th>
-              <td data-label="Quantity">{measurand}</td>
-              <td data-label="By the document">{orderWords[claimed]}</td>
-              <td data-label="Here">{orderWords[here]}</td>
-            </tr>
-          ))}
-        </Table>
+        <>
+          <h4 className="mt-3 mb-1 font-serif font-semibold">Predictions that are dated anew</h4>
+          <Table
+            caption="Predictions whose order changes by the import"
+            head={
+              <tr>
+                <th scope="col">Hypothesis</th>
+                <th scope="col">Quantity</th>
+                <th scope="col">By the document</th>
+                <th scope="col">Here</th>
+              </tr>
+            }
+          >
+            {plan.orders.map(({ hypothesis, measurand, claimed, here }) => (
+              <tr key={`${hypothesis} ${measurand}`}>
+                <th scope="row">{hypothesis}</th>
+                <td data-label="Quantity">{measurand}</td>
+                <td data-label="By the document">{orderWords[claimed]}</td>
+                <td data-label="Here">{orderWords[here]}</td>
+              </tr>
+            ))}
+          </Table>
+        </>
       )}
     </>
   );
@@ -117,31 +120,34 @@ function Standings({ plan }: { plan: Plan }) {
   const there = new Map(claimed.hypotheses.map((each) => [each.key, each]));
   if (here.hypotheses.length === 0) return null;
   return (
-    <Table
-      caption="Standings by the document and as they would be here"
-      head={
-        <tr>
-          <th scope="col">Hypothesis</th>
-          <th scope="col" className="number">
-            log₁₀ B by the document
-          </th>
-          <th scope="col" className="number">
-            log₁₀ B here
-          </th>
-        </tr>
-      }
-    >
-      {here.hypotheses.map(({ key, log10BayesFactor }) => (
-        <tr key={key}>
-          <th scope="row">{key}</th>
-          <td data-label="log₁₀ B by the document" className="number">
-            {formatLog10B(there.get(key)?.log10BayesFactor ?? null)}
-          </td>
-          <td data-label="log₁₀ B here" className="number">
-            {formatLog10B(log10BayesFactor)}
-          </td>
-        </tr>
-      ))}
-    </Table>
+    <>
+      <h4 className="mt-4 mb-1 font-serif font-semibold">The beam by the document and here</h4>
+      <Table
+        caption="Standings by the document and as they would be here"
+        head={
+          <tr>
+            <th scope="col">Hypothesis</th>
+            <th scope="col" className="number">
+              log₁₀ B by the document
+            </th>
+            <th scope="col" className="number">
+              log₁₀ B here
+            </th>
+          </tr>
+        }
+      >
+        {here.hypotheses.map(({ key, log10BayesFactor }) => (
+          <tr key={key}>
+            <th scope="row">{key}</th>
+            <td data-label="log₁₀ B by the document" className="number">
+              {formatLog10B(there.get(key)?.log10BayesFactor ?? null)}
+            </td>
+            <td data-label="log₁₀ B here" className="number">
+              {formatLog10B(log10BayesFactor)}
+            </td>
+          </tr>
+        ))}
+      </Table>
+    </>
   );
 }

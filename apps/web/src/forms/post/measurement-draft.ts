@@ -4,7 +4,7 @@ import { measurementId, optional } from "@weighhouse/campaign/fields";
 import { z } from "zod";
 import { numberFromText, textOrNull, timeFromText } from "../entered-text";
 
-export interface LoadingDraft {
+interface LoadingDraft {
   error: string;
   coefficient: string;
 }

@@ -1,5 +1,5 @@
 import type { CampaignDocument, Hypothesis } from "@weighhouse/campaign/document";
-import { expectedFromText, numberFromText, numberToText, textOrNull } from "../entered-text";
+import { numberFromText, numberToText, textOrNull } from "../entered-text";
 
 /** What the form holds of one prediction: text as typed, one draft per quantity of the campaign. */
 export interface PredictionDraft {
@@ -24,7 +24,7 @@ export interface HypothesisDraft {
   predictions: PredictionDraft[];
 }
 
-export function silentOn(measurand: string): PredictionDraft {
+function silentOn(measurand: string): PredictionDraft {
   return {
     measurand,
     says: "silent",
@@ -87,10 +87,10 @@ export function hypothesisContent(draft: HypothesisDraft): Record<string, unknow
   };
 }
 
-export function predictionContent(draft: PredictionDraft): Record<string, unknown> {
+function predictionContent(draft: PredictionDraft): Record<string, unknown> {
   return {
     measurand: draft.measurand,
-    expected: expectedFromText(draft.expected),
+    expected: numberFromText(draft.expected),
     tolerance:
       draft.tolerance === "exact"
         ? null

@@ -43,7 +43,7 @@ export function PredictionCard(props: {
         {measurand.firstPostedAt === null ? null : (
           <strong className="font-medium text-brass">
             {" "}
-            Already measured: a prediction here is filed after data and leaves the standings alone.
+            Already measured: a prediction here is filed after data, listed, and counted as silence.
           </strong>
         )}
       </p>

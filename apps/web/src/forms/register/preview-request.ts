@@ -1,4 +1,4 @@
-import { expectedFromText, numberFromText } from "../entered-text";
+import { numberFromText } from "../entered-text";
 import type { PredictionDraft } from "./hypothesis-draft";
 import { referenceMiddle, type Quantity } from "./quantity";
 import type { PreviewRequest } from "./use-preview";
@@ -8,7 +8,7 @@ export function requestOfDraft(
   draft: PredictionDraft,
   fallbackSd: number | null,
 ): PreviewRequest | null {
-  const expected = expectedFromText(draft.expected);
+  const expected = numberFromText(draft.expected);
   const measuredSd = sdOf(draft, fallbackSd);
   if (draft.says !== "number" || expected === null || measuredSd === null) return null;
   if (draft.tolerance === "exact")

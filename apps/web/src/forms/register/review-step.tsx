@@ -126,9 +126,9 @@ function WrongIf({ sentence }: { sentence: string }) {
 function OrderWords({ said, closed }: { said: readonly Said[]; closed: boolean }) {
   const measured = said.filter(({ quantity }) => quantity.measurand.firstPostedAt !== null);
   if (closed)
-    return "Registration has closed: every prediction is marked as filed after data and leaves the standings alone.";
+    return "Registration has closed: every prediction is marked as filed after data, and counts as silence in the standings.";
   if (measured.length === 0) return "";
-  return `Filed after data, and left out of the standings: ${measured.map(({ quantity }) => quantity.measurand.title).join("; ")}.`;
+  return `Filed after data, and counted as silence in the standings: ${measured.map(({ quantity }) => quantity.measurand.title).join("; ")}.`;
 }
 
 /** The predictions with the intervals that the engine gives them. */

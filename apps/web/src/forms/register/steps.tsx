@@ -1,6 +1,6 @@
 "use client";
 
-export const steps = ["statement", "predictions", "review"] as const;
+const steps = ["statement", "predictions", "review"] as const;
 export type Step = (typeof steps)[number];
 
 const titles: Record<Step, string> = {
