@@ -1,6 +1,6 @@
 import { describe, expect, test } from "vitest";
 import { chiSquareUpperTail } from "@weighhouse/numerics/chi-square";
-import { logNormalCdf, normalCdf, normalQuantile } from "@weighhouse/numerics/normal";
+import { logNormalCdf, normalCdf } from "@weighhouse/numerics/normal";
 import { record, relative } from "./records";
 
 // 1e-12 relative down to 1e-300: the accuracy that distribution functions are held to.
@@ -69,11 +69,10 @@ describe("normal tails", () => {
     }
   });
 
-  test("are the sigma table's, one-sided, and quantiles undo them (normal.nsigma)", () => {
+  test("are the sigma table's, one-sided (normal.nsigma)", () => {
     const { expected } = record<{ n_sigma: number; p_one_sided: number }[]>("normal.nsigma");
     for (const { n_sigma, p_one_sided } of expected) {
       expect(relative(normalCdf(-n_sigma), p_one_sided)).toBeLessThan(ACCURACY);
-      expect(relative(normalQuantile(p_one_sided), -n_sigma)).toBeLessThan(ACCURACY);
     }
   });
 });

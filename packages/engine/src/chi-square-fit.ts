@@ -52,7 +52,9 @@ export function referenceFit(workspace: Workspace, measurand: number): Fit | nul
   return fitOf(chiSquare, counted - (inside ? 1 : 0));
 }
 
-export function fitOf(chiSquare: number, degreesOfFreedom: number): Fit {
+/** @param least a minimum; one beyond all doubles is infinite, and its p 0 */
+export function fitOf(least: number, degreesOfFreedom: number): Fit {
+  const chiSquare = Number.isNaN(least) ? Infinity : least;
   const pValue = degreesOfFreedom > 0 ? chiSquareUpperTail(chiSquare, degreesOfFreedom) : null;
   return { chiSquare, degreesOfFreedom, pValue };
 }

@@ -1,5 +1,4 @@
-import { chiSquareUpperTail } from "@weighhouse/numerics/chi-square";
-import { lastUnknown } from "./chi-square-fit";
+import { fitOf, lastUnknown } from "./chi-square-fit";
 import { marginalOf } from "./marginal";
 import { solve } from "./solve";
 import type { Combination, Workspace } from "./workspace";
@@ -27,13 +26,14 @@ function leastSquares({ sums, marginals }: Workspace, measurand: number): Combin
   const { scale, value } = lastUnknown(system);
   const degreesOfFreedom = counted - 1;
   // One measurement agrees with itself, whatever rounding says.
-  const chiSquare = degreesOfFreedom > 0 ? marginal.squares + system.rss : 0;
+  const least = degreesOfFreedom > 0 ? marginal.squares + system.rss : 0;
+  const { chiSquare, pValue } = fitOf(least, degreesOfFreedom);
   return {
     value: centre + value,
     sd: 1 / Math.abs(scale),
     chiSquare,
     degreesOfFreedom,
     birgeRatio: degreesOfFreedom > 0 ? Math.sqrt(chiSquare / degreesOfFreedom) : null,
-    pValue: degreesOfFreedom > 0 ? chiSquareUpperTail(chiSquare, degreesOfFreedom) : null,
+    pValue,
   };
 }

@@ -6,6 +6,10 @@ import type { Frame, MeasurandFrame } from "./frame";
 import { unsupportedMeasurement } from "./not-yet-supported";
 import { sdInScoringSpace, toScoringSpace } from "./scoring-space";
 
+/** Uncertainties whose squares and weights are ordinary doubles. */
+const LEAST_SD = 1e-140;
+const MOST_SD = 1e140;
+
 export interface Loading {
   error: number;
   batch: string | null;
@@ -81,10 +85,15 @@ function readValue(
     const at = below(pointer, "value");
     return { pointer: at, code: "not-positive", found: String(given), allowed: "a value above 0" };
   }
+  const dex = scale === "log10" && sdDex !== null;
+  if (!dex && givenSd === null) return missing(below(pointer, "sd"), "a standard uncertainty");
+  const sd = dex ? sdDex : sdInScoringSpace(Math.abs(factor) * givenSd!, value, scale);
   const y = toScoringSpace(value, scale);
-  if (scale === "log10" && sdDex !== null) return { y, variance: sdDex * sdDex, unknownUnit };
-  if (givenSd === null) return missing(below(pointer, "sd"), "a standard uncertainty");
-  const sd = sdInScoringSpace(Math.abs(factor) * givenSd, value, scale);
+  if (!(sd >= LEAST_SD && sd <= MOST_SD && Math.abs(y) <= MOST_SD * sd)) {
+    const at = below(pointer, dex ? "sdDex" : "sd");
+    const allowed = `${LEAST_SD} to ${MOST_SD}, and no less than the value / ${MOST_SD}`;
+    return { pointer: at, code: "out-of-range", found: String(dex ? sdDex : givenSd), allowed };
+  }
   return { y, variance: sd * sd, unknownUnit };
 }
 

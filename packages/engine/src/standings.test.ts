@@ -154,6 +154,24 @@ describe("what is listed and not counted", () => {
   });
 });
 
+test("a hypothesis whose likelihood is zero has no evidence, ranks last, and breaks nothing", () => {
+  const { hypotheses, pairs, verdicts } = standingsOf({
+    hypotheses: [hypothesis("absurd", [onX(1e200)]), hypothesis("good", [onX(3)])],
+    measurements: [{ id: "a", measurand: "x", value: 3, sd: 0.1 }],
+  });
+  expect(hypotheses.map(({ key }) => key)).toEqual(["good", "absurd"]);
+  expect(hypotheses[1]).toMatchObject({
+    lnEvidence: null,
+    lnEvidenceError: 0,
+    log10BayesFactor: null,
+    posterior: 0,
+    chiSquare: null,
+    pValue: 0,
+  });
+  expect(pairs[0]!.log10BayesFactor).toBeNull();
+  expect(verdicts.map(({ verdict }) => verdict)).toEqual(["fail", "pass"]);
+});
+
 describe("scales and units", () => {
   test("on log10 values and bounds are natural, uncertainties in dex", () => {
     const logged = { key: "x", observable: "l", reference: { ...uniform, lower: 0.1 } };

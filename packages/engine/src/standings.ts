@@ -102,7 +102,7 @@ function hypothesisStanding(
     rank: rest.rank,
     compared: score.compared,
     silent: score.silent,
-    chiSquare: score.fit?.chiSquare ?? null,
+    chiSquare: finite(score.fit?.chiSquare ?? null),
     degreesOfFreedom: score.fit?.degreesOfFreedom ?? 0,
     pValue: score.fit?.pValue ?? null,
     lnEvidence,
@@ -137,7 +137,7 @@ function verdictRow(
     measurand,
     verdict: verdict.word,
     conformance: verdict.conformance,
-    tension: verdict.tension,
+    tension: finite(verdict.tension),
     value: natural(verdict.value),
     sd: verdict.sd,
     lower: interval.lower,
@@ -172,6 +172,7 @@ function measurandStanding(workspace: Workspace, m: number): MeasurandStanding {
   };
 }
 
-function finite(value: number): number | null {
-  return Number.isFinite(value) ? value : null;
+/** What is beyond all doubles doesn't exist in JSON. */
+function finite(value: number | null): number | null {
+  return value !== null && Number.isFinite(value) ? value : null;
 }

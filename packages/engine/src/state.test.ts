@@ -111,6 +111,7 @@ describe("a state", () => {
       measurands: [
         { key: "x", observable: "o", reference: { family: "uniform", lower: 0, upper: 10 } },
       ],
+      sharedErrors: [{ key: "zero", sd: 1, per: "batch" }],
       measurements: [{ id: "m", measurand: "x", value: 4, sd: 0.5 }],
     });
     const state = stateOf(document);
@@ -123,6 +124,9 @@ describe("a state", () => {
       { ...good!, id: "r", unit: "kg" },
       { ...good!, id: "s", sd: null },
       { ...good!, id: "t", shared: [{ error: "nowhere", coefficient: 1 }] },
+      { ...good!, id: "u", sd: 1e-200 },
+      { ...good!, id: "v", value: 1e200 },
+      { ...good!, id: "w", shared: [{ error: "zero", coefficient: 1 }] },
     ]);
     const problems = refused.ok ? [] : refused.problems;
     expect(problems.map(({ pointer, code }) => `${pointer} ${code}`)).toEqual([
@@ -131,6 +135,9 @@ describe("a state", () => {
       "/measurements/4/unit wrong-dimension",
       "/measurements/5/sd missing",
       "/measurements/6/shared unknown-key",
+      "/measurements/7/sd out-of-range",
+      "/measurements/8/sd out-of-range",
+      "/measurements/9/batch missing",
     ]);
     expect(serialiseState(state)).toBe(before);
   });

@@ -1,4 +1,4 @@
-import { logNormalInterval, normalCdf } from "@weighhouse/numerics/normal";
+import { normalCdf, normalInterval } from "@weighhouse/numerics/normal";
 import type { VerdictWord } from "@weighhouse/campaign/standings";
 import { fit, type Fit } from "./chi-square-fit";
 import { combine } from "./combination";
@@ -61,7 +61,7 @@ function ofInterval(
   const { value, birgeRatio, pValue } = combination;
   const inflated = pValue !== null && pValue < DISAGREEING;
   const sd = inflated ? combination.sd * birgeRatio! : combination.sd;
-  const conformance = Math.exp(logNormalInterval((lower - value) / sd, (upper - value) / sd));
+  const conformance = normalInterval((lower - value) / sd, (upper - value) / sd);
   const above = normalCdf((value - upper) / sd);
   const below = normalCdf((lower - value) / sd);
   const { rule } = frame.document.campaign;

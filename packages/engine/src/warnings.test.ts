@@ -1,5 +1,9 @@
 import { describe, expect, test } from "vitest";
+import { scoreSilence } from "./hypothesis-scores";
+import { createState } from "./state";
 import { documentFrom, standingsFrom } from "./testing/documents";
+import { warningsOf as allWarnings } from "./warnings";
+import { createWorkspace } from "./workspace";
 
 type Part = Record<string, unknown>;
 
@@ -58,6 +62,34 @@ test("a reference that its measurements lie far outside of is poor", () => {
   expect(warningsOf({ predictions: [], values: [{ value: 10.2 }] })).toEqual([
     "outside-reference /measurements/0",
   ]);
+});
+
+test("a normal reference costs no degree of freedom, however far its measurements lie", () => {
+  // chi2 = (z - 5)^2 / (1 + 0.01) against one degree: p = 0.001 at 10.83, 3.307 off.
+  const off = (value: number) =>
+    warningsOf({ reference: gaussian, predictions: [], values: [{ value }] });
+  expect(off(8.3)).toEqual([]);
+  expect(off(8.32)).toEqual(["poor-reference /measurands/0"]);
+  expect(off(9.1)).toEqual(["outside-reference /measurements/0", "poor-reference /measurands/0"]);
+});
+
+test("an evidence with a standard error above 0.1 is approximate", () => {
+  const document = documentFrom({
+    hypotheses: [{ key: "h", title: "H", predictions: [] }],
+  });
+  const state = createState(document);
+  if (!state.ok) throw new Error("it is right");
+  const { frame, sums, tally } = state.value;
+  const workspace = createWorkspace(frame, sums);
+  const silence = scoreSilence(workspace);
+  const rough = { ...silence, key: "h", pointer: "/hypotheses/0", lnEvidenceError: 0.11 };
+  const { hypotheses, pairs } = standingsFrom(document);
+  const context = { workspace, tally, silence, hypotheses, pairs, includeAfter: false };
+  const warnings = allWarnings({ ...context, scores: [rough] });
+  expect(warnings.map(({ code, at }) => `${code} ${at}`)).toEqual([
+    "approximate-evidence /hypotheses/0",
+  ]);
+  expect(allWarnings({ ...context, scores: [{ ...rough, lnEvidenceError: 0.1 }] })).toEqual([]);
 });
 
 test("the same data among counted measurements is named once a key", () => {

@@ -91,26 +91,6 @@ function logUpperSide(a: number, b: number): number {
 }
 
 /**
- * The value below which a standard normal lies with a given probability.
- *
- * The library's quantile is right to some 1e-12; one Newton step on ln Phi takes it the rest.
- *
- * @param p strictly between 0 and 1
- * @returns z; relative error below 1e-13 but near p = 1/2, where it is that of p
- * @throws {NumericsError} `out-of-domain`
- */
-export function normalQuantile(p: number): number {
-  if (!(p > 0 && p < 1)) {
-    throw new NumericsError("out-of-domain", `a quantile needs 0 < p < 1; found ${p}`);
-  }
-  if (p > 0.5) return -normalQuantile(1 - p);
-  const z = quantile(p, 0, 1);
-  const logCdf = logNormalCdf(z);
-  const slope = Math.exp(-(z * z) / 2 - LN_SQRT_2PI - logCdf);
-  return z - (logCdf - Math.log(p)) / slope;
-}
-
-/**
  * The value u in [lower, upper] that a share p of the standard normal's mass there lies below:
  * Phi(u) = Phi(lower) + p (Phi(upper) - Phi(lower)).
  *
