@@ -1,7 +1,6 @@
 "use client";
 
 import { zodResolver } from "@hookform/resolvers/zod";
-import { useRouter } from "next/navigation";
 import { useState } from "react";
 import { useForm } from "react-hook-form";
 import { Button } from "@/look/button";
@@ -11,7 +10,6 @@ import { authClient } from "./auth-client";
 import { signInSchema } from "./credentials";
 
 export function SignInForm({ next }: { next: string }) {
-  const router = useRouter();
   const [refusal, setRefusal] = useState<string | null>(null);
   const form = useForm({
     resolver: zodResolver(signInSchema),
@@ -24,8 +22,8 @@ export function SignInForm({ next }: { next: string }) {
       setRefusal(error.message ?? `The server answered ${error.status}`);
       return;
     }
-    router.push(next);
-    router.refresh();
+    // A whole page load: all that was fetched as nobody is let go.
+    window.location.assign(next);
   });
   return (
     <form onSubmit={signIn} noValidate className="max-w-md">

@@ -13,7 +13,7 @@ export default async function SignInPage(props: {
   return (
     <>
       <h1 className="my-3">Sign in</h1>
-      <Section title="With your e-mail address">
+      <Section title="Your account">
         <SignInForm next={next} />
         <p className="mt-4 text-quiet">
           No account yet?{" "}
