@@ -29,6 +29,8 @@ export function AsOf(props: {
     });
   const earlier = props.steps.findLast((step) => step < props.size);
   const later = props.steps.find((step) => step > props.size);
+  // A ledger of one entry has no other state to go to.
+  if (props.latestSize < 2) return null;
   return (
     <form
       method="get"

@@ -35,16 +35,20 @@ export function Beam({ view }: { view: BeamView }) {
       {widthPx === null ? (
         prepared.map(({ widthPx: each, className }) => (
           <div key={each} className={className}>
-            <BeamDrawing
-              layout={layoutBeam(view.input, { widthPx: each })}
-              view={view}
-              label={label}
-            />
+            <BeamDrawing layout={laidOut(view, each)} view={view} label={label} />
           </div>
         ))
       ) : (
-        <BeamDrawing layout={layoutBeam(view.input, { widthPx })} view={view} label={label} />
+        <BeamDrawing layout={laidOut(view, widthPx)} view={view} label={label} />
       )}
     </div>
   );
+}
+
+/** Narrower than this, a beam across the page would have to cut the hypotheses' names short. */
+const ACROSS_FROM_PX = 820;
+
+function laidOut(view: BeamView, widthPx: number) {
+  const direction = widthPx < ACROSS_FROM_PX ? "upright" : "horizontal";
+  return layoutBeam(view.input, { widthPx, direction });
 }
