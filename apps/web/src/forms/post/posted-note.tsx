@@ -17,7 +17,7 @@ export function PostedNote({ campaign, posted }: { campaign: string; posted: Pos
           {posted.posted.length === 1
             ? "1 measurement is on record"
             : `${formatCount(posted.posted.length)} measurements are on record`}
-          {posted.appended === null ? "" : <> as ledger entry {posted.appended.from}</>}
+          {posted.appended === null ? "" : ` as ${entriesWords(posted.appended)}`}
           {posted.alreadyThere.length > 0
             ? `; ${formatCount(posted.alreadyThere.length)} were there already`
             : ""}
@@ -29,6 +29,11 @@ export function PostedNote({ campaign, posted }: { campaign: string; posted: Pos
       )}
     </output>
   );
+}
+
+/** "ledger entry 6", or "ledger entries 6 to 8", of the entries [from, to). */
+function entriesWords({ from, to }: { from: number; to: number }): string {
+  return to - from === 1 ? `ledger entry ${from}` : `ledger entries ${from} to ${to - 1}`;
 }
 
 /** A refusal of the whole, with every row at fault. */

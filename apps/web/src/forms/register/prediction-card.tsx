@@ -99,7 +99,7 @@ export function PredictionCard(props: {
           {speaks ? (
             <PredictionEffect quantity={quantity} state={preview} sd={request?.sd ?? null} />
           ) : (
-            <SilenceEffect state={preview} />
+            <SilenceEffect quantity={quantity} state={preview} sd={request?.sd ?? null} />
           )}
           <SupposedSd
             quantity={quantity}

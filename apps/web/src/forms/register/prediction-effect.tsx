@@ -5,7 +5,7 @@ import { kassRaftery } from "@weighhouse/engine/kass-raftery";
 import { formatFixed, formatInterval, formatPercent } from "@weighhouse/figures/numbers";
 import type { ReactNode } from "react";
 import { BandFigure } from "./band-figure";
-import { formatReading, unitAfter, type Quantity } from "./quantity";
+import { formatReading, spreadUnit, unitAfter, type Quantity } from "./quantity";
 import type { PreviewState } from "./use-preview";
 
 /** What a prediction commits to: its band, what passes and fails, what a hit earns, a miss costs. */
@@ -60,14 +60,20 @@ function Effect(props: { quantity: Quantity; preview: PredictionPreview; sd: num
 }
 
 /** What silence on a quantity costs against a rival who speaks. */
-export function SilenceEffect({ state }: { state: PreviewState }) {
+export function SilenceEffect(props: {
+  quantity: Quantity;
+  state: PreviewState;
+  sd: number | null;
+}) {
+  const { quantity, state, sd } = props;
   return (
     <p className="text-[14px] text-quiet">
       Silent: charged the no-model range, whatever is measured.
       {state.state === "ready" ? (
         <>
           {" "}
-          A rival with an exact prediction that hits gains{" "}
+          A rival with an exact prediction that hits
+          {sd === null ? "" : `, measured to ${formatNumber(sd)} ${spreadUnit(quantity)}`}, gains{" "}
           <strong className="font-semibold text-ink">
             {signed(state.preview.hit.log10BayesFactor)}
           </strong>{" "}

@@ -1,4 +1,4 @@
-import { formatNumber } from "@weighhouse/figures/numbers";
+import { formatInterval, formatNumber } from "@weighhouse/figures/numbers";
 
 /** What the review says of one prediction. */
 export interface SpokenPrediction {
@@ -32,7 +32,7 @@ function clause(prediction: SpokenPrediction): string {
   const subject = `the true value of “${prediction.title}”`;
   if (interval !== null && interval.lower !== null && interval.upper !== null) {
     if (interval.lower !== interval.upper)
-      return `${subject} lies outside ${formatNumber(interval.lower)} to ${formatNumber(interval.upper)}${unit}`;
+      return `${subject} lies outside ${formatInterval(interval.lower, interval.upper)}${unit}`;
     return `${subject} is not ${formatNumber(interval.lower)}${unit}`;
   }
   return expected === null

@@ -28,7 +28,7 @@ export function unitAfter(quantity: Quantity): string {
 /** The unit of an uncertainty: the observable's, or dex where the scale is logarithmic. */
 export function spreadUnit(quantity: Quantity): string {
   if (quantity.scale === "log10") return "dex";
-  return quantity.unit === null || quantity.unit === "1" ? "a plain number" : quantity.unit;
+  return quantity.unit === null || quantity.unit === "1" ? "" : quantity.unit;
 }
 
 /** The no-model range in words: "−1 to 4 arcsec, all alike". */

@@ -87,20 +87,28 @@ export function RegisterForm(props: {
   };
   return (
     <FormProvider {...form}>
-      <form onSubmit={(event) => void submit(event)} noValidate aria-label="Register a hypothesis">
+      <form
+        onSubmit={(event) => {
+          event.preventDefault();
+          if (step === "review") void submit(event);
+          else void goOn(step === "statement" ? "predictions" : "review");
+        }}
+        noValidate
+        aria-label="Register a hypothesis"
+      >
         <FormBody busy={sending}>
           <DraftNote draft={draft} />
           <Steps current={step} go={go} />
           {step === "statement" ? (
             <StatementStep document={document} registrant={registrant} amending={amending !== null}>
-              <Button kind="main" onClick={() => void goOn("predictions")}>
+              <Button kind="main" type="submit">
                 Continue to predictions
               </Button>
             </StatementStep>
           ) : null}
           {step === "predictions" ? (
             <PredictionsStep document={document}>
-              <Button kind="main" onClick={() => void goOn("review")}>
+              <Button kind="main" type="submit">
                 Continue to review
               </Button>
               <Button onClick={() => go("statement")}>Back to the statement</Button>
