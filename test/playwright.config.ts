@@ -41,6 +41,8 @@ export default defineConfig({
     command: "node apps/launch/dist/launch.mjs",
     cwd: path.resolve(import.meta.dirname, ".."),
     url: `http://localhost:${port}/`,
+    // Naming a port means: test the program that already answers there.
+    reuseExistingServer: process.env.WEIGHHOUSE_TEST_PORT !== undefined,
     timeout: 180_000,
     stdout: "pipe",
     gracefulShutdown: { signal: "SIGTERM", timeout: 20_000 },
