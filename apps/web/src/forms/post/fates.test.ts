@@ -22,7 +22,7 @@ function row(line: number, fate: PreviewedRow["fate"], more: object = {}): Previ
 
 test("rows that stop the posting come first, then the file's order", () => {
   const rows = [row(1, "new"), row(2, "refused"), row(3, "alreadyThere"), row(4, "conflict")];
-  expect(rowsToShow(rows, 3).map(({ line }) => line)).toEqual([2, 4, 1]);
+  expect(rowsToShow(rows, { stopping: 9, others: 1 }).map(({ line }) => line)).toEqual([2, 4, 1]);
 });
 
 test("a count names only the fates that there are", () => {

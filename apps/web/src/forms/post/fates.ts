@@ -13,10 +13,16 @@ export const fateWords: Record<Fate, string> = {
   refused: "refused",
 };
 
-/** The rows to show: those that stop the posting first, then the others, in the file's order. */
-export function rowsToShow(rows: readonly PreviewedRow[], most: number): PreviewedRow[] {
+/** The rows to show: those that stop the posting first, then the first of the others, in order. */
+export function rowsToShow(
+  rows: readonly PreviewedRow[],
+  most: { stopping: number; others: number },
+): PreviewedRow[] {
   const stops = (row: PreviewedRow) => row.fate === "refused" || row.fate === "conflict";
-  return [...rows.filter(stops), ...rows.filter((row) => !stops(row))].slice(0, most);
+  return [
+    ...rows.filter(stops).slice(0, most.stopping),
+    ...rows.filter((row) => !stops(row)).slice(0, most.others),
+  ];
 }
 
 /** "3 new, 1 already there, 2 refused". */

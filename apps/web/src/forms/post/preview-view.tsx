@@ -16,7 +16,7 @@ import {
   type PreviewedRow,
 } from "./fates";
 
-const mostRows = 200;
+const mostRows = { stopping: 200, others: 20 };
 
 const inks: Record<PreviewedRow["fate"], string> = {
   new: "text-fir",
@@ -69,8 +69,8 @@ export function PreviewView(props: { document: CampaignDocument; preview: Measur
       ) : null}
       {preview.rows.length > shown.length ? (
         <p className="mt-1 text-[14px] text-quiet">
-          {formatCount(preview.rows.length - shown.length)} more rows like these, not shown; those
-          that stop the posting stand first.
+          {formatCount(preview.rows.length - shown.length)} more rows, not shown; those that stop
+          the posting stand first.
         </p>
       ) : null}
       <ChangesView document={document} preview={preview} />

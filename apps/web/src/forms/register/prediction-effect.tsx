@@ -2,7 +2,12 @@
 
 import type { PredictionPreview } from "@weighhouse/engine/prediction-preview";
 import { kassRaftery } from "@weighhouse/engine/kass-raftery";
-import { formatFixed, formatInterval, formatPercent } from "@weighhouse/figures/numbers";
+import {
+  formatFixed,
+  formatInterval,
+  formatPercent,
+  formatNumber,
+} from "@weighhouse/figures/numbers";
 import type { ReactNode } from "react";
 import { BandFigure } from "./band-figure";
 import { formatReading, spreadUnit, unitAfter, type Quantity } from "./quantity";
