@@ -1,7 +1,7 @@
 import type { EntryKind } from "@weighhouse/campaign/entries";
 
 /** What each kind of entry did, in plain words; the kind itself stands beside it. */
-export const kindWords: Record<EntryKind, string> = {
+const kindWords: Record<EntryKind, string> = {
   "campaign.opened": "campaign opened",
   "campaign.amended": "campaign amended",
   "observable.declared": "kind of quantity declared",

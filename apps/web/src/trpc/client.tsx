@@ -8,8 +8,8 @@ import type { ReactNode } from "react";
 import { useState } from "react";
 import superjson from "superjson";
 
-const { TRPCProvider, useTRPC, useTRPCClient } = createTRPCContext<AppRouter>();
-export { useTRPC, useTRPCClient };
+const { TRPCProvider, useTRPCClient } = createTRPCContext<AppRouter>();
+export { useTRPCClient };
 
 /** Gives the pages below it the API's client and its cache. */
 export function ApiProvider({ children }: { children: ReactNode }) {
