@@ -1,4 +1,4 @@
-import { mkdtempSync } from "node:fs";
+import { chmodSync, mkdtempSync } from "node:fs";
 import { tmpdir } from "node:os";
 import path from "node:path";
 import { defineConfig } from "@playwright/test";
@@ -7,7 +7,7 @@ const port = Number(process.env.WEIGHHOUSE_TEST_PORT ?? 3311);
 const chromium = process.env.WEIGHHOUSE_CHROMIUM ?? "/usr/bin/chromium";
 
 // The workers load this file again: only the first process makes the folder.
-process.env.WEIGHHOUSE_TEST_HOME ??= mkdtempSync(path.join(tmpdir(), "weighhouse-e2e-"));
+process.env.WEIGHHOUSE_TEST_HOME ??= makeHome();
 
 /** Browser tests drive the real program, as npm start starts it, in a home of their own. */
 export default defineConfig({
@@ -53,3 +53,10 @@ export default defineConfig({
     },
   },
 });
+
+/** As root, PostgreSQL runs as another user, who must be able to pass the folder. */
+function makeHome(): string {
+  const home = mkdtempSync(path.join(tmpdir(), "weighhouse-e2e-"));
+  chmodSync(home, 0o755);
+  return home;
+}

@@ -2,7 +2,8 @@
  * npm test: everything CI runs. Checks, unit and property tests, the tests on PostgreSQL (the
  * embedded one, and Debian's where it can be had), and the browser tests against the real program.
  */
-import { existsSync, readFileSync, rmSync } from "node:fs";
+import { chmodSync, existsSync, mkdtempSync, readFileSync, rmSync } from "node:fs";
+import { tmpdir } from "node:os";
 import path from "node:path";
 import { bin, build, install, requireNode, root, run, say } from "./scripts/steps.mjs";
 import { findChromium, installChromium } from "./scripts/chromium.mjs";
@@ -41,12 +42,18 @@ await step("browser tests", async () => {
     say("browser tests NOT RUN: no Chromium here, and none could be installed");
     return 1;
   }
-  return run(bin("playwright"), ["test", "--config", "test/playwright.config.ts"], {
+  const home = mkdtempSync(path.join(tmpdir(), "weighhouse-e2e-"));
+  // As root, PostgreSQL runs as another user, who must be able to pass the folder.
+  chmodSync(home, 0o755);
+  const code = await run(bin("playwright"), ["test", "--config", "test/playwright.config.ts"], {
     env: {
+      WEIGHHOUSE_TEST_HOME: home,
       WEIGHHOUSE_CHROMIUM: chromium,
       PLAYWRIGHT_JSON_OUTPUT_NAME: path.join(reports, "playwright.json"),
     },
   });
+  rmSync(home, { recursive: true, force: true });
+  return code;
 });
 
 const counts = countTests();

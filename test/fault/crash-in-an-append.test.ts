@@ -8,6 +8,7 @@ import { leafHash } from "@weighhouse/ledger/entry";
 import { nodeHasher } from "@weighhouse/ledger/node-hasher";
 import { createPrivateKeyPem, signerFromPem } from "@weighhouse/ledger/node-keys";
 import { appendLeaf, emptyEdge, rootOf } from "@weighhouse/ledger/tree";
+import { isWriteAfterClose } from "@weighhouse/store/lost-connection";
 import { openCampaign } from "@weighhouse/store/open-campaign";
 import { openStore } from "@weighhouse/store/open-store";
 import type { Store } from "@weighhouse/store/open-store";
@@ -26,12 +27,17 @@ let store: Store;
 let admin: postgres.Sql;
 
 beforeAll(async () => {
+  // Connections are killed here, and postgres.js may throw outside of every call when they are.
+  process.setUncaughtExceptionCaptureCallback((error) => {
+    if (!isWriteAfterClose(error)) throw error;
+  });
   database = await createTestDatabase();
   store = await openStore({ url: database.url, signer: signerFromPem(pem, "house.example") });
   admin = postgres(database.adminUrl, { max: 2 });
   await openCampaign(store, { coordinator: null, campaign: opening("hum"), entries: declarations });
 });
 afterAll(async () => {
+  process.setUncaughtExceptionCaptureCallback(null);
   await store.close();
   await admin.end();
   await database.drop();

@@ -1,4 +1,5 @@
 /** The scorer's process: takes scoring jobs until SIGTERM or SIGINT, then ends cleanly. */
+import { isWriteAfterClose } from "@weighhouse/store/lost-connection";
 import { openStore } from "@weighhouse/store/open-store";
 import { readSettings } from "@weighhouse/store/settings";
 import { StoreError } from "@weighhouse/store/store-error";
@@ -14,6 +15,10 @@ async function main(): Promise<number> {
       "DATABASE_URL: found none; allowed is a postgres:// address",
     );
   }
+  process.on("uncaughtException", (error) => {
+    if (!isWriteAfterClose(error)) throw error;
+    log.warn({ error: error.message }, "a connection closed while it was written to");
+  });
   const store = await openStore({ url: settings.DATABASE_URL, signer: null, log, connections: 3 });
   const scorer = await runScorer(store);
   log.info({}, "scoring");
