@@ -5,7 +5,7 @@ import { expect } from "@playwright/test";
 type Campaign = { key: string; title: string; summary: string };
 
 export async function declareCampaign(page: Page, campaign: Campaign) {
-  await page.goto("/campaigns/new");
+  await page.goto("/new-campaign");
   await page.getByLabel("Title").fill(campaign.title);
   await page.getByLabel("Key").fill(campaign.key);
   await page.getByLabel("Summary").fill(campaign.summary);
@@ -53,7 +53,7 @@ export async function registerHypothesis(
     measurand: string;
   },
 ) {
-  await page.goto(`/campaigns/${campaign}/hypotheses/register`);
+  await page.goto(`/campaigns/${campaign}/register`);
   await page.getByLabel("Title").fill(hypothesis.title);
   await page.getByLabel("Statement").fill(hypothesis.statement);
   await page.getByLabel("Key").fill(hypothesis.key);

@@ -36,8 +36,8 @@ const publicPages = [
   `${demo}/audit`,
 ];
 const coordinatorPages = [
-  "/campaigns/new",
-  "/campaigns/import",
+  "/new-campaign",
+  "/import-campaign",
   ...[
     "observables",
     "quantities",
@@ -52,8 +52,8 @@ const coordinatorPages = [
   `${demo}/post?by=table`,
 ];
 const teamPages = [
-  `${demo}/hypotheses/register`,
-  `${demo}/hypotheses/register?step=predictions`,
+  `${demo}/register`,
+  `${demo}/register?step=predictions`,
   `${demo}/hypotheses/friction/amend`,
 ];
 
@@ -149,7 +149,7 @@ test("what is typed outlives a reload", async ({ browser, baseURL }) => {
   const context = await browser.newContext();
   await signIn(context, "sliders", baseURL!);
   const page = await context.newPage();
-  await page.goto(`${demo}/hypotheses/register`);
+  await page.goto(`${demo}/register`);
   await page.getByLabel("Title").fill("Heat of the tide");
   await page.getByLabel("Statement").fill("The tide warms the bed.");
   // The draft is written a moment after the last key.

@@ -100,7 +100,7 @@ function Actions({ view, base }: { view: CampaignView; base: string }) {
   return (
     <div className="no-print flex flex-wrap gap-2 pt-1.5 text-[14px]">
       <ButtonLink href={`${base}/post`}>Post measurements</ButtonLink>
-      <ButtonLink href={`${base}/hypotheses/register`}>Register a hypothesis</ButtonLink>
+      <ButtonLink href={`${base}/register`}>Register a hypothesis</ButtonLink>
       {coordinates ? <ButtonLink href={`${base}/declare`}>Declare</ButtonLink> : null}
     </div>
   );

@@ -160,7 +160,7 @@ function NoHypothesis({ view, base }: { view: CampaignView; base: string }) {
       </p>
       {member ? (
         <p className="mt-3">
-          <ButtonLink href={`${base}/hypotheses/register`}>Register a hypothesis</ButtonLink>
+          <ButtonLink href={`${base}/register`}>Register a hypothesis</ButtonLink>
         </p>
       ) : null}
     </Empty>

@@ -17,8 +17,8 @@ export default async function CampaignsPage() {
       <div className="mb-3 flex flex-wrap items-baseline justify-between gap-x-8 gap-y-2">
         <h1 className="mt-3">Campaigns</h1>
         <div className="no-print flex flex-wrap gap-2 text-[14px]">
-          <ButtonLink href="/campaigns/new">Open a campaign</ButtonLink>
-          <ButtonLink href="/campaigns/import">Import a document</ButtonLink>
+          <ButtonLink href="/new-campaign">Open a campaign</ButtonLink>
+          <ButtonLink href="/import-campaign">Import a document</ButtonLink>
         </div>
       </div>
       <Section title="Those you may see">

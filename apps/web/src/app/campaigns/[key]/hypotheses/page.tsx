@@ -30,9 +30,7 @@ export default async function HypothesesPage(props: {
             </p>
             {member ? (
               <p className="mt-3">
-                <ButtonLink href={`/campaigns/${key}/hypotheses/register`}>
-                  Register the first
-                </ButtonLink>
+                <ButtonLink href={`/campaigns/${key}/register`}>Register the first</ButtonLink>
               </p>
             ) : null}
           </Empty>

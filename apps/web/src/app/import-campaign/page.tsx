@@ -7,7 +7,7 @@ import { readActor } from "@/server/reader";
 export const metadata: Metadata = { title: "Import a campaign document" };
 
 export default async function ImportPage() {
-  if ((await readActor()) === null) redirect("/sign-in?next=/campaigns/import");
+  if ((await readActor()) === null) redirect("/sign-in?next=/import-campaign");
   return (
     <>
       <h1 className="my-3">Import a campaign document</h1>

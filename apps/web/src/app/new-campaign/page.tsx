@@ -7,7 +7,7 @@ import { readActor } from "@/server/reader";
 export const metadata: Metadata = { title: "Declare a campaign" };
 
 export default async function NewCampaignPage() {
-  if ((await readActor()) === null) redirect("/sign-in?next=/campaigns/new");
+  if ((await readActor()) === null) redirect("/sign-in?next=/new-campaign");
   return (
     <>
       <h1 className="my-3">Declare a campaign</h1>

@@ -16,7 +16,7 @@ export default async function RegisterPage(props: { params: Promise<{ key: strin
     <CampaignFrame campaignKey={key}>
       <h2 className="mb-3">Register a hypothesis</h2>
       {registrant === null ? (
-        <MembersOnly path={`/campaigns/${key}/hypotheses/register`} signedIn={actor !== null}>
+        <MembersOnly path={`/campaigns/${key}/register`} signedIn={actor !== null}>
           Teams’ members register hypotheses.
         </MembersOnly>
       ) : (
