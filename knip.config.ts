@@ -13,7 +13,11 @@ const config: KnipConfig = {
       ],
     },
     "apps/launch": {
-      entry: ["{start,check,test,build}.mjs", "src/{launch,demo-stream}.ts"],
+      entry: [
+        "{start,check,test,build}.mjs",
+        "src/{launch,demo-stream,end-with-parent}.ts",
+        "src/testing/run-part.ts",
+      ],
     },
     "apps/scorer": { entry: ["src/scorer.ts"] },
     "apps/cli": { entry: ["src/main.ts"] },

@@ -7,12 +7,12 @@
  *   launch web        the web server alone
  *   launch scorer     one scorer alone
  */
-import { StoreError } from "@weighhouse/store/store-error";
 import { readSettings } from "@weighhouse/store/settings";
 import { migrateOnly } from "./migrate-only";
 import { say } from "./say";
 import { startEverything } from "./start-everything";
-import { scorerProgram, startProgram, webProgram } from "./programs";
+import { runAlone, scorerProgram, webProgram } from "./programs";
+import { refusalOf } from "./refusal";
 
 const parts = ["everything", "migrate", "web", "scorer"] as const;
 type Part = (typeof parts)[number];
@@ -28,9 +28,9 @@ async function main(): Promise<number> {
     case "migrate":
       return migrateOnly(settings);
     case "web":
-      return startProgram(webProgram({ port: settings.PORT, host: "0.0.0.0" }), process.env).exited;
+      return runAlone(webProgram({ port: settings.PORT, host: "0.0.0.0" }));
     case "scorer":
-      return startProgram(scorerProgram(), process.env).exited;
+      return runAlone(scorerProgram());
     case "everything":
       return startEverything(settings);
   }
@@ -39,7 +39,8 @@ async function main(): Promise<number> {
 try {
   process.exit(await main());
 } catch (error) {
-  if (!(error instanceof StoreError)) throw error;
-  say(error.message);
+  const refusal = refusalOf(error);
+  if (refusal === null) throw error;
+  say(refusal);
   process.exit(1);
 }

@@ -1,11 +1,12 @@
 import { randomBytes } from "node:crypto";
-import { existsSync, mkdirSync, readFileSync, writeFileSync } from "node:fs";
+import { accessSync, constants, existsSync, mkdirSync, readFileSync, writeFileSync } from "node:fs";
 import path from "node:path";
 import { defaultHome, startEmbeddedPostgres } from "@weighhouse/store/embedded";
 import type { EmbeddedPostgres } from "@weighhouse/store/embedded";
 import { openKeys } from "@weighhouse/store/keys";
 import { migrate } from "@weighhouse/store/migrate";
 import type { Settings } from "@weighhouse/store/settings";
+import { StoreError } from "@weighhouse/store/store-error";
 import { forgetAddress, writeAddress } from "./address";
 import { demoKey } from "./demo/scenario";
 import { makeDemo } from "./demo/make-demo";
@@ -22,9 +23,11 @@ const host = "127.0.0.1";
 export async function startEverything(settings: Settings): Promise<number> {
   const stopping = stopSignal();
   const home = settings.WEIGHHOUSE_HOME ?? defaultHome();
-  mkdirSync(home, { recursive: true });
+  requireDatabasePair(settings);
+  requireWritable(home);
   const parts: Running[] = [];
   let database: EmbeddedPostgres | null = null;
+  let answering = false;
   try {
     database = settings.DATABASE_URL ? null : await embedded(home);
     const url = settings.DATABASE_URL ?? database?.url ?? "";
@@ -50,7 +53,8 @@ export async function startEverything(settings: Settings): Promise<number> {
       WEIGHHOUSE_SECRET: secret,
       PORT: String(port),
     };
-    if (database) await makeDemo({ home, url, keys, origin, secret });
+    if (database) await makeDemo({ home, url, keys, origin, secret, stopping });
+    if (stopping.aborted) return 0;
 
     say("starting web and scorer");
     parts.push(startProgram(scorerProgram(), environment));
@@ -61,6 +65,7 @@ export async function startEverything(settings: Settings): Promise<number> {
     const answers = await Promise.race([untilAnswers(`http://${host}:${port}/`, stopping), ended]);
     if (answers === true) {
       writeAddress(home, origin);
+      answering = true;
       announce(origin, home, database !== null);
     }
 
@@ -72,10 +77,34 @@ export async function startEverything(settings: Settings): Promise<number> {
     say(`${first.name} ended by itself with code ${first.code}; stopping the rest`);
     return 1;
   } finally {
-    forgetAddress(home);
+    // Not that of another launcher, on whose home this one was refused.
+    if (answering) forgetAddress(home);
     await Promise.all(parts.map((part) => part.stop()));
     await database?.stop();
     say("stopped");
+  }
+}
+
+/** Migrating one database and running on another would be found out late. */
+function requireDatabasePair({ DATABASE_URL: url, DATABASE_ADMIN_URL: adminUrl }: Settings): void {
+  if (url !== undefined || adminUrl === undefined) return;
+  throw new StoreError(
+    "bad-settings",
+    "DATABASE_URL: found none beside DATABASE_ADMIN_URL; allowed are both, or neither for the embedded PostgreSQL",
+  );
+}
+
+function requireWritable(home: string): void {
+  try {
+    mkdirSync(home, { recursive: true });
+    accessSync(home, constants.W_OK | constants.X_OK);
+  } catch (cause) {
+    const { code = "no folder" } = cause as NodeJS.ErrnoException;
+    throw new StoreError(
+      "bad-settings",
+      `WEIGHHOUSE_HOME: found ${home}, which can't be written to (${code}); allowed is a folder of this user's`,
+      { cause },
+    );
   }
 }
 

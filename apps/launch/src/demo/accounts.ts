@@ -57,6 +57,11 @@ export function demoPassword(home: string): string {
   return readFileSync(file, "utf8").trim();
 }
 
+const madeFile = (home: string) => path.join(home, "demo-made");
+
+export const isDemoMade = (home: string) => existsSync(madeFile(home));
+export const markDemoMade = (home: string) => writeFileSync(madeFile(home), "");
+
 /** Who can sign in, where this home has a demo. */
 export function readDemoAccounts(home: string) {
   return existsSync(fileIn(home)) ? { password: demoPassword(home), people: demoPeople } : null;
