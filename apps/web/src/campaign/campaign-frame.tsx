@@ -44,8 +44,8 @@ export async function CampaignFrame(props: {
       {view.clock === "simulated" ? (
         <div className="mb-4">
           <Notice label="Simulated clock.">
-            The times of this campaign&rsquo;s ledger were set by hand, as in a demonstration; they
-            prove nothing about when anything was filed.
+            This ledger&rsquo;s times were set by hand, for a demonstration: they prove nothing
+            about when anything was filed.
           </Notice>
         </div>
       ) : null}
@@ -98,7 +98,7 @@ function Actions({ view, base }: { view: CampaignView; base: string }) {
   const coordinates = view.role === "coordinator";
   if (!coordinates && view.role !== "member") return null;
   return (
-    <div className="no-print flex flex-wrap gap-2 pt-1.5 text-[14px]">
+    <div className="no-print flex flex-wrap gap-2 pt-1.5 pb-1 text-[14px]">
       <ButtonLink href={`${base}/post`}>Post measurements</ButtonLink>
       <ButtonLink href={`${base}/register`}>Register a hypothesis</ButtonLink>
       {coordinates ? <ButtonLink href={`${base}/declare`}>Declare</ButtonLink> : null}

@@ -19,6 +19,7 @@ export function HypothesisRows(props: { document: CampaignDocument; standings: S
     <Table
       caption="Hypotheses"
       stackBelow="middle"
+      paired
       head={
         <tr>
           <th scope="col">Hypothesis</th>
@@ -55,13 +56,13 @@ export function HypothesisRows(props: { document: CampaignDocument; standings: S
                 </span>
               ) : null}
             </th>
-            <td data-label="Team">
+            <td data-label="Team" data-whole>
               {hypothesis.team ? (teams.get(hypothesis.team) ?? hypothesis.team) : null}
             </td>
-            <td data-label="Registered">
+            <td data-label="Registered" data-whole>
               {hypothesis.registeredAt ? <Time at={hypothesis.registeredAt} /> : null}
             </td>
-            <td data-label="Predicts" className="number">
+            <td data-label="Predicts" data-whole className="number">
               {hypothesis.predictions.length}
             </td>
             <td data-label="Rank" className="number">

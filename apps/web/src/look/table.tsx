@@ -9,9 +9,11 @@ export function Table(props: {
   head: ReactNode;
   children: ReactNode;
   stackBelow?: "narrow" | "middle" | "broad" | "wide" | "always";
+  /** Short cells, two to a line where rows are stacked; `data-whole` gives one a line of its own. */
+  paired?: boolean;
 }) {
   return (
-    <table className="table" data-stack={props.stackBelow ?? "narrow"}>
+    <table className="table" data-stack={props.stackBelow ?? "narrow"} data-paired={props.paired}>
       <caption className="sr-only">{props.caption}</caption>
       <thead>{props.head}</thead>
       <tbody>{props.children}</tbody>

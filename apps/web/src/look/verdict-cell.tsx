@@ -14,7 +14,7 @@ export function VerdictCell(props: {
   const { row, at } = props;
   if (row === null) return <span className="text-quiet">silent</span>;
   return (
-    <span className="inline-flex items-baseline gap-1.5 whitespace-nowrap">
+    <span className="inline-flex items-baseline gap-1.5">
       {row.tension === null ? null : (
         <span className="min-w-[5ch] text-right">
           <Num

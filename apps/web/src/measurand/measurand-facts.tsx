@@ -26,7 +26,7 @@ export function MeasurandFacts(props: {
       <dt>Kind (observable)</dt>
       <dd>
         {observable.title}, {observable.unit ? unitText(observable.unit) : "no unit"},{" "}
-        {observable.scale} scale
+        {observable.scale === "log10" ? "log₁₀" : observable.scale} scale
       </dd>
       <dt>Window</dt>
       <dd>

@@ -17,6 +17,7 @@ import {
 import type { TooltipContentProps } from "recharts";
 import { linearTicks, logTicks, timeTicks } from "@/look/axis-ticks";
 import { inkOf } from "@/look/hypothesis-mark";
+import { unitOf } from "@/campaign/plain-words";
 import type { MeasurandPlotData, PlotBand, PlotPoint } from "./plot-data";
 
 /** Share of the width kept at the right for the predictions, a lane each. */
@@ -173,7 +174,7 @@ function Tip(props: Partial<TooltipContentProps> & { data: MeasurandPlotData }) 
   if (!props.active || point === undefined) return null;
   const [down, up] = point.error;
   const symmetric = Math.abs(up - down) <= 1e-9 * Math.abs(up + down);
-  const unit = props.data.unit === null || props.data.unit === "1" ? "" : ` ${props.data.unit}`;
+  const unit = unitOf(props.data);
   return (
     <div className="rounded-sheet border border-edge bg-sheet px-3 py-2 text-[13px]">
       <p className="font-semibold">

@@ -90,6 +90,7 @@ export function MeasurandView(props: {
             measurements={measurements}
             observable={observable}
             facilities={document.facilities}
+            sharedErrors={document.sharedErrors}
           />
         ) : (
           <Empty title="None yet.">

@@ -9,7 +9,9 @@ export function MeasurementRows(props: {
   measurements: readonly Measurement[];
   observable: Observable;
   facilities: CampaignDocument["facilities"];
+  sharedErrors: CampaignDocument["sharedErrors"];
 }) {
+  const errors = new Map(props.sharedErrors.map((each) => [each.key, each.title]));
   const facilities = new Map(props.facilities.map((each) => [each.key, each.title]));
   return (
     <Table
@@ -33,7 +35,7 @@ export function MeasurementRows(props: {
             >
               {resultInWords(measurement, props.observable)}
             </span>
-            <Remarks measurement={measurement} />
+            <Remarks measurement={measurement} errors={errors} />
           </th>
           <td data-label="Facility">
             {measurement.facility
@@ -55,13 +57,17 @@ export function MeasurementRows(props: {
   );
 }
 
-function Remarks({ measurement }: { measurement: Measurement }) {
+function Remarks(props: { measurement: Measurement; errors: Map<string, string | null> }) {
+  const { measurement } = props;
+  const shared = (key: string) => `“${props.errors.get(key) ?? key}”`;
   const remarks = [
     measurement.setAside ? `set aside: ${measurement.setAside.reason}` : null,
     measurement.status === "provisional" ? "provisional" : null,
     ...Object.entries(measurement.conditions).map(([key, at]) => `${key} ${formatNumber(at)}`),
     ...measurement.shared.map(({ error, coefficient }) =>
-      coefficient === 1 ? `shares ${error}` : `shares ${formatNumber(coefficient)} × ${error}`,
+      coefficient === 1
+        ? `shares ${shared(error)}`
+        : `shares ${formatNumber(coefficient)} × ${shared(error)}`,
     ),
     measurement.sameData ? `same data as ${measurement.sameData}` : null,
   ].filter((remark) => remark !== null);

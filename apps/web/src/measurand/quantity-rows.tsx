@@ -63,7 +63,7 @@ export function QuantityRows(props: {
                 </span>
               </span>
             </td>
-            <td data-label="Window">
+            <td data-label="Window" className="lg:whitespace-nowrap">
               <span>
                 {formatWindow(measurand.window.from, measurand.window.to)}
                 {conditionsInWords(measurand, observable).map((words) => (

@@ -40,6 +40,7 @@ export function PairsTable(props: {
   return (
     <Table
       caption="Pairs of hypotheses"
+      paired
       head={
         <tr>
           <th scope="col">For</th>
@@ -64,12 +65,12 @@ export function PairsTable(props: {
           <th scope="row">
             <Name hypothesis={byKey.get(pair.a)} fallback={pair.a} />
           </th>
-          <td data-label="against">
+          <td data-label="against" data-whole>
             <span>
               <Name hypothesis={byKey.get(pair.b)} fallback={pair.b} />
             </span>
           </td>
-          <td className="number" data-label="log₁₀ B on everything">
+          <td className="number" data-label="log₁₀ B">
             <Num
               text={formatLog10B(pair.log10BayesFactor)}
               exact={pair.log10BayesFactor}
@@ -77,7 +78,7 @@ export function PairsTable(props: {
               tail={whole}
             />
           </td>
-          <td className="number" data-label="log₁₀ B on common ground">
+          <td className="number" data-label="in common">
             <Num
               text={commonText(pair)}
               exact={pair.commonGround.log10BayesFactor}
@@ -86,7 +87,7 @@ export function PairsTable(props: {
               absent="no measurement that both predict"
             />
           </td>
-          <td className="number" data-label="Measurements there">
+          <td className="number" data-label="Measurements in common" data-whole>
             <Num
               text={String(pair.commonGround.measurements)}
               exact={pair.commonGround.measurements}

@@ -20,6 +20,7 @@ export function StandingsTable(props: { hypotheses: RankedHypothesis[]; base: st
     <Table
       caption="Standings in order of rank"
       stackBelow="middle"
+      paired
       head={
         <tr>
           <th scope="col">Hypothesis</th>
@@ -130,7 +131,7 @@ function Row({
           absent="no degrees of freedom"
         />
       </td>
-      <td className="number" data-label="ln evidence">
+      <td className="number" data-label="ln evidence" data-whole>
         <Num
           text={formatLnEvidence(standing.lnEvidence, standing.lnEvidenceError)}
           exact={standing.lnEvidence}
@@ -138,10 +139,10 @@ function Row({
           tail={tails.evidence}
         />
       </td>
-      <td data-label="Verdicts">
+      <td data-label="Verdicts" data-whole>
         <Counts standing={standing} at={at} />
       </td>
-      <td className="number" data-label="Compared">
+      <td className="number" data-label="Compared" data-whole>
         <span>
           <Num text={String(standing.compared)} exact={standing.compared} at={`${at}/compared`} />
           <span className="text-[13px] text-quiet">

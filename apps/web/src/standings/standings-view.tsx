@@ -75,7 +75,7 @@ export async function StandingsView(props: { campaignKey: string; size: number |
           <Caution standings={standings} />
         </Section>
       ) : null}
-      <div className="grid gap-x-5 lg:grid-cols-2">
+      <div className="grid items-start gap-x-5 lg:grid-cols-[2fr_3fr]">
         <Section title="What moved" id="moved">
           {props.size === null ? (
             <MovedNote
@@ -87,7 +87,7 @@ export async function StandingsView(props: { campaignKey: string; size: number |
           )}
         </Section>
         <Section title="Warnings" id="warnings">
-          <Warnings warnings={standings.warnings} document={document} />
+          <Warnings standings={standings} document={document} />
         </Section>
       </div>
       <Section title="Verdicts" gloss="tension in σ first" id="verdicts">

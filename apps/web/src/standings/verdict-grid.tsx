@@ -56,14 +56,26 @@ export function VerdictGrid(props: {
           {row.cells.map((cell, column) => (
             <td
               key={props.hypotheses[column]?.key ?? column}
+              data-silent={cell === null ? true : undefined}
               data-label={props.hypotheses[column]?.title}
             >
               <VerdictCell row={cell?.row ?? null} at={cell?.at} tail={tail} />
             </td>
           ))}
+          <SilentTogether row={row} hypotheses={props.hypotheses} />
         </tr>
       ))}
     </Table>
+  );
+}
+
+/** Where rows are stacked, one line names all who are silent on the quantity. */
+function SilentTogether(props: { row: GridRow; hypotheses: RankedHypothesis[] }) {
+  const silent = props.hypotheses.filter((_, column) => props.row.cells[column] === null);
+  return silent.length === 0 ? null : (
+    <td className="only-stacked text-[13.5px] text-quiet" data-label="Silent">
+      {silent.map(({ title }) => title).join("; ")}
+    </td>
   );
 }
 

@@ -1,7 +1,7 @@
 import { campaignDocumentSchema } from "@weighhouse/campaign/document";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { expect, test } from "vitest";
-import { warnedPlace } from "./warned-place";
+import { warnedPlaces } from "./warned-place";
 
 const document = campaignDocumentSchema.parse({
   format: "weighhouse-campaign/1",
@@ -15,22 +15,31 @@ const document = campaignDocumentSchema.parse({
       reference: { family: "uniform", lower: 0, upper: 1 },
     },
   ],
-  hypotheses: [{ key: "h", title: "Tide", predictions: [] }],
+  hypotheses: [
+    {
+      key: "h",
+      title: "Tide",
+      predictions: [{ measurand: "m", expected: 1, tolerance: { family: "normal", sd: 1 } }],
+    },
+  ],
   measurements: [{ id: "a", measurand: "m", value: 1, sd: 1 }],
 }) as CampaignDocument;
 
+const quantity = { key: "m", title: "Height", path: "quantities/m" };
+const hypothesis = { key: "h", title: "Tide", path: "hypotheses/h" };
+
 test("a warning leads to the quantity or the hypothesis that it is about", () => {
-  const quantity = { title: "Height", path: "quantities/m" };
-  expect(warnedPlace("/measurands/0", document)).toEqual(quantity);
-  expect(warnedPlace("/measurements/0", document)).toEqual(quantity);
-  expect(warnedPlace("/hypotheses/0/predictions/1", document)).toEqual({
-    title: "Tide",
-    path: "hypotheses/h",
-  });
+  expect(warnedPlaces("/measurands/0", document)).toEqual([quantity]);
+  expect(warnedPlaces("/measurements/0/unit", document)).toEqual([quantity]);
+  expect(warnedPlaces("/hypotheses/0", document)).toEqual([hypothesis]);
+});
+
+test("a warning about a prediction leads to its hypothesis and its quantity", () => {
+  expect(warnedPlaces("/hypotheses/0/predictions/0", document)).toEqual([hypothesis, quantity]);
 });
 
 test("a warning about no one place, or about one that is not there, leads nowhere", () => {
-  expect(warnedPlace("/pairs/0", document)).toBeNull();
-  expect(warnedPlace("", document)).toBeNull();
-  expect(warnedPlace("/measurands/7", document)).toBeNull();
+  expect(warnedPlaces("/pairs/0", document)).toEqual([]);
+  expect(warnedPlaces("", document)).toEqual([]);
+  expect(warnedPlaces("/measurands/7", document)).toEqual([]);
 });

@@ -1,8 +1,8 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
-import type { Warning } from "@weighhouse/campaign/standings";
+import type { Standings, Warning } from "@weighhouse/campaign/standings";
 import { KeptLink } from "@/look/kept-link";
 import { Notice } from "@/look/notice";
-import { warnedPlace } from "./warned-place";
+import { warningWords, type WarningWord } from "./warning-words";
 
 /** What each warning means to a reader, before the engine's own sentence. */
 const words: Record<Warning["code"], string> = {
@@ -21,18 +21,23 @@ const words: Record<Warning["code"], string> = {
 };
 
 /** The standings' warnings in plain words, each with the engine's sentence and what it is about. */
-export function Warnings(props: { warnings: readonly Warning[]; document: CampaignDocument }) {
-  if (props.warnings.length === 0) {
+export function Warnings(props: { standings: Standings; document: CampaignDocument }) {
+  const { warnings, pairs } = props.standings;
+  if (warnings.length === 0) {
     return <p className="text-quiet">None: nothing calls for a caveat.</p>;
   }
   return (
     <ul className="list-none">
-      {props.warnings.map((warning, index) => (
+      {warnings.map((warning, index) => (
         <li key={`${warning.code} ${warning.at} ${warning.text}`}>
           <Notice tone={warning.code === "every-hypothesis-fails" ? "bad" : "plain"}>
             <strong className="font-semibold">{words[warning.code]}</strong>{" "}
-            <span data-at={`/warnings/${index}/text`}>{warning.text}</span>
-            <PlaceLink at={warning.at} document={props.document} />
+            <span data-at={`/warnings/${index}/text`}>
+              <Sentence
+                words={warningWords(warning, props.document, pairs)}
+                base={`/campaigns/${props.document.campaign.key}`}
+              />
+            </span>
           </Notice>
         </li>
       ))}
@@ -40,15 +45,14 @@ export function Warnings(props: { warnings: readonly Warning[]; document: Campai
   );
 }
 
-function PlaceLink({ at, document }: { at: string; document: CampaignDocument }) {
-  const place = warnedPlace(at, document);
-  if (place === null) return null;
-  return (
-    <>
-      {" "}
-      <KeptLink className="link" href={`/campaigns/${document.campaign.key}/${place.path}`}>
-        {place.title}
+function Sentence(props: { words: WarningWord[]; base: string }) {
+  return props.words.map(({ text, path }) =>
+    path === undefined ? (
+      text
+    ) : (
+      <KeptLink key={path} className="link" href={`${props.base}/${path}`}>
+        {text}
       </KeptLink>
-    </>
+    ),
   );
 }

@@ -3,6 +3,7 @@ import { formatInterval, formatNumber } from "@weighhouse/figures/numbers";
 import type { ReactNode } from "react";
 import { Table } from "@/look/table";
 import { Time } from "@/look/time";
+import { unitText } from "@/look/unit-text";
 import { quantitiesOf, referenceWords, unitAfter } from "../register/quantity";
 import { partTitles, type Part } from "./parts";
 
@@ -52,7 +53,12 @@ function tableOf(document: CampaignDocument, part: Part): Rows {
       head: ["Title", "Key", "Unit", "Scale"],
       rows: document.observables.map(({ key, title, unit, scale }) => ({
         key,
-        cells: [title, <code key="key">{key}</code>, unit ?? "none", scale],
+        cells: [
+          title,
+          <code key="key">{key}</code>,
+          unit === null ? "none" : unitText(unit),
+          scale,
+        ],
       })),
     };
   if (part === "quantities") return quantityRows(document);
@@ -101,10 +107,10 @@ function quantityRows(document: CampaignDocument): Rows {
 function Window({ from, to }: { from: string | null; to: string | null }) {
   if (from === null && to === null) return "any time";
   return (
-    <>
+    <span>
       {from === null ? "until" : <Time at={from} dateOnly />}
       {from !== null && to !== null ? " to " : from === null ? " " : " on"}
       {to === null ? null : <Time at={to} dateOnly />}
-    </>
+    </span>
   );
 }

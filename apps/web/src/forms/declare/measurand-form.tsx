@@ -5,6 +5,7 @@ import { payloadSchemas, type Payload } from "@weighhouse/campaign/entries";
 import { useMemo } from "react";
 import { useFormContext, useWatch } from "react-hook-form";
 import { Choice, Field } from "@/look/field";
+import { unitText } from "@/look/unit-text";
 import { useTRPCClient } from "@/trpc/client";
 import { problemsInCampaign } from "../check-in-campaign";
 import { FieldRow } from "../form-frame";
@@ -56,7 +57,8 @@ function Fields({ document }: { document: CampaignDocument }) {
   const { errors } = formState;
   const chosen = useWatch<MeasurandDraft, "observable">({ name: "observable" });
   const observable = document.observables.find(({ key }) => key === chosen);
-  const spread = observable?.scale === "log10" ? "dex" : (observable?.unit ?? undefined);
+  const unit = observable?.unit ? unitText(observable.unit) : null;
+  const spread = observable?.scale === "log10" ? "dex" : unit;
   return (
     <>
       <TitleAndKey titleHelp="What exactly is predicted and measured: “Brightness in May”." />
@@ -67,9 +69,9 @@ function Fields({ document }: { document: CampaignDocument }) {
           error={errors.observable?.message}
           {...register("observable")}
         >
-          {document.observables.map(({ key, title, unit }) => (
+          {document.observables.map(({ key, title, unit: own }) => (
             <option key={key} value={key}>
-              {unit === null ? title : `${title} (${unit})`}
+              {own === null ? title : `${title} (${unitText(own)})`}
             </option>
           ))}
         </Choice>
@@ -89,7 +91,7 @@ function Fields({ document }: { document: CampaignDocument }) {
         />
         <Field
           label="Scatter of the target"
-          gloss={spread}
+          gloss={spread ?? undefined}
           help="Its own flicker about one true value; 0 if steady."
           inputMode="decimal"
           autoComplete="off"
@@ -97,8 +99,8 @@ function Fields({ document }: { document: CampaignDocument }) {
           {...register("scatter")}
         />
       </FieldRow>
-      <ReferenceFields unit={observable?.unit ?? null} spread={spread ?? null} />
-      <ThresholdFields unit={observable?.unit ?? null} />
+      <ReferenceFields unit={unit} spread={spread} />
+      <ThresholdFields unit={unit} />
     </>
   );
 }

@@ -48,10 +48,10 @@ test("a conflict says which field differs, and how", () => {
 
 test("a value is shown rounded to its uncertainty, in the unit it is posted in", () => {
   const measurement = { value: 1.98, sd: 0.1779, unit: null };
-  expect(valueWords(row(1, "new", { measurement }), "arcsec")).toBe("1.98 ± 0.18 arcsec");
+  expect(valueWords(row(1, "new", { measurement }), "arcsec")).toBe("1.98 ± 0.18\u00a0arcsec");
   expect(
     valueWords(row(1, "new", { measurement: { ...measurement, unit: "mas" } }), "arcsec"),
-  ).toBe("1.98 ± 0.18 mas");
+  ).toBe("1.98 ± 0.18\u00a0mas");
 });
 
 test("the button says how many it will enter", () => {

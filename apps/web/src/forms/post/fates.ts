@@ -1,3 +1,4 @@
+import { unitOf } from "@/campaign/plain-words";
 import type { MeasurementsPreview } from "@weighhouse/desk/preview-measurements";
 import { formatCount } from "@weighhouse/figures/numbers";
 import { formatWithUncertainty } from "@weighhouse/figures/numbers";
@@ -58,8 +59,7 @@ export function valueWords(row: PreviewedRow, unit: string | null): string {
   const { measurement } = row;
   if (measurement === null || measurement.value === null) return "";
   const shownUnit = measurement.unit ?? unit;
-  const after = shownUnit === null || shownUnit === "1" ? "" : ` ${shownUnit}`;
-  return `${formatWithUncertainty(measurement.value, measurement.sd)}${after}`;
+  return `${formatWithUncertainty(measurement.value, measurement.sd)}${unitOf({ unit: shownUnit })}`;
 }
 
 /** The button's name: what it will enter. */

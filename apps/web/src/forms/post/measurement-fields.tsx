@@ -4,6 +4,7 @@ import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { useFieldArray, useFormContext, useWatch } from "react-hook-form";
 import { Button } from "@/look/button";
 import { Choice, Field } from "@/look/field";
+import { unitText } from "@/look/unit-text";
 import { FieldRow, FieldRowButton } from "../form-frame";
 import type { MeasurementDraft } from "./measurement-draft";
 
@@ -56,7 +57,7 @@ export function MeasurementFields({ document }: { document: CampaignDocument }) 
       <FieldRow>
         <Field
           label="Value"
-          gloss={unit}
+          gloss={unit === undefined ? undefined : unitText(unit)}
           {...number}
           error={errors.value?.message}
           {...register("value")}

@@ -1,3 +1,4 @@
+import { unitText } from "@/look/unit-text";
 import { formatInterval, formatNumber } from "@weighhouse/figures/numbers";
 
 /** What the review says of one prediction. */
@@ -27,7 +28,8 @@ export function weAreWrongIf(predictions: readonly SpokenPrediction[]): string {
 }
 
 function clause(prediction: SpokenPrediction): string {
-  const unit = prediction.unit === null || prediction.unit === "1" ? "" : ` ${prediction.unit}`;
+  const unit =
+    prediction.unit === null || prediction.unit === "1" ? "" : ` ${unitText(prediction.unit)}`;
   const { interval, expected } = prediction;
   const subject = `the true value of “${prediction.title}”`;
   if (interval !== null && interval.lower !== null && interval.upper !== null) {

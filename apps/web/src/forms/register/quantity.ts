@@ -1,4 +1,5 @@
 import type { CampaignDocument, Measurand, Scale } from "@weighhouse/campaign/document";
+import { unitText } from "@/look/unit-text";
 import { formatInterval, formatNumber, roundToUncertainty } from "@weighhouse/figures/numbers";
 
 /** A measurand with what its observable says of it, as the forms show it. */
@@ -22,13 +23,13 @@ export function quantitiesOf(document: CampaignDocument): Map<string, Quantity> 
 
 /** " arcsec" to stand after a number; nothing for a plain number. */
 export function unitAfter(quantity: Quantity): string {
-  return quantity.unit === null || quantity.unit === "1" ? "" : ` ${quantity.unit}`;
+  return quantity.unit === null || quantity.unit === "1" ? "" : ` ${unitText(quantity.unit)}`;
 }
 
 /** The unit of an uncertainty: the observable's, or dex where the scale is logarithmic. */
 export function spreadUnit(quantity: Quantity): string {
   if (quantity.scale === "log10") return "dex";
-  return quantity.unit === null || quantity.unit === "1" ? "" : quantity.unit;
+  return quantity.unit === null || quantity.unit === "1" ? "" : unitText(quantity.unit);
 }
 
 /** The no-model range in words: "−1 to 4 arcsec, all alike". */
