@@ -137,6 +137,22 @@ describe("a document that is not valid", () => {
     );
   });
 
+  test("what this version can't score is refused by name and place", async () => {
+    const input = changed((copy) => {
+      copy.hypotheses[0].predictions[0] = {
+        measurand: "limb",
+        tolerance: { family: "interval", lower: 1, upper: 2 },
+      };
+    });
+    for (const command of ["score", "check"]) {
+      const { code, out, err } = await weighhouse([command, "-"], { input });
+      expect([code, out]).toEqual([1, ""]);
+      expect(err).toMatch(
+        /^\/hypotheses\/0\/predictions\/0\/tolerance\/family: found "interval" \(not-yet-supported\); allowed .+\n$/,
+      );
+    }
+  });
+
   test("check lists the same errors", async () => {
     const input = changed((copy) => (sdOf(copy).sd = 0));
     const { code, out, err } = await weighhouse(["check", "-"], { input });

@@ -2,7 +2,7 @@ import { chiSquareUpperTail } from "@weighhouse/numerics/chi-square";
 import { blocksOf } from "./blocks";
 import { marginalOf } from "./marginal";
 import type { Part } from "./marginal-form";
-import { solve, type Level } from "./solve";
+import { boundsOf, solve, type Level } from "./solve";
 import { levelOf, measuredIn, onlyMeasurand, type Roles, type Workspace } from "./workspace";
 
 export interface Fit {
@@ -42,11 +42,11 @@ export function referenceFit(workspace: Workspace, measurand: number): Fit | nul
   if (level.role.kind === "normal") return fit(workspace, onlyMeasurand(workspace, measurand, 0));
   const roles = onlyMeasurand(workspace, measurand, 0);
   const { marginal, solved } = solveBlock(workspace, [measurand], roles);
-  const { lower, upper } = level.role;
+  const { lower, upper, width } = boundsOf(level);
   const { scale, value } = lastUnknown(solved.system);
-  const best = Math.min(Math.max(value, lower - level.centre), upper - level.centre);
-  const margin = AT_BOUND * (upper - lower);
-  const inside = best - (lower - level.centre) > margin && upper - level.centre - best > margin;
+  const best = Math.min(Math.max(value, lower), upper);
+  const margin = AT_BOUND * width;
+  const inside = best - lower > margin && upper - best > margin;
   const beyond = scale * (best - value);
   const chiSquare = marginal.squares + solved.system.rss + beyond * beyond;
   return fitOf(chiSquare, counted - (inside ? 1 : 0));

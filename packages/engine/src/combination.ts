@@ -21,7 +21,13 @@ function leastSquares({ sums, marginals }: Workspace, measurand: number): Combin
   const { counted, centre } = sums.measurands[measurand]!;
   if (counted === 0) return null;
   const marginal = marginalOf(marginals, [{ measurand, noise: 0 }]);
-  const open = { kind: "uniform", lower: -Infinity, upper: Infinity, noise: 0 } as const;
+  const open = {
+    kind: "uniform",
+    lower: -Infinity,
+    upper: Infinity,
+    width: Infinity,
+    noise: 0,
+  } as const;
   const { system } = solve(marginal, [{ role: open, centre }]);
   const { scale, value } = lastUnknown(system);
   const degreesOfFreedom = counted - 1;

@@ -14,11 +14,12 @@ import {
 } from "./frame";
 import { unsupportedParts } from "./not-yet-supported";
 import { predictionFrame } from "./prediction-frame";
-import { toScoringSpace, type ScoredScale } from "./scoring-space";
+import { toScoringSpace, widthInScoringSpace, type ScoredScale } from "./scoring-space";
+import { oversizedParts } from "./sizes";
 
 /** @returns the frame, or everything in the document that this version can't score */
 export function compileFrame(whole: CampaignDocument): Result<Frame> {
-  const problems = unsupportedParts(whole);
+  const problems = [...unsupportedParts(whole), ...oversizedParts(whole)];
   if (problems.length > 0) return { ok: false, problems };
   const document = { ...whole, measurements: [] };
   const measurands = compileMeasurands(document);
@@ -81,7 +82,8 @@ function compileMeasurand(measurand: Measurand, observable: Observable): Measura
   if (reference.family === "uniform") {
     const lower = toScoringSpace(reference.lower, scale);
     const upper = toScoringSpace(reference.upper, scale);
-    frame.roles.push({ kind: "uniform", lower, upper, noise });
+    const width = widthInScoringSpace(reference, scale);
+    frame.roles.push({ kind: "uniform", lower, upper, width, noise });
   } else if (reference.family === "normal") {
     const mean = toScoringSpace(reference.mean, scale);
     frame.roles.push({ kind: "normal", mean, sd: reference.sd, noise });

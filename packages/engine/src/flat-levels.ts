@@ -9,7 +9,7 @@ import {
 } from "@weighhouse/numerics/triangular-system";
 import { marginalOf } from "./marginal";
 import type { Marginal, Part } from "./marginal-form";
-import { solve, type Level, type Solved } from "./solve";
+import { boundsOf, solve, type Level, type Solved } from "./solve";
 import type { Workspace } from "./workspace";
 
 /** Bounds may be let go where all of them together cut off less than this share of the integral. */
@@ -38,7 +38,7 @@ export function logFlatLevels(workspace: Workspace, block: Block): LogIntegral {
   if (solved.flats.length === 0) return { ln: 0, error: 0 };
   const bounds = solved.flats.map((part) => boundsOf(levels[part]!));
   let logVolume = 0;
-  for (const { lower, upper } of bounds) logVolume += Math.log(upper - lower);
+  for (const { width } of bounds) logVolume += Math.log(width);
   const system = lastUnknowns(solved.system, solved.gaussians);
   const integral =
     system.size === 1
@@ -47,20 +47,13 @@ export function logFlatLevels(workspace: Workspace, block: Block): LogIntegral {
   return { ln: integral.ln - logVolume, error: integral.error };
 }
 
-interface Bounds {
-  lower: number;
-  upper: number;
-}
+type Bounds = ReturnType<typeof boundsOf>;
 
-function boundsOf({ role, centre }: Level): Bounds {
-  if (role.kind !== "uniform") throw new TypeError("only a flat level has bounds");
-  return { lower: role.lower - centre, upper: role.upper - centre };
-}
-
-function boxOf(bounds: readonly Bounds[]): Box {
+function boxOf(bounds: readonly Bounds[]): Required<Box> {
   return {
     lower: Float64Array.from(bounds, ({ lower }) => lower),
     upper: Float64Array.from(bounds, ({ upper }) => upper),
+    width: Float64Array.from(bounds, ({ width }) => width),
   };
 }
 
@@ -193,6 +186,7 @@ function coupled(
   for (const i of order.slice(0, free)) {
     box.lower[i] = -Infinity;
     box.upper[i] = Infinity;
+    box.width[i] = Infinity;
   }
   const last = lastUnknowns(again.system, again.gaussians);
   const integral = logCoupledBoxIntegral(last, box);

@@ -4,7 +4,7 @@ import type { ScoredScale } from "./scoring-space";
 /** A measurand's true value under something said of it: a level, and noise of its own per measurement. */
 export type Role =
   | { kind: "normal"; mean: number; sd: number; noise: number }
-  | { kind: "uniform"; lower: number; upper: number; noise: number };
+  | { kind: "uniform"; lower: number; upper: number; width: number; noise: number };
 
 export interface MeasurandFrame {
   key: string;

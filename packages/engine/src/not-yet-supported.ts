@@ -2,9 +2,10 @@ import type { CampaignDocument, Measurement, Prediction } from "@weighhouse/camp
 import { below } from "@weighhouse/campaign/pointer";
 import type { Problem } from "@weighhouse/campaign/problem";
 
-/** What this version can't score yet, refused by name. */
+/** What this version can't score yet, refused by name, which stands in the line of text too. */
 export function notYetSupported(pointer: string, found: string, allowed: string): Problem {
-  return { pointer, code: "not-yet-supported", found, allowed: `${allowed} in this version` };
+  const code = "not-yet-supported";
+  return { pointer, code, found: `${found} (${code})`, allowed: `${allowed} in this version` };
 }
 
 /**

@@ -4,6 +4,7 @@ import type { Result } from "@weighhouse/campaign/problem";
 import { noiseIndex, type MeasurandFrame, type PredictionFrame, type Role } from "./frame";
 import { notYetSupported } from "./not-yet-supported";
 import { toScoringSpace } from "./scoring-space";
+import { MOST_SD } from "./sizes";
 
 export interface PredictionContext {
   pointer: string;
@@ -35,6 +36,14 @@ export function predictionFrame(
     };
   }
   const sd = toleranceSd(prediction, natural, frame);
+  if (!(sd <= MOST_SD)) {
+    const at = `${pointer}/tolerance/sd`;
+    const allowed = `a tolerance of at most ${MOST_SD}`;
+    return {
+      ok: false,
+      problems: [{ pointer: at, code: "out-of-range", found: String(sd), allowed }],
+    };
+  }
   const each = prediction.tolerance?.sharing === "each";
   const value: PredictionFrame = {
     pointer,

@@ -5,10 +5,7 @@ import { conversion } from "@weighhouse/campaign/units";
 import type { Frame, MeasurandFrame } from "./frame";
 import { unsupportedMeasurement } from "./not-yet-supported";
 import { sdInScoringSpace, toScoringSpace } from "./scoring-space";
-
-/** Uncertainties whose squares and weights are ordinary doubles. */
-const LEAST_SD = 1e-140;
-const MOST_SD = 1e140;
+import { LEAST_SD, MOST_SD } from "./sizes";
 
 export interface Loading {
   error: number;
@@ -41,7 +38,8 @@ export function readMeasurement(
   const read = readValue(measurement, frame.measurands[measurand]!, pointer);
   if ("pointer" in read) return { ok: false, problems: [read] };
   const loadings: Loading[] = [];
-  for (const { error: key, coefficient } of measurement.shared) {
+  const most = MOST_SD * Math.min(1, Math.sqrt(read.variance));
+  for (const [position, { error: key, coefficient }] of measurement.shared.entries()) {
     const error = frame.errorIndex.get(key);
     if (error === undefined) {
       const found = `"${key}"`;
@@ -55,7 +53,14 @@ export function readMeasurement(
       return { ok: false, problems: [missing(below(pointer, "batch"), allowed)] };
     }
     const batch = perBatch ? measurement.batch : null;
-    loadings.push({ error, batch, value: coefficient * sd });
+    const value = coefficient * sd;
+    if (!(Math.abs(value) <= most)) {
+      const found = `${coefficient}, a loading of ${value}`;
+      const at = below(pointer, "shared", position, "coefficient");
+      const allowed = `a loading of at most ${most}`;
+      return { ok: false, problems: [{ pointer: at, code: "out-of-range", found, allowed }] };
+    }
+    loadings.push({ error, batch, value });
   }
   const provisional = measurement.status === "provisional";
   return { ok: true, value: { measurand, ...read, loadings, provisional } };

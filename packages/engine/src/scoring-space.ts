@@ -18,6 +18,17 @@ export function sdInScoringSpace(sd: number, value: number, scale: ScoredScale):
   return scale === "log10" ? sd / (value * Math.LN10) : sd;
 }
 
+/** The width of an interval; on log10 without the cancellation of two logarithms. */
+export function widthInScoringSpace(
+  { lower, upper }: { lower: number; upper: number },
+  scale: ScoredScale,
+): number {
+  if (scale === "linear") return upper - lower;
+  return upper < 2 * lower
+    ? Math.log1p((upper - lower) / lower) / Math.LN10
+    : Math.log10(upper) - Math.log10(lower);
+}
+
 /**
  * An interval back in the observable's unit. An exact prediction's is the number that was given,
  * not what two logarithms make of it.

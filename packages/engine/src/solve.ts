@@ -10,6 +10,29 @@ import type { Marginal } from "./marginal-form";
 /** A level as it is said to be; `centre` is what the sums are kept relative to. */
 export type Level = { role: Role; centre: number };
 
+/** A flat level this many of its widths away from the data is told from its own bound. */
+const FAR = 1e3;
+
+/**
+ * What the unknown of a flat level is counted from: the centre of the sums, or its lower bound
+ * where the bounds are near to one another and far from the data, so that they stay two numbers.
+ */
+export function originOf({ role, centre }: Level): number {
+  if (role.kind !== "uniform") return centre;
+  const distance = Math.max(Math.abs(role.lower - centre), Math.abs(role.upper - centre));
+  return distance > FAR * role.width ? role.lower : centre;
+}
+
+/** The bounds of a flat level's unknown. */
+export function boundsOf(level: Level): { lower: number; upper: number; width: number } {
+  const { role } = level;
+  if (role.kind !== "uniform") throw new TypeError("only a flat level has bounds");
+  const origin = originOf(level);
+  const { lower, upper, width } = role;
+  if (origin === lower) return { lower: 0, upper: width, width };
+  return { lower: lower - origin, upper: upper - origin, width };
+}
+
 /**
  * A marginal with levels and draws under their priors: Gaussian unknowns first, then the flat
  * levels, then the couplers.
@@ -84,7 +107,10 @@ function levelRow(
     if (level?.role.kind === "normal") {
       known -= coefficient * (level.role.mean - level.centre);
       if (column >= 0) row[column] = coefficient * level.role.sd;
-    } else row[column] = coefficient;
+    } else {
+      row[column] = coefficient;
+      if (level !== undefined) known -= coefficient * (originOf(level) - level.centre);
+    }
   }
   row[size] = known;
   return row;

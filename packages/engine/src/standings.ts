@@ -127,7 +127,8 @@ function verdictRow(
     listed.kind === "open"
       ? verdictOf(workspace, listed.prediction)
       : verdictOfWithheld(workspace, m);
-  const natural = (value: number | null) => (value === null ? null : toNatural(value, scale));
+  const natural = (value: number | null) =>
+    value === null ? null : finite(toNatural(value, scale));
   const interval =
     listed.kind === "open"
       ? naturalInterval(listed.prediction, scale)
@@ -140,8 +141,9 @@ function verdictRow(
     tension: finite(verdict.tension),
     value: natural(verdict.value),
     sd: verdict.sd,
-    lower: interval.lower,
-    upper: interval.upper,
+    // An end beyond all doubles is as good as unbounded.
+    lower: finite(interval.lower),
+    upper: finite(interval.upper),
     inflated: verdict.inflated,
     provisional: counted > 0 && provisional > 0,
     order: listed.order,
@@ -151,14 +153,15 @@ function verdictRow(
 function measurandStanding(workspace: Workspace, m: number): MeasurandStanding {
   const { key, scale, thresholds } = workspace.frame.measurands[m]!;
   const combination = combine(workspace, m);
+  const value = combination === null ? null : finite(toNatural(combination.value, scale));
   return {
     key,
     measurements: workspace.sums.measurands[m]!.counted,
     combined:
-      combination === null
+      combination === null || value === null
         ? null
         : {
-            value: toNatural(combination.value, scale),
+            value,
             sd: combination.sd,
             chiSquare: combination.chiSquare,
             degreesOfFreedom: combination.degreesOfFreedom,

@@ -1,7 +1,7 @@
 import type { Box, LogIntegral } from "./box";
 import { logConcaveIntegral } from "./log-concave-integral";
 import { latticeBoxIntegral } from "./box-lattice";
-import { LN_SQRT_2PI, logNormalInterval } from "./normal";
+import { logIntervalIntegral } from "./interval-integral";
 import type { TriangularSystem } from "./triangular-system";
 
 /**
@@ -29,7 +29,8 @@ function nested(system: TriangularSystem, box: Box, i: number, t: Float64Array):
   for (let k = i + 1; k < system.size; k += 1) shift -= system.data[i * width + k]! * t[k]!;
   const lower = box.lower[i]!;
   const upper = box.upper[i]!;
-  if (i === 0) return { ln: logInterval(diagonal, shift, lower, upper), error: 0 };
+  const range = { lower, upper, width: box.width?.[i] };
+  if (i === 0) return { ln: logIntervalIntegral(diagonal, shift, range), error: 0 };
   let innerError = 0;
   const g = (x: number) => {
     t[i] = x;
@@ -41,14 +42,6 @@ function nested(system: TriangularSystem, box: Box, i: number, t: Float64Array):
   const scale = Math.min(1 / Math.abs(diagonal), (upper - lower) / 4);
   const outer = logConcaveIntegral(g, { lower, upper, start: shift / diagonal, scale });
   return { ln: outer.ln, error: outer.error + innerError };
-}
-
-/** ln int_lower^upper exp(-(d t - shift)^2 / 2) dt. */
-function logInterval(d: number, shift: number, lower: number, upper: number): number {
-  const scale = LN_SQRT_2PI - Math.log(Math.abs(d));
-  return d > 0
-    ? scale + logNormalInterval(d * lower - shift, d * upper - shift)
-    : scale + logNormalInterval(shift - d * lower, shift - d * upper);
 }
 
 /**
@@ -94,7 +87,8 @@ function product(system: TriangularSystem, box: Box, couplers: Float64Array): nu
     const row = i * (size + 1);
     let shift = data[row + size]!;
     for (let k = boxed; k < size; k += 1) shift -= data[row + k]! * couplers[k]!;
-    ln += logInterval(data[row + i]!, shift, box.lower[i]!, box.upper[i]!);
+    const range = { lower: box.lower[i]!, upper: box.upper[i]!, width: box.width?.[i] };
+    ln += logIntervalIntegral(data[row + i]!, shift, range);
   }
   return ln;
 }

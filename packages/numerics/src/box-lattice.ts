@@ -1,6 +1,7 @@
 import type { Box, LogIntegral } from "./box";
+import { logIntervalIntegral } from "./interval-integral";
 import { logSumExp } from "./log-sum-exp";
-import { LN_SQRT_2PI, logNormalInterval, truncatedNormalQuantile } from "./normal";
+import { truncatedNormalQuantile } from "./normal";
 import type { TriangularSystem } from "./triangular-system";
 
 const SHIFTS = 12;
@@ -11,7 +12,7 @@ const WANTED_ERROR = 3e-4;
 /**
  * ln of the integral of a Gaussian over a box by Genz's sequential conditioning: each unknown in
  * turn, the last one first, is drawn from its normal cut to its bounds given those before; the
- * integral is the mean of the products of the cut masses.
+ * integral is the mean of the products of the integrals between the bounds.
  *
  * Points: a Richtmyer lattice (multiples of square roots of primes) under the baker's transform,
  * with twelve fixed shifts; their spread is the standard error. Doubled until that is below 3e-4.
@@ -42,13 +43,7 @@ export function latticeBoxIntegral(system: TriangularSystem, box: Box): LogInteg
     }
     done = points;
     const { ln, error } = meanOf(sums, points);
-    if (ln === -Infinity || error < WANTED_ERROR || points >= MOST_POINTS) {
-      let scale = 0;
-      for (let i = 0; i < size; i += 1) {
-        scale += LN_SQRT_2PI - Math.log(upright[i * (size + 1) + i]!);
-      }
-      return { ln: ln + scale, error };
-    }
+    if (ln === -Infinity || error < WANTED_ERROR || points >= MOST_POINTS) return { ln, error };
   }
 }
 
@@ -64,10 +59,12 @@ function logProduct(
     let shift = data[row + size]!;
     for (let k = i + 1; k < size; k += 1) shift -= data[row + k]! * t[k]!;
     const diagonal = data[row + i]!;
-    const lower = diagonal * box.lower[i]! - shift;
-    const upper = diagonal * box.upper[i]! - shift;
-    ln += logNormalInterval(lower, upper);
-    if (i > 0) t[i] = (truncatedNormalQuantile(lower, upper, point[i]!) + shift) / diagonal;
+    const range = { lower: box.lower[i]!, upper: box.upper[i]!, width: box.width?.[i] };
+    ln += logIntervalIntegral(diagonal, shift, range);
+    if (i === 0) continue;
+    const lower = diagonal * range.lower - shift;
+    const upper = diagonal * range.upper - shift;
+    t[i] = (truncatedNormalQuantile(lower, upper, point[i]!) + shift) / diagonal;
   }
   return ln;
 }

@@ -53,13 +53,15 @@ export function normalInterval(lower: number, upper: number): number {
  *   Q(a) - Q(b) = e^(-a^2/2) [erfcx(a / sqrt 2) - erfcx(b / sqrt 2) e^(-(b-a)(b+a)/2)] / 2
  *
  * @param lower bound, in standard deviations; -Infinity allowed
- * @param upper bound, > lower; Infinity allowed
+ * @param upper bound, >= lower; Infinity allowed
+ * @param width upper - lower, > 0, where that is known better than the two bounds tell it: far out
+ *   in a tail those of a narrow interval may be one number
  * @returns natural log, <= 0; relative error below 1e-12 for |bounds| <= 1e4
- * @throws {NumericsError} `empty-interval` when upper <= lower
+ * @throws {NumericsError} `empty-interval` when the width isn't above 0
  * Source: Abramowitz & Stegun 26.2. Reference values: fixtures/log-normal-interval.json (mpmath).
  */
-export function logNormalInterval(lower: number, upper: number): number {
-  if (!(upper > lower)) {
+export function logNormalInterval(lower: number, upper: number, width = upper - lower): number {
+  if (!(width > 0)) {
     throw new NumericsError(
       "empty-interval",
       `an interval needs lower < upper; found ${lower} and ${upper}`,
@@ -67,19 +69,20 @@ export function logNormalInterval(lower: number, upper: number): number {
   }
   if (lower === -Infinity && upper === Infinity) return 0;
   if (lower < 0 && upper > 0) return logAstride(lower, upper);
-  return lower >= 0 ? logUpperSide(lower, upper) : logUpperSide(-upper, -lower);
+  return lower >= 0 ? logUpperSide(lower, upper, width) : logUpperSide(-upper, -lower, width);
 }
 
 function logAstride(lower: number, upper: number): number {
   const outside = normalCdf(lower) + normalCdf(-upper);
   if (outside < 0.5) return Math.log1p(-outside);
   // Both halves are positive, so they add up without loss.
-  return Math.log(Math.exp(logUpperSide(0, upper)) + Math.exp(logUpperSide(0, -lower)));
+  return Math.log(
+    Math.exp(logUpperSide(0, upper, upper)) + Math.exp(logUpperSide(0, -lower, -lower)),
+  );
 }
 
-function logUpperSide(a: number, b: number): number {
+function logUpperSide(a: number, b: number, width: number): number {
   if (b === Infinity) return logNormalCdf(-a);
-  const width = b - a;
   const drop = (width * (a + b)) / 2;
   if (width < 1 && drop < 1) {
     // phi(a) times the integral of exp(-a s - s^2 / 2) over [0, width]: smooth, of order one.
