@@ -1,7 +1,9 @@
 import { Empty } from "@/look/notice";
 import { ButtonLink } from "@/look/button";
+import { readActor } from "@/server/reader";
 
-export default function NotFound() {
+export default async function NotFound() {
+  const signedIn = (await readActor()) !== null;
   return (
     <div className="py-8">
       <h1 className="mb-3">Not here</h1>
@@ -10,7 +12,7 @@ export default function NotFound() {
       </Empty>
       <div className="mt-4 flex gap-3">
         <ButtonLink href="/campaigns">All campaigns</ButtonLink>
-        <ButtonLink href="/sign-in">Sign in</ButtonLink>
+        {signedIn ? null : <ButtonLink href="/sign-in">Sign in</ButtonLink>}
       </div>
     </div>
   );

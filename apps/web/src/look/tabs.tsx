@@ -17,7 +17,7 @@ export function Tabs({ label, tabs }: { label: string; tabs: readonly Tab[] }) {
   return (
     <nav
       aria-label={label}
-      className="no-print mb-5 flex flex-wrap gap-x-2 border-b border-rule text-[12.75px] sm:gap-x-5 sm:text-[14.5px]"
+      className="no-print mb-5 flex flex-wrap gap-x-1.5 border-b border-rule text-[12.5px] sm:gap-x-5 sm:text-[14.5px]"
     >
       {tabs.map((tab) => {
         const current = tab.exact ? path === tab.href : path.startsWith(tab.href);

@@ -14,7 +14,7 @@ export function VerdictCell(props: {
   const { row, at } = props;
   if (row === null) return <span className="text-quiet">silent</span>;
   return (
-    <span className="inline-flex items-baseline gap-1.5">
+    <span className="inline-flex flex-wrap items-baseline gap-x-1.5">
       {row.tension === null ? null : (
         <span className="min-w-[5ch] text-right">
           <Num
@@ -36,7 +36,7 @@ export function VerdictCell(props: {
         {verdictWords[row.verdict]}
       </span>
       {row.order === "after" ? (
-        <span className="text-[12.5px] text-quiet" title={orderMeanings.after}>
+        <span className="text-[12.5px] whitespace-nowrap text-quiet" title={orderMeanings.after}>
           {orderWords.after}
         </span>
       ) : null}
