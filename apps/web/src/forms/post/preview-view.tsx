@@ -100,9 +100,7 @@ function Row(props: { row: PreviewedRow; document: CampaignDocument; reasons: bo
       <td data-label="Fate" className={`whitespace-nowrap ${inks[row.fate]}`}>
         {fateWords[row.fate]}
       </td>
-      <td data-label="Id">
-        <code>{row.id ?? ""}</code>
-      </td>
+      <td data-label="Id">{row.id === null ? null : <code>{row.id}</code>}</td>
       <td data-label="Quantity">{measurand?.title ?? measurement?.measurand ?? ""}</td>
       <td data-label="Facility">{facility?.title ?? measurement?.facility ?? ""}</td>
       <td data-label="Value" className="number">
@@ -110,9 +108,11 @@ function Row(props: { row: PreviewedRow; document: CampaignDocument; reasons: bo
       </td>
       {reasons ? (
         <td data-label="Why" className="max-w-[44ch] text-[14px]">
-          {reasonsOf(row).map((reason) => (
-            <div key={reason}>{reason}</div>
-          ))}
+          <div>
+            {reasonsOf(row).map((reason) => (
+              <div key={reason}>{reason}</div>
+            ))}
+          </div>
         </td>
       ) : null}
     </tr>
