@@ -120,7 +120,9 @@ export function ImportForm() {
         <Button kind={ready ? "plain" : "main"} type="submit" disabled={busy !== null}>
           {busy === "previewing" ? "Reading the document…" : "Preview import"}
         </Button>
-        {preview === null ? null : <ImportPreviewView preview={preview} />}
+        {preview === null ? null : (
+          <ImportPreviewView preview={preview} text={form.getValues("text")} />
+        )}
         <div className="mt-3">
           <FailureNote
             failure={

@@ -4,17 +4,20 @@ import type { AppRouter } from "@weighhouse/api/router";
 import type { inferRouterOutputs } from "@trpc/server";
 import { formatCount } from "@weighhouse/figures/numbers";
 import { formatLog10B } from "@weighhouse/figures/standing-numbers";
+import { useMemo } from "react";
 import { Notice } from "@/look/notice";
 import { Table } from "@/look/table";
 import { Time } from "@/look/time";
 import { orderWords } from "@/look/verdict-words";
 import { problemWords } from "../form-schema";
+import { documentTitles, type DocumentTitles } from "./document-titles";
 
 type ImportPreview = inferRouterOutputs<AppRouter>["campaigns"]["previewImport"];
 type Plan = NonNullable<ImportPreview["plan"]>;
 
 /** What the import would make, and what its own dates lose by it. */
-export function ImportPreviewView({ preview }: { preview: ImportPreview }) {
+export function ImportPreviewView({ preview, text }: { preview: ImportPreview; text: string }) {
+  const titles = useMemo(() => documentTitles(text), [text]);
   return (
     <section aria-label="Preview of the import" className="mt-5 border-t border-rule pt-4">
       <h3 className="mb-2">
@@ -25,8 +28,8 @@ export function ImportPreviewView({ preview }: { preview: ImportPreview }) {
       ) : (
         <>
           <Counts plan={preview.plan} />
-          <OwnDates plan={preview.plan} />
-          <Standings plan={preview.plan} />
+          <OwnDates plan={preview.plan} titles={titles} />
+          <Standings plan={preview.plan} titles={titles} />
         </>
       )}
     </section>
@@ -70,7 +73,7 @@ function Counts({ plan }: { plan: Plan }) {
 }
 
 /** The ledger dates everything anew; the document's own dates are kept as claimed. */
-function OwnDates({ plan }: { plan: Plan }) {
+function OwnDates({ plan, titles }: { plan: Plan; titles: DocumentTitles }) {
   return (
     <>
       <Notice label="Its own dates are kept as claimed.">
@@ -102,8 +105,8 @@ function OwnDates({ plan }: { plan: Plan }) {
           >
             {plan.orders.map(({ hypothesis, measurand, claimed, here }) => (
               <tr key={`${hypothesis} ${measurand}`}>
-                <th scope="row">{hypothesis}</th>
-                <td data-label="Quantity">{measurand}</td>
+                <th scope="row">{titles.hypotheses.get(hypothesis) ?? hypothesis}</th>
+                <td data-label="Quantity">{titles.measurands.get(measurand) ?? measurand}</td>
                 <td data-label="By the document">{orderWords[claimed]}</td>
                 <td data-label="Here">{orderWords[here]}</td>
               </tr>
@@ -115,7 +118,7 @@ function OwnDates({ plan }: { plan: Plan }) {
   );
 }
 
-function Standings({ plan }: { plan: Plan }) {
+function Standings({ plan, titles }: { plan: Plan; titles: DocumentTitles }) {
   const { claimed, here } = plan.standings;
   const there = new Map(claimed.hypotheses.map((each) => [each.key, each]));
   if (here.hypotheses.length === 0) return null;
@@ -138,7 +141,7 @@ function Standings({ plan }: { plan: Plan }) {
       >
         {here.hypotheses.map(({ key, log10BayesFactor }) => (
           <tr key={key}>
-            <th scope="row">{key}</th>
+            <th scope="row">{titles.hypotheses.get(key) ?? key}</th>
             <td data-label="log₁₀ B by the document" className="number">
               {formatLog10B(there.get(key)?.log10BayesFactor ?? null)}
             </td>
