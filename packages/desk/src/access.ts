@@ -1,3 +1,4 @@
+import { KEY_PATTERN } from "@weighhouse/campaign/fields";
 import { findCampaign } from "@weighhouse/store/campaigns";
 import type { CampaignRow, Visibility } from "@weighhouse/store/campaigns";
 import { findMembership } from "@weighhouse/store/members";
@@ -65,6 +66,8 @@ export function roleOf(actor: Actor, visibility: Visibility, place: Membership |
 
 /** In the same words as for one that is hidden, or the words would tell the two apart. */
 async function campaignOf(desk: Desk, key: string): Promise<CampaignRow> {
+  // The database takes no text with U+0000, so what can't be a key is not even asked for.
+  if (!KEY_PATTERN.test(key)) throw noSuchCampaign(JSON.stringify(key));
   try {
     return await findCampaign(desk.store, key);
   } catch (error) {

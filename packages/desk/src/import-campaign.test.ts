@@ -194,6 +194,14 @@ it("every fault of a document is told by its pointer, and nothing is made of it"
   expect((await preview("{ not JSON")).problems[0]).toMatchObject({ code: "syntax" });
 });
 
+it("a text that no entry can hold is told by its pointer", async () => {
+  const campaign = { ...spring.campaign, key: "nul-spring", title: "Iron\u0000" };
+  expect((await preview({ ...spring, campaign })).problems).toMatchObject([
+    { pointer: "/campaign/title", found: "U+0000" },
+  ]);
+  await expect(importIt({ ...spring, campaign })).rejects.toMatchObject({ code: "invalid" });
+});
+
 it("what the engine can't score yet is refused by name", async () => {
   const count = {
     ...spring,

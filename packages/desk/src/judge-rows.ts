@@ -5,6 +5,8 @@ import { readForm } from "@weighhouse/campaign/form";
 import type { Problem } from "@weighhouse/campaign/problem";
 import { readCampaign } from "@weighhouse/campaign/read";
 import { createState } from "@weighhouse/engine/state";
+import { payloadText } from "@weighhouse/ledger/entry";
+import { LedgerError } from "@weighhouse/ledger/ledger-error";
 import { comparePosting, defaultMeasurementId } from "@weighhouse/store/post-measurements";
 import type { Conflict } from "@weighhouse/store/post-measurements";
 import type { Access } from "./access";
@@ -64,14 +66,35 @@ function readRow({ line, draft, problems }: ReadRow, access: Access): JudgedRow 
   const faults = read.problems.map(rowProblem);
   if (access.role === "member" && content.team !== access.team) {
     const found = JSON.stringify(content.team);
-    faults.push({ column: "team", found, allowed: `${access.team}: your own team` });
+    const own = access.team === null ? "no team: you are of none" : `${access.team}: your own team`;
+    faults.push({ column: "team", found, allowed: own });
   }
   if (faults.length > 0) {
     return { ...refused, id: typeof given === "string" ? given : null, problems: faults };
   }
+  const unwritable = ledgerFault(read.value!);
+  if (unwritable !== null) {
+    return { ...refused, id: typeof given === "string" ? given : null, problems: [unwritable] };
+  }
   const id = typeof given === "string" ? given : defaultMeasurementId(content);
   const measurement = { ...read.value!, id };
   return { ...refused, id, fate: "new", measurement };
+}
+
+/** What no payload can hold: U+0000, half a surrogate pair, more than a payload's size. */
+function ledgerFault(measurement: MeasurementContent): RowProblem | null {
+  try {
+    payloadText({ measurements: [measurement], correlations: [] });
+    return null;
+  } catch (error) {
+    if (!(error instanceof LedgerError)) throw error;
+    const [, field, found, allowed] =
+      /^\/measurements\/0\/([^/:]+)[^:]*: found (.*); allowed is (.*)$/s.exec(error.message) ?? [];
+    if (field !== undefined && found !== undefined && allowed !== undefined) {
+      return { column: field, found, allowed };
+    }
+    return { column: null, found: error.message, allowed: "what a ledger's entry can hold" };
+  }
 }
 
 /** Most rows are good, and the quick reading tells; only what fails it is read for its words. */

@@ -5,6 +5,8 @@ import type { Problem } from "@weighhouse/campaign/problem";
 import { readCampaignText } from "@weighhouse/campaign/read";
 import type { Standings } from "@weighhouse/campaign/standings";
 import { scoreCampaign } from "@weighhouse/engine/score";
+import { canonicalJson } from "@weighhouse/ledger/canonical";
+import { LedgerError } from "@weighhouse/ledger/ledger-error";
 import { documentAfter } from "./document-after";
 import type { NewEntry } from "./document-after";
 import { entriesOfDocument } from "./import-entries";
@@ -37,6 +39,8 @@ export function planImport(input: { text: string; key: string | null; now: strin
   const claimed = scoreCampaign(document);
   if (!claimed.ok) return claimed;
   const opening = openingOf(document.campaign, input.now);
+  const unwritable = ledgerFault(document);
+  if (unwritable !== null) return { ok: false, problems: [unwritable] };
   const entries = entriesOfDocument(document, input.now);
   const here = scoreCampaign(documentHere(opening, entries, input.now));
   if (!here.ok) return here;
@@ -66,6 +70,19 @@ function documentHere(opening: Campaign, entries: NewEntry[], now: string): Camp
     correlations: [],
   };
   return documentAfter(empty, entries, { by: { system: true }, at: now });
+}
+
+/** What reads as JSON and no entry can hold: U+0000, half a surrogate pair. */
+function ledgerFault(document: CampaignDocument): Problem | null {
+  try {
+    canonicalJson(document);
+    return null;
+  } catch (error) {
+    if (!(error instanceof LedgerError)) throw error;
+    const [, pointer = "", found = error.message, allowed = "what an entry can hold"] =
+      /^([^:]*): found (.*); allowed is (.*)$/s.exec(error.message) ?? [];
+    return { pointer, code: "bad-format", found, allowed };
+  }
 }
 
 function badKey(key: string): Problem {

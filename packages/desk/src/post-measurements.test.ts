@@ -48,6 +48,34 @@ describe("posting", () => {
     ]);
   });
 
+  it.each([
+    ["U+0000", "read\u0000out"],
+    ["half a surrogate pair", "read\ud800out"],
+  ])("of a text that no entry can hold is refused at its field: %s", async (found, source) => {
+    const before = await size();
+    for (const id of ["n1", null]) {
+      const rows = drafts(reading(id, 41, { source }));
+      expect((await preview(rows)).rows).toMatchObject([
+        { fate: "refused", problems: [{ column: "source", found }] },
+      ]);
+      await expect(post(rows)).rejects.toMatchObject({
+        code: "invalid",
+        problems: [{ pointer: "/source/drafts/0/source", found }],
+      });
+    }
+    expect(await size()).toBe(before);
+  });
+
+  it("of more than an entry can hold is refused at its row", async () => {
+    const extra = Object.fromEntries(
+      Array.from({ length: 600 }, (_, i) => [`note-${i}`, "x".repeat(2000)]),
+    );
+    await expect(post(drafts(reading(null, 41, { extra })))).rejects.toMatchObject({
+      code: "invalid",
+      problems: [{ pointer: "/source/drafts/0", found: expect.stringMatching(/1048576/) }],
+    });
+  });
+
   it("twice changes nothing the second time", async () => {
     await post(drafts(reading("n1", 41)));
     const before = await size();
@@ -216,4 +244,10 @@ describe("the preview", () => {
       expect(fates[0]?.fate).toBe(outcome);
     },
   );
+});
+
+it("a key that can't be one is not found, whatever the database would make of it", async () => {
+  await expect(readCampaign(house.desk, null, { key: "a\u0000" })).rejects.toMatchObject({
+    code: "not-found",
+  });
 });

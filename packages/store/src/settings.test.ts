@@ -17,8 +17,8 @@ describe("settings", () => {
         LOG_LEVEL: "loud",
         WEIGHHOUSE_ORIGIN: "house.example/path",
       });
-    expect(wrong).toThrow(/PORT: found "99999"/);
-    expect(wrong).toThrow(/LOG_LEVEL: found "loud"/);
+    expect(wrong).toThrow(/PORT: found "99999"; a whole number from 1 to 65535 is allowed/);
+    expect(wrong).toThrow(/LOG_LEVEL: found "loud"; one of trace, .* is allowed/);
     expect(wrong).toThrow(
       /WEIGHHOUSE_ORIGIN: found "house.example\/path"; an address without path/,
     );

@@ -6,6 +6,8 @@ const postgresUrl = z
   .regex(/^postgres(ql)?:\/\/.+/, "a postgres:// address is allowed")
   .optional();
 
+const logLevels = ["trace", "debug", "info", "warn", "error", "fatal", "silent"] as const;
+
 export const settingsSchema = z.object({
   DATABASE_URL: postgresUrl,
   DATABASE_ADMIN_URL: postgresUrl,
@@ -21,8 +23,13 @@ export const settingsSchema = z.object({
     .optional(),
   /** Signs sessions; the launcher with the embedded database makes one by itself. */
   WEIGHHOUSE_SECRET: z.string().min(32, "32 characters or more are allowed").optional(),
-  PORT: z.coerce.number().int().min(1).max(65535).default(3000),
-  LOG_LEVEL: z.enum(["trace", "debug", "info", "warn", "error", "fatal", "silent"]).default("info"),
+  PORT: z.coerce
+    .number("a whole number from 1 to 65535 is allowed")
+    .int("a whole number from 1 to 65535 is allowed")
+    .min(1, "a whole number from 1 to 65535 is allowed")
+    .max(65535, "a whole number from 1 to 65535 is allowed")
+    .default(3000),
+  LOG_LEVEL: z.enum(logLevels, `one of ${logLevels.join(", ")} is allowed`).default("info"),
 });
 
 export type Settings = z.infer<typeof settingsSchema>;
