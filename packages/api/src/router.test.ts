@@ -56,6 +56,26 @@ describe("called in the process", () => {
   });
 });
 
+describe("with a replica that lags", () => {
+  it("reads what the replica has and decides on the primary", async () => {
+    const lagging = await openTestServer();
+    try {
+      const { desk, ...context } = await server.context();
+      const store = { ...desk.store, readDb: lagging.desk.store.db };
+      const caller = appRouter.createCaller({
+        ...context,
+        desk: { ...desk, store },
+        actor: lagoon.member,
+      });
+      const { key } = lagoon;
+      await expect(caller.campaigns.get({ key })).rejects.toMatchObject({ code: "NOT_FOUND" });
+      await caller.hypotheses.register({ key, hypothesis: hypothesis("late-for-the-replica", 41) });
+    } finally {
+      await lagging.close();
+    }
+  });
+});
+
 describe("over HTTP", () => {
   it("a session's cookie is enough to act", async () => {
     const { headers } = await server.signUp("Cora Cookie");

@@ -34,9 +34,16 @@ const refusals = trpc.middleware(async ({ next }) => {
   throw new TRPCError({ code: answers[cause.code].trpc, message: cause.message, cause });
 });
 
+/** A replica lags, and what is decided on it may be out of date: whoever writes reads the primary. */
+const decisionsOnPrimary = trpc.middleware(({ ctx, type, next }) => {
+  if (type !== "mutation") return next();
+  const { store } = ctx.desk;
+  return next({ ctx: { desk: { ...ctx.desk, store: { ...store, readDb: store.db } } } });
+});
+
 export const router = trpc.router;
 
-export const procedure = trpc.procedure.use(refusals);
+export const procedure = trpc.procedure.use(refusals).use(decisionsOnPrimary);
 
 /**
  * Gives a procedure its input type without reading it: the use-case reads it, once, by this same
