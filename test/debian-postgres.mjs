@@ -3,6 +3,8 @@
  * this is root, starts one on a free port with its data in a temporary folder, and stops it again.
  *
  *   node test/debian-postgres.mjs [REPORT.json]
+ *
+ * Ends with 3 where there is no PostgreSQL 15 and none could be installed.
  */
 import { spawnSync } from "node:child_process";
 import { existsSync, mkdirSync, readdirSync, writeFileSync } from "node:fs";
@@ -11,12 +13,14 @@ import path from "node:path";
 const root = path.resolve(import.meta.dirname, "..");
 const bin = "/usr/lib/postgresql/15/bin";
 const report = process.argv[2];
+/** Tells the caller that nothing was tested, as opposed to a test that failed. */
+const NOT_RUN = 3;
 
 if (!existsSync(path.join(bin, "initdb")) && !installed()) {
   console.error(
     `store's tests on PostgreSQL 15 NOT RUN: there is no ${bin}, and none was installed`,
   );
-  process.exit(1);
+  process.exit(NOT_RUN);
 }
 
 spawnSync(path.join(bin, "postgres"), ["--version"], { stdio: "inherit" });

@@ -15,6 +15,8 @@ requireNode();
 await install();
 rmSync(reports, { recursive: true, force: true });
 
+const NOT_RUN = 3;
+const words = { 0: "ok     ", [NOT_RUN]: "NOT RUN" };
 const steps = [];
 const step = async (name, work) => {
   const from = Date.now();
@@ -58,12 +60,17 @@ await step("browser tests", async () => {
 
 const counts = countTests();
 for (const { name, code, seconds } of steps) {
-  say(`${code === 0 ? "ok    " : "FAILED"} ${name} (${seconds} s)`);
+  say(`${words[code] ?? "FAILED "} ${name} (${seconds} s)`);
 }
 say(`in all ${Math.round((Date.now() - started) / 1000)} s`);
 process.stdout.write(`${counts.passed} passed, ${counts.failed} failed\n`);
-const good = counts.failed === 0 && counts.passed > 0 && steps.every(({ code }) => code === 0);
+const good = counts.failed === 0 && counts.passed > 0 && steps.every(isGood);
 process.exit(good ? 0 : 1);
+
+/** The older PostgreSQL is an extra where it can be had; CI must have it. */
+function isGood({ code }) {
+  return code === 0 || (code === NOT_RUN && !process.env.CI);
+}
 
 function countTests() {
   const total = { passed: 0, failed: 0 };
