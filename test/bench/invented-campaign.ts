@@ -20,10 +20,17 @@ function noise(i: number, salt: number): number {
   return sum * Math.sqrt(3);
 }
 
-/** A campaign of any size: every hypothesis speaks on three of four measurands. */
+/** A campaign of any size, read. */
 export function inventedCampaign(size: Size): CampaignDocument {
+  const read = readCampaign(campaignForm(size));
+  if (!read.ok) throw new Error(JSON.stringify(read.problems.slice(0, 3)));
+  return read.value;
+}
+
+/** The same as it would stand in a file: every hypothesis speaks on three of four measurands. */
+export function campaignForm(size: Size) {
   const batches = size.perBatch > 0;
-  const read = readCampaign({
+  return {
     format: "weighhouse-campaign/1",
     campaign: { key: "bench", title: "Bench" },
     observables: [{ key: "o", title: "O", unit: "m", scale: "linear" }],
@@ -50,9 +57,7 @@ export function inventedCampaign(size: Size): CampaignDocument {
       })).filter((_, m) => (h + m) % 4 !== 0),
     })),
     measurements: measurementsOf(size, 0, size.measurements),
-  });
-  if (!read.ok) throw new Error(JSON.stringify(read.problems.slice(0, 3)));
-  return read.value;
+  };
 }
 
 /** Measurements `begin` to `end` of such a campaign, as they would stand in a file. */
