@@ -216,9 +216,9 @@ describe("what a forger changes is found though the manifest is made good", () =
     ],
     [
       "the engine in the manifest",
-      { "manifest.json": replacing('"engine": "0.1.0"', '"engine": "9.9.9"') },
+      { "manifest.json": replacing('"engine": "0.2.0"', '"engine": "9.9.9"') },
       "manifest against the ledger",
-      'manifest.json, /engine: found "9.9.9", computed "0.1.0"',
+      'manifest.json, /engine: found "9.9.9", computed "0.2.0"',
     ],
     [
       "a file that nobody knows",

@@ -152,13 +152,13 @@ it("heads signed before the keys were changed stay good; the new key is the one 
 describe("another engine", () => {
   const other: VerifyOptions["score"] = (document, options) => {
     const scored = scoreCampaign(document, options);
-    return scored.ok ? { ok: true, value: { ...scored.value, engine: "0.2.0" } } : scored;
+    return scored.ok ? { ok: true, value: { ...scored.value, engine: "0.3.0" } } : scored;
   };
 
   it("that agrees is named", () => {
     const report = verify(archive, { score: other });
     expect(report.ok).toBe(true);
-    expect(detailOf(report, "standings")).toContain("engine 0.1.0 in the archive, 0.2.0 here");
+    expect(detailOf(report, "standings")).toContain("engine 0.2.0 in the archive, 0.3.0 here");
   });
 
   it("that differs is named before the places", () => {

@@ -60,11 +60,8 @@ export function fitOf(least: number, degreesOfFreedom: number): Fit {
 }
 
 function solveBlock(workspace: Workspace, block: number[], roles: Roles) {
-  const parts: Part[] = block.map((m) => ({
-    measurand: m,
-    noise: workspace.frame.measurands[m]!.roles[roles[m]!]!.noise,
-  }));
   const levels: Level[] = block.map((m) => levelOf(workspace, m, roles[m]!));
+  const parts: Part[] = block.map((m, i) => ({ measurand: m, noise: levels[i]!.role.noise }));
   const marginal = marginalOf(workspace.marginals, parts);
   return { marginal, solved: solve(marginal, levels) };
 }

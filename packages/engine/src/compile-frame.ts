@@ -1,23 +1,25 @@
 import type {
   CampaignDocument,
+  Ensemble,
   Hypothesis,
-  Measurand,
   Observable,
+  Reference,
 } from "@weighhouse/campaign/document";
 import type { Problem, Result } from "@weighhouse/campaign/problem";
-import {
-  noiseIndex,
-  type Frame,
-  type HypothesisFrame,
-  type MeasurandFrame,
-  type PredictionFrame,
+import type {
+  EnsembleFrame,
+  Frame,
+  HypothesisFrame,
+  MeasurandFrame,
+  PredictionFrame,
 } from "./frame";
 import { unsupportedParts } from "./not-yet-supported";
 import { predictionFrame } from "./prediction-frame";
-import { toScoringSpace, widthInScoringSpace, type ScoredScale } from "./scoring-space";
+import { referenceRole } from "./reference-role";
+import { toScoringSpace } from "./scoring-space";
 import { oversizedParts } from "./sizes";
 
-/** @returns the frame, or everything in the document that this version can't score */
+/** @returns the frame, or everything in the document that can't be scored */
 export function compileFrame(whole: CampaignDocument): Result<Frame> {
   const problems = [...unsupportedParts(whole), ...oversizedParts(whole)];
   if (problems.length > 0) return { ok: false, problems };
@@ -31,20 +33,20 @@ export function compileFrame(whole: CampaignDocument): Result<Frame> {
     else problems.push(...compiled.problems);
   }
   if (problems.length > 0) return { ok: false, problems };
-  const errors = document.sharedErrors.map(({ key, sd, per }) => ({
+  const errors = document.sharedErrors.map(({ key, sd, per, relative }) => ({
     key,
     sd,
     perBatch: per === "batch",
+    relative,
   }));
-  const relative = document.sharedErrors.filter((error) => error.relative);
   const value: Frame = {
     document,
     measurands,
     measurandIndex,
     errors,
     errorIndex: indexOf(errors),
-    relativeErrors: new Set(relative.map(({ key }) => key)),
     hypotheses,
+    correlated: new Set(document.correlations.flatMap(({ a, b }) => [a, b])),
   };
   return { ok: true, value };
 }
@@ -55,38 +57,75 @@ function indexOf(parts: { key: string }[]): Map<string, number> {
 
 function compileMeasurands(document: CampaignDocument): MeasurandFrame[] {
   const observables = new Map(document.observables.map((one) => [one.key, one]));
-  return document.measurands.map((measurand) =>
-    compileMeasurand(measurand, observables.get(measurand.observable)!),
-  );
+  const { measurands, derived } = document;
+  const places = new Map(measurands.map(({ key }, i) => [key, i]));
+  return [
+    ...measurands.map((one, i) => {
+      const observable = observables.get(one.observable)!;
+      const { scale } = observable;
+      return withReference(observable, one.reference, one.where, {
+        ...frameOf(one.key, `/measurands/${i}`, observable),
+        curve: one.shape === "curve",
+        closed: one.closed !== null,
+        scatterVariance: one.scatter ** 2,
+        thresholds: one.thresholds.map(({ key, value }) => ({
+          key,
+          value: toScoringSpace(value, scale),
+        })),
+        firstPostedAt: one.firstPostedAt,
+        firstObservedAt: one.firstObservedAt,
+      });
+    }),
+    ...derived.map((one, i) => {
+      const observable = observables.get(one.observable)!;
+      const { expression, scored } = one;
+      const from = Object.entries(one.from).map(([name, key]) => ({
+        name,
+        measurand: places.get(key)!,
+      }));
+      return withReference(
+        observable,
+        one.reference,
+        {},
+        {
+          ...frameOf(one.key, `/derived/${i}`, observable),
+          derived: { expression, from, scored },
+        },
+      );
+    }),
+  ];
 }
 
-function compileMeasurand(measurand: Measurand, observable: Observable): MeasurandFrame {
-  const scale = observable.scale as ScoredScale;
-  const frame: MeasurandFrame = {
-    key: measurand.key,
+function frameOf(key: string, pointer: string, observable: Observable): MeasurandFrame {
+  return {
+    key,
+    pointer,
     unit: observable.unit,
-    scale,
-    closed: measurand.closed !== null,
-    scatterVariance: measurand.scatter ** 2,
+    scale: observable.scale,
+    period: observable.scale === "cyclic" ? observable.period! : 0,
+    curve: false,
+    conditions: observable.conditions.map(({ key: condition }) => condition),
+    closed: false,
+    scatterVariance: 0,
     roles: [],
+    natural: null,
     noises: [0],
-    thresholds: measurand.thresholds.map(({ key, value }) => ({
-      key,
-      value: toScoringSpace(value, scale),
-    })),
-    firstPostedAt: measurand.firstPostedAt,
-    firstObservedAt: measurand.firstObservedAt,
+    thresholds: [],
+    firstPostedAt: null,
+    firstObservedAt: null,
+    derived: null,
   };
-  const reference = measurand.reference!;
-  const noise = noiseIndex(frame, reference.scatter ** 2);
-  if (reference.family === "uniform") {
-    const lower = toScoringSpace(reference.lower, scale);
-    const upper = toScoringSpace(reference.upper, scale);
-    const width = widthInScoringSpace(reference, scale);
-    frame.roles.push({ kind: "uniform", lower, upper, width, noise });
-  } else if (reference.family === "normal") {
-    const mean = toScoringSpace(reference.mean, scale);
-    frame.roles.push({ kind: "normal", mean, sd: reference.sd, noise });
+}
+
+function withReference(
+  observable: Observable,
+  reference: Reference | null,
+  where: Record<string, [number | null, number | null]>,
+  frame: MeasurandFrame,
+): MeasurandFrame {
+  frame.roles.push(referenceRole(frame, { reference, observable, where }));
+  if (reference?.family === "uniform") {
+    frame.natural = { lower: reference.lower, upper: reference.upper };
   }
   return frame;
 }
@@ -100,23 +139,39 @@ function compileHypothesis(
   const pointer = `/hypotheses/${i}`;
   const problems: Problem[] = [];
   const predictions: PredictionFrame[] = [];
+  const correlated = new Set(hypothesis.toleranceCorrelations.flatMap(({ a, b }) => [a, b]));
   hypothesis.predictions.forEach((prediction, j) => {
     const measurand = measurandIndex.get(prediction.measurand)!;
+    const { given } = prediction;
     const compiled = predictionFrame(prediction, {
       pointer: `${pointer}/predictions/${j}`,
-      tables: hypothesis.tables,
+      hypothesis: i,
+      declared: hypothesis,
       measurand,
       frame: measurands[measurand]!,
+      given:
+        given === null
+          ? null
+          : { measurand: measurandIndex.get(given.measurand)!, occurred: given.occurred },
+      correlated: correlated.has(prediction.measurand),
       coverage: document.campaign.rule.coverage,
     });
     if (compiled.ok) predictions.push(compiled.value);
     else problems.push(...compiled.problems);
   });
   if (problems.length > 0) return { ok: false, problems };
+  const place = (key: string) => hypothesis.predictions.findIndex((one) => one.measurand === key);
   const value: HypothesisFrame = {
     key: hypothesis.key,
     pointer,
     share: hypothesis.weight / groupSize(document.hypotheses, hypothesis),
+    parameters: hypothesis.parameters.map(({ key, prior }) => ({ key, prior })),
+    ensemble: ensembleFrame(hypothesis.ensemble),
+    toleranceCorrelations: hypothesis.toleranceCorrelations.map(({ a, b, coefficient }) => ({
+      a: place(a),
+      b: place(b),
+      coefficient,
+    })),
     predictions,
     withheld: hypothesis.withheld.map((key) => measurandIndex.get(key)!),
     registeredAt: hypothesis.registeredAt,
@@ -126,4 +181,15 @@ function compileHypothesis(
 
 function groupSize(hypotheses: Hypothesis[], { group }: Hypothesis): number {
   return group === null ? 1 : hypotheses.filter((other) => other.group === group).length;
+}
+
+/** @returns null for no columns, which say nothing */
+function ensembleFrame(ensemble: Ensemble | null): EnsembleFrame | null {
+  const columns = Object.values(ensemble?.columns ?? {}).map((column) => Float64Array.from(column));
+  const rows = columns[0]?.length ?? 0;
+  if (rows === 0) return null;
+  const weights = Float64Array.from(ensemble!.weights ?? columns[0]!.map(() => 1));
+  let total = 0;
+  for (const weight of weights) total += weight;
+  return { columns, logWeights: weights.map((weight) => Math.log(weight / total)) };
 }

@@ -38,12 +38,9 @@ function blockEvidence(workspace: Workspace, block: number[], roles: Roles): Log
   const key = block.map((m) => `${m}:${roles[m]}`).join(" ");
   const there = workspace.evidences.get(key);
   if (there !== undefined) return there;
-  const { frame, sums, marginals } = workspace;
+  const { sums, marginals } = workspace;
   const levels = block.map((m) => levelOf(workspace, m, roles[m]!));
-  const parts = block.map((m) => ({
-    measurand: m,
-    noise: frame.measurands[m]!.roles[roles[m]!]!.noise,
-  }));
+  const parts = block.map((m, i) => ({ measurand: m, noise: levels[i]!.role.noise }));
   const marginal = marginalOf(marginals, parts);
   const solved = solve(marginal, levels);
   let counted = 0;

@@ -238,7 +238,7 @@ describe("what can't be scored yet is refused by name, at its place", () => {
     });
     const problems = scored.ok ? [] : scored.problems;
     expect(problems.map(({ pointer, code }) => [pointer, code])).toEqual([
-      ["/hypotheses/0/predictions/0/expected", "not-yet-supported"],
+      ["/hypotheses/0/predictions/0/expected", "bad-expression"],
     ]);
   });
 

@@ -117,7 +117,7 @@ describe("the preview of a prediction", () => {
       "/measurand out-of-range",
     ]);
     expect(refused({ measurand: "x", expected: "q", tolerance: null }, 1)).toEqual([
-      "/expected not-yet-supported",
+      "/expected bad-expression",
     ]);
     expect(refused({ measurand: "z", expected: -4, tolerance: null }, 1)).toEqual([
       "/expected out-of-range",

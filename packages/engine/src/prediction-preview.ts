@@ -1,10 +1,10 @@
-import type { CampaignDocument, Prediction } from "@weighhouse/campaign/document";
+import type { CampaignDocument, Prediction, Scale } from "@weighhouse/campaign/document";
 import type { Problem, Result } from "@weighhouse/campaign/problem";
 import type { VerdictWord } from "@weighhouse/campaign/standings";
 import { evidence } from "./evidence";
 import { compileFrame } from "./compile-frame";
 import type { Frame, PredictionFrame } from "./frame";
-import { naturalInterval, toNatural, type ScoredScale } from "./scoring-space";
+import { naturalInterval, toNatural } from "./scoring-space";
 import { addReading, createSums } from "./sums";
 import { isOutsideReference, referenceRange } from "./tally";
 import { verdictOf } from "./verdict";
@@ -108,20 +108,20 @@ function ofDraft(problem: Problem): Problem {
 
 function preview(frame: Frame, prediction: PredictionFrame, sd: number): PredictionPreview {
   const { scale } = frame.measurands[0]!;
-  const { expected } = prediction;
+  const expected = prediction.expected!;
   const measured = (y: number) => ifMeasured(frame, prediction, { y, sd });
   const range = referenceRange(frame, 0);
   // Beyond this nothing changes any more: further out every verdict is the same.
-  const reach = 50 * (sd + prediction.sd) + 2 * (range.upper - range.lower);
+  const reach = 50 * (sd + prediction.sd!) + 2 * (range.upper - range.lower);
   const failsAbove = edgeOfFailing(measured, expected, reach);
   const failsBelow = edgeOfFailing(measured, expected, -reach);
   const natural = (y: number | null) => (y === null ? null : toNatural(y, scale));
   const nearest = nearestTo(expected, failsBelow, failsAbove);
   return {
-    expected: prediction.natural,
+    expected: prediction.natural!,
     interval: naturalInterval(prediction, scale),
     reference: naturalRange(range, scale),
-    shareOfReference: shareOfReference(frame, 0, prediction),
+    shareOfReference: shareOfReference(frame, 0, prediction.interval!),
     outsideReference: isOutsideReference(frame, 0, expected),
     passes:
       measured(expected).word === "pass"
@@ -142,7 +142,7 @@ function preview(frame: Frame, prediction: PredictionFrame, sd: number): Predict
   };
 }
 
-function naturalRange({ lower, upper }: { lower: number; upper: number }, scale: ScoredScale) {
+function naturalRange({ lower, upper }: { lower: number; upper: number }, scale: Scale) {
   return { lower: toNatural(lower, scale), upper: toNatural(upper, scale) };
 }
 
@@ -157,8 +157,9 @@ function ifMeasured(
   { y, sd }: { y: number; sd: number },
 ): Outcome {
   const sums = createSums(frame.measurands);
-  const reading = { measurand: 0, y, variance: sd * sd, loadings: [], unknownUnit: null };
-  addReading(sums, { ...reading, provisional: false }, frame.measurands[0]!);
+  const told = { form: "value" as const, y, variance: sd * sd };
+  const reading = { id: "measured", measurand: 0, told, conditions: [], loadings: [] };
+  addReading(sums, { ...reading, unknownUnit: null, provisional: false }, frame);
   const workspace = createWorkspace(frame, sums);
   const own = evidence(workspace, onlyMeasurand(workspace, 0, prediction.role)).ln;
   const reference = evidence(workspace, onlyMeasurand(workspace, 0, 0)).ln;

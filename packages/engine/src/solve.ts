@@ -4,11 +4,11 @@ import {
   setUnitPrior,
   type TriangularSystem,
 } from "@weighhouse/numerics/triangular-system";
-import type { Role } from "./frame";
+import type { NormalRole, UniformRole } from "./frame";
 import type { Marginal } from "./marginal-form";
 
 /** A level as it is said to be; `centre` is what the sums are kept relative to. */
-export type Level = { role: Role; centre: number };
+export type Level = { role: NormalRole | UniformRole; centre: number };
 
 /** A flat level this many of its widths away from the data is told from its own bound. */
 const FAR = 1e3;
@@ -86,7 +86,7 @@ export function solve(
   return { system, gaussians, flats };
 }
 
-function isFree(role: Role): boolean {
+function isFree(role: Level["role"]): boolean {
   return role.kind === "normal" && role.sd > 0;
 }
 

@@ -61,7 +61,7 @@ function take(
   reading: Reading | null,
 ): void {
   noteMeasurement(tally, frame, { measurement, reading });
-  if (reading !== null) addReading(sums, reading, frame.measurands[reading.measurand]!);
+  if (reading !== null) addReading(sums, reading, frame);
 }
 
 /** Null for a measurement that is listed and not counted, whatever its form. */

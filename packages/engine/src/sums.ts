@@ -1,5 +1,5 @@
-import type { MeasurandFrame } from "./frame";
-import type { Loading, Reading } from "./readings";
+import type { Frame, MeasurandFrame } from "./frame";
+import { isSummed, isValue, type Loading, type Reading, type Told } from "./readings";
 
 /** One independent draw of a shared error: the error's only one, or its draw for one batch. */
 export interface Draw {
@@ -13,6 +13,8 @@ export interface Pattern {
   batch: string | null;
   draws: number[];
   loadings: number[];
+  /** Of each loading: times what is expected, in the observable's unit. */
+  relative: boolean[];
 }
 
 /** Numbers kept per group and noise class. */
@@ -31,6 +33,8 @@ export interface MeasurandSums {
   centre: number;
   counted: number;
   provisional: number;
+  /** How many of those that count are values that a residual can be taken of. */
+  valued: number;
   noises: number;
   /** The pattern of each group. */
   patterns: number[];
@@ -39,6 +43,8 @@ export interface MeasurandSums {
    * about it, sum of ln v. Longer than its groups need.
    */
   sums: Float64Array;
+  /** Readings that no sums can hold. */
+  kept: Reading[];
 }
 
 /** All that the measurements say, in a size that hangs on the patterns of loadings, not on their number. */
@@ -67,9 +73,11 @@ export function createSums(measurands: readonly MeasurandFrame[]): Sums {
       centre: 0,
       counted: 0,
       provisional: 0,
+      valued: 0,
       noises: noises.length,
       patterns: [],
       sums: new Float64Array(noises.length * PER_CLASS),
+      kept: [],
     })),
   });
 }
@@ -96,19 +104,36 @@ export function placeOf({ noises }: MeasurandSums, group: number, noise: number)
   return (group * noises + noise) * PER_CLASS;
 }
 
-/** Adds one reading: West's weighted form of Welford's update, once per noise class. */
-export function addReading(sums: Sums, reading: Reading, frame: MeasurandFrame): void {
+/** Adds one reading. */
+export function addReading(sums: Sums, reading: Reading, frame: Frame): void {
   const own = sums.measurands[reading.measurand]!;
-  if (own.counted === 0) own.centre = reading.y;
+  const { told } = reading;
+  if (own.counted === 0) own.centre = centreOf(told);
   own.counted += 1;
   if (reading.provisional) own.provisional += 1;
-  const group = groupOf(sums, reading);
-  const y = reading.y - own.centre;
-  const variance = reading.variance + frame.scatterVariance;
+  if (isValue(told)) own.valued += 1;
+  if (told.form === "value" && isSummed(frame, reading)) {
+    addValue(own, { ...told, group: groupOf(sums, reading) }, frame.measurands[reading.measurand]!);
+  } else own.kept.push(reading);
+}
+
+function centreOf(told: Told): number {
+  if ("y" in told) return told.y;
+  return told.form === "linear-noise" ? Math.log10(Math.max(told.value, told.sd)) : 0;
+}
+
+/** West's weighted form of Welford's update, once per noise class. */
+function addValue(
+  own: MeasurandSums,
+  { y: value, variance: ownVariance, group }: { y: number; variance: number; group: number },
+  { scatterVariance, noises }: MeasurandFrame,
+): void {
+  const y = value - own.centre;
+  const variance = ownVariance + scatterVariance;
   const numbers = own.sums;
   for (let noise = 0; noise < own.noises; noise += 1) {
     const at = placeOf(own, group, noise);
-    const v = variance + frame.noises[noise]!;
+    const v = variance + noises[noise]!;
     const weight = 1 / v;
     const total = numbers[at + WEIGHT]! + weight;
     const distance = y - numbers[at + MEAN]!;
@@ -139,7 +164,9 @@ function groupOf(sums: Sums, { measurand, loadings }: Reading): number {
 
 function patternOf(sums: Sums, loadings: readonly Loading[]): number {
   let given = "";
-  for (const { error, batch, value } of loadings) given += `${error} ${value} ${batch ?? ""};`;
+  for (const { error, batch, value, relative } of loadings) {
+    given += `${error} ${value} ${relative ? "*" : ""} ${batch ?? ""};`;
+  }
   const there = sums.index.given.get(given);
   if (there !== undefined) return there;
   const pattern = sortedPattern(sums, loadings);
@@ -155,19 +182,24 @@ function patternOf(sums: Sums, loadings: readonly Loading[]): number {
 
 /** Draws in increasing order, loadings of one draw added up, those that cancel left out. */
 function sortedPattern(sums: Sums, loadings: readonly Loading[]): Pattern {
-  const byDraw = new Map<number, number>();
-  for (const { error, batch, value } of loadings) {
+  const byDraw = new Map<number, { value: number; relative: boolean }>();
+  for (const { error, batch, value, relative } of loadings) {
     const draw = drawOf(sums, { error, batch });
-    byDraw.set(draw, (byDraw.get(draw) ?? 0) + value);
+    byDraw.set(draw, { value: (byDraw.get(draw)?.value ?? 0) + value, relative });
   }
-  const pairs = [...byDraw].filter(([, value]) => value !== 0).sort(([a], [b]) => a - b);
+  const pairs = [...byDraw].filter(([, { value }]) => value !== 0).sort(([a], [b]) => a - b);
   const draws = pairs.map(([draw]) => draw);
   const batch = draws.map((draw) => sums.draws[draw]!.batch).find((one) => one !== null) ?? null;
-  return { batch, draws, loadings: pairs.map(([, value]) => value) };
+  return {
+    batch,
+    draws,
+    loadings: pairs.map(([, { value }]) => value),
+    relative: pairs.map(([, { relative }]) => relative),
+  };
 }
 
-function patternKey({ draws, loadings }: Pattern): string {
-  return draws.map((draw, i) => `${draw}:${loadings[i]}`).join(";");
+function patternKey({ draws, loadings, relative }: Pattern): string {
+  return draws.map((draw, i) => `${draw}:${loadings[i]}${relative[i] ? "*" : ""}`).join(";");
 }
 
 function drawOf(sums: Sums, draw: Draw): number {

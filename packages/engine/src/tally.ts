@@ -1,7 +1,7 @@
 import type { Measurement } from "@weighhouse/campaign/document";
 import type { Frame } from "./frame";
 import { firstDates, noteDates, type FirstDates } from "./order";
-import type { Reading } from "./readings";
+import { isValue, type Reading } from "./readings";
 
 /** A first place and how many there are. */
 export interface Places {
@@ -51,7 +51,8 @@ export function noteMeasurement(
   if (measurement.setAside !== null) tally.setAside += 1;
   if (reading === null) return;
   tally.counted += 1;
-  if (isOutsideReference(frame, measurand, reading.y)) {
+  const { told } = reading;
+  if (isValue(told) && "y" in told && isOutsideReference(frame, measurand, told.y)) {
     tally.outside[measurand] = oneMore(tally.outside[measurand]!, place);
   }
   if (measurement.sameData !== null) noteSameData(tally, measurement.sameData, measurement.id);
@@ -81,10 +82,11 @@ export function isOutsideReference(frame: Frame, measurand: number, y: number): 
   return y < lower || y > upper;
 }
 
-/** A reference's bounds, or 4 sd about its mean, in scoring space. */
+/** A reference's bounds, or 4 sd about its mean, in scoring space; unbounded where it has none. */
 export function referenceRange(frame: Frame, measurand: number) {
   const reference = frame.measurands[measurand]!.roles[0]!;
   if (reference.kind === "uniform") return { lower: reference.lower, upper: reference.upper };
+  if (reference.kind !== "normal") return { lower: -Infinity, upper: Infinity };
   const reach = OUTSIDE_SD * reference.sd;
   return { lower: reference.mean - reach, upper: reference.mean + reach };
 }

@@ -30,7 +30,7 @@ export function verdictOf(workspace: Workspace, prediction: PredictionFrame): Ve
   if (combination === null) return unmeasured("awaiting");
   const roles = onlyMeasurand(workspace, prediction.measurand, prediction.role);
   const own = fit(workspace, roles)!;
-  return prediction.sd > 0
+  return prediction.sd! > 0
     ? ofInterval(workspace, prediction, { combination, own })
     : ofExact(workspace, prediction, { combination, own });
 }
@@ -55,9 +55,10 @@ interface Measured {
 
 function ofInterval(
   { frame }: Workspace,
-  { expected, sd: tolerance, lower, upper }: PredictionFrame,
+  { expected, sd: tolerance, interval }: PredictionFrame,
   { combination, own }: Measured,
 ): Verdict {
+  const { lower, upper } = interval!;
   const { value, birgeRatio, pValue } = combination;
   const inflated = pValue !== null && pValue < DISAGREEING;
   const sd = inflated ? combination.sd * birgeRatio! : combination.sd;
@@ -71,7 +72,7 @@ function ofInterval(
       ? beyond >= 1 - rule.fail / 5
       : beyond >= 1 - rule.fail && own.pValue < 0.01;
   const word = conformance >= rule.pass ? "pass" : fails ? "fail" : "undecided";
-  const tension = (value - expected) / Math.hypot(sd, tolerance);
+  const tension = (value - expected!) / Math.hypot(sd, tolerance!);
   return { word, conformance, tension, value, sd, inflated };
 }
 
@@ -83,7 +84,7 @@ function ofExact(
   const lnB =
     evidence(workspace, onlyMeasurand(workspace, measurand, role)).ln -
     evidence(workspace, onlyMeasurand(workspace, measurand, 0)).ln;
-  const tension = (value - expected) / sd;
+  const tension = (value - expected!) / sd;
   const word = wordForExact(own.pValue, lnB);
   return { word, conformance: null, tension, value, sd, inflated: false };
 }

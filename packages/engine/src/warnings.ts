@@ -103,19 +103,20 @@ export function shareOfReference(
     const { mean, sd } = reference;
     return normalInterval((lower - mean) / sd, (upper - mean) / sd);
   }
+  if (reference.kind !== "uniform") return 0;
   const inside = Math.min(upper, reference.upper) - Math.max(lower, reference.lower);
   return Math.max(0, inside) / (reference.upper - reference.lower);
 }
 
 function vague(frame: Frame, prediction: PredictionFrame): string | null {
-  const share = shareOfReference(frame, prediction.measurand, prediction);
+  const share = shareOfReference(frame, prediction.measurand, prediction.interval!);
   if (share <= VAGUE_SHARE) return null;
   const { key } = frame.measurands[prediction.measurand]!;
   return `predicts for ${key} an interval that covers ${short(100 * share)} % of its reference.`;
 }
 
 function outside(frame: Frame, { measurand, expected }: PredictionFrame): string | null {
-  if (!isOutsideReference(frame, measurand, expected)) return null;
+  if (!isOutsideReference(frame, measurand, expected!)) return null;
   return `predicts for ${frame.measurands[measurand]!.key} a value outside its reference.`;
 }
 

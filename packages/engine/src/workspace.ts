@@ -60,5 +60,9 @@ export function measuredIn({ sums }: Workspace, roles: Roles): number[] {
 
 export function levelOf({ frame, sums }: Workspace, measurand: number, role: number): Level {
   const { centre } = sums.measurands[measurand]!;
-  return { role: frame.measurands[measurand]!.roles[role]!, centre };
+  const said = frame.measurands[measurand]!.roles[role]!;
+  if (said.kind !== "normal" && said.kind !== "uniform") {
+    throw new TypeError(`a level of the role ${said.kind}`);
+  }
+  return { role: said, centre };
 }
