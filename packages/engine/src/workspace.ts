@@ -2,6 +2,7 @@ import type { LogIntegral } from "@weighhouse/numerics/box";
 import { couplingDraws } from "./blocks";
 import type { Frame } from "./frame";
 import { createMarginals, type Marginals } from "./marginal";
+import type { Loading } from "./readings";
 import type { Level } from "./solve";
 import type { Sums } from "./sums";
 
@@ -15,6 +16,20 @@ export interface Combination {
   birgeRatio: number | null;
   /** Of the measurements agreeing with one another; null without degrees of freedom. */
   pValue: number | null;
+}
+
+/**
+ * The derived values that can be computed, as one vector in scoring space: every one whose inputs
+ * all have a combined value.
+ */
+export interface DerivedVector {
+  /** In increasing order. */
+  measurands: number[];
+  values: Float64Array;
+  /** J C J' of the inputs' own noises, without shared errors; row by row. */
+  covariance: Float64Array;
+  /** Of each value, carried through J; relative ones are multiplied out. */
+  loadings: Loading[][];
 }
 
 /** What one hypothesis says of each measurand: an index of its roles, or null for left out. */
@@ -31,6 +46,7 @@ export interface Workspace {
   coupling: Map<number, number[]>;
   evidences: Map<string, LogIntegral>;
   combinations: Map<number, Combination | null>;
+  derived: DerivedVector;
 }
 
 export function createWorkspace(frame: Frame, sums: Sums): Workspace {
@@ -41,6 +57,12 @@ export function createWorkspace(frame: Frame, sums: Sums): Workspace {
     coupling: couplingDraws(sums),
     evidences: new Map(),
     combinations: new Map(),
+    derived: {
+      measurands: [],
+      values: new Float64Array(),
+      covariance: new Float64Array(),
+      loadings: [],
+    },
   };
 }
 
