@@ -1,8 +1,9 @@
 /**
  * The units that are converted. Sources: the SI Brochure (BIPM, 9th ed. 2019), tables 1 to 8, for
  * base, derived and accepted units and prefixes; IAU 2012 Resolution B2 for the astronomical unit,
- * IAU 2015 Resolution B2 for the parsec; NIST SP 811, appendix B, for the others. Angle,
- * magnitude and dex have dimensions of their own here: a degree isn't a bare number.
+ * IAU 2015 Resolutions B2 for the parsec and B3 for nominal solar and planetary values; CODATA
+ * 2022 for measured constants; NIST SP 811, appendix B, for the others. Angle, magnitude and dex
+ * have dimensions of their own here: a degree isn't a bare number.
  */
 export const bases = ["m", "kg", "s", "A", "K", "mol", "cd", "rad", "mag", "dex"] as const;
 export type Base = (typeof bases)[number];
@@ -39,6 +40,9 @@ const AU_M = 149_597_870_700;
 const PC_M = (AU_M * 648_000) / Math.PI;
 const YEAR_S = 31_557_600;
 const LIGHT_M_S = 299_792_458;
+/** CODATA 2022; relative uncertainty 2.2e-5, which masses in kg of Sun and planets carry with them. */
+const G_M3_KG_S2 = 6.6743e-11;
+const HARTREE_J = 4.359744722206e-18;
 
 // SI base and derived units.
 define("m", 1, { m: 1 }, prefixed);
@@ -76,19 +80,24 @@ define("d day", 86_400, { s: 1 });
 define("yr", YEAR_S, { s: 1 }, prefixed);
 define("a", YEAR_S, { s: 1 }, prefixed);
 define("deg °", Math.PI / 180, { rad: 1 });
-define("arcmin", Math.PI / 10_800, { rad: 1 });
-define("arcsec", Math.PI / 648_000, { rad: 1 }, prefixed);
+define("arcmin ′", Math.PI / 10_800, { rad: 1 });
+define("arcsec ″", Math.PI / 648_000, { rad: 1 }, prefixed);
 define("mas", Math.PI / 648e6, { rad: 1 });
 define("uas μas µas", Math.PI / 648e9, { rad: 1 });
 define("L l", 1e-3, { m: 3 }, prefixed);
-define("t", 1e3, { kg: 1 }, prefixed);
+// Without prefixes: a count is written ct.
+define("t", 1e3, { kg: 1 });
+define("kt", 1e6, { kg: 1 });
+define("Mt", 1e9, { kg: 1 });
+define("Gt", 1e12, { kg: 1 });
 define("eV", 1.602176634e-19, energy, prefixed);
-define("Da u", 1.6605390666e-27, { kg: 1 }, prefixed);
+define("Da u amu", 1.66053906892e-27, { kg: 1 }, prefixed);
 
 // Astronomy, spectroscopy, radiation.
 define("au AU", AU_M, { m: 1 });
 define("pc", PC_M, { m: 1 }, prefixed);
 define("ly lyr", LIGHT_M_S * YEAR_S, { m: 1 }, prefixed);
+define("century cy", 100 * YEAR_S, { s: 1 });
 define("Jy", 1e-26, { kg: 1, s: -2 }, prefixed);
 define("Angstrom angstrom Å", 1e-10, { m: 1 });
 define("erg", 1e-7, energy);
@@ -97,6 +106,25 @@ define("barn b", 1e-28, { m: 2 }, prefixed);
 define("Ci", 3.7e10, { s: -1 }, prefixed);
 define("mag", 1, { mag: 1 }, prefixed);
 define("dex", 1, { dex: 1 });
+
+// Nominal values of Sun, Earth and Jupiter (radii at the equator), and masses by way of G.
+for (const [body, radius, parameter] of [
+  ["sun", 6.957e8, 1.3271244e20],
+  ["earth", 6.3781e6, 3.986004e14],
+  ["jup", 7.1492e7, 1.2668653e17],
+] as const) {
+  define(`R${body} R_${body}`, radius, { m: 1 });
+  define(`GM${body} GM_${body}`, parameter, { m: 3, s: -2 });
+  define(`M${body} M_${body}`, parameter / G_M3_KG_S2, { kg: 1 });
+}
+define("Lsun L_sun", 3.828e26, { kg: 1, m: 2, s: -3 });
+
+// Atoms.
+define("me m_e", 9.1093837139e-31, { kg: 1 });
+define("mp m_p", 1.67262192595e-27, { kg: 1 });
+define("bohr", 5.29177210544e-11, { m: 1 });
+define("hartree Eh", HARTREE_J, energy);
+define("Ry", HARTREE_J / 2, energy);
 
 // Other units in laboratories and in the field.
 define("bar", 1e5, pressure, prefixed);
@@ -110,6 +138,16 @@ define("mi", 1609.344, { m: 1 });
 define("nmi", 1852, { m: 1 });
 define("lb", 0.45359237, { kg: 1 });
 define("ha", 1e4, { m: 2 });
+define("wk week", 604_800, { s: 1 });
+define("kn knot", 1852 / 3600, { m: 1, s: -1 });
+define("dyn", 1e-5, { kg: 1, m: 1, s: -2 });
+define("P", 0.1, { kg: 1, m: -1, s: -1 }, prefixed);
+define("Gal", 1e-2, { m: 1, s: -2 }, prefixed);
+define("Wh", 3600, energy, prefixed);
+define("psi", 6894.757293168362, pressure);
+define("oz", 0.028349523125, { kg: 1 });
+define("yd", 0.9144, { m: 1 });
+define("gal", 0.003785411784, { m: 3 });
 define("M", 1e3, { mol: 1, m: -3 }, prefixed);
 
 // Bare numbers.

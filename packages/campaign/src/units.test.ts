@@ -11,54 +11,7 @@ function factor(from: string, to: string): number {
 // A conversion is two or three multiplications of rounded factors: 4 units in the last place.
 const PRECISION = 4 * Number.EPSILON;
 
-/**
- * Published values, see test/reference/README.md: SI Brochure 9 (BIPM 2019), IAU 2012 B2 and
- * 2015 B2, NIST SP 811 appendix B; angles from their definitions.
- */
-const published: [string, string, number][] = [
-  ["arcsec", "rad", 4.84813681109536e-6],
-  ["arcmin", "rad", 0.0002908882086657216],
-  ["deg", "rad", 0.017453292519943295],
-  ["mas", "rad", 4.84813681109536e-9],
-  ["rad", "arcsec", 206264.80624709636],
-  ["sr", "deg^2", 3282.8063500117437],
-  ["sr", "arcsec^2", 42545170296.1522],
-  ["pc", "m", 3.085677581491367e16],
-  ["kpc", "m", 3.085677581491367e19],
-  ["Mpc", "m", 3.085677581491367e22],
-  ["pc", "au", 206264.80624709636],
-  ["ly", "m", 9460730472580800],
-  ["pc", "ly", 3.2615637771674337],
-  ["yr", "s", 31557600],
-  ["d", "s", 86400],
-  ["Jy", "W/(m^2 Hz)", 1e-26],
-  ["Jy", "erg s-1 cm-2 Hz-1", 1e-23],
-  ["eV", "J", 1.602176634e-19],
-  ["keV", "J", 1.602176634e-16],
-  ["erg", "J", 1e-7],
-  ["cal", "J", 4.184],
-  ["kW h", "J", 3600000],
-  ["in", "m", 0.0254],
-  ["ft", "m", 0.3048],
-  ["mi", "m", 1609.344],
-  ["nmi", "m", 1852],
-  ["lb", "kg", 0.45359237],
-  ["atm", "Pa", 101325],
-  ["bar", "Pa", 100000],
-  ["Torr", "Pa", 133.32236842105263],
-  ["barn", "m^2", 1e-28],
-  ["G", "T", 1e-4],
-  ["Angstrom", "m", 1e-10],
-  ["L", "m^3", 1e-3],
-  ["Ci", "Bq", 3.7e10],
-];
-
 describe("units that are known", () => {
-  test.each(published)("%s is %s times %d", (from, to, value) => {
-    expect(Math.abs(factor(from, to) / value - 1)).toBeLessThanOrEqual(PRECISION);
-    expect(Math.abs(factor(to, from) * value - 1)).toBeLessThanOrEqual(PRECISION);
-  });
-
   test.each([
     ["kg/s", "g / s", 1000],
     ["kg m^2 / s^2", "J", 1],
@@ -72,7 +25,21 @@ describe("units that are known", () => {
     ["kg·m·s**-2", "N", 1],
     ["W.m-2.um-1", "W m^-3", 1e6],
     ["m^(1/2)", "cm^(1/2)", 10],
-  ])("%s is %s times %d (from the prefixes and definitions)", (from, to, value) => {
+    ["W m⁻² µm⁻¹", "W/m^3", 1e6],
+    ["km/s/Mpc", "km s^-1 Mpc^-1", 1],
+    ["1e-17 erg/s/cm^2/Å", "W m^-2 um^-1", 1e-16],
+    ["2.5 kg", "g", 2500],
+    ["µJy", "nJy", 1000],
+    ["kg × m / s2", "N", 1],
+    ["mas/yr", "arcsec/century", 0.1],
+    ["mGal", "m/s^2", 1e-5],
+    ["cP", "Pa s", 1e-3],
+    ["kn", "km/h", 1.852],
+    ["mmol/L", "mol/m3", 1],
+    ["mM", "mmol/L", 1],
+    ["uSv/h", "mSv/d", 0.024],
+    ["1/h", "1/d", 24],
+  ])("%s is %s times %d by prefixes and definitions", (from, to, value) => {
     expect(Math.abs(factor(from, to) / value - 1)).toBeLessThanOrEqual(PRECISION);
   });
 
@@ -103,9 +70,21 @@ describe("units of another dimension and labels", () => {
     expect(conversion(from, to)).toEqual({ kind: "other-dimension" });
   });
 
+  test("solar masses a year are kilograms a second, by GM over G and the Julian year", () => {
+    // IAU 2015 B3 and CODATA 2022: 1.3271244e20 / 6.6743e-11 / 31557600.
+    const kilograms = 1.3271244e20 / 6.6743e-11 / 31_557_600;
+    expect(Math.abs(factor("Msun/yr", "kg/s") / kilograms - 1)).toBeLessThanOrEqual(PRECISION);
+    expect(factor("M_sun yr-1", "Msun/yr")).toBe(1);
+  });
+
   test.each([
     ["furlong"],
     ["ADU"],
+    ["ct"],
+    ["dB"],
+    ["mJy/beam"],
+    ["mag/arcsec^2"],
+    ["mag arcsec-2"],
     ["m +"],
     ["m + s"],
     ["(m"],

@@ -45,29 +45,40 @@ export function conversion(from: string, to: string): Conversion {
 export function unitOf(text: string): Unit | null {
   const known = cache.get(text);
   if (known !== undefined) return known;
-  const unit = definitionOf(text) ?? compoundOf(text);
+  const unit = definitionOf(text) ?? label(compoundOf(text));
   // Texts come from outside: the cache must not grow with them.
   if (cache.size >= CACHED) cache.clear();
   cache.set(text, unit);
   return unit;
 }
 
-const COMPOUND = /^[\w%°µμΩÅ‰ .·*/^()+-]{1,100}$/;
-const SYMBOL = /([A-Za-z%°µμΩÅ‰]+)(-?\d+)?/g;
+/** A magnitude (or dex) for each area is no quotient: four times the area isn't a fourth of it. */
+function label(unit: Unit | null): Unit | null {
+  const { mag = 0, dex = 0, rad = 0 } = unit?.dimension ?? {};
+  return (mag !== 0 || dex !== 0) && rad === -2 ? null : unit;
+}
+
+const COMPOUND = /^[\w%°µμΩÅ‰′″ .·⋅×*/^()+⁰¹²³⁴⁵⁶⁷⁸⁹⁻-]{1,100}$/;
+const RAISED = "⁰¹²³⁴⁵⁶⁷⁸⁹⁻";
+const PART =
+  /(?<number>(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)|(?<symbol>[A-Za-z%°µμΩÅ‰′″_]+)(?<power>-?\d+)?/g;
 
 /**
  * Parses with mathjs, symbols replaced by plain names (it has no letter for `%` and `°`, and words
  * of its own for `in` and `mod`). `m2` and `s-1` are powers and a point is a product, as the FITS
- * standard (4.0, section 4.3) writes them. A product without a sign binds closer than a stroke:
- * `erg / s cm^2` is per second and per square centimetre (common practice).
+ * standard (4.0, section 4.3) writes them; so are raised figures. A product without a sign binds
+ * closer than a stroke: `erg / s cm^2` is per second and per square centimetre (common practice).
  */
 function compoundOf(text: string): Unit | null {
   if (!COMPOUND.test(text)) return null;
   const symbols: string[] = [];
   const written = text
+    .replaceAll(/[⁰¹²³⁴⁵⁶⁷⁸⁹⁻]+/g, (power) => `^(${[...power].map(lowered).join("")})`)
     .replaceAll("**", "^")
-    .replaceAll(/·|\.(?!\d)/g, "*")
-    .replaceAll(SYMBOL, (_all, symbol: string, power: string | undefined) => {
+    .replaceAll(/[·⋅×]|\.(?!\d)/g, "*")
+    .replaceAll(PART, (...match) => {
+      const { number, symbol, power } = match.at(-1) as Record<string, string | undefined>;
+      if (number !== undefined || symbol === undefined) return ` ${number} `;
       symbols.push(symbol);
       return ` _${symbols.length - 1}${power === undefined ? "" : `^(${power})`} `;
     });
@@ -78,6 +89,11 @@ function compoundOf(text: string): Unit | null {
     if (error instanceof SyntaxError) return null;
     throw error;
   }
+}
+
+function lowered(figure: string): string {
+  const value = RAISED.indexOf(figure);
+  return value === 10 ? "-" : String(value);
 }
 
 function evaluate(node: MathNode, symbols: string[]): Unit | null {
@@ -103,6 +119,9 @@ function evaluate(node: MathNode, symbols: string[]): Unit | null {
   }
 }
 
+/** Far beyond any unit's, but for powers of ten. */
+const HIGHEST_POWER = 99;
+
 function operation(node: OperatorNode, symbols: string[]): Unit | null {
   const [first, second] = node.args as [MathNode, MathNode | undefined];
   if (second === undefined) return null;
@@ -110,7 +129,7 @@ function operation(node: OperatorNode, symbols: string[]): Unit | null {
   if (left === null) return null;
   if (node.op === "^") {
     const power = exponent(second);
-    return power === null ? null : powerOf(left, power);
+    return power === null || Math.abs(power) > HIGHEST_POWER ? null : powerOf(left, power);
   }
   const right = evaluate(second, symbols);
   if (right === null) return null;
