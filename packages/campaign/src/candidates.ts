@@ -16,6 +16,7 @@ import { parseJson } from "./json-text";
 import { loadingSchema } from "./measurement";
 import { below } from "./pointer";
 import type { Problem, ProblemCode, Result } from "./problem";
+import { conditionsUsed } from "./rules/expressions";
 
 /** Measurements that could be made, to be ranked by what they would tell. */
 export const CANDIDATES_FORMAT = "weighhouse-candidates/1";
@@ -105,7 +106,7 @@ type Place = { measurand: Measurand; observable: Observable; document: CampaignD
 
 function conditionMisfits(
   { conditions }: Candidate,
-  { measurand, observable }: Place,
+  { measurand, observable, document }: Place,
   at: string,
 ): Problem[] {
   const problems: Problem[] = [];
@@ -122,13 +123,33 @@ function conditionMisfits(
       problems.push(problem(where, "outside-condition", String(value), allowed));
     }
   }
-  if (measurand.shape !== "curve") return problems;
-  for (const condition of known) {
+  for (const condition of conditionsNeeded(document, measurand, known)) {
     if (condition in conditions) continue;
-    const allowed = `a value of ${condition}: ${measurand.key} is a curve`;
+    const allowed = `a value of ${condition}, which what is said of ${measurand.key} uses`;
     problems.push(problem(below(at, "conditions"), "lacks-condition", `no ${condition}`, allowed));
   }
   return problems;
+}
+
+/** What a curve's reference, expectations and smooth tolerances use of its conditions. */
+function conditionsNeeded(
+  { hypotheses }: CampaignDocument,
+  { key, shape, reference }: Measurand,
+  known: readonly string[],
+): Set<string> {
+  const needed = new Set<string>();
+  if (shape !== "curve") return needed;
+  if (reference?.family === "polynomial") needed.add(reference.in);
+  for (const hypothesis of hypotheses) {
+    for (const { measurand, expected, tolerance } of hypothesis.predictions) {
+      if (measurand !== key) continue;
+      if (typeof expected === "string") {
+        for (const one of conditionsUsed(hypothesis, expected, new Set(known))) needed.add(one);
+      }
+      if (tolerance?.family === "normal" && tolerance.in !== null) needed.add(tolerance.in);
+    }
+  }
+  return needed;
 }
 
 function problem(pointer: string, code: ProblemCode, found: string, allowed: string): Problem {

@@ -4,7 +4,9 @@ import * as z from "zod";
 export const SIMULATION_FORMAT = "weighhouse-simulation/1";
 
 const fraction = z.number().min(0).max(1);
-const spread = z.strictObject({ quantiles: z.tuple([z.number(), z.number(), z.number()]) });
+/** 2.5, 50 and 97.5 %; null: infinite, next to an impossible rival. */
+const maybe = z.number().nullable();
+const quantiles = z.tuple([maybe, maybe, maybe]);
 
 export const simulationSchema = z.strictObject({
   format: z.literal(SIMULATION_FORMAT),
@@ -21,8 +23,8 @@ export const simulationSchema = z.strictObject({
       /** Another has log10 B > 1 against it. */
       misleading: fraction,
       /** log10 B against the best of the others: 2.5, 50 and 97.5 % quantiles; null without another. */
-      log10BayesFactor: spread.nullable(),
-      posterior: spread,
+      log10BayesFactor: quantiles.nullable(),
+      posterior: quantiles,
     }),
   ),
 });
