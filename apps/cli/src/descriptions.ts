@@ -2,6 +2,10 @@
 export const descriptions = {
   score: "Score a campaign document",
   check: "List every error and warning of a campaign document",
+  sensitivity: "Show what each standing hangs on",
+  plan: "Rank candidate measurements by what they would tell",
+  simulate: "Draw campaigns from each hypothesis: would they decide?",
+  chance: "Correct a coincidence's p for the looks, and bound its Bayes factor",
   verify: "Recompute everything in an audit trail, a line per check",
   export: "Save a campaign's audit trail from a server",
 } as const;

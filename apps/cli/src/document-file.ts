@@ -40,7 +40,7 @@ async function readStdin(): Promise<Uint8Array> {
   return buffer(process.stdin);
 }
 
-function decode(bytes: Uint8Array): string {
+export function decode(bytes: Uint8Array): string {
   try {
     return new TextDecoder("utf-8", { fatal: true }).decode(bytes);
   } catch {

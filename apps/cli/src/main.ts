@@ -5,6 +5,11 @@ import { run } from "./run";
 process.exitCode = await run(process.argv.slice(2), {
   score: () => import("./commands/score").then((module) => module.score as CommandDef),
   check: () => import("./commands/check").then((module) => module.check as CommandDef),
+  sensitivity: () =>
+    import("./commands/sensitivity").then((module) => module.sensitivity as CommandDef),
+  plan: () => import("./commands/plan").then((module) => module.plan as CommandDef),
+  simulate: () => import("./commands/simulate").then((module) => module.simulate as CommandDef),
+  chance: () => import("./commands/chance").then((module) => module.chance as CommandDef),
   verify: () => import("./commands/verify").then((module) => module.verify as CommandDef),
   export: () => import("./commands/export").then((module) => module.exportTrail as CommandDef),
 });

@@ -7,7 +7,10 @@ import { bin, eclipse, weighhouse } from "./testing/command";
 
 describe("wrong usage ends with 2 and says what is allowed", () => {
   test.each([
-    [["bogus"], "found the command bogus; allowed score, check, verify, export\n"],
+    [
+      ["bogus"],
+      "found the command bogus; allowed score, check, sensitivity, plan, simulate, chance, verify, export\n",
+    ],
     [["score", eclipse, "--jsno"], "found --jsno; allowed --json, --include-after\n"],
     [["score", eclipse, "other.json"], "found a further argument other.json; allowed 1\n"],
     [["score", eclipse, "--json=yes"], "found --json=yes; allowed --json without a value\n"],
@@ -30,14 +33,18 @@ describe("wrong usage ends with 2 and says what is allowed", () => {
   test("no command at all shows the usage on stderr", async () => {
     const { code, out, err } = await weighhouse([]);
     expect([code, out]).toEqual([2, ""]);
-    expect(err).toContain("USAGE weighhouse score|check|verify|export");
+    expect(err).toContain(
+      "USAGE weighhouse score|check|sensitivity|plan|simulate|chance|verify|export",
+    );
   });
 });
 
 test("--help is on stdout, plain in a pipe", async () => {
   const whole = await weighhouse(["--help"]);
   expect(whole).toMatchObject({ code: 0, err: "" });
-  expect(whole.out).toContain("USAGE weighhouse score|check|verify|export");
+  expect(whole.out).toContain(
+    "USAGE weighhouse score|check|sensitivity|plan|simulate|chance|verify|export",
+  );
   const one = await weighhouse(["score", "--help"]);
   expect(one.code).toBe(0);
   expect(one.out).toContain("--include-after");
