@@ -4,6 +4,8 @@ import { addRow, createSystem, type TriangularSystem } from "./triangular-system
 import { trustRegionStep } from "./trust-region-step";
 
 const EPSILON = 2 ** -52;
+/** First radius over |D x|: further out, exponentials overshoot into regions where they are flat. */
+const FIRST_RADIUS = 1;
 
 export interface LeastSquaresProblem {
   /** How many residuals. */
@@ -19,7 +21,7 @@ export interface LeastSquaresProblem {
   /** Bounds, infinities allowed; the start is moved inside. */
   lower?: ArrayLike<number>;
   upper?: ArrayLike<number>;
-  /** Of the Jacobian's evaluations; 400 unless given. */
+  /** Of the Jacobian's evaluations; 1000 unless given. */
   maxIterations?: number;
 }
 
@@ -54,7 +56,7 @@ export function minimiseLeastSquares(problem: LeastSquaresProblem): LeastSquares
   const { size } = state;
   let converged = false;
   let iterations = 0;
-  const limit = problem.maxIterations ?? 400;
+  const limit = problem.maxIterations ?? 1000;
   while (Number.isFinite(state.length) && !converged && iterations < limit) {
     iterations += 1;
     if (!updateJacobian(problem, state)) break;
@@ -177,11 +179,9 @@ function updateScale(state: State, first: boolean): void {
   }
   if (first) {
     const length = norm(x.map((value, j) => value * scale[j]!));
-    state.radius = FACTOR * length || FACTOR;
+    state.radius = FIRST_RADIUS * length || FIRST_RADIUS;
   }
 }
-
-const FACTOR = 100;
 
 /** Shortens the step until one lowers the sum of squares; true where none can any more. */
 function improve(problem: LeastSquaresProblem, state: State): boolean {
@@ -191,7 +191,7 @@ function improve(problem: LeastSquaresProblem, state: State): boolean {
   const trial = { x: state.x.slice(), residuals: new Float64Array(state.count) };
   for (;;) {
     const { step, parameter } = trustRegionStep(system, scale, state.radius, state.parameter);
-    state.parameter = parameter;
+    state.parameter = Number.isFinite(parameter) ? parameter : 0;
     const plan = planStep(state, { system, order, scale, step, parameter }, trial.x);
     problem.residuals(trial.x, trial.residuals);
     const length = lengthOf(trial.residuals);
@@ -206,7 +206,7 @@ function improve(problem: LeastSquaresProblem, state: State): boolean {
     }
     const size = norm(state.x.map((value, j) => value * state.scale[j]!));
     const spent = Math.abs(actual) <= EPSILON && plan.predicted <= EPSILON && ratio <= 2;
-    if (spent || state.radius <= EPSILON * size || state.radius < 1e-300) return true;
+    if (spent || !(state.radius > EPSILON * size) || state.radius < 1e-300) return true;
     if (accepted) return false;
   }
 }
@@ -294,7 +294,8 @@ function updateRadius(state: State, plan: Plan, { length, actual, ratio }: Outco
     let shrink = 0.5;
     if (actual < 0) shrink = Math.min((0.5 * plan.slope) / (plan.slope + 0.5 * actual), 0.5);
     if (!(0.1 * length < state.length) || !(shrink >= 0.1)) shrink = 0.1;
-    state.radius = shrink * Math.min(state.radius, plan.reach / 0.1);
+    const reach = Number.isFinite(plan.reach) ? plan.reach : state.radius;
+    state.radius = shrink * Math.min(state.radius, reach / 0.1);
     state.parameter /= shrink;
   } else if (state.parameter === 0 || ratio >= 0.75) {
     state.radius = plan.reach / 0.5;
