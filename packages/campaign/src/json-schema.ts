@@ -1,18 +1,32 @@
 import * as z from "zod";
+import { candidatesSchema } from "./candidates";
 import { campaignDocumentSchema } from "./document";
+import { planSchema } from "./plan";
+import { sensitivitySchema } from "./sensitivity";
+import { simulationSchema } from "./simulation";
 import { standingsSchema } from "./standings";
 
-/**
- * JSON Schemas (draft 2020-12) of both documents, made from the Zod schemas: the form of a document
- * as others write it, with its defaults left out or null. What must fit together beyond the form
- * only `readCampaign` tells.
- */
-export function campaignJsonSchema(): Record<string, unknown> {
-  return describe(campaignDocumentSchema, "Weighhouse campaign document, version 1");
-}
+const documents = {
+  campaign: campaignDocumentSchema,
+  standings: standingsSchema,
+  sensitivity: sensitivitySchema,
+  candidates: candidatesSchema,
+  plan: planSchema,
+  simulation: simulationSchema,
+};
 
-export function standingsJsonSchema(): Record<string, unknown> {
-  return describe(standingsSchema, "Weighhouse standings document, version 1");
+/**
+ * JSON Schemas (draft 2020-12) of all documents by name, made from the Zod schemas: the form of a
+ * document as others write it, with its defaults left out or null. What must fit together beyond
+ * the form only `readCampaign` and `readCandidatesText` tell.
+ */
+export function jsonSchemas(): Map<string, Record<string, unknown>> {
+  return new Map(
+    Object.entries(documents).map(([name, schema]) => [
+      name,
+      describe(schema, `Weighhouse ${name} document, version 1`),
+    ]),
+  );
 }
 
 function describe(schema: z.ZodType, title: string): Record<string, unknown> {

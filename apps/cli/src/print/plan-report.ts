@@ -35,10 +35,7 @@ function candidateLines({ candidates }: Plan, terminal: Terminal): string[] {
     values.map((value) => (value === null ? null : formatNumber(value, digits)));
   const columns: TableColumn[] = [
     { title: "candidate", align: "left", cells: candidates.map(({ key }) => key) },
-    column(
-      "bits",
-      candidates.map(({ informationGainBits }) => informationGainBits.toFixed(4)),
-    ),
+    column("bits", numbers(candidates.map(({ informationGainBits }) => informationGainBits))),
     ...(perCost
       ? [column("bits per cost", numbers(candidates.map(({ gainPerCost }) => gainPerCost)))]
       : []),
@@ -82,7 +79,7 @@ function predictiveLines({ candidates }: Plan, terminal: Terminal): string[] {
 function setLines({ sets }: Plan, terminal: Terminal): string[] {
   return sets.map(({ candidates, informationGainBits, gainPerCost }) => {
     const perCost = gainPerCost === null ? "" : `, ${formatNumber(gainPerCost, 3)} per cost`;
-    const line = `${informationGainBits.toFixed(3)} bits${perCost}: ${candidates.join(", ")}`;
+    const line = `${formatNumber(informationGainBits, 3)} bits${perCost}: ${candidates.join(", ")}`;
     return wrap(line, terminal.proseColumns, "  ");
   });
 }

@@ -97,7 +97,9 @@ function normalPredictive(
     if (found === null) return null;
     [middle, scale] = [found.mean, Math.sqrt(found.variance)];
   }
-  const { mean, variance, peak } = found!;
+  const { variance, peak } = found!;
+  // Rounding about 0 is no prediction.
+  const mean = Math.abs(found!.mean) < 1e-9 * sd ? 0 : found!.mean;
   const spread = Math.sqrt(variance);
   const expected = (z: number) => -LN_SQRT_2PI - Math.log(spread) - (z * z) / 2;
   for (const z of [0, -3, 2]) {

@@ -77,6 +77,8 @@ function onlyBeforeObservation(document: CampaignDocument, { verdicts }: Standin
       .filter(({ order }) => order === "before-observation")
       .map(({ hypothesis, measurand }) => `${hypothesis} ${measurand}`),
   );
+  // Without dates, or with none that early, nothing would be left to compare.
+  if (early.size === 0) return [];
   const hypotheses = document.hypotheses.map((one) => ({
     ...one,
     predictions: one.predictions.filter(({ measurand }) => early.has(`${one.key} ${measurand}`)),
