@@ -1,199 +1,234 @@
+import { amendedHypothesis, registeredHypothesis, withRevealed, withSealed } from "./amendment";
 import { CampaignError } from "./campaign-error";
-import { amendedHypothesis } from "./amendment";
-import { entryKinds } from "./entries";
-import type { EntryKind, HypothesisContent, Payload } from "./entries";
+import type { EntryKind, MeasurementContent, Payload } from "./entries";
+import { brokenRule } from "./entry-rules";
 import { earlier } from "./instants";
-import { readPayload } from "./payloads";
+import { readRecord, teamOf } from "./ledger-record";
+import type { LedgerRecord, RecordOf } from "./ledger-record";
+import { openedMeasurement, openedPrediction } from "./openings";
+import { CAMPAIGN_PART } from "./parts";
+import type { Part, PartContent, PartName, PartsBefore } from "./parts";
 import { problemLine } from "./problem";
+import { selectedMeasurements } from "./selection";
 
-/** An entry with its payload, as the fold takes it. */
-export type LedgerRecord = {
-  seq: number;
-  at: string;
-  by: { member: string; team: string | null } | { system: true };
-  kind: EntryKind;
-  payload: unknown;
+export type { LedgerRecord } from "./ledger-record";
+
+/**
+ * What an entry does: the parts that it makes or changes, in order, each with its content from then
+ * on. The fold in memory and the projections in the database both take these and nothing else, so
+ * they can't disagree.
+ *
+ * @param before the parts as all earlier entries left them
+ * @throws {CampaignError} `not-a-payload` when the payload isn't one of its kind; `rule-broken` for
+ *   an entry that may not stand there
+ */
+export function changesOf(record: LedgerRecord, before: PartsBefore): Part[] {
+  const read = readRecord(record);
+  const broken = brokenRule(before, read);
+  if (broken !== null) {
+    throw new CampaignError(
+      "rule-broken",
+      `entry ${read.seq}, ${read.kind}: ${problemLine(broken)}`,
+      { problem: broken },
+    );
+  }
+  const changes = changesByKind[read.kind] as (
+    record: RecordOf<EntryKind>,
+    before: PartsBefore,
+  ) => Part[];
+  return changes(read, before);
+}
+
+type Changes = { [K in EntryKind]: (record: RecordOf<K>, before: PartsBefore) => Part[] };
+
+const changesByKind: Changes = {
+  "campaign.opened": ({ payload }) => [campaignPart({ ...payload, registrationClosed: null })],
+  "campaign.amended": ({ payload }, before) => [
+    campaignPart({ ...before.get("campaign", CAMPAIGN_PART), ...payload }),
+  ],
+  "observable.declared": ({ payload }) => [keyed("observable", payload)],
+  "measurand.declared": ({ payload }, before) => [
+    keyed("measurand", { ...payload, ...datesOf(before.get("measurand", payload.key)) }),
+  ],
+  "measurand.closed": ({ payload: { key, ...closed } }, before) => [
+    keyed("measurand", { ...there(before, "measurand", key), key, closed }),
+  ],
+  "derived.declared": ({ payload }) => [keyed("derived", payload)],
+  "shared-error.declared": ({ payload }) => [keyed("sharedError", payload)],
+  "facility.declared": ({ payload }) => [keyed("facility", payload)],
+  "team.joined": ({ payload }) => [keyed("team", payload)],
+  "measurand.proposed": (record) => [filed("proposal", record)],
+  "reference.objected": (record) => [filed("objection", record)],
+  "hypothesis.registered": ({ payload, at }) => [
+    keyed("hypothesis", registeredHypothesis(payload, at)),
+  ],
+  "hypothesis.amended": ({ payload, at }, before) => [
+    keyed(
+      "hypothesis",
+      amendedHypothesis(there(before, "hypothesis", payload.key), { content: payload, at }),
+    ),
+  ],
+  "hypothesis.retired": ({ payload: { key, reason }, at }, before) => [
+    keyed("hypothesis", { ...there(before, "hypothesis", key), key, retired: { at, reason } }),
+  ],
+  "prediction.sealed": (record, before) => {
+    const { hypothesis, measurand } = record.payload;
+    const sealed = withSealed(there(before, "hypothesis", hypothesis), measurand);
+    return [sealPart(record, hypothesis), keyed("hypothesis", { ...sealed, key: hypothesis })];
+  },
+  "prediction.revealed": (record, before) => {
+    const seal = there(before, "seal", record.payload.digest);
+    const key = String(seal["hypothesis"]);
+    const content = withRevealed(there(before, "hypothesis", key), {
+      prediction: openedPrediction(record.payload),
+      sealedAt: String(seal["at"]),
+    });
+    return [keyed("hypothesis", { ...content, key }), revealedSeal(record, seal)];
+  },
+  "registration.closed": ({ at }, before) => {
+    const campaign = there(before, "campaign", CAMPAIGN_PART);
+    // Closing can only bring registration's end forward.
+    const registrationCloses = earlier(instant(campaign["registrationCloses"]), at);
+    return [campaignPart({ ...campaign, registrationCloses, registrationClosed: at })];
+  },
+  "measurements.posted": ({ payload, at }, before) => [
+    ...postedMeasurements(payload.measurements, at, before),
+    ...payload.correlations.map((correlation): Part => ({
+      part: "correlation",
+      key: `${correlation.a} ${correlation.b}`,
+      content: correlation,
+    })),
+  ],
+  "measurement.corrected": ({ payload: { measurement } }, before) => {
+    const old = there(before, "measurement", measurement.id);
+    const postedAt = instant(old["postedAt"]);
+    const content = {
+      ...measurement,
+      postedAt,
+      // Counting it again is not what a correction says.
+      setAside: measurement.setAside ?? old["setAside"],
+    };
+    return [
+      { part: "measurement", key: measurement.id, content },
+      ...datedMeasurands([{ ...measurement, postedAt }], before),
+    ];
+  },
+  "measurements.withdrawn": ({ payload, seq, at }, before) => {
+    const withdrawn = { seq, at, reason: payload.reason };
+    return selectedMeasurements(payload.selection, before).map(({ key, content }) => ({
+      part: "measurement",
+      key,
+      content: { ...content, withdrawn },
+    }));
+  },
+  "measurement.set-aside": ({ payload: { id, reason } }, before) => {
+    const content = { ...there(before, "measurement", id), setAside: { reason } };
+    return [{ part: "measurement", key: id, content }];
+  },
+  "measurement.sealed": (record) => [sealPart(record, null)],
+  "measurement.revealed": (record, before) => {
+    const seal = there(before, "seal", record.payload.digest);
+    const opened = openedMeasurement(record.payload, seal);
+    return [...postedMeasurements([opened], record.at, before), revealedSeal(record, seal)];
+  },
+  "remark.made": (record) => [filed("remark", record)],
+  "standings.cited": ({ payload: { code, by, note }, seq, at }) => [
+    { part: "citation", key: code, content: { code, by, note, seq, at } },
+  ],
 };
 
-export const partNames = [
-  "campaign",
-  "observable",
-  "measurand",
-  "derived",
-  "sharedError",
-  "facility",
-  "team",
-  "hypothesis",
-  "measurement",
-  "correlation",
-] as const;
-export type PartName = (typeof partNames)[number];
-
-/** There is one campaign in a document, so its part needs no key of its own. */
-export const CAMPAIGN_PART = "campaign";
-
-/** What a part holds, as JSON: its fields in the document, and what was claimed of its dates. */
-export type PartContent = Record<string, unknown>;
-
-/**
- * What one entry does to one part of the document. `put` gives a part, or the next version of it;
- * `patch` changes one that must be there. The fold in memory and the projections in the database
- * both apply changes by `contentAfter` and nothing else, so they can't disagree.
- */
-export type Change = { op: "put" | "patch"; part: PartName; key: string; content: PartContent };
-
-/**
- * What an entry does to the parts of the document, in order.
- *
- * @throws {CampaignError} `not-a-payload` when the payload isn't one of its kind
- */
-export function changesOf(record: LedgerRecord): Change[] {
-  if (!entryKinds.includes(record.kind)) {
-    throw new CampaignError("not-a-payload", `entry ${record.seq}: unknown kind ${record.kind}`);
-  }
-  return changesByKind[record.kind](record);
+function keyed(part: PartName, content: PartContent & { key: string }): Part {
+  return { part, key: content.key, content };
 }
 
-/**
- * The content of a part after a change.
- *
- * @param before the part's content so far, null if there is none. Measurements and correlations
- *   that are put don't need it: their ids are new.
- * @throws {CampaignError} `unknown-part` for a patch of a part that isn't there
- */
-export function contentAfter(change: Change, before: PartContent | null): PartContent {
-  if (change.op === "put") return putContent(change, before);
-  if (before === null) {
-    throw new CampaignError("unknown-part", `no ${change.part} ${change.key} to change`);
-  }
-  switch (change.part) {
-    case "measurand":
-      return { ...before, ...change.content, ...earliest(before, change.content) };
-    case "hypothesis":
-      return amendedHypothesis(before, change.content);
-    case "campaign":
-      return { ...before, ...change.content, ...sooner(before, change.content) };
-    default:
-      return { ...before, ...change.content };
-  }
+function campaignPart(content: PartContent): Part {
+  return { part: "campaign", key: CAMPAIGN_PART, content };
 }
 
-/** A measurand declared again keeps the dates of the measurements that it already had. */
-function putContent(change: Change, before: PartContent | null): PartContent {
-  if (change.part !== "measurand" || before === null) return change.content;
+/** What has no key of its own is known by its entry. */
+function filed(
+  part: "proposal" | "objection" | "remark",
+  record: RecordOf<"measurand.proposed" | "reference.objected" | "remark.made">,
+): Part {
+  const { payload, seq, at } = record;
+  return { part, key: String(seq), content: { ...payload, seq, at, team: teamOf(record) } };
+}
+
+function sealPart(
+  record: RecordOf<"prediction.sealed" | "measurement.sealed">,
+  hypothesis: string | null,
+): Part {
+  const { payload, seq, at, by } = record;
+  const { digest, measurand, until, keeping } = payload;
+  const content = {
+    digest,
+    of: hypothesis === null ? "measurement" : "prediction",
+    hypothesis,
+    measurand,
+    team: teamOf(record),
+    member: "system" in by ? null : by.member,
+    until,
+    keeping,
+    seq,
+    at,
+    revealed: null,
+  };
+  return { part: "seal", key: digest, content };
+}
+
+function revealedSeal({ seq, at, payload }: RecordOf<EntryKind>, seal: PartContent): Part {
+  const { digest } = payload as Payload<"prediction.revealed">;
+  return { part: "seal", key: digest, content: { ...seal, revealed: { seq, at } } };
+}
+
+function postedMeasurements(
+  measurements: MeasurementContent[],
+  at: string,
+  before: PartsBefore,
+): Part[] {
+  const posted = measurements.map((measurement) => ({ ...measurement, postedAt: at }));
+  return [
+    ...posted.map((content): Part => ({ part: "measurement", key: content.id, content })),
+    ...datedMeasurands(posted, before),
+  ];
+}
+
+/** A measurand's first dates are the earliest ever, whatever becomes of the measurement. */
+function datedMeasurands(
+  measurements: { measurand: string; postedAt: string | null; observedAt: string | null }[],
+  before: PartsBefore,
+): Part[] {
+  const dated = new Map<string, PartContent & { key: string }>();
+  for (const { measurand: key, postedAt, observedAt } of measurements) {
+    const content: PartContent & { key: string } = dated.get(key) ?? {
+      ...there(before, "measurand", key),
+      key,
+    };
+    dated.set(key, {
+      ...content,
+      firstPostedAt: earlier(instant(content["firstPostedAt"]), postedAt),
+      firstObservedAt: earlier(instant(content["firstObservedAt"]), observedAt),
+    });
+  }
+  return [...dated.values()].map((content) => keyed("measurand", content));
+}
+
+/** A measurand declared again stays closed where it was, and keeps the dates of its measurements. */
+function datesOf(before: PartContent | null) {
   return {
-    ...change.content,
-    closed: before["closed"] ?? null,
-    ...earliest(before, change.content),
+    closed: before?.["closed"] ?? null,
+    firstPostedAt: before?.["firstPostedAt"] ?? null,
+    firstObservedAt: before?.["firstObservedAt"] ?? null,
   };
 }
 
-function earliest(before: PartContent, after: PartContent): PartContent {
-  return {
-    firstPostedAt: earlier(instant(before["firstPostedAt"]), instant(after["firstPostedAt"])),
-    firstObservedAt: earlier(instant(before["firstObservedAt"]), instant(after["firstObservedAt"])),
-  };
-}
-
-/** Closing can only bring registration's end forward; amending the campaign sets it anew. */
-function sooner(before: PartContent, after: PartContent): PartContent {
-  if ("rule" in after || !("registrationCloses" in after)) return {};
-  return {
-    registrationCloses: earlier(
-      instant(before["registrationCloses"]),
-      instant(after["registrationCloses"]),
-    ),
-  };
+/** A part that the rules have seen to be there. */
+function there(before: PartsBefore, part: PartName, key: string): PartContent {
+  const content = before.get(part, key);
+  if (content === null) throw new CampaignError("unknown-part", `no ${part} ${key} to change`);
+  return content;
 }
 
 function instant(value: unknown): string | null {
   return typeof value === "string" ? value : null;
-}
-
-type ChangesOfKind = (record: LedgerRecord) => Change[];
-
-const changesByKind: Record<EntryKind, ChangesOfKind> = {
-  "campaign.opened": (record) => {
-    const content = payloadOf("campaign.opened", record);
-    return [{ op: "put", part: "campaign", key: CAMPAIGN_PART, content }];
-  },
-  "campaign.amended": (record) => {
-    const content = payloadOf("campaign.amended", record);
-    return [{ op: "patch", part: "campaign", key: CAMPAIGN_PART, content }];
-  },
-  "observable.declared": (record) => [put("observable", payloadOf("observable.declared", record))],
-  "measurand.declared": (record) => {
-    const content = payloadOf("measurand.declared", record);
-    return [
-      put("measurand", { ...content, closed: null, firstPostedAt: null, firstObservedAt: null }),
-    ];
-  },
-  "measurand.closed": (record) => {
-    const { key, ...closed } = payloadOf("measurand.closed", record);
-    return [{ op: "patch", part: "measurand", key, content: { closed } }];
-  },
-  "derived.declared": (record) => [put("derived", payloadOf("derived.declared", record))],
-  "shared-error.declared": (record) => [
-    put("sharedError", payloadOf("shared-error.declared", record)),
-  ],
-  "facility.declared": (record) => [put("facility", payloadOf("facility.declared", record))],
-  "team.joined": (record) => [put("team", payloadOf("team.joined", record))],
-  "hypothesis.registered": (record) => [
-    put("hypothesis", registeredHypothesis(payloadOf("hypothesis.registered", record), record.at)),
-  ],
-  "hypothesis.amended": (record) => {
-    const content = registeredHypothesis(payloadOf("hypothesis.amended", record), record.at);
-    return [{ op: "patch", part: "hypothesis", key: content.key, content }];
-  },
-  "registration.closed": (record) => {
-    payloadOf("registration.closed", record);
-    const content = { registrationCloses: record.at };
-    return [{ op: "patch", part: "campaign", key: CAMPAIGN_PART, content }];
-  },
-  "measurements.posted": (record) => postedMeasurements(record),
-  "measurement.set-aside": (record) => {
-    const { id, reason } = payloadOf("measurement.set-aside", record);
-    return [{ op: "patch", part: "measurement", key: id, content: { setAside: { reason } } }];
-  },
-};
-
-function payloadOf<K extends EntryKind>(kind: K, record: LedgerRecord): Payload<K> {
-  const read = readPayload(kind, record.payload);
-  if (read.ok) return read.value;
-  const problems = read.problems.map(problemLine).join("\n");
-  throw new CampaignError("not-a-payload", `entry ${record.seq}, ${kind}:\n${problems}`);
-}
-
-function put(part: PartName, content: PartContent & { key: string }): Change {
-  return { op: "put", part, key: content.key, content };
-}
-
-/** A hypothesis as of its entry: it and all of its predictions take the entry's time. */
-function registeredHypothesis(content: HypothesisContent, at: string) {
-  const predictions = content.predictions.map((prediction) => ({
-    ...prediction,
-    registeredAt: at,
-  }));
-  return { ...content, predictions, registeredAt: at };
-}
-
-function postedMeasurements(record: LedgerRecord): Change[] {
-  const { measurements, correlations } = payloadOf("measurements.posted", record);
-  const changes: Change[] = [];
-  const firstObserved = new Map<string, string | null>();
-  for (const measurement of measurements) {
-    const { id, measurand, observedAt } = measurement;
-    const content = { ...measurement, postedAt: record.at };
-    changes.push({ op: "put", part: "measurement", key: id, content });
-    firstObserved.set(measurand, earlier(firstObserved.get(measurand) ?? null, observedAt));
-  }
-  for (const [measurand, firstObservedAt] of firstObserved) {
-    const content = { firstPostedAt: record.at, firstObservedAt };
-    changes.push({ op: "patch", part: "measurand", key: measurand, content });
-  }
-  for (const correlation of correlations) {
-    const key = `${correlation.a} ${correlation.b}`;
-    changes.push({ op: "put", part: "correlation", key, content: correlation });
-  }
-  return changes;
 }

@@ -9,9 +9,10 @@ import {
   sharedErrorSchema,
   teamSchema,
 } from "./declarations";
-import { key, line, list, measurementId, optional, time, titled } from "./fields";
+import { key, line, list, measurementId, optional, prose, time, titled } from "./fields";
 import { hypothesisFields, predictionFields } from "./hypothesis";
 import { correlationSchema, measurementFields, withResultDefaults } from "./measurement";
+import { measurementSealSchema, openingSchema, predictionSealSchema } from "./seals";
 
 /**
  * The entries of a ledger and their payloads. `registeredAt` and `postedAt` are in none: the fold
@@ -28,11 +29,22 @@ export const entryKinds = [
   "shared-error.declared",
   "facility.declared",
   "team.joined",
+  "measurand.proposed",
+  "reference.objected",
   "hypothesis.registered",
   "hypothesis.amended",
+  "hypothesis.retired",
+  "prediction.sealed",
+  "prediction.revealed",
   "registration.closed",
   "measurements.posted",
+  "measurement.corrected",
+  "measurements.withdrawn",
   "measurement.set-aside",
+  "measurement.sealed",
+  "measurement.revealed",
+  "remark.made",
+  "standings.cited",
 ] as const;
 export type EntryKind = (typeof entryKinds)[number];
 
@@ -56,7 +68,7 @@ export const measurandContentSchema = z
   })
   .transform(titled);
 
-const predictionContentSchema = z.strictObject(predictionFields);
+export const predictionContentSchema = z.strictObject(predictionFields);
 
 /** `claimed.predictions`: the dates an imported document gave single predictions, by measurand. */
 export const hypothesisContentSchema = z.strictObject({
@@ -77,6 +89,30 @@ export const measurementContentSchema = z
   .strictObject({ ...measurementFields, claimed: optional(z.strictObject({ postedAt: time })) })
   .transform(withResultDefaults);
 
+/** Which measurements: by their ids, or those of a facility observed within a range (ends included). */
+export const selectionSchema = z.discriminatedUnion("by", [
+  z.strictObject({
+    by: z.literal("ids"),
+    ids: z.array(measurementId).min(1).max(MEASUREMENTS_PER_ENTRY),
+  }),
+  z.strictObject({
+    by: z.literal("facility"),
+    facility: key,
+    from: optional(time),
+    to: optional(time),
+  }),
+]);
+export type Selection = z.output<typeof selectionSchema>;
+
+export const remarkKinds = ["question", "objection", "answer"] as const;
+export const callers = ["clock", "coordinator"] as const;
+
+/** Eight digits and small letters without i, l, o and u, which are misread. */
+export const CODE_PATTERN = /^[0-9a-hjkmnp-tv-z]{8}$/;
+
+const words = prose.min(1);
+const entrySeq = z.int().nonnegative();
+
 export const payloadSchemas = {
   "campaign.opened": z.strictObject({
     ledger: ledgerId,
@@ -92,14 +128,33 @@ export const payloadSchemas = {
   "shared-error.declared": sharedErrorSchema,
   "facility.declared": facilitySchema,
   "team.joined": teamSchema,
+  "measurand.proposed": z.strictObject({ measurand: measurandContentSchema, reason: words }),
+  "reference.objected": z.strictObject({ measurand: key, reason: words }),
   "hypothesis.registered": hypothesisContentSchema,
   "hypothesis.amended": hypothesisContentSchema,
-  "registration.closed": z.strictObject({ by: z.enum(["clock", "coordinator"]) }),
+  "hypothesis.retired": z.strictObject({ key, reason: line }),
+  "prediction.sealed": predictionSealSchema,
+  "prediction.revealed": openingSchema,
+  "registration.closed": z.strictObject({ by: z.enum(callers) }),
   "measurements.posted": z.strictObject({
     measurements: z.array(measurementContentSchema).min(1).max(MEASUREMENTS_PER_ENTRY),
     correlations: list(correlationSchema),
   }),
+  /** `measurement` is the whole of it in its new version. */
+  "measurement.corrected": z.strictObject({ measurement: measurementContentSchema, reason: line }),
+  "measurements.withdrawn": z.strictObject({ selection: selectionSchema, reason: line }),
   "measurement.set-aside": z.strictObject({ id: measurementId, reason: line }),
+  "measurement.sealed": measurementSealSchema,
+  "measurement.revealed": openingSchema,
+  /** `on` is the entry's seq that it is a remark on. */
+  "remark.made": z.strictObject({ on: entrySeq, kind: z.enum(remarkKinds), text: words }),
+  /** `standings` as of the size before this entry, word by word: `code` is made of its digest. */
+  "standings.cited": z.strictObject({
+    code: z.string().regex(CODE_PATTERN).describe("a citation's code: 8 of its letters and digits"),
+    by: z.enum(["hand", "clock"]),
+    note: optional(line),
+    standings: z.record(z.string(), z.unknown()),
+  }),
 } as const satisfies Record<EntryKind, z.ZodType>;
 
 export type Payload<K extends EntryKind> = z.output<(typeof payloadSchemas)[K]>;
@@ -109,3 +164,4 @@ export type PayloadInput<K extends EntryKind> = z.input<(typeof payloadSchemas)[
 export type MeasurandContent = z.output<typeof measurandContentSchema>;
 export type HypothesisContent = z.output<typeof hypothesisContentSchema>;
 export type MeasurementContent = z.output<typeof measurementContentSchema>;
+export type PredictionContent = z.output<typeof predictionContentSchema>;

@@ -1,5 +1,5 @@
-import { changesOf, contentAfter, partNames } from "./changes";
-import type { LedgerRecord, PartContent, PartName } from "./changes";
+import { changesOf } from "./changes";
+import type { LedgerRecord } from "./changes";
 import { completeDocument } from "./complete";
 import {
   campaignSchema,
@@ -14,19 +14,19 @@ import { CAMPAIGN_FORMAT } from "./document";
 import type { CampaignDocument, DocumentForm } from "./document";
 import { hypothesisSchema } from "./hypothesis";
 import { correlationSchema, measurementSchema } from "./measurement";
+import { documentParts, Parts } from "./parts";
+import type { DocumentPart, Part, PartContent } from "./parts";
 import { membersOf } from "./schema-def";
+import { isCurrent } from "./selection";
 
-/** A part as the fold leaves it: what the projections hold a row of. */
-export type Part = { part: PartName; key: string; content: PartContent };
+export type { Part } from "./parts";
 
 /**
  * The campaign document from the entries of a ledger, one after another. Pure: the same entries
  * give the same document.
  */
 export class CampaignFold {
-  #parts = new Map<PartName, Map<string, PartContent>>(
-    partNames.map((part) => [part, new Map<string, PartContent>()]),
-  );
+  readonly #parts = new Parts();
   #size = 0;
 
   /** The number of entries applied. */
@@ -34,20 +34,18 @@ export class CampaignFold {
     return this.#size;
   }
 
-  /** @throws {CampaignError} for a payload that isn't one, or a change of what isn't there */
+  /**
+   * @throws {CampaignError} `not-a-payload`, `rule-broken`, with the entry's seq and the reason;
+   *   the fold is as before then
+   */
   apply(record: LedgerRecord): void {
-    for (const change of changesOf(record)) {
-      const ofName = this.#parts.get(change.part)!;
-      ofName.set(change.key, contentAfter(change, ofName.get(change.key) ?? null));
-    }
+    for (const part of changesOf(record, this.#parts)) this.#parts.put(part);
     this.#size += 1;
   }
 
   /** Every part in the order of its first put. */
   parts(): Part[] {
-    return [...this.#parts].flatMap(([part, contents]) =>
-      [...contents].map(([key, content]) => ({ part, key, content })),
-    );
+    return [...this.#parts.everything()];
   }
 
   document(): CampaignDocument {
@@ -63,12 +61,13 @@ export function foldRecords(records: Iterable<LedgerRecord>): CampaignDocument {
 
 /**
  * The document whose parts these are, in the order of their first put. What only the ledger knows
- * of a part (its ledger id, clock, claimed dates) is left out.
+ * of a part (its ledger id, clock, claimed dates) is left out, and so are withdrawn measurements
+ * and the correlations of these.
  *
  * @param parts one of them the campaign
  */
 export function documentFromParts(parts: Iterable<Part>): CampaignDocument {
-  const lists: Record<PartName, PartContent[]> = {
+  const lists: Record<DocumentPart, PartContent[]> = {
     campaign: [],
     observable: [],
     measurand: [],
@@ -80,7 +79,12 @@ export function documentFromParts(parts: Iterable<Part>): CampaignDocument {
     measurement: [],
     correlation: [],
   };
-  for (const { part, content } of parts) lists[part].push(documentContent(part, content));
+  const withdrawn = new Set<string>();
+  for (const { part, key, content } of parts) {
+    if (!isDocumentPart(part)) continue;
+    if (part === "measurement" && !isCurrent(content)) withdrawn.add(key);
+    else lists[part].push(documentContent(part, content));
+  }
   const form = {
     format: CAMPAIGN_FORMAT,
     campaign: lists.campaign[0],
@@ -92,20 +96,26 @@ export function documentFromParts(parts: Iterable<Part>): CampaignDocument {
     teams: lists.team,
     hypotheses: lists.hypothesis,
     measurements: lists.measurement,
-    correlations: lists.correlation,
+    correlations: lists.correlation.filter(
+      ({ a, b }) => !withdrawn.has(String(a)) && !withdrawn.has(String(b)),
+    ),
   };
   // Each content was read by its payload's schema, whose fields are the document's.
   return completeDocument(form as unknown as DocumentForm);
 }
 
+function isDocumentPart(part: string): part is DocumentPart {
+  return (documentParts as readonly string[]).includes(part);
+}
+
 /** The fields that the document has, in the schema's order; what only the ledger has is left out. */
-function documentContent(part: PartName, content: PartContent): PartContent {
+function documentContent(part: DocumentPart, content: PartContent): PartContent {
   const fields: PartContent = {};
   for (const name of fieldsOf[part]) fields[name] = content[name];
   return fields;
 }
 
-const fieldsOf: Record<PartName, readonly string[]> = {
+const fieldsOf: Record<DocumentPart, readonly string[]> = {
   campaign: membersOf(campaignSchema),
   observable: membersOf(observableSchema),
   measurand: membersOf(measurandSchema),

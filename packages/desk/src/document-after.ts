@@ -1,14 +1,16 @@
-import { CAMPAIGN_PART, changesOf, contentAfter, partNames } from "@weighhouse/campaign/changes";
-import type { LedgerRecord, PartContent, PartName } from "@weighhouse/campaign/changes";
+import { changesOf } from "@weighhouse/campaign/changes";
+import type { LedgerRecord } from "@weighhouse/campaign/changes";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { EntryKind, Payload } from "@weighhouse/campaign/entries";
 import { documentFromParts } from "@weighhouse/campaign/fold";
+import { CAMPAIGN_PART, Parts, documentParts } from "@weighhouse/campaign/parts";
+import type { DocumentPart, Part, PartContent } from "@weighhouse/campaign/parts";
 import { instantAfter } from "./time";
 
 export type NewEntry = { [K in EntryKind]: { kind: K; payload: Payload<K> } }[EntryKind];
 
-/** Who appends, and the time that the first entry is taken to have. */
-export type Moment = { by: LedgerRecord["by"]; at: string };
+/** Who appends, the time that the first entry is taken to have, and its seq. */
+export type Moment = { by: LedgerRecord["by"]; at: string; size: number };
 
 const listOf = {
   observable: "observables",
@@ -20,42 +22,40 @@ const listOf = {
   hypothesis: "hypotheses",
   measurement: "measurements",
   correlation: "correlations",
-} as const satisfies Record<Exclude<PartName, "campaign">, keyof CampaignDocument>;
+} as const satisfies Record<Exclude<DocumentPart, "campaign">, keyof CampaignDocument>;
 export type ListName = (typeof listOf)[keyof typeof listOf];
 
-/** The campaign document as it would be once these entries were appended, by the ledger's own fold. */
+/**
+ * The campaign document as it would be once these entries were appended, by the ledger's own fold
+ * and rules.
+ *
+ * @param before what all earlier entries left
+ * @throws {CampaignError} `rule-broken` for an entry that may not be appended
+ */
 export function documentAfter(
-  document: CampaignDocument,
+  before: Iterable<Part>,
   entries: NewEntry[],
   moment: Moment,
 ): CampaignDocument {
-  const parts = partsOf(document);
+  const parts = new Parts(before);
   for (const [i, { kind, payload }] of entries.entries()) {
     const at = instantAfter(moment.at, i);
-    for (const change of changesOf({ seq: i, at, by: moment.by, kind, payload })) {
-      const ofName = parts.get(change.part)!;
-      ofName.set(change.key, contentAfter(change, ofName.get(change.key) ?? null));
-    }
+    const record = { seq: moment.size + i, at, by: moment.by, kind, payload };
+    for (const part of changesOf(record, parts)) parts.put(part);
   }
-  return documentFromParts(
-    [...parts].flatMap(([part, contents]) =>
-      [...contents].map(([key, content]) => ({ part, key, content })),
-    ),
-  );
+  return documentFromParts(parts.everything());
 }
 
-/** The document taken apart again into what `changesOf` speaks of. */
-function partsOf(document: CampaignDocument): Map<PartName, Map<string, PartContent>> {
-  return new Map(
-    partNames.map((part) => {
-      const contents: PartContent[] =
-        part === "campaign" ? [document.campaign] : document[listOf[part]];
-      return [part, new Map(contents.map((content) => [keyOf(part, content), content]))];
-    }),
-  );
+/** The document taken apart again, for what is judged beside it alone. */
+export function* partsOf(document: CampaignDocument): Generator<Part> {
+  for (const part of documentParts) {
+    const contents: PartContent[] =
+      part === "campaign" ? [document.campaign] : document[listOf[part]];
+    for (const content of contents) yield { part, key: keyOf(part, content), content };
+  }
 }
 
-function keyOf(part: PartName, content: PartContent): string {
+function keyOf(part: DocumentPart, content: PartContent): string {
   if (part === "campaign") return CAMPAIGN_PART;
   if (part === "measurement") return String(content["id"]);
   if (part === "correlation") return `${String(content["a"])} ${String(content["b"])}`;

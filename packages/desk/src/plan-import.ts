@@ -7,7 +7,7 @@ import type { Standings } from "@weighhouse/campaign/standings";
 import { scoreCampaign } from "@weighhouse/engine/score";
 import { canonicalJson } from "@weighhouse/ledger/canonical";
 import { LedgerError } from "@weighhouse/ledger/ledger-error";
-import { documentAfter } from "./document-after";
+import { documentAfter, partsOf } from "./document-after";
 import type { NewEntry } from "./document-after";
 import { entriesOfDocument } from "./import-entries";
 import { isPast } from "./time";
@@ -54,6 +54,9 @@ function openingOf(campaign: Campaign, now: string): Campaign {
   return closed ? { ...campaign, registrationCloses: null } : campaign;
 }
 
+/** Who imports does so in no team's name. */
+const IMPORTER = { member: "importer", team: null };
+
 /** The document that the new ledger will fold to, but for the entries' very times. */
 function documentHere(opening: Campaign, entries: NewEntry[], now: string): CampaignDocument {
   const empty: CampaignDocument = {
@@ -69,7 +72,7 @@ function documentHere(opening: Campaign, entries: NewEntry[], now: string): Camp
     measurements: [],
     correlations: [],
   };
-  return documentAfter(empty, entries, { by: { system: true }, at: now });
+  return documentAfter(partsOf(empty), entries, { by: IMPORTER, at: now, size: 1 });
 }
 
 /** What reads as JSON and no entry can hold: U+0000, half a surrogate pair. */

@@ -6,7 +6,7 @@ import { readDocument } from "@weighhouse/store/read-document";
 import type { TableColumn, TableProblem } from "@weighhouse/tables/table";
 import { enter } from "./access";
 import type { Actor, Desk } from "./desk";
-import { documentAfter } from "./document-after";
+import { documentAfter, partsOf } from "./document-after";
 import type { Moment } from "./document-after";
 import { judgeRows } from "./judge-rows";
 import type { JudgedRow } from "./judge-rows";
@@ -48,8 +48,9 @@ export async function previewMeasurements(
 ): Promise<MeasurementsPreview> {
   const { key, source } = parseInput(previewMeasurementsInput, input);
   const access = await enter(desk, actor, key, "preview-measurements");
-  const moment = { by: authorOf(access), at: timeAt(desk) };
+  const by = authorOf(access);
   const { document, size } = await onStore(() => readDocument(desk.store, key));
+  const moment = { by, at: timeAt(desk), size };
   const table = readRows(source, document);
   const judged = await judgeRows(desk, table, { document, access, at: moment.at });
   const problems = [...table.problems, ...judged.problems.map(wholeProblem)];
@@ -87,6 +88,6 @@ function changesOf(
     fate === "new" && measurement ? [measurement] : [],
   );
   const before = scoreCampaign(document);
-  const after = scoreCampaign(documentAfter(document, measurementEntries(fresh), moment));
+  const after = scoreCampaign(documentAfter(partsOf(document), measurementEntries(fresh), moment));
   return before.ok && after.ok ? standingsChanges(before.value, after.value) : null;
 }

@@ -1,8 +1,10 @@
 import type { Entry } from "@weighhouse/ledger/entry";
 import { appendEntries } from "@weighhouse/store/append";
 import type { Appended as Stored } from "@weighhouse/store/append";
-import { readDocument } from "@weighhouse/store/read-document";
-import type { DocumentAsOf } from "@weighhouse/store/read-document";
+import type { CampaignDocument } from "@weighhouse/campaign/document";
+import { documentFromParts } from "@weighhouse/campaign/fold";
+import type { Part } from "@weighhouse/campaign/parts";
+import { readEverything } from "@weighhouse/store/read-document";
 import { StoreError } from "@weighhouse/store/store-error";
 import type { Access } from "./access";
 import type { Desk } from "./desk";
@@ -16,33 +18,49 @@ import { timeAt } from "./time";
 /** How often a decision is made anew when others append meanwhile. */
 const ATTEMPTS = 8;
 
-/** Entries to append, and which part of the document each field of the input becomes. */
-export type Decision = { entries: NewEntry[]; fields: Field[] };
+/** The campaign as it is: its document, and what stands beside that. */
+export type Now = { document: CampaignDocument; parts: Part[]; size: number; at: string };
+
+/**
+ * Entries to append, and which part of the document each field of the input becomes. `pointer` is
+ * the field that the payload is, where that isn't the first of `fields`.
+ */
+export type Decision = { entries: NewEntry[]; fields: Field[]; pointer?: string };
 
 /**
  * Appends what `decide` makes of the campaign as it is now, once the campaign document that results
  * is one that reads and scores. The append holds only at the size that was decided on: when
  * somebody else was quicker, it is decided again.
  *
- * @throws {DeskError} `invalid`, with problems that point at the input's fields; `busy`
+ * @throws {DeskError} `invalid`, with problems that point at the input's fields, where a rule is
+ *   broken too; `busy`
  */
 export async function recordEntries(
   desk: Desk,
   access: Access,
-  decide: (now: DocumentAsOf) => Decision,
+  decide: (now: Now) => Decision | Promise<Decision>,
 ): Promise<Stored> {
-  const key = access.campaign.key;
+  return appendDecided(desk, { campaign: access.campaign.key, by: authorOf(access) }, decide);
+}
+
+/** The same for any author: the system, where dates make entries. */
+export async function appendDecided(
+  desk: Desk,
+  { campaign, by }: { campaign: string; by: Entry["by"] },
+  decide: (now: Now) => Decision | Promise<Decision>,
+): Promise<Stored> {
   for (let attempt = 0; attempt < ATTEMPTS; attempt++) {
-    const now = await onStore(() => readDocument(desk.store, key));
-    const { entries, fields } = decide(now);
-    checkAfter(now.document, entries, { by: authorOf(access), at: timeAt(desk), fields });
+    const { parts, size, at } = await onStore(() => readEverything(desk.store, campaign));
+    const now = { document: documentFromParts(parts), parts, size, at };
+    const { entries, fields, pointer } = await decide(now);
+    checkAfter(parts, entries, { by, at: timeAt(desk), size, fields, pointer });
     try {
       return await appendEntries(desk.store, {
-        campaign: key,
-        by: authorOf(access),
+        campaign,
+        by,
         entries,
         clock: desk.clock,
-        expectedSize: now.size,
+        expectedSize: size,
       });
     } catch (error) {
       if (!(error instanceof StoreError && error.code === "moved-on")) {

@@ -12,6 +12,7 @@ const meanings: Record<StoreErrorCode, DeskErrorCode | null> = {
   "moved-on": "busy",
   "invalid-payload": "invalid",
   "payload-too-large": "invalid",
+  "rule-broken": "conflict",
   "clock-not-simulated": null,
   "no-signer": null,
   "strange-key": null,

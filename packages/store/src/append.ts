@@ -1,5 +1,7 @@
-import { changesOf } from "@weighhouse/campaign/changes";
+import { CampaignError } from "@weighhouse/campaign/campaign-error";
 import type { EntryKind } from "@weighhouse/campaign/entries";
+import { readsOf } from "@weighhouse/campaign/reads";
+import type { Reads } from "@weighhouse/campaign/reads";
 import type { Entry } from "@weighhouse/ledger/entry";
 import type { Queries } from "./queries";
 import type { Clock } from "./clock";
@@ -45,7 +47,7 @@ export const CHANNEL = "weighhouse";
  * lock, tree, signed head, projections, the scoring job and the notice. All of it or nothing.
  *
  * @throws {StoreError} `no-such-campaign`, `invalid-payload`, `payload-too-large`, `moved-on`,
- * `clock-not-simulated`, `no-signer`
+ * `rule-broken`, `clock-not-simulated`, `no-signer`
  */
 export async function appendEntries(store: Store, input: AppendInput): Promise<Appended> {
   const payloads = input.entries.map(preparePayload);
@@ -67,19 +69,11 @@ export async function writeEntries(
   tx: Queries,
   input: WriteInput,
 ): Promise<Appended> {
-  const { tip, by, payloads } = input;
+  const { tip, payloads } = input;
   const extended = extendLedger(store, input);
-  const changes = extended.entries.map((entry, index) =>
-    changesOf({
-      seq: entry.seq,
-      at: entry.at,
-      by,
-      kind: (payloads[index] as PreparedPayload).kind,
-      payload: (payloads[index] as PreparedPayload).value,
-    }),
-  );
-  const projector = new Projector(await currentRows(tx, tip.campaignId, changes.flat()));
-  changes.forEach((each, index) => projector.apply(tip.size + index, each));
+  const reads = readsOfAll(payloads);
+  const projector = new Projector({ rows: await currentRows(tx, tip.campaignId, reads), reads });
+  applyAll(projector, extended.entries, input);
   await Promise.all([
     ...extended.write(tx),
     ...writeRows(tx, tip.campaignId, projector),
@@ -97,6 +91,31 @@ export async function writeEntries(
     at: extended.entries.map((entry) => entry.at),
     treeHead: extended.treeHead,
   };
+}
+
+function readsOfAll(payloads: PreparedPayload[]): Reads {
+  const all = payloads.map(({ kind, value }) =>
+    readsOf({ kind, payload: value } as Parameters<typeof readsOf>[0]),
+  );
+  return {
+    keys: all.flatMap(({ keys }) => keys),
+    whole: [...new Set(all.flatMap(({ whole }) => whole))],
+    facilities: [...new Set(all.flatMap(({ facilities }) => facilities))],
+  };
+}
+
+/** The rules are asked here once more, under the lock: who decided before it may be out of date. */
+function applyAll(projector: Projector, entries: Entry[], { by, payloads }: WriteInput): void {
+  try {
+    for (const [index, { seq, at }] of entries.entries()) {
+      const { kind, value: payload } = payloads[index] as PreparedPayload;
+      projector.apply({ seq, at, by, kind, payload });
+    }
+  } catch (cause) {
+    if (!(cause instanceof CampaignError) || cause.code !== "rule-broken") throw cause;
+    const problems = cause.problem === null ? [] : [cause.problem];
+    throw new StoreError("rule-broken", cause.message, { cause, problems });
+  }
 }
 
 /** Who may read is no part of the document, so it stands in the campaign's own row. */

@@ -98,7 +98,7 @@ export async function listCampaigns(
       (select count(*)::int from parts p
         where p.campaign_id = c.id and p.part = 'hypothesis' and p.to_size is null) as hypotheses,
       (select count(*)::int from measurements x
-        where x.campaign_id = c.id and x.to_size is null) as measurements,
+        where x.campaign_id = c.id and x.to_size is null and not x.withdrawn) as measurements,
       (select max(x.posted_at) from measurements x
         where x.campaign_id = c.id) as "lastMeasurementAt",
       s.leader as "leaderKey", s.leader_posterior as posterior, s.log10_lead as "log10Lead",

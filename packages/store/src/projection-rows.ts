@@ -1,41 +1,62 @@
-import type { Change, PartContent, PartName } from "@weighhouse/campaign/changes";
+import type { PartContent } from "@weighhouse/campaign/parts";
+import type { Reads } from "@weighhouse/campaign/reads";
 import type { Queries } from "./queries";
 import type { ProjectedRow } from "./projector";
 
 /** A row as the database gives it; `content` is JSON text. */
 type StoredRow = Omit<ProjectedRow, "content" | "text"> & { content: string };
 
-/** The current rows of the keys that the changes touch. */
+/** The current rows that an append looks at. */
 export async function currentRows(
   sql: Queries,
   campaignId: number,
-  changes: Change[],
+  { keys, whole, facilities }: Reads,
 ): Promise<ProjectedRow[]> {
   const ids = new Set<string>();
-  const keys = new Map<string, { part: PartName; key: string }>();
-  for (const { part, key } of changes) {
+  const wanted = new Map<string, Reads["keys"][number]>();
+  for (const { part, key } of keys) {
     if (part === "measurement") ids.add(key);
-    else keys.set(`${part} ${key}`, { part, key });
+    else if (!whole.includes(part)) wanted.set(`${part} ${key}`, { part, key });
   }
-  const [parts, measurements] = await Promise.all([
-    keys.size === 0
+  const rows = await Promise.all([
+    wanted.size === 0 ? [] : partsOfKeys(sql, campaignId, [...wanted.values()]),
+    whole.length === 0 ? [] : wholeParts(sql, campaignId, whole),
+    ids.size + facilities.length === 0
       ? []
-      : sql<StoredRow[]>`
-          select p.part, p.key, p.from_size as "fromSize", p.to_size as "toSize",
-            p.first_seq as "firstSeq", p.first_place as "firstPlace", p.content
-          from json_to_recordset(${JSON.stringify([...keys.values()])}::text::json)
-            as wanted(part text, key text)
-          join parts p on p.part = wanted.part and p.key = wanted.key
-          where p.campaign_id = ${campaignId} and p.to_size is null`,
-    ids.size === 0
-      ? []
-      : sql<StoredRow[]>`
-          select 'measurement' as part, id as key, from_size as "fromSize", to_size as "toSize",
-            first_seq as "firstSeq", first_place as "firstPlace", content
-          from measurements
-          where campaign_id = ${campaignId} and to_size is null and id = any(${[...ids]}::text[])`,
+      : measurementRows(sql, campaignId, { ids: [...ids], facilities }),
   ]);
-  return [...parts, ...measurements].map(readRow);
+  return rows.flat().map(readRow);
+}
+
+function partsOfKeys(sql: Queries, campaignId: number, keys: Reads["keys"]) {
+  return sql<StoredRow[]>`
+    select p.part, p.key, p.from_size as "fromSize", p.to_size as "toSize",
+      p.first_seq as "firstSeq", p.first_place as "firstPlace", p.content
+    from json_to_recordset(${JSON.stringify(keys)}::text::json) as wanted(part text, key text)
+    join parts p on p.part = wanted.part and p.key = wanted.key
+    where p.campaign_id = ${campaignId} and p.to_size is null`;
+}
+
+function wholeParts(sql: Queries, campaignId: number, whole: Reads["whole"]) {
+  return sql<StoredRow[]>`
+    select part, key, from_size as "fromSize", to_size as "toSize", first_seq as "firstSeq",
+      first_place as "firstPlace", content
+    from parts
+    where campaign_id = ${campaignId} and to_size is null and part = any(${whole}::text[])`;
+}
+
+function measurementRows(
+  sql: Queries,
+  campaignId: number,
+  wanted: { ids: string[]; facilities: string[] },
+) {
+  return sql<StoredRow[]>`
+    select 'measurement' as part, id as key, from_size as "fromSize", to_size as "toSize",
+      first_seq as "firstSeq", first_place as "firstPlace", content
+    from measurements
+    where campaign_id = ${campaignId} and to_size is null
+      and (id = any(${wanted.ids}::text[]) or facility = any(${wanted.facilities}::text[]))
+    order by first_seq, first_place`;
 }
 
 export function readRow(row: StoredRow): ProjectedRow {
@@ -99,23 +120,24 @@ function insertMeasurements(
 ): Promise<unknown>[] {
   if (rows.length === 0) return [];
   const inserting = JSON.stringify(
-    rows.map((row) => ({ ...row.content, ...row, content: undefined, setAside: isSetAside(row) })),
+    rows.map((row) => ({ ...row.content, ...row, content: undefined, ...marksOf(row) })),
   );
   return [
     sql`
       insert into measurements
         (campaign_id, id, from_size, to_size, first_seq, first_place, measurand, facility, team,
-        batch, observed_at, posted_at, value, sd, unit, set_aside, content)
+        batch, observed_at, posted_at, value, sd, unit, set_aside, withdrawn, content)
       select ${campaignId}::int, key, "fromSize", "toSize", "firstSeq", "firstPlace", measurand,
-        facility, team, batch, "observedAt", "postedAt", value, sd, unit, "setAside", text::json
+        facility, team, batch, "observedAt", "postedAt", value, sd, unit, "setAside", withdrawn, text::json
       from json_to_recordset(${inserting}::text::json)
         as r(key text, "fromSize" int, "toSize" int, "firstSeq" int, "firstPlace" int,
           measurand text, facility text, team text, batch text, "observedAt" timestamptz,
           "postedAt" timestamptz, value double precision, sd double precision, unit text,
-          "setAside" boolean, text text)`,
+          "setAside" boolean, withdrawn boolean, text text)`,
   ];
 }
 
-function isSetAside({ content }: ProjectedRow): boolean {
-  return content["setAside"] !== null && content["setAside"] !== undefined;
+function marksOf({ content }: ProjectedRow): { setAside: boolean; withdrawn: boolean } {
+  const has = (name: string) => content[name] !== null && content[name] !== undefined;
+  return { setAside: has("setAside"), withdrawn: has("withdrawn") };
 }

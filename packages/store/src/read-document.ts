@@ -1,8 +1,8 @@
-import type { PartContent, PartName } from "@weighhouse/campaign/changes";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { documentFromParts } from "@weighhouse/campaign/fold";
-import type { Part } from "@weighhouse/campaign/fold";
-import { and, asc, eq, gt, isNull, lte, or } from "drizzle-orm";
+import { documentParts, partNames } from "@weighhouse/campaign/parts";
+import type { Part, PartContent, PartName } from "@weighhouse/campaign/parts";
+import { and, asc, eq, gt, inArray, isNull, lte, or } from "drizzle-orm";
 import { findCampaign } from "./campaigns";
 import type { CampaignRow } from "./campaigns";
 import type { Store } from "./open-store";
@@ -65,6 +65,28 @@ export async function readDeclarations(
   return { document: documentFromParts(parts), size: found.size };
 }
 
+/** Everything that the newest entries left: also what stands beside the document. */
+export async function readEverything(
+  store: Store,
+  campaign: string,
+): Promise<{ parts: Part[]; size: number; at: string }> {
+  const found = await findCampaign(store, campaign);
+  const read = await Promise.all([
+    readDeclared(store, found, found.size, partNames),
+    readPosted(store, found, found.size),
+  ]);
+  return { parts: read.flat(), size: found.size, at: found.lastAt };
+}
+
+/** Parts of one kind as of a size, in the order of their first put; never measurements. */
+export async function readPartsOf(
+  store: Store,
+  { campaign, part, size }: { campaign: string; part: PartName; size?: number | undefined },
+): Promise<Part[]> {
+  const found = await findCampaign(store, campaign);
+  return readDeclared(store, found, size ?? found.size, [part]);
+}
+
 /** Versions that hold at a size never change again, so this needs no lock and no snapshot. */
 async function readParts(store: Store, campaign: CampaignRow, size: number): Promise<Part[]> {
   const read = await Promise.all([
@@ -74,11 +96,16 @@ async function readParts(store: Store, campaign: CampaignRow, size: number): Pro
   return read.flat();
 }
 
-async function readDeclared(store: Store, { id }: CampaignRow, size: number): Promise<Part[]> {
+async function readDeclared(
+  store: Store,
+  { id }: CampaignRow,
+  size: number,
+  wanted: readonly PartName[] = documentParts,
+): Promise<Part[]> {
   const rows = await store.readDb
     .select({ part: parts.part, key: parts.key, content: parts.content })
     .from(parts)
-    .where(and(eq(parts.campaignId, id), holdsAt(parts, size)))
+    .where(and(eq(parts.campaignId, id), inArray(parts.part, [...wanted]), holdsAt(parts, size)))
     .orderBy(asc(parts.firstSeq), asc(parts.firstPlace));
   return rows.map(({ part, key, content }) => partOf(part as PartName, key, content));
 }

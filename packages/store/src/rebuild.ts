@@ -1,4 +1,3 @@
-import { changesOf } from "@weighhouse/campaign/changes";
 import type { LedgerRecord } from "@weighhouse/campaign/changes";
 import { lockTip } from "./lock-tip";
 import type { Store } from "./open-store";
@@ -26,7 +25,7 @@ export async function rebuildProjections(
     const { campaignId } = await lockTip(tx, campaign);
     const projector = new Projector();
     for await (const record of records(tx, campaignId)) {
-      projector.apply(record.seq, changesOf(record));
+      projector.apply(record);
     }
     // Temporary tables of the same names come before the real ones in every statement that follows.
     await tx`create temporary table parts (like public.parts) on commit drop`;

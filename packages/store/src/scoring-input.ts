@@ -1,4 +1,4 @@
-import type { PartContent, PartName } from "@weighhouse/campaign/changes";
+import type { PartContent, PartName } from "@weighhouse/campaign/parts";
 import type { Measurement } from "@weighhouse/campaign/document";
 import { documentFromParts } from "@weighhouse/campaign/fold";
 import type { Part } from "@weighhouse/campaign/fold";
@@ -30,10 +30,18 @@ type Row = Omit<Transaction, "movedBy"> & {
 const MOVING = [
   "measurements.posted",
   "measurement.set-aside",
+  "measurement.corrected",
+  "measurements.withdrawn",
+  "measurement.revealed",
   "measurand.closed",
   "hypothesis.registered",
   "hypothesis.amended",
+  "prediction.sealed",
+  "prediction.revealed",
 ];
+
+/** What a measurement is completed by: its unit, and conditions from time. */
+const COMPLETING = ["campaign", "observable", "measurand"];
 
 /** The transactions after a size, in order, at most `limit` of them. */
 export async function readTransactions(
@@ -87,7 +95,7 @@ export async function readPosted(
     select part, key, content from (
       select part, key, content, first_seq, first_place from parts
       where campaign_id = ${id} and from_size <= ${size} and (to_size is null or to_size > ${size})
-        and part <> 'correlation' and part <> 'hypothesis'
+        and part = any(${COMPLETING}::text[])
       union all
       select 'measurement', id, content, first_seq, first_place from measurements
       where campaign_id = ${id} and first_seq >= ${begin} and first_seq < ${size}

@@ -8,6 +8,7 @@ export type StoreErrorCode =
   | "moved-on"
   | "invalid-payload"
   | "payload-too-large"
+  | "rule-broken"
   | "clock-not-simulated"
   | "no-signer"
   | "strange-key"
@@ -23,7 +24,7 @@ export type StoreErrorCode =
 export class StoreError extends Error {
   override readonly name = "StoreError";
   readonly code: StoreErrorCode;
-  /** For `invalid-payload`: each fault with its pointer into the payload. */
+  /** For `invalid-payload` and `rule-broken`: each fault with its pointer into the payload. */
   readonly problems: Problem[];
 
   constructor(

@@ -30,6 +30,10 @@ export const parts = pgTable(
     uniqueIndex("parts_current_unique")
       .on(table.campaignId, table.part, table.key)
       .where(sql`${table.toSize} is null`),
+    // A citation's code names it among all campaigns.
+    index("parts_citation_index")
+      .on(table.key)
+      .where(sql`${table.part} = 'citation'`),
   ],
 );
 
@@ -51,6 +55,7 @@ export const measurements = pgTable(
     sd: doublePrecision("sd"),
     unit: text("unit"),
     setAside: boolean("set_aside").notNull(),
+    withdrawn: boolean("withdrawn").notNull().default(false),
     content: jsonText("content").notNull(),
   },
   (table) => [

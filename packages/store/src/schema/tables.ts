@@ -4,4 +4,5 @@ export { campaigns } from "./campaigns";
 export { entries, heads, nodes, signingKeys, tips } from "./ledger";
 export { memberships } from "./memberships";
 export { measurements, parts } from "./projections";
+export { heldSeals } from "./seals";
 export { scorerStates, standings, timelinePoints, timelineSteps } from "./standings";
