@@ -50,6 +50,7 @@ function completeMeasurement(measurement: Measurement, observable: Observable | 
 function completeMeasurands(given: Measurand[], measurements: Measurement[]): Measurand[] {
   const dates = new Map<string, { posted: string | null; observed: string | null }>();
   for (const { measurand, postedAt, observedAt } of measurements) {
+    if (postedAt === null && observedAt === null) continue;
     const first = dates.get(measurand);
     if (first === undefined) {
       dates.set(measurand, { posted: postedAt, observed: observedAt });

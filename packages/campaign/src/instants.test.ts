@@ -1,8 +1,8 @@
-import { assert, date, nat, property } from "fast-check";
+import { assert, constantFrom, date, integer, nat, oneof, property, tuple } from "fast-check";
 import { describe, expect, test } from "vitest";
 import { conditionFromTime } from "./conditions";
 import { TIME_PATTERN } from "./fields";
-import { compareInstants, earlier, secondsBetween } from "./instants";
+import { compareInstants, earlier, isTime, secondsBetween } from "./instants";
 
 describe("times", () => {
   // RFC 3339, sections 5.6 to 5.8.
@@ -102,5 +102,46 @@ describe("conditions from time", () => {
     ["2031-03-04T00:00:00.000001Z", null],
   ])("interpolate their table: %s gives %s", (time, value) => {
     expect(conditionFromTime({ unit: "m", time: { epoch: null, table } }, time)).toBe(value);
+  });
+});
+
+describe("a time without a pattern", () => {
+  const part = (most: number) =>
+    integer({ min: 0, max: most }).map((n) => String(n).padStart(2, "0"));
+  const times = tuple(
+    oneof(
+      integer({ min: 1896, max: 2105 }).map(String),
+      constantFrom("0000", "2000", "99999", "203x"),
+    ),
+    part(14),
+    part(33),
+    part(25),
+    part(61),
+    part(62),
+    constantFrom("", ".5", ".123456789", ".1234567890", ".", ".5x"),
+    constantFrom("Z", "z", "+00:00", ""),
+  ).map(([y, mo, d, h, mi, s, f, z]) => `${y}-${mo}-${d}T${h}:${mi}:${s}${f}${z}`);
+
+  test("is the same as by the pattern", () => {
+    let allowed = 0;
+    assert(
+      property(times, (text) => {
+        allowed += isTime(text) ? 1 : 0;
+        expect(isTime(text)).toBe(TIME_PATTERN.test(text));
+      }),
+      { numRuns: 5000, seed: 20310307 },
+    );
+    expect(allowed).toBeGreaterThan(200);
+  });
+
+  test.each([
+    "2031-02-29T00:00:00Z",
+    "2032-02-29T00:00:00Z",
+    "2031-12-31T23:59:60Z",
+    "2031-12-31T23:58:60Z",
+    "2031-12-31 23:58:00Z",
+    "",
+  ])("%s", (text) => {
+    expect(isTime(text)).toBe(TIME_PATTERN.test(text));
   });
 });

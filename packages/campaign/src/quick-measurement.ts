@@ -1,13 +1,7 @@
 import type { Measurement } from "./document";
 import type { MeasurementContent } from "./entries";
-import {
-  ID_PATTERN,
-  KEY_PATTERN,
-  LINE_LENGTH,
-  NAME_PATTERN,
-  TIME_PATTERN,
-  UNIT_LENGTH,
-} from "./fields";
+import { ID_PATTERN, KEY_PATTERN, LINE_LENGTH, NAME_PATTERN, UNIT_LENGTH } from "./fields";
+import { isTime } from "./instants";
 import { limits, measurementFields, SOURCE_LENGTH, withResultDefaults } from "./measurement";
 
 /**
@@ -145,7 +139,7 @@ function fitsOrAbsent(value: unknown, pattern: RegExp): boolean {
 }
 
 function timeOrAbsent(value: unknown): boolean {
-  return absent(value) || (typeof value === "string" && TIME_PATTERN.test(value));
+  return absent(value) || (typeof value === "string" && isTime(value));
 }
 
 function textOrAbsent(value: unknown, most: number): boolean {

@@ -1,6 +1,8 @@
 import { completeDocument } from "./complete";
 import { campaignDocumentSchema } from "./document";
 import type { CampaignDocument, DocumentForm } from "./document";
+import { divideText } from "./document-text";
+import type { DividedText } from "./document-text";
 import { readForm } from "./form";
 import type { Legible } from "./form";
 import { parseJson } from "./json-text";
@@ -24,7 +26,13 @@ import { Reading } from "./rules/reading";
  */
 export function readCampaign(value: unknown): Result<CampaignDocument> {
   const problems: Problem[] = [];
-  const form = formOf(value, problems);
+  return readRules(formOf(value, problems), problems);
+}
+
+function readRules(
+  form: Legible<DocumentForm> | undefined,
+  problems: Problem[],
+): Result<CampaignDocument> {
   if (form === undefined) return { ok: false, problems };
   checkRules(new Reading(form, problems));
   if (problems.length > 0) return { ok: false, problems };
@@ -34,11 +42,24 @@ export function readCampaign(value: unknown): Result<CampaignDocument> {
 
 /** As `readCampaign`, from JSON text: syntax errors and members that stand twice are told too. */
 export function readCampaignText(text: string): Result<CampaignDocument> {
+  const divided = divideText(text);
+  if (divided !== null) return readDivided(divided);
   const parsed = parseJson(text);
   if (parsed.problems.length === 0) return readCampaign(parsed.value);
   if (parsed.value === undefined) return { ok: false, problems: parsed.problems };
   const read = readCampaign(parsed.value);
   return { ok: false, problems: [...parsed.problems, ...(read.ok ? [] : read.problems)] };
+}
+
+function readDivided({
+  rest,
+  measurements,
+  problems: ofMeasurements,
+}: DividedText): Result<CampaignDocument> {
+  const problems: Problem[] = [];
+  const form = take(readForm(campaignDocumentSchema, rest, ""), problems);
+  for (const problem of ofMeasurements) problems.push(problem);
+  return readRules(form === undefined ? undefined : { ...form, measurements }, problems);
 }
 
 function checkRules(reading: Reading): void {

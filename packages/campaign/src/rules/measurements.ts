@@ -4,6 +4,7 @@ import type { Legible } from "../form";
 import { compareInstants } from "../instants";
 import { below } from "../pointer";
 import { conversion } from "../units";
+import { DistinctIds } from "./distinct-ids";
 import { conditionsUsed } from "./expressions";
 import { conditionKeys } from "./measurands";
 import { checkReports } from "./reports";
@@ -15,19 +16,18 @@ import type { Target } from "./target";
 /** Measurements: known keys, inside window and conditions, a result of one form, a unit that fits. */
 export function checkMeasurements(reading: Reading): void {
   const targets = targetsOf(reading);
-  const ids = new Set<string>();
   const { measurements = [] } = reading.form;
+  const ids = new DistinctIds(measurements.length);
   for (let index = 0; index < measurements.length; index++) {
     const measurement = measurements[index];
     if (measurement === undefined) continue;
     const { id, measurand } = measurement;
-    if (id !== undefined && ids.has(id)) {
+    if (id !== undefined && !ids.add(id)) {
       const place = below("/measurements", index, "id");
       reading.refuse(place, "duplicate", `the id ${id} a second time`, "each id once");
     }
-    if (id !== undefined) ids.add(id);
     const target = measurand === undefined ? undefined : targets.get(measurand);
-    checkReferences(reading, measurement, index);
+    checkReferences(reading, measurement, target, index);
     if (target !== undefined) checkAgainst(reading, measurement, target, index);
     else checkTarget(reading, measurement, index);
     checkResult(reading, measurement, target, index);
@@ -47,8 +47,13 @@ function checkTarget(reading: Reading, measurement: Legible<Measurement>, index:
 }
 
 /** Pointers are made only for what is refused: a long list is nearly always right. */
-function checkReferences(reading: Reading, measurement: Legible<Measurement>, index: number): void {
-  const { facility, team, shared } = measurement;
+function checkReferences(
+  reading: Reading,
+  measurement: Legible<Measurement>,
+  target: Target | undefined,
+  index: number,
+): void {
+  const { facility, team, shared, batch } = measurement;
   if (typeof facility === "string" && !reading.facilities.has(facility)) {
     const place = below("/measurements", index, "facility");
     reading.refer(place, facility, reading.facilities, "facility");
@@ -56,8 +61,17 @@ function checkReferences(reading: Reading, measurement: Legible<Measurement>, in
   if (typeof team === "string" && !reading.teams.has(team)) {
     reading.refer(below("/measurements", index, "team"), team, reading.teams, "team");
   }
-  if (shared !== undefined && shared.length > 0) checkShared(reading, measurement, index);
+  if (shared === undefined || shared.length === 0) return;
+  const known = target?.loadings.get(shared);
+  if (known === "right" || (known === "right in a batch" && batch !== null)) return;
+  const before = reading.problems.length;
+  checkShared(reading, measurement, index);
+  if (target === undefined || target.loadings.size >= LOADINGS_KEPT) return;
+  if (reading.problems.length > before) return;
+  target.loadings.set(shared, batch === null ? "right" : "right in a batch");
 }
+
+const LOADINGS_KEPT = 1000;
 
 function checkShared(reading: Reading, measurement: Legible<Measurement>, index: number): void {
   const { shared = [] } = measurement;
@@ -238,6 +252,7 @@ function targetsOf(reading: Reading): Map<string, Target> {
       fromTime: all.filter(({ time }) => isComputable(time)),
       where,
       needed: needed.get(key) ?? new Map<string, string>(),
+      loadings: new Map(),
     });
   }
   return targets;

@@ -13,6 +13,7 @@ type Ruled = { yes: string | null; no: string | null };
  */
 export function checkReports(reading: Reading): void {
   const events = new Map<string, Ruled>();
+  if (![...reading.observables.values()].some(({ scale }) => scale === "event")) return;
   for (const [index, measurement] of (reading.form.measurements ?? []).entries()) {
     if (typeof measurement?.occurred !== "boolean") continue;
     const { occurred, efficiency, falseAlarm, measurand, id, setAside } = measurement;

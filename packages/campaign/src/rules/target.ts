@@ -11,4 +11,6 @@ export type Target = {
   where: [string, number | null, number | null][];
   /** Conditions that a prediction or the reference of a curve uses, each with what uses it. */
   needed: ReadonlyMap<string, string>;
+  /** Lists of shared errors found right: measurements read from a text have equal ones in common. */
+  loadings: Map<readonly unknown[], "right" | "right in a batch">;
 };
