@@ -1,4 +1,4 @@
-import gammainc from "@stdlib/math-base-special-gammainc";
+import { upperGammaRatio } from "./incomplete-gamma";
 import { NumericsError } from "./numerics-error";
 
 /**
@@ -19,5 +19,5 @@ export function chiSquareUpperTail(x: number, dof: number): number {
       `chi-square needs x >= 0 and dof > 0; found x = ${x}, dof = ${dof}`,
     );
   }
-  return x === Infinity ? 0 : gammainc(x / 2, dof / 2, true, true);
+  return upperGammaRatio(dof / 2, x / 2);
 }

@@ -31,12 +31,12 @@ export interface SmoothNoise {
  * Filtering and Smoothing (2013), 4.3 and 12.3; Kelly et al., Astrophys. J. 788 (2014) 33.
  */
 export function whitenSmooth({ x, variance, sd, length, columns }: SmoothNoise): number {
-  checkNoise(variance, sd, length);
+  checkNoise({ x, variance, sd, length, columns });
   const order = Array.from({ length: x.length }, (_, i) => i).sort((a, b) => x[a]! - x[b]!);
   const means = new Float64Array(columns.length);
   const smooth = sd * sd;
   let uncertainty = smooth;
-  let previous = -Infinity;
+  let previous = order.length > 0 ? x[order[0]!]! : 0;
   let logDeterminant = 0;
   for (const i of order) {
     const step = (x[i]! - previous) / length;
@@ -58,14 +58,17 @@ export function whitenSmooth({ x, variance, sd, length, columns }: SmoothNoise):
   return logDeterminant;
 }
 
-function checkNoise(variance: ArrayLike<number>, sd: number, length: number): void {
+function checkNoise({ x, variance, sd, length }: SmoothNoise): void {
   if (!(sd >= 0 && sd < Infinity && length > 0)) {
     throw new NumericsError(
       "out-of-domain",
       `a smooth tolerance needs sd >= 0 and length > 0; found sd = ${sd}, length = ${length}`,
     );
   }
-  for (let i = 0; i < variance.length; i += 1) {
+  for (let i = 0; i < x.length; i += 1) {
+    if (!Number.isFinite(x[i])) {
+      throw new NumericsError("out-of-domain", `row ${i} has no finite place: ${x[i]!}`);
+    }
     if (!(variance[i]! > 0 && variance[i]! < Infinity)) {
       throw new NumericsError(
         "out-of-domain",

@@ -4,8 +4,6 @@ import { addRow, createSystem, type TriangularSystem } from "./triangular-system
 import { trustRegionStep } from "./trust-region-step";
 
 const EPSILON = 2 ** -52;
-/** First radius over |D x|: further out, exponentials overshoot into regions where they are flat. */
-const FIRST_RADIUS = 1;
 
 export interface LeastSquaresProblem {
   /** How many residuals. */
@@ -178,8 +176,9 @@ function updateScale(state: State, first: boolean): void {
     else scale[j] = Math.max(scale[j]!, columnNorms[j]!);
   }
   if (first) {
+    // No further than x itself: exponentials overshoot into regions where they are flat.
     const length = norm(x.map((value, j) => value * scale[j]!));
-    state.radius = FIRST_RADIUS * length || FIRST_RADIUS;
+    state.radius = length || state.length;
   }
 }
 

@@ -1,11 +1,15 @@
 import { describe, expect, test } from "vitest";
 import fixture from "./fixtures/log-normal-interval.json";
+import quantiles from "./fixtures/normal-quantile.json";
 import { NumericsError } from "./numerics-error";
 import {
   logNormalCdf,
   logNormalInterval,
+  logNormalPdf,
   normalCdf,
   normalInterval,
+  normalQuantile,
+  normalUpperQuantile,
   truncatedNormalQuantile,
 } from "./normal";
 
@@ -48,4 +52,24 @@ test("the distribution function and its log agree on both sides of 0", () => {
     const cdf = normalCdf(z);
     expect(Math.abs(Math.exp(logNormalCdf(z)) / cdf - 1)).toBeLessThan(1e-12);
   }
+});
+
+test.each(quantiles.rows)("the normal exceeded with probability %d is mpmath's", (q, z) => {
+  // What q's own last digit is worth, eps q / phi(z), comes on top near 0.
+  const allowed = 1e-14 * Math.abs(z!) + (2 ** -52 * q!) / Math.exp(logNormalPdf(z!));
+  expect(Math.abs(normalUpperQuantile(q!) - z!)).toBeLessThanOrEqual(allowed);
+  expect(Math.abs(normalQuantile(q!) + z!)).toBeLessThanOrEqual(allowed);
+});
+
+test("a normal's quantiles end at infinity and refuse what is no probability", () => {
+  expect(normalQuantile(0)).toBe(-Infinity);
+  expect(normalUpperQuantile(0)).toBe(Infinity);
+  expect(normalQuantile(1)).toBe(Infinity);
+  expect(() => normalQuantile(-1e-300)).toThrow(NumericsError);
+  expect(() => normalUpperQuantile(NaN)).toThrow(NumericsError);
+});
+
+test("a share of a cut normal's mass is found where the share itself is 1e-20 of it", () => {
+  const u = truncatedNormalQuantile(-50, 50, 1e-20);
+  expect(Math.abs(normalCdf(u) / 1e-20 - 1)).toBeLessThan(1e-12);
 });

@@ -60,7 +60,11 @@ export function normalUpperQuantile(q: number): number {
   if (!(q >= 0 && q <= 1)) {
     throw new NumericsError("out-of-domain", `a quantile needs a probability; found ${q}`);
   }
-  return Math.SQRT2 * erfcinv(2 * q);
+  const z = Math.SQRT2 * erfcinv(2 * q);
+  if (z < 30 || z === Infinity) return z;
+  // Out here erfcinv is right to 1e-13 only: one Newton step on ln Q, whose slope is -phi / Q.
+  const logTail = logNormalCdf(-z);
+  return z + (logTail - Math.log(q)) * Math.exp(logTail - logNormalPdf(z));
 }
 
 /**

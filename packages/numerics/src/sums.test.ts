@@ -1,6 +1,7 @@
 import { expect, test } from "vitest";
 import { binomialUpperTail } from "./binomial";
 import { chiSquareUpperTail } from "./chi-square";
+import binomialTails from "./fixtures/binomial-tails.json";
 import { logSumExp } from "./log-sum-exp";
 import { NumericsError } from "./numerics-error";
 
@@ -16,6 +17,11 @@ test("binomial tails are the textbook's", () => {
   expect(binomialUpperTail(2, 2, 0.01)).toBeCloseTo(1e-4, 18);
   expect(binomialUpperTail(8, 10, 0.5)).toBeCloseTo(56 / 1024, 15);
   expect(binomialUpperTail(0, 5, 0.3)).toBe(1);
+});
+
+test.each(binomialTails.rows)("P(X >= %d) of %d at %d is mpmath's", (k, n, p, tail) => {
+  // 1e-12: the target of the engine's distribution functions.
+  expect(Math.abs(binomialUpperTail(k!, n!, p!) / tail! - 1)).toBeLessThan(1e-12);
 });
 
 test("a chi-square tail refuses what is out of its domain", () => {
