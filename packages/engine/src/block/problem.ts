@@ -92,29 +92,21 @@ export interface SmoothProcess {
   x: Float64Array;
 }
 
-/** A likelihood of a row that isn't Gaussian in mu. factors.ts makes them. */
-export type Factor = CensoredFactor | SmoothFactor;
-
-/** Phi(side (limit - mu) / sd): below the limit (side 1) or above it (-1). */
-export interface CensoredFactor {
-  kind: "censored";
-  /** Counted from the row's centre, as mu is. */
-  limit: number;
-  sd: number;
-  side: 1 | -1;
-}
-
-/** Any ln L(mu), mu counted from the row's centre. */
-export interface SmoothFactor {
-  kind: "smooth";
+/**
+ * A likelihood of a row that isn't Gaussian in mu, mu counted from the row's centre. factors.ts
+ * makes them.
+ */
+export interface Factor {
   ln(mu: number): number;
   /** Where it varies, and over what distance. */
   centre: number;
   scale: number;
   /** Where it has kinks. */
   breaks: readonly number[];
-  /** Its residual in chi-square; null where it isn't counted there. */
+  /** Its residual in chi-square, squared there; null where it isn't counted. */
   residual: ((mu: number) => number) | null;
+  /** The same as exp(lnScale) P(lower < mu + sd n < upper), n ~ N(0, 1); null where it isn't. */
+  box: { lower: number; upper: number; sd: number; lnScale: number } | null;
 }
 
 /** `normal`: N(0, 1). `flat`: constant over its bounds; `width` as well as the two can tell it. */
@@ -179,21 +171,30 @@ export interface BlockEvidence {
   error: number;
   /** Posterior share of each scenario. */
   scenarioShares: Float64Array;
-  /** What was found on the way, for posterior.ts. */
-  pieces: readonly PosteriorPiece[];
+  /** Numbers of outer and of linear unknowns. */
+  unknowns: { outer: number; linear: number };
+  /** The posterior, worked out when it is asked for; none where the likelihood is zero. */
+  posterior(): readonly PosteriorPiece[];
+  /** Posterior quantile of an outer unknown's value; null where only the pieces tell it. */
+  outerQuantile: ((unknown: number, p: number) => number) | null;
 }
 
-/**
- * A part of the posterior: outer values with a weight, and the linear unknowns as a Gaussian, given
- * (where `fixed` has them) the values of those that were integrated numerically.
- */
+/** A part of the posterior: values of the outer unknowns with a weight. Weights add up to 1. */
 export interface PosteriorPiece {
   weight: number;
   scenario: number;
   outer: Float64Array;
+  linear(): LinearPosterior;
+}
+
+/**
+ * The linear unknowns as a Gaussian, given a piece's outer values (and given those linear unknowns
+ * that were integrated numerically, in whose directions the spread is 0).
+ */
+export interface LinearPosterior {
   mean: Float64Array;
-  /** k columns, each as long as `mean`: covariance = sum of column column'. */
-  factor: readonly Float64Array[];
+  /** Standard deviation of sum_k loadings_k z_k. */
+  spread(loadings: Float64Array): number;
 }
 
 /** The penalised minimum (section 5 of the statistics) over everything unknown. */

@@ -1,0 +1,145 @@
+import type { CubeMode } from "@weighhouse/numerics/cube-integral";
+import { integrateUnitCube } from "@weighhouse/numerics/log-integral";
+import { LN_SQRT_2PI, normalCdf, truncatedNormalQuantile } from "@weighhouse/numerics/normal";
+import type { Axis, Coordinate } from "./coordinates";
+import { climb, type Mode } from "./modes";
+
+export interface Integral {
+  ln: number;
+  error: number;
+  /** n points, each an array of coordinates, and their posterior weights, which add up to 1. */
+  points: Float64Array[];
+  weights: Float64Array;
+  /** Up to three dimensions: the posterior probability that one coordinate is at most c. */
+  cdf: ((axis: number, c: number) => number) | null;
+}
+
+/** An infinite axis is laid out so that this many widths about every peak are well inside. */
+const MARGIN = 9;
+/** Where the standard normal is cut: beyond, (0, 1) has no numbers left. */
+const REACH = 8;
+
+/**
+ * ln of the integral of exp(lnDensity) over the coordinates, priors included in it.
+ *
+ * Peaks are climbed to from the starts and handed to the integrator. Infinite axes are laid onto
+ * (0, 1) by a normal distribution wide enough for the peaks, whatever their priors.
+ *
+ * @param starts coordinates; those where the density is 0 lead nowhere
+ */
+export function integrate(
+  lnDensity: (c: Float64Array) => number,
+  coordinates: readonly Coordinate[],
+  { starts, seed }: { starts: readonly Float64Array[]; seed: number },
+): Integral {
+  const size = coordinates.length;
+  const modes = peaksOf(lnDensity, coordinates, starts);
+  const axes = coordinates.map((one, j) => axisOf(one, modes, j));
+  const c = new Float64Array(size);
+  const onCube = (u: Float64Array) => {
+    let ln = 0;
+    for (let j = 0; j < size; j += 1) {
+      c[j] = axes[j]!.toCoordinate(u[j]!);
+      ln += axes[j]!.lnJacobian(u[j]!);
+    }
+    return lnDensity(c) + ln;
+  };
+  const found = integrateUnitCube(onCube, size, {
+    seed,
+    modes: modes.map((mode) => cubeMode(mode, axes)),
+    breaks: coordinates.map(({ breaks }, j) => {
+      const places = breaks.map((at) => axes[j]!.toUnit(at)).filter((u) => u > 0 && u < 1);
+      return [...new Set(places)].sort((a, b) => a - b);
+    }),
+  });
+  const { points, lnWeights } = found.nodes;
+  const { cdf } = found;
+  return {
+    ln: found.ln,
+    error: found.error,
+    points: Array.from(lnWeights, (_, n) =>
+      Float64Array.from(axes, (axis, j) => axis.toCoordinate(points[n * size + j]!)),
+    ),
+    weights: Float64Array.from(lnWeights, Math.exp),
+    cdf: cdf === undefined ? null : (axis, at) => cdf(axis, axes[axis]!.toUnit(at)),
+  };
+}
+
+function peaksOf(
+  lnDensity: (c: Float64Array) => number,
+  coordinates: readonly Coordinate[],
+  starts: readonly Float64Array[],
+): Mode[] {
+  const landscape = {
+    ln: lnDensity,
+    lower: Float64Array.from(coordinates, ({ lower }) => lower),
+    upper: Float64Array.from(coordinates, ({ upper }) => upper),
+    step: Float64Array.from(coordinates, ({ lower, upper }) => Math.min((upper - lower) / 10, 0.5)),
+  };
+  const modes: Mode[] = [];
+  for (const start of starts) {
+    const mode = climb(landscape, start);
+    if (mode === null) continue;
+    if (!modes.some((one) => isSame(one, mode))) modes.push(mode);
+  }
+  modes.sort((a, b) => b.height - a.height);
+  return modes.filter(({ height }) => height > modes[0]!.height - 60);
+}
+
+/** Whether two peaks are the same: centres within a standard deviation of the first. */
+function isSame(one: Mode, other: Mode): boolean {
+  const size = one.centre.length;
+  let squares = 0;
+  const y = new Float64Array(size);
+  for (let i = 0; i < size; i += 1) {
+    let rest = other.centre[i]! - one.centre[i]!;
+    for (let k = 0; k < i; k += 1) rest -= one.scale[i * size + k]! * y[k]!;
+    y[i] = rest / one.scale[i * size + i]!;
+    squares += y[i]! * y[i]!;
+  }
+  return squares < 1;
+}
+
+function axisOf({ lower, upper }: Coordinate, modes: readonly Mode[], j: number): Axis {
+  if (lower > -Infinity && upper < Infinity) {
+    const width = upper - lower;
+    const ln = Math.log(width);
+    return {
+      toCoordinate: (u) => lower + u * width,
+      toUnit: (c) => (c - lower) / width,
+      lnJacobian: () => ln,
+    };
+  }
+  let spread = 1;
+  for (const mode of modes) {
+    spread = Math.max(spread, (Math.abs(mode.centre[j]!) + MARGIN * widthOf(mode, j)) / REACH);
+  }
+  // The share of the normal that the bounds keep: all, or the upper half from 0 on.
+  const half = lower > -Infinity;
+  const lnScale = Math.log(spread) + LN_SQRT_2PI - (half ? Math.LN2 : 0);
+  const normal = (u: number) => truncatedNormalQuantile(half ? 0 : -Infinity, Infinity, u);
+  return {
+    toCoordinate: (u) => spread * normal(u) + (half ? lower : 0),
+    toUnit: (c) => {
+      const p = normalCdf((c - (half ? lower : 0)) / spread);
+      return half ? 2 * p - 1 : p;
+    },
+    lnJacobian: (u) => normal(u) ** 2 / 2 + lnScale,
+  };
+}
+
+function widthOf({ scale, centre }: Mode, j: number): number {
+  const size = centre.length;
+  return Math.hypot(...scale.subarray(j * size, j * size + j + 1));
+}
+
+/** A peak in units of the cube, its widths scaled by du/dc there. */
+function cubeMode({ centre, scale }: Mode, axes: readonly Axis[]): CubeMode {
+  const size = centre.length;
+  const units = Float64Array.from(axes, (axis, j) => axis.toUnit(centre[j]!));
+  const shrunk = Float64Array.from(scale, (value, n) => {
+    const i = Math.floor(n / size);
+    return value * Math.exp(-axes[i]!.lnJacobian(Math.min(Math.max(units[i]!, 1e-300), 1 - 1e-16)));
+  });
+  return { centre: units, scale: shrunk };
+}

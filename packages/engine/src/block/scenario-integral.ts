@@ -1,0 +1,36 @@
+import type { Integrand } from "./integrand";
+import { integrate, type Integral } from "./integrate";
+import type { BlockRefusal } from "./problem";
+import { startsOf } from "./starts";
+import type { Workbench } from "./workbench";
+
+const MOST_DIMENSIONS = 30;
+
+export interface ScenarioEvidence {
+  integrand: Integrand;
+  integral: Integral;
+}
+
+/** Over the integrand's coordinates; one point where there are none. */
+export function integralOf(
+  bench: Workbench,
+  integrand: Integrand,
+): Integral | { refusal: BlockRefusal } {
+  const { coordinates } = integrand;
+  const dimensions = coordinates.length;
+  if (dimensions > MOST_DIMENSIONS) {
+    return { refusal: { kind: "too-many-unknowns", dimensions, limit: MOST_DIMENSIONS } };
+  }
+  let integral: Integral;
+  if (dimensions === 0) {
+    const point = new Float64Array(0);
+    const { ln, error } = integrand.lnWithError(point);
+    integral = { ln, error, points: [point], weights: Float64Array.of(1), cdf: null };
+  } else {
+    const { seed } = bench.layout.problem;
+    const starts = startsOf(bench, integrand);
+    integral = integrate((c) => integrand.lnWithError(c).ln, coordinates, { starts, seed });
+  }
+  const singular = integrand.singular();
+  return singular === null ? integral : { refusal: { kind: "singular", rows: singular } };
+}
