@@ -20,7 +20,7 @@ export interface DensityRange {
   upper: number;
   /** Kinks, and places about which it may be narrow. At least one where an end is infinite. */
   breaks: readonly number[];
-  /** > 0: how far beyond the outermost break to look first, where the range is unbounded. */
+  /** > 0: of the narrowest that is about a break; how far to look first beyond the outermost. */
   scale: number;
 }
 
@@ -36,14 +36,17 @@ const MOST_PANELS = 4000;
  *
  * @param ln smooth between the breaks; -Infinity allowed
  * @returns null where it is zero, or not finite, everywhere
- * Accuracy: masses to 1e-12 of the whole, where no peak is narrower than 1e-3 of its distance to
+ * Accuracy: masses to 1e-12 of the whole, where no peak is narrower than a tenth of its distance to
  *   the nearest break.
  */
 export function densityOf(ln: (x: number) => number, range: DensityRange): Density | null {
   const places = placesOf(ln, range);
   const height = highest(ln, places);
   if (!Number.isFinite(height)) return null;
-  const edges = cutPanels((x) => Math.exp(ln(x) - height), startingEdges(ln, places, height));
+  const edges = cutPanels(
+    (x) => Math.exp(ln(x) - height),
+    startingEdges(ln, places, { height, scale: range.scale }),
+  );
   const panels = edges.length - 1;
   const f = (x: number) => Math.exp(ln(x) - height);
   const masses = new Float64Array(panels);
@@ -167,18 +170,22 @@ function at(ln: (x: number) => number, x: number): number {
   return Number.isNaN(value) ? -Infinity : value;
 }
 
-/** The places and what is between them, without the ends that count for nothing. */
+/**
+ * The places and what is between them, without the ends that count for nothing: evenly, and in steps
+ * that double away from each place, so that a peak about one isn't passed over in a long stretch.
+ */
 function startingEdges(
   ln: (x: number) => number,
   places: readonly number[],
-  height: number,
+  { height, scale }: { height: number; scale: number },
 ): number[] {
-  const edges: number[] = [];
+  const all = new Set(places);
   for (let i = 0; i + 1 < places.length; i += 1) {
-    const step = (places[i + 1]! - places[i]!) / LOOKS;
-    for (let k = 0; k < LOOKS; k += 1) edges.push(places[i]! + k * step);
+    const [a, b] = [places[i]!, places[i + 1]!];
+    for (let k = 1; k < LOOKS; k += 1) all.add(a + (k * (b - a)) / LOOKS);
+    for (let reach = scale; reach < (b - a) / LOOKS; reach *= 2) all.add(a + reach).add(b - reach);
   }
-  edges.push(places.at(-1)!);
+  const edges = [...all].sort((a, b) => a - b);
   const counts = (x: number | undefined) => x !== undefined && at(ln, x) > height - NEGLIGIBLE;
   let [first, last] = [0, edges.length - 1];
   while (first + 1 < last && !counts(edges[first]) && !counts(edges[first + 1])) first += 1;
