@@ -8,7 +8,8 @@ export interface ScalarMinimum {
  * A local minimum of f on [lower, upper] by golden section and parabolas; of a function that falls
  * and then rises, the minimum.
  *
- * @param f its values that aren't numbers count as Infinity
+ * @param f its values that aren't numbers count as Infinity; where all that is seen at first is that, no
+ *   minimum is found
  * @param tolerance wanted width of the bracket relative to |x|, not below 1.5e-8: around a minimum
  *   the values of f tell no more
  * Source: R. P. Brent, Algorithms for Minimization without Derivatives (1973), ch. 5 (localmin).
