@@ -122,9 +122,110 @@ describe("the preview of a prediction", () => {
     expect(refused({ measurand: "z", expected: -4, tolerance: null }, 1)).toEqual([
       "/expected out-of-range",
     ]);
-    const interval = { family: "interval", lower: 1, upper: 2, sharing: "common" } as const;
-    expect(refused({ measurand: "x", expected: null, tolerance: interval }, 1)).toEqual([
-      "/tolerance/family not-yet-supported",
-    ]);
+  });
+});
+
+describe("the preview of other forms", () => {
+  const more = documentFrom({
+    observables: [
+      {
+        key: "o",
+        title: "O",
+        unit: "m",
+        scale: "linear",
+        conditions: [{ key: "depth", unit: "m" }],
+      },
+      { key: "angle", title: "A", unit: "deg", scale: "cyclic", period: 360 },
+      { key: "seen", title: "E", scale: "event" },
+      { key: "clicks", title: "C", unit: "1", scale: "count" },
+    ],
+    measurands: [
+      { key: "x", observable: "o", reference: { family: "uniform", lower: 0, upper: 10 } },
+      {
+        key: "curve",
+        observable: "o",
+        shape: "curve",
+        where: { depth: [0, 10] },
+        reference: { family: "polynomial", in: "depth", degree: 1, centre: 5, sd: 3 },
+      },
+      { key: "bearing", observable: "angle" },
+      { key: "event", observable: "seen" },
+      { key: "rate", observable: "clicks", reference: { family: "gamma", mean: 20, sd: 20 } },
+    ],
+  });
+  const of = (draft: PredictionDraft, sd = 0.1) => {
+    const made = previewPrediction(more, draft, { sd });
+    if (!made.ok) throw new Error(JSON.stringify(made.problems));
+    return made.value;
+  };
+
+  test("hard bounds pass 1.6449 u inside them and fail 2.3263 u beyond (normal table)", () => {
+    const tolerance = { family: "interval", lower: 2, upper: 4, sharing: "common" } as const;
+    const { expected, passes, fails, interval } = of({ measurand: "x", expected: null, tolerance });
+    expect(expected).toBe(3);
+    expect(interval).toEqual({ lower: 2, upper: 4 });
+    expect(passes!.lower).toBeCloseTo(2.16449, 5);
+    expect(passes!.upper).toBeCloseTo(3.83551, 5);
+    expect(fails.below).toBeCloseTo(2 - 0.23263, 5);
+    expect(fails.above).toBeCloseTo(4 + 0.23263, 5);
+  });
+
+  test("a bound on one side lets everything on the other pass", () => {
+    const tolerance = { family: "atMost", bound: 3, sharing: "common" } as const;
+    const { passes, fails, interval } = of({ measurand: "x", expected: null, tolerance });
+    expect(interval).toEqual({ lower: null, upper: 3 });
+    expect(passes!.lower).toBeNull();
+    expect(passes!.upper).toBeCloseTo(2.83551, 5);
+    expect(fails.below).toBeNull();
+    expect(fails.above).toBeCloseTo(3.23263, 5);
+  });
+
+  test("two half-normals are wider on the side where they are said to be", () => {
+    const tolerance = { family: "splitNormal", plus: 2, minus: 0.5, sharing: "common" } as const;
+    const { passes, interval } = of({ measurand: "x", expected: 4, tolerance });
+    expect(interval.upper! - 4).toBeGreaterThan(3 * (4 - interval.lower!));
+    expect(passes!.upper! - 4).toBeGreaterThan(3 * (4 - passes!.lower!));
+  });
+
+  test("a bearing's interval runs through the circle's end", () => {
+    const draft = { measurand: "bearing", expected: 359, tolerance: normal(2) };
+    const { interval, passes } = of(draft, 0.5);
+    expect(interval).toEqual({ lower: 355, upper: 3 });
+    expect(passes!.lower).toBeLessThan(359);
+  });
+
+  test("a rate passes on counts, which are whole", () => {
+    const tolerance = { family: "gamma", mean: 30, sd: 10, sharing: "common" } as const;
+    const { passes, fails } = of({ measurand: "rate", expected: null, tolerance });
+    expect(Number.isInteger(passes!.lower)).toBe(true);
+    expect(Number.isInteger(fails.above)).toBe(true);
+    expect(passes!.lower).toBeLessThan(passes!.upper!);
+    expect(fails.above).toBeGreaterThan(passes!.upper!);
+  });
+
+  test("a called event earns log10 of p against 1/2", () => {
+    const draft = { measurand: "event", expected: null, tolerance: null, probability: 0.9 };
+    const { passes, fails, hit, miss } = of(draft);
+    expect(passes).toEqual({ lower: 1, upper: 1 });
+    expect(fails).toEqual({ below: 0, above: null });
+    expect(hit.log10BayesFactor).toBeCloseTo(Math.log10(1.8), 12);
+    expect(miss!.log10BayesFactor).toBeCloseTo(Math.log10(0.2), 12);
+  });
+
+  test("what hangs on a parameter is looked at over its prior", () => {
+    const parameters = [
+      { key: "q", title: "q", unit: null, prior: { family: "normal", mean: 5, sd: 0.3 } as const },
+    ];
+    const draft = { measurand: "x", expected: "q", tolerance: normal(0.4) };
+    const { interval } = of({ ...draft, hypothesis: { parameters, tables: [], ensemble: null } });
+    expect(interval.lower).toBeCloseTo(4, 12);
+    expect(interval.upper).toBeCloseTo(6, 12);
+  });
+
+  test("on a curve one measurement in the middle of its range is supposed", () => {
+    const draft = { measurand: "curve", expected: "5 + 0 * depth", tolerance: normal(0.2) };
+    const { hit, miss } = of(draft);
+    expect(hit.log10BayesFactor).toBeGreaterThan(0);
+    expect(miss!.log10BayesFactor).toBeLessThan(0);
   });
 });

@@ -1,20 +1,24 @@
-import type { CampaignDocument, Prediction, Scale } from "@weighhouse/campaign/document";
+import type { CampaignDocument, Hypothesis, Prediction } from "@weighhouse/campaign/document";
 import type { Problem, Result } from "@weighhouse/campaign/problem";
-import type { VerdictWord } from "@weighhouse/campaign/standings";
-import { evidence } from "./evidence";
 import { compileFrame } from "./compile-frame";
+import { quantile } from "./distribution/distribution";
 import type { Frame, PredictionFrame } from "./frame";
-import { naturalInterval, toNatural } from "./scoring-space";
-import { addReading, createSums } from "./sums";
-import { isOutsideReference, referenceRange } from "./tally";
-import { verdictOf } from "./verdict";
-import { shareOfReference } from "./warnings";
-import { createWorkspace, onlyMeasurand } from "./workspace";
+import { naturalInterval } from "./natural-interval";
+import { predictiveOf } from "./predictive";
+import { edgesOf } from "./preview-edges";
+import { isOutsideReference, referenceRange, shareOfReference } from "./reference-range";
+import { toNatural } from "./scoring-space";
+import { outcomeOf, type Supposed } from "./supposed-reading";
+import { intervalOf } from "./verdict";
 
 export interface PredictionDraft {
   measurand: string;
   expected: Prediction["expected"];
   tolerance: Prediction["tolerance"];
+  /** Of an event. */
+  probability?: Prediction["probability"];
+  /** What its expression names, beside conditions. */
+  hypothesis?: Pick<Hypothesis, "parameters" | "tables" | "ensemble">;
 }
 
 /** Values in the observable's unit (natural also on log10); an unbounded end is null. */
@@ -24,6 +28,7 @@ export interface ValueRange {
 }
 
 export interface PredictionPreview {
+  /** The number expected; else the predictive's median, of hard bounds the middle; an event's probability. */
   expected: number;
   /** What the verdict takes as the prediction's interval; lower = upper for an exact prediction. */
   interval: ValueRange;
@@ -33,7 +38,10 @@ export interface PredictionPreview {
   shareOfReference: number;
   /** The value expected lies outside the reference's range. */
   outsideReference: boolean;
-  /** Measured values that would pass; null where a measurement so coarse can't pass. */
+  /**
+   * Measured values that would pass, an end that none is beyond null; null where a measurement so
+   * coarse can't pass. Counts for a rate; 1 and 0 are an event's yes and no.
+   */
   passes: ValueRange | null;
   /** Measured values at or below `below`, or at or above `above`, would fail; null where none would. */
   fails: { below: number | null; above: number | null };
@@ -44,40 +52,52 @@ export interface PredictionPreview {
 }
 
 /**
- * What one measurement of that sd (in the observable's unit; dex on log10) would make of a
- * prediction, by the same steps that score one.
+ * What one measurement would make of a prediction, by the same steps that score one.
+ *
+ * @param supposed its sd in the observable's unit (dex on log10); of a count its exposure (1 unless
+ *   given), of an event its efficiency and false alarm (1 and 0 unless given); on a curve its
+ *   conditions (the middle of the measurand's ranges unless given)
  */
 export function previewPrediction(
   document: CampaignDocument,
   draft: PredictionDraft,
-  { sd }: { sd: number },
+  supposed: Supposed,
 ): Result<PredictionPreview> {
+  const { sd } = supposed;
   if (!(sd > 0 && Number.isFinite(sd))) return refused("/sd", String(sd), "a number above 0");
-  if (!document.measurands.some(({ key }) => key === draft.measurand)) {
+  if (![...document.measurands, ...document.derived].some(({ key }) => key === draft.measurand)) {
     return refused("/measurand", `"${draft.measurand}"`, "a measurand of the campaign");
   }
   const compiled = compileFrame(documentOf(document, draft));
   if (!compiled.ok) return { ok: false, problems: compiled.problems.map(ofDraft) };
   const frame = compiled.value;
-  return { ok: true, value: preview(frame, frame.hypotheses[0]!.predictions[0]!, sd) };
+  return { ok: true, value: preview(frame, frame.hypotheses[0]!.predictions[0]!, supposed) };
 }
 
 function refused(pointer: string, found: string, allowed: string): Result<never> {
   return { ok: false, problems: [{ pointer, code: "out-of-range", found, allowed }] };
 }
 
-/** The campaign with this measurand and a hypothesis of this prediction only. */
+/**
+ * The campaign with this measurand and a hypothesis of this prediction only. A derived value is
+ * looked at as if it were measured itself.
+ */
 function documentOf(document: CampaignDocument, draft: PredictionDraft): CampaignDocument {
+  const { measurand, expected, tolerance, probability = null, hypothesis } = draft;
   const prediction: Prediction = {
-    ...draft,
-    probability: null,
+    measurand,
+    expected,
+    tolerance,
+    probability,
     given: null,
     decisive: false,
     registeredAt: null,
   };
+  const derived = document.derived.find(({ key }) => key === measurand);
+  const own = document.measurands.filter(({ key }) => key === measurand);
   return {
     ...document,
-    measurands: document.measurands.filter(({ key }) => key === draft.measurand),
+    measurands: derived === undefined ? own : [asMeasured(derived)],
     derived: [],
     correlations: [],
     measurements: [],
@@ -90,9 +110,9 @@ function documentOf(document: CampaignDocument, draft: PredictionDraft): Campaig
         group: null,
         weight: 1,
         withheld: [],
-        parameters: [],
-        tables: [],
-        ensemble: null,
+        parameters: hypothesis?.parameters ?? [],
+        tables: hypothesis?.tables ?? [],
+        ensemble: hypothesis?.ensemble ?? null,
         toleranceCorrelations: [],
         registeredAt: null,
         predictions: [prediction],
@@ -101,100 +121,129 @@ function documentOf(document: CampaignDocument, draft: PredictionDraft): Campaig
   };
 }
 
+function asMeasured({
+  key,
+  observable,
+  title,
+  reference,
+}: CampaignDocument["derived"][number]): CampaignDocument["measurands"][number] {
+  return {
+    key,
+    observable,
+    title,
+    window: { from: null, to: null },
+    where: {},
+    shape: "constant",
+    scatter: 0,
+    reference,
+    thresholds: [],
+    closed: null,
+    firstPostedAt: null,
+    firstObservedAt: null,
+  };
+}
+
 /** Pointers below the one prediction become pointers into the draft. */
 function ofDraft(problem: Problem): Problem {
   return { ...problem, pointer: problem.pointer.replace(/^\/hypotheses\/0\/predictions\/0/, "") };
 }
 
-function preview(frame: Frame, prediction: PredictionFrame, sd: number): PredictionPreview {
+function preview(frame: Frame, prediction: PredictionFrame, supposed: Supposed): PredictionPreview {
+  if (prediction.tolerance.family === "event") return ofEvent(frame, prediction, supposed);
   const { scale } = frame.measurands[0]!;
-  const expected = prediction.expected!;
-  const measured = (y: number) => ifMeasured(frame, prediction, { y, sd });
+  const middle = middleOf(frame, prediction);
   const range = referenceRange(frame, 0);
-  // Beyond this nothing changes any more: further out every verdict is the same.
-  const reach = 50 * (sd + prediction.sd!) + 2 * (range.upper - range.lower);
-  const failsAbove = edgeOfFailing(measured, expected, reach);
-  const failsBelow = edgeOfFailing(measured, expected, -reach);
+  const interval = naturalInterval(frame, prediction);
+  const bounds = intervalOf(frame, prediction);
+  const counting = scale === "count";
+  const exposure = supposed.exposure ?? 1;
+  const measured = (y: number) => outcomeOf(frame, prediction, { y, supposed });
+  // Of counts everything is looked at in whole ones.
+  const expected = counting ? Math.round(middle * exposure) : middle;
+  const edges = edgesOf(measured, {
+    middle: expected,
+    reach: reachOf(frame, { bounds, range, sd: supposed.sd }) * (counting ? exposure : 1),
+    whole: counting,
+  });
   const natural = (y: number | null) => (y === null ? null : toNatural(y, scale));
-  const nearest = nearestTo(expected, failsBelow, failsAbove);
+  const nearest = nearestTo(expected, edges.failsBelow, edges.failsAbove);
   return {
-    expected: prediction.natural!,
-    interval: naturalInterval(prediction, scale),
-    reference: naturalRange(range, scale),
-    shareOfReference: shareOfReference(frame, 0, prediction.interval!),
-    outsideReference: isOutsideReference(frame, 0, expected),
+    expected: prediction.natural ?? toNatural(middle, scale),
+    interval: { lower: finite(interval.lower), upper: finite(interval.upper) },
+    reference: { lower: finite(natural(range.lower)), upper: finite(natural(range.upper)) },
+    shareOfReference: bounds === null ? 0 : shareOfReference(frame, 0, bounds),
+    outsideReference: isOutsideReference(frame, 0, { y: middle }),
     passes:
-      measured(expected).word === "pass"
-        ? naturalRange(
-            {
-              lower: edgeOfPassing(measured, expected, -reach),
-              upper: edgeOfPassing(measured, expected, reach),
-            },
-            scale,
-          )
-        : null,
-    fails: { below: natural(failsBelow), above: natural(failsAbove) },
-    hit: { log10BayesFactor: measured(expected).log10B },
+      edges.passes === null
+        ? null
+        : { lower: natural(edges.passes.lower), upper: natural(edges.passes.upper) },
+    fails: { below: natural(edges.failsBelow), above: natural(edges.failsAbove) },
+    hit: { log10BayesFactor: measured(expected).log10B() },
     miss:
       nearest === null
         ? null
-        : { value: toNatural(nearest, scale), log10BayesFactor: measured(nearest).log10B },
+        : { value: toNatural(nearest, scale), log10BayesFactor: measured(nearest).log10B() },
   };
 }
 
-function naturalRange({ lower, upper }: { lower: number; upper: number }, scale: Scale) {
-  return { lower: toNatural(lower, scale), upper: toNatural(upper, scale) };
+/** What is expected, in scoring space; the middle of hard bounds. */
+function middleOf(frame: Frame, prediction: PredictionFrame): number {
+  const { expected, tolerance } = prediction;
+  if (expected !== null) return expected;
+  if ("width" in tolerance) return tolerance.lower + tolerance.width / 2;
+  const predictive = predictiveOf(frame, prediction);
+  if (predictive !== null) return quantile(predictive, 0.5);
+  const range = referenceRange(frame, 0);
+  return (range.lower + range.upper) / 2;
 }
 
-interface Outcome {
-  word: VerdictWord;
-  log10B: number;
-}
-
-function ifMeasured(
+/** Beyond this nothing changes any more: further out every verdict is the same. */
+function reachOf(
   frame: Frame,
-  prediction: PredictionFrame,
-  { y, sd }: { y: number; sd: number },
-): Outcome {
-  const sums = createSums(frame.measurands);
-  const told = { form: "value" as const, y, variance: sd * sd };
-  const reading = { id: "measured", measurand: 0, told, conditions: [], loadings: [] };
-  addReading(sums, { ...reading, unknownUnit: null, provisional: false }, frame);
-  const workspace = createWorkspace(frame, sums);
-  const own = evidence(workspace, onlyMeasurand(workspace, 0, prediction.role)).ln;
-  const reference = evidence(workspace, onlyMeasurand(workspace, 0, 0)).ln;
+  {
+    bounds,
+    range,
+    sd,
+  }: {
+    bounds: { lower: number; upper: number } | null;
+    range: { lower: number; upper: number };
+    sd: number;
+  },
+): number {
+  const { period } = frame.measurands[0]!;
+  if (period > 0) return period / 2;
+  const width = bounds === null ? 0 : bounds.upper - bounds.lower;
+  const wide = [width, range.upper - range.lower].filter(Number.isFinite);
+  return 50 * sd + 15 * Math.max(0, ...wide);
+}
+
+/** A report that comes out as called, or not. */
+function ofEvent(frame: Frame, prediction: PredictionFrame, supposed: Supposed): PredictionPreview {
+  const { tolerance } = prediction;
+  const probability = tolerance.family === "event" ? tolerance.probability : 0.5;
+  const called = probability >= 0.5 ? 1 : 0;
+  const [hit, miss] = [called, 1 - called].map((y) =>
+    outcomeOf(frame, prediction, { y, supposed }),
+  );
+  const none = { lower: null, upper: null };
   return {
-    word: verdictOf(workspace, prediction).word,
-    log10B: (own - reference) / Math.LN10,
+    expected: probability,
+    interval: none,
+    reference: none,
+    shareOfReference: 0,
+    outsideReference: false,
+    passes: hit!.word() === "pass" ? { lower: called, upper: called } : null,
+    fails: {
+      below: miss!.word() === "fail" && called === 1 ? 0 : null,
+      above: miss!.word() === "fail" && called === 0 ? 1 : null,
+    },
+    hit: { log10BayesFactor: hit!.log10B() },
+    miss: { value: 1 - called, log10BayesFactor: miss!.log10B() },
   };
 }
 
-/** The furthest value from the expected one, that way, that still passes. */
-function edgeOfPassing(measured: (y: number) => Outcome, from: number, reach: number): number {
-  return bisect((y) => measured(y).word === "pass", from, from + reach);
-}
-
-/** The nearest value to the expected one, that way, that fails; null where even the far end doesn't. */
-function edgeOfFailing(
-  measured: (y: number) => Outcome,
-  from: number,
-  reach: number,
-): number | null {
-  if (measured(from + reach).word !== "fail") return null;
-  if (measured(from).word === "fail") return from;
-  return bisect((y) => measured(y).word === "fail", from + reach, from);
-}
-
-/** The last value on the way from `inside`, where the test holds, to `outside`, where it doesn't. */
-function bisect(holds: (y: number) => boolean, inside: number, outside: number): number {
-  let [a, b] = [inside, outside];
-  for (let step = 0; step < 200; step += 1) {
-    const middle = (a + b) / 2;
-    if (middle === a || middle === b) break;
-    if (holds(middle)) a = middle;
-    else b = middle;
-  }
-  return a;
+function finite(value: number | null): number | null {
+  return value !== null && Number.isFinite(value) ? value : null;
 }
 
 function nearestTo(expected: number, a: number | null, b: number | null): number | null {

@@ -5,7 +5,6 @@ import type {
   VerdictRow,
 } from "@weighhouse/campaign/standings";
 import { STANDINGS_FORMAT } from "@weighhouse/campaign/standings";
-import { normalCdf } from "@weighhouse/numerics/normal";
 import { combine } from "./combination";
 import { log10BayesFactor, pairsOf, posteriors, ranked } from "./comparison";
 import {
@@ -15,8 +14,11 @@ import {
   type HypothesisScore,
   type ListedPrediction,
 } from "./hypothesis-scores";
-import { naturalInterval, toNatural } from "./scoring-space";
+import { upperTail } from "./distribution/distribution";
+import { naturalInterval } from "./natural-interval";
+import { toNatural, wrapped } from "./scoring-space";
 import type { ScoreOptions } from "./score-options";
+import type { MeasurandSums } from "./sums";
 import type { Tally } from "./tally";
 import { verdictOf, verdictOfWithheld } from "./verdict";
 import { ENGINE_VERSION } from "./version";
@@ -111,7 +113,7 @@ function hypothesisStanding(
     posterior: rest.posterior,
     failedDecisive: rest.failedDecisive,
     verdicts: rest.verdicts,
-    parameters: [],
+    parameters: score.parameters,
   };
 }
 
@@ -122,16 +124,13 @@ function verdictRow(
 ): VerdictRow {
   const m = listed.kind === "open" ? listed.prediction.measurand : listed.measurand;
   const { key: measurand, scale } = workspace.frame.measurands[m]!;
-  const { counted, provisional } = workspace.sums.measurands[m]!;
   const verdict =
     listed.kind === "open"
       ? verdictOf(workspace, listed.prediction)
       : verdictOfWithheld(workspace, m);
-  const natural = (value: number | null) =>
-    value === null ? null : finite(toNatural(value, scale));
   const interval =
     listed.kind === "open"
-      ? naturalInterval(listed.prediction, scale)
+      ? naturalInterval(workspace.frame, listed.prediction)
       : { lower: null, upper: null };
   return {
     hypothesis: key,
@@ -139,40 +138,56 @@ function verdictRow(
     verdict: verdict.word,
     conformance: verdict.conformance,
     tension: finite(verdict.tension),
-    value: natural(verdict.value),
+    value: verdict.value === null ? null : finite(toNatural(verdict.value, scale)),
     sd: verdict.sd,
     // An end beyond all doubles is as good as unbounded.
     lower: finite(interval.lower),
     upper: finite(interval.upper),
     inflated: verdict.inflated,
-    provisional: counted > 0 && provisional > 0,
+    provisional: measuredBy(workspace, m).some(({ provisional }) => provisional > 0),
     order: listed.order,
   };
+}
+
+/** The sums of a measurand, or of a derived value's inputs. */
+function measuredBy({ frame, sums }: Workspace, measurand: number): MeasurandSums[] {
+  const { derived } = frame.measurands[measurand]!;
+  if (derived === null) return [sums.measurands[measurand]!];
+  const inputs = new Set(derived.from.map((one) => one.measurand));
+  return [...inputs].map((input) => sums.measurands[input]!);
 }
 
 function measurandStanding(workspace: Workspace, m: number): MeasurandStanding {
   const { key, scale, thresholds } = workspace.frame.measurands[m]!;
   const combination = combine(workspace, m);
   const value = combination === null ? null : finite(toNatural(combination.value, scale));
+  let measurements = 0;
+  for (const { counted } of measuredBy(workspace, m)) measurements += counted;
   return {
     key,
-    measurements: workspace.sums.measurands[m]!.counted,
+    measurements,
     combined:
       combination === null || value === null
         ? null
         : {
             value,
             sd: combination.sd,
-            chiSquare: combination.chiSquare,
+            chiSquare: finite(combination.chiSquare),
             degreesOfFreedom: combination.degreesOfFreedom,
-            birgeRatio: combination.birgeRatio,
+            birgeRatio: finite(combination.birgeRatio),
           },
-    thresholds: thresholds.map(({ key, value }) => ({
-      key,
-      probabilityAbove:
-        combination === null ? null : normalCdf((combination.value - value) / combination.sd),
+    thresholds: thresholds.map(({ key: threshold, value: at }) => ({
+      key: threshold,
+      probabilityAbove: combination === null ? null : probabilityAbove(workspace, m, at),
     })),
   };
+}
+
+/** On a circle above means up to half a turn ahead. */
+function probabilityAbove(workspace: Workspace, m: number, threshold: number): number {
+  const { value, trueValue } = combine(workspace, m)!;
+  const { period } = workspace.frame.measurands[m]!;
+  return upperTail(trueValue, value - wrapped(value - threshold, period));
 }
 
 /** What is beyond all doubles doesn't exist in JSON. */

@@ -1,7 +1,8 @@
 import type { Measurement } from "@weighhouse/campaign/document";
 import type { Frame } from "./frame";
-import { firstDates, noteDates, type FirstDates } from "./order";
+import { earliestOf, firstDates, noteDates, type FirstDates } from "./order";
 import { isValue, type Reading } from "./readings";
+import { isOutsideReference } from "./reference-range";
 
 /** A first place and how many there are. */
 export interface Places {
@@ -23,15 +24,16 @@ export interface Tally {
   unknownUnits: Map<string, Places & { measurand: number; unit: string }>;
 }
 
-/** Beyond this many sd of a normal reference's mean a value lies outside it. */
-const OUTSIDE_SD = 4;
-
 export function createTally(frame: Frame): Tally {
   return {
     size: 0,
     counted: 0,
     setAside: 0,
-    dates: frame.measurands.map(firstDates),
+    dates: frame.measurands.map((one) =>
+      one.derived === null
+        ? firstDates(one)
+        : earliestOf(one.derived.from.map(({ measurand }) => frame.measurands[measurand]!)),
+    ),
     outside: frame.measurands.map(() => null),
     sameData: new Map(),
     unknownUnits: new Map(),
@@ -48,11 +50,18 @@ export function noteMeasurement(
   tally.size += 1;
   const measurand = frame.measurandIndex.get(measurement.measurand)!;
   noteDates(tally.dates[measurand]!, measurement);
+  // A derived value is as old as the first of what it is computed from.
+  for (const m of frame.measurands[measurand]!.usedBy) noteDates(tally.dates[m]!, measurement);
   if (measurement.setAside !== null) tally.setAside += 1;
   if (reading === null) return;
   tally.counted += 1;
   const { told } = reading;
-  if (isValue(told) && "y" in told && isOutsideReference(frame, measurand, told.y)) {
+  const { conditions } = reading;
+  if (
+    isValue(told) &&
+    "y" in told &&
+    isOutsideReference(frame, measurand, { y: told.y, conditions })
+  ) {
     tally.outside[measurand] = oneMore(tally.outside[measurand]!, place);
   }
   if (measurement.sameData !== null) noteSameData(tally, measurement.sameData, measurement.id);
@@ -74,19 +83,4 @@ function oneMore(places: Places | null, place: number): Places {
   return places === null
     ? { first: place, count: 1 }
     : { first: places.first, count: places.count + 1 };
-}
-
-/** Whether a value in scoring space lies outside a reference's range, or beyond 4 sd. */
-export function isOutsideReference(frame: Frame, measurand: number, y: number): boolean {
-  const { lower, upper } = referenceRange(frame, measurand);
-  return y < lower || y > upper;
-}
-
-/** A reference's bounds, or 4 sd about its mean, in scoring space; unbounded where it has none. */
-export function referenceRange(frame: Frame, measurand: number) {
-  const reference = frame.measurands[measurand]!.roles[0]!;
-  if (reference.kind === "uniform") return { lower: reference.lower, upper: reference.upper };
-  if (reference.kind !== "normal") return { lower: -Infinity, upper: Infinity };
-  const reach = OUTSIDE_SD * reference.sd;
-  return { lower: reference.mean - reach, upper: reference.mean + reach };
 }

@@ -1,17 +1,22 @@
-import { normalCdf, normalInterval } from "@weighhouse/numerics/normal";
+import { normalCdf } from "@weighhouse/numerics/normal";
 import type { VerdictWord } from "@weighhouse/campaign/standings";
-import { fit, type Fit } from "./chi-square-fit";
+import { fit } from "./chi-square-fit";
 import { combine } from "./combination";
+import type { Combination } from "./combination/combination";
+import { exactRateP } from "./combination/counts";
+import { countsOf } from "./combination/measured";
+import { meanOf, quantile, sdOf, type Distribution } from "./distribution/distribution";
+import { givenState, occurredProbability, reportsOf } from "./events";
 import { evidence } from "./evidence";
-import type { PredictionFrame } from "./frame";
-import { onlyMeasurand, type Combination, type Workspace } from "./workspace";
+import type { Frame, PredictionFrame } from "./frame";
+import { predictiveOf } from "./predictive";
+import { shareOfReference } from "./reference-range";
+import { wrapped } from "./scoring-space";
+import { eventWord, exactWord, intervalWord, placesOf, tensionOfBounds } from "./verdict-rules";
+import { onlyMeasurand, type Workspace } from "./workspace";
 
 /** Below this the measurements of a measurand disagree with one another. */
 export const DISAGREEING = 0.01;
-const PASS_P = 0.05;
-const FAIL_P = 0.0027;
-const CERTAIN_FAIL_P = 5.7e-7;
-const LN_SQRT_10 = Math.LN10 / 2;
 
 /** In scoring space. */
 export interface Verdict {
@@ -23,78 +28,153 @@ export interface Verdict {
   inflated: boolean;
 }
 
+/** Bounds in scoring space; on a circle upper is lower + width. */
+export interface Interval {
+  lower: number;
+  upper: number;
+}
+
 /** A prediction against its measurand's measurements (section 7, JCGM 106:2012). */
 export function verdictOf(workspace: Workspace, prediction: PredictionFrame): Verdict {
-  const combination = combine(workspace, prediction.measurand);
-  if (workspace.frame.measurands[prediction.measurand]!.closed) return unmeasured("notMeasured");
-  if (combination === null) return unmeasured("awaiting");
-  const roles = onlyMeasurand(workspace, prediction.measurand, prediction.role);
-  const own = fit(workspace, roles)!;
-  return prediction.sd! > 0
-    ? ofInterval(workspace, prediction, { combination, own })
-    : ofExact(workspace, prediction, { combination, own });
+  const { measurand, given, tolerance } = prediction;
+  const state = given === null ? "met" : givenState(workspace, given);
+  if (state === "contradicted") return withoutResult("void");
+  if (isClosed(workspace, measurand)) return withoutResult("notMeasured");
+  if (state === "open" || !isMeasured(workspace, measurand)) return withoutResult("awaiting");
+  if (tolerance.family === "event") return ofEvent(workspace, prediction, tolerance.probability);
+  const combination = combine(workspace, measurand);
+  const interval = isExact(workspace, prediction) ? null : intervalOf(workspace.frame, prediction);
+  return combination === null || interval === null
+    ? ofExact(workspace, prediction, combination)
+    : ofInterval(workspace, prediction, { combination, interval });
 }
 
 /** A sealed prediction: what was measured is shown, what was predicted isn't known. */
 export function verdictOfWithheld(workspace: Workspace, measurand: number): Verdict {
+  if (isClosed(workspace, measurand)) return withoutResult("notMeasured");
+  if (!isMeasured(workspace, measurand)) return withoutResult("awaiting");
   const combination = combine(workspace, measurand);
-  if (workspace.frame.measurands[measurand]!.closed) return unmeasured("notMeasured");
-  if (combination === null) return unmeasured("awaiting");
-  const { value, sd } = combination;
-  return { ...unmeasured("withheld"), value, sd };
+  const { value = null, sd = null } = combination ?? {};
+  return { ...withoutResult("withheld"), value, sd };
 }
 
-function unmeasured(word: VerdictWord): Verdict {
+function withoutResult(word: VerdictWord): Verdict {
   return { word, conformance: null, tension: null, value: null, sd: null, inflated: false };
 }
 
-interface Measured {
-  combination: Combination;
-  own: Fit;
+/** A derived value can't be had any more when one of its inputs was closed. */
+function isClosed({ frame }: Workspace, measurand: number): boolean {
+  const { closed, derived } = frame.measurands[measurand]!;
+  return closed || (derived?.from.some((one) => frame.measurands[one.measurand]!.closed) ?? false);
+}
+
+/** Something counted is there; of a derived value, all of its inputs. */
+export function isMeasured(workspace: Workspace, measurand: number): boolean {
+  return workspace.frame.measurands[measurand]!.derived === null
+    ? workspace.sums.measurands[measurand]!.counted > 0
+    : combine(workspace, measurand) !== null;
+}
+
+/** Judged by p and a Bayes factor: a curve, or what is expected exactly and hangs on nothing free. */
+function isExact(
+  { frame }: Workspace,
+  { measurand, tolerance, expected, natural }: PredictionFrame,
+) {
+  if (frame.measurands[measurand]!.curve) return true;
+  return tolerance.family === "exact" && (expected !== null || natural !== null);
+}
+
+/**
+ * Where the true value is to lie: bounds as given, coverage x sd about what is expected, or the
+ * central interval of probability erf(coverage / sqrt 2) of the prior predictive.
+ *
+ * @returns null on curves and for events
+ */
+export function intervalOf(frame: Frame, prediction: PredictionFrame): Interval | null {
+  if (frame.measurands[prediction.measurand]!.curve) return null;
+  if (prediction.interval !== null) return prediction.interval;
+  const predictive = predictiveOf(frame, prediction);
+  if (predictive === null) return null;
+  const outside = normalCdf(-frame.document.campaign.rule.coverage);
+  return { lower: quantile(predictive, outside), upper: quantile(predictive, 1 - outside) };
 }
 
 function ofInterval(
-  { frame }: Workspace,
-  { expected, sd: tolerance, interval }: PredictionFrame,
-  { combination, own }: Measured,
+  workspace: Workspace,
+  prediction: PredictionFrame,
+  { combination, interval }: { combination: Combination; interval: Interval },
 ): Verdict {
-  const { lower, upper } = interval!;
+  const { frame } = workspace;
+  const { measurand, role, tolerance } = prediction;
+  const { period } = frame.measurands[measurand]!;
+  const { rule } = frame.document.campaign;
   const { value, birgeRatio, pValue } = combination;
   const inflated = pValue !== null && pValue < DISAGREEING;
   const sd = inflated ? combination.sd * birgeRatio! : combination.sd;
-  const conformance = normalInterval((lower - value) / sd, (upper - value) / sd);
-  const above = normalCdf((value - upper) / sd);
-  const below = normalCdf((lower - value) / sd);
-  const { rule } = frame.document.campaign;
-  const beyond = Math.max(above, below);
-  const fails =
-    own.pValue === null
-      ? beyond >= 1 - rule.fail / 5
-      : beyond >= 1 - rule.fail && own.pValue < 0.01;
-  const word = conformance >= rule.pass ? "pass" : fails ? "fail" : "undecided";
-  const tension = (value - expected!) / Math.hypot(sd, tolerance!);
-  return { word, conformance, tension, value, sd, inflated };
+  const trueValue: Distribution = inflated
+    ? { kind: "normal", mean: value, sd }
+    : combination.trueValue;
+  const places = placesOf(trueValue, interval, { value, period });
+  const ownP =
+    tolerance.family === "normal"
+      ? (fit(workspace, onlyMeasurand(workspace, measurand, role))?.pValue ?? null)
+      : null;
+  const referenceShare = combination.limitsOnly
+    ? shareOfReference(frame, measurand, interval)
+    : null;
+  const word = intervalWord(places, rule, { ownP, referenceShare });
+  const tension = tensionOf(workspace, prediction, { value, sd, interval });
+  return { word, conformance: places.inside, tension, value, sd, inflated };
+}
+
+/** The distance from what is expected in the two uncertainties together; from hard bounds in u. */
+function tensionOf(
+  { frame }: Workspace,
+  prediction: PredictionFrame,
+  { value, sd, interval }: { value: number; sd: number; interval: Interval },
+): number | null {
+  const { period } = frame.measurands[prediction.measurand]!;
+  if ("width" in prediction.tolerance) {
+    return tensionOfBounds(interval, { value, sd, period });
+  }
+  const predictive = predictiveOf(frame, prediction);
+  if (predictive === null) return null;
+  return wrapped(value - meanOf(predictive), period) / Math.hypot(sd, sdOf(predictive));
 }
 
 function ofExact(
   workspace: Workspace,
-  { expected, measurand, role }: PredictionFrame,
-  { combination: { value, sd }, own }: Measured,
+  prediction: PredictionFrame,
+  combination: Combination | null,
 ): Verdict {
-  const lnB =
-    evidence(workspace, onlyMeasurand(workspace, measurand, role)).ln -
-    evidence(workspace, onlyMeasurand(workspace, measurand, 0)).ln;
-  const tension = (value - expected!) / sd;
-  const word = wordForExact(own.pValue, lnB);
+  const { frame, sums } = workspace;
+  const { measurand, role, expected, natural } = prediction;
+  const { scale, period } = frame.measurands[measurand]!;
+  const lnB = logBayesFactor(workspace, measurand, role);
+  const p =
+    scale === "count" && natural !== null
+      ? exactRateP(natural, countsOf(sums.measurands[measurand]!.kept))
+      : (fit(workspace, onlyMeasurand(workspace, measurand, role))?.pValue ?? null);
+  const word = exactWord(p, lnB);
+  if (combination === null) return withoutResult(word);
+  const { value, sd } = combination;
+  const tension = expected === null ? null : wrapped(value - expected, period) / sd;
   return { word, conformance: null, tension, value, sd, inflated: false };
 }
 
-function wordForExact(p: number | null, lnB: number): VerdictWord {
-  if (p === null) {
-    if (lnB >= Math.LN10) return "pass";
-    return lnB <= -Math.LN10 ? "fail" : "undecided";
-  }
-  if (p >= PASS_P && lnB >= LN_SQRT_10) return "pass";
-  if ((p < FAIL_P && lnB <= -LN_SQRT_10) || p < CERTAIN_FAIL_P) return "fail";
-  return "undecided";
+function ofEvent(
+  workspace: Workspace,
+  { measurand, role }: PredictionFrame,
+  probability: number,
+): Verdict {
+  const occurred = occurredProbability(reportsOf(workspace, measurand));
+  const lnB = logBayesFactor(workspace, measurand, role);
+  const { rule } = workspace.frame.document.campaign;
+  return withoutResult(eventWord(probability, rule, { occurred, lnB }));
+}
+
+/** Against the reference, on this measurand alone. */
+function logBayesFactor(workspace: Workspace, measurand: number, role: number): number {
+  const own = evidence(workspace, onlyMeasurand(workspace, measurand, role)).ln;
+  return own - evidence(workspace, onlyMeasurand(workspace, measurand, 0)).ln;
 }

@@ -6,19 +6,22 @@ import type {
   WarningCode,
 } from "@weighhouse/campaign/standings";
 import { binomialUpperTail } from "@weighhouse/numerics/binomial";
-import { normalInterval } from "@weighhouse/numerics/normal";
 import { referenceFit } from "./chi-square-fit";
 import { combine } from "./combination";
+import { quantile } from "./distribution/distribution";
 import type { HypothesisScore } from "./hypothesis-scores";
-import type { Frame, PredictionFrame } from "./frame";
-import { isOutsideReference, type Tally } from "./tally";
-import { DISAGREEING } from "./verdict";
+import type { PredictionFrame } from "./frame";
+import { predictiveOf } from "./predictive";
+import { isApart, isOutsideReference, referenceRange, shareOfReference } from "./reference-range";
+import type { Tally } from "./tally";
+import { DISAGREEING, intervalOf } from "./verdict";
 import type { Workspace } from "./workspace";
 
 const VAGUE_SHARE = 0.8;
 const POOR_P = 0.001;
 const FAIL_CHANCE = 0.01;
 const MOST_ERROR = 0.1;
+const FEW_ROWS = 20;
 
 export interface WarningContext {
   workspace: Workspace;
@@ -54,15 +57,15 @@ export function warningsOf(context: WarningContext): Warning[] {
 }
 
 function disagreeingMeasurements({ workspace }: WarningContext): Warning[] {
-  return workspace.frame.measurands.flatMap(({ key }, m) => {
+  return workspace.frame.measurands.flatMap(({ key, pointer }, m) => {
     const combination = combine(workspace, m);
     if (combination === null || combination.pValue === null || combination.pValue >= DISAGREEING)
       return [];
     const { chiSquare, degreesOfFreedom, pValue } = combination;
     const text =
-      `The measurements of ${key} disagree with one another: chi-square ${short(chiSquare)} ` +
+      `The measurements of ${key} disagree with one another: chi-square ${short(chiSquare!)} ` +
       `for ${degreesOfFreedom} degrees of freedom, p = ${short(pValue)}.`;
-    return [{ code: "disagreeing-measurements" as const, at: `/measurands/${m}`, text }];
+    return [{ code: "disagreeing-measurements" as const, at: pointer, text }];
   });
 }
 
@@ -77,47 +80,47 @@ function sameDataTwice({ tally }: WarningContext): Warning[] {
 }
 
 function predictionWarnings(
-  { workspace, scores }: WarningContext,
+  context: WarningContext,
   code: WarningCode,
-  describe: (frame: Frame, prediction: PredictionFrame) => string | null,
+  describe: (context: WarningContext, prediction: PredictionFrame) => string | null,
 ): Warning[] {
-  return scores.flatMap(({ key, listed }) =>
+  return context.scores.flatMap(({ key, listed }) =>
     listed.flatMap((one) => {
       if (one.kind !== "open") return [];
-      const described = describe(workspace.frame, one.prediction);
+      const described = describe(context, one.prediction);
       if (described === null) return [];
       return [{ code, at: one.prediction.pointer, text: `${key} ${described}` }];
     }),
   );
 }
 
-/** The share of the reference's probability between two bounds, in scoring space. */
-export function shareOfReference(
-  frame: Frame,
-  measurand: number,
-  { lower, upper }: { lower: number; upper: number },
-): number {
-  const reference = frame.measurands[measurand]!.roles[0]!;
-  if (!(upper > lower)) return 0;
-  if (reference.kind === "normal") {
-    const { mean, sd } = reference;
-    return normalInterval((lower - mean) / sd, (upper - mean) / sd);
-  }
-  if (reference.kind !== "uniform") return 0;
-  const inside = Math.min(upper, reference.upper) - Math.max(lower, reference.lower);
-  return Math.max(0, inside) / (reference.upper - reference.lower);
-}
-
-function vague(frame: Frame, prediction: PredictionFrame): string | null {
-  const share = shareOfReference(frame, prediction.measurand, prediction.interval!);
+function vague({ workspace }: WarningContext, prediction: PredictionFrame): string | null {
+  const { frame } = workspace;
+  // Of a curve there is no interval but hard bounds.
+  const bounds = "width" in prediction.tolerance ? prediction.interval : null;
+  const interval = bounds ?? intervalOf(frame, prediction);
+  if (interval === null) return null;
+  const share = shareOfReference(frame, prediction.measurand, interval);
   if (share <= VAGUE_SHARE) return null;
   const { key } = frame.measurands[prediction.measurand]!;
   return `predicts for ${key} an interval that covers ${short(100 * share)} % of its reference.`;
 }
 
-function outside(frame: Frame, { measurand, expected }: PredictionFrame): string | null {
-  if (!isOutsideReference(frame, measurand, expected!)) return null;
-  return `predicts for ${frame.measurands[measurand]!.key} a value outside its reference.`;
+/** What is expected, or bounds with no value of the reference between them. */
+function outside({ workspace }: WarningContext, prediction: PredictionFrame): string | null {
+  const { frame } = workspace;
+  const { measurand, tolerance, expected } = prediction;
+  const { key, period } = frame.measurands[measurand]!;
+  if ("width" in tolerance) {
+    const { lower, width } = tolerance;
+    const bounds = { lower, upper: lower + width };
+    if (!isApart(referenceRange(frame, measurand), bounds, period)) return null;
+    return `predicts for ${key} an interval outside its reference.`;
+  }
+  const predictive = expected === null ? predictiveOf(frame, prediction) : null;
+  const y = expected ?? (predictive === null ? null : quantile(predictive, 0.5));
+  if (y === null || !isOutsideReference(frame, measurand, { y })) return null;
+  return `predicts for ${key} a value outside its reference.`;
 }
 
 function outsideReference({ workspace, tally }: WarningContext): Warning[] {
@@ -130,13 +133,13 @@ function outsideReference({ workspace, tally }: WarningContext): Warning[] {
 }
 
 function poorReferences({ workspace }: WarningContext): Warning[] {
-  return workspace.frame.measurands.flatMap(({ key }, m) => {
+  return workspace.frame.measurands.flatMap(({ key, pointer }, m) => {
     const own = referenceFit(workspace, m);
     if (own === null || own.pValue === null || own.pValue >= POOR_P) return [];
     const text =
       `The reference of ${key} fits its measurements badly (p = ${short(own.pValue)}), so that ` +
       "silence on it is charged too much: read the common ground.";
-    return [{ code: "poor-reference" as const, at: `/measurands/${m}`, text }];
+    return [{ code: "poor-reference" as const, at: pointer, text }];
   });
 }
 
@@ -166,10 +169,19 @@ function standingOf(hypotheses: readonly HypothesisStanding[], key: string): Hyp
 }
 
 function approximateEvidence({ scores, silence }: WarningContext): Warning[] {
-  return [...scores, silence].flatMap(({ key, pointer, lnEvidenceError }) => {
-    if (lnEvidenceError <= MOST_ERROR) return [];
-    const text = `The ln evidence of ${key} has a standard error of ${short(lnEvidenceError)}.`;
-    return [{ code: "approximate-evidence" as const, at: pointer, text }];
+  const code = "approximate-evidence" as const;
+  return [...scores, silence].flatMap(({ key, pointer, lnEvidenceError, effectiveRows }) => {
+    const warnings: Warning[] = [];
+    if (lnEvidenceError > MOST_ERROR) {
+      const text = `The ln evidence of ${key} has a standard error of ${short(lnEvidenceError)}.`;
+      warnings.push({ code, at: pointer, text });
+    }
+    if (effectiveRows !== null && effectiveRows < FEW_ROWS) {
+      const rows = short(effectiveRows);
+      const text = `Few rows of the ensemble of ${key} carry its evidence: an effective number of ${rows}.`;
+      warnings.push({ code, at: `${pointer}/ensemble`, text });
+    }
+    return warnings;
   });
 }
 

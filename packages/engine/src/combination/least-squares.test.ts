@@ -63,6 +63,14 @@ function inverse(matrix: readonly (readonly number[])[]): number[][] {
   return work.map((row) => row.slice(n));
 }
 
+interface RowPlan {
+  y: number;
+  sd: number;
+  zero: number;
+  night: number;
+  batch: number;
+}
+
 const size = (low: number, high: number) =>
   fc.integer({ min: low * 100, max: high * 100 }).map((n) => n / 100);
 const rowPlan = fc.record({
@@ -73,7 +81,7 @@ const rowPlan = fc.record({
   batch: fc.integer({ min: 0, max: 3 }),
 });
 
-function rowsFrom(plan: fc.TypeOf<typeof rowPlan>[], centre: number): GlsRow[] {
+function rowsFrom(plan: RowPlan[], centre: number): GlsRow[] {
   return plan.map(({ y, sd, zero, night, batch }) => ({
     y: centre + y,
     variance: sd * sd,

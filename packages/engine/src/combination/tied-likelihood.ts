@@ -1,0 +1,50 @@
+import { evidence } from "../evidence";
+import type { NormalRole } from "../frame";
+import { onlyMeasurand, type Workspace } from "../workspace";
+import type { Likelihood } from "./true-value-density";
+
+/**
+ * All measurements' likelihood of the level where they hang together: the evidence that a prediction
+ * of exactly that level would have, with shared errors and correlated noises integrated out.
+ *
+ * @param apart the likelihoods as if they were apart, for where to look
+ */
+export function tiedLikelihood(
+  workspace: Workspace,
+  measurand: number,
+  apart: readonly Likelihood[],
+): Likelihood {
+  const known = new Map<number, number>();
+  const ln = (level: number): number => {
+    const there = known.get(level);
+    if (there !== undefined) return there;
+    const made = exactEvidence(workspace, measurand, level);
+    known.set(level, made);
+    return made;
+  };
+  const centres = apart.map(({ centre }) => centre);
+  return {
+    ln,
+    centre: centres[0]!,
+    scale: Math.max(...apart.map(({ scale }) => scale)),
+    breaks: centres.slice(1),
+  };
+}
+
+function exactEvidence(workspace: Workspace, measurand: number, level: number): number {
+  const { frame } = workspace;
+  const exact: NormalRole = { kind: "normal", mean: level, sd: 0, noise: 0 };
+  const measurands = frame.measurands.with(measurand, {
+    ...frame.measurands[measurand]!,
+    roles: [exact],
+  });
+  const alone: Workspace = {
+    ...workspace,
+    frame: { ...frame, measurands },
+    evidences: new Map(),
+    general: new Map(),
+    fits: new Map(),
+  };
+  const { ln } = evidence(alone, onlyMeasurand(alone, measurand, 0));
+  return Number.isFinite(ln) ? ln : -Infinity;
+}
