@@ -4,7 +4,7 @@ import {
   type TriangularSystem,
 } from "@weighhouse/numerics/triangular-system";
 import type { Layout } from "./layout";
-import type { PriorRows } from "./prior-rows";
+import type { PivotRow, PriorRows } from "./prior-rows";
 import type { WhiteRows } from "./whitening";
 
 /**
@@ -18,12 +18,6 @@ export interface Eliminated {
   logPivots: number;
   /** Over positions [inner, size). */
   tail: TriangularSystem;
-}
-
-export interface PivotRow {
-  position: Int32Array;
-  /** One longer: the right side last. */
-  value: Float64Array;
 }
 
 /**

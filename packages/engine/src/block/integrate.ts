@@ -14,10 +14,13 @@ export interface Integral {
   cdf: ((axis: number, c: number) => number) | null;
 }
 
-/** An infinite axis is laid out so that this many widths about every peak are well inside. */
+/** So many widths about every peak have to be well inside of an axis. */
 const MARGIN = 9;
-/** Where the standard normal is cut: beyond, (0, 1) has no numbers left. */
-const REACH = 8;
+/**
+ * An infinite axis is laid out about the highest peak so that the others, and the prior's middle,
+ * are within this many standard deviations: further out (0, 1) runs out of numbers.
+ */
+const REACH = 5;
 
 /**
  * ln of the integral of exp(lnDensity) over the coordinates, priors included in it.
@@ -110,18 +113,20 @@ function axisOf({ lower, upper }: Coordinate, modes: readonly Mode[], j: number)
       lnJacobian: () => ln,
     };
   }
-  let spread = 1;
+  const half = lower > -Infinity;
+  const origin = half ? lower : (modes[0]?.centre[j] ?? 0);
+  let spread = Math.max(1, Math.abs(origin) / REACH);
   for (const mode of modes) {
-    spread = Math.max(spread, (Math.abs(mode.centre[j]!) + MARGIN * widthOf(mode, j)) / REACH);
+    const distance = Math.abs(mode.centre[j]! - origin) + MARGIN * widthOf(mode, j);
+    spread = Math.max(spread, distance / REACH);
   }
   // The share of the normal that the bounds keep: all, or the upper half from 0 on.
-  const half = lower > -Infinity;
   const lnScale = Math.log(spread) + LN_SQRT_2PI - (half ? Math.LN2 : 0);
   const normal = (u: number) => truncatedNormalQuantile(half ? 0 : -Infinity, Infinity, u);
   return {
-    toCoordinate: (u) => spread * normal(u) + (half ? lower : 0),
+    toCoordinate: (u) => origin + spread * normal(u),
     toUnit: (c) => {
-      const p = normalCdf((c - (half ? lower : 0)) / spread);
+      const p = normalCdf((c - origin) / spread);
       return half ? 2 * p - 1 : p;
     },
     lnJacobian: (u) => normal(u) ** 2 / 2 + lnScale,

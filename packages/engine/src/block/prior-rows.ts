@@ -1,6 +1,12 @@
 import { choleskyFactor, whiten } from "@weighhouse/numerics/symmetric-cholesky";
-import type { PivotRow } from "./elimination";
 import type { Layout } from "./layout";
+
+/** An equation over some positions, in increasing order. */
+export interface PivotRow {
+  position: Int32Array;
+  /** One longer: the right side last. */
+  value: Float64Array;
+}
 
 /** The normal unknowns' priors as equations of unit variance. */
 export interface PriorRows {
