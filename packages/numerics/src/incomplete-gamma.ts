@@ -34,7 +34,8 @@ export function lowerGammaRatio(a: number, x: number): number {
  */
 export function upperGammaRatio(a: number, x: number): number {
   if (x <= 0) return 1;
-  if (x === Infinity) return 0;
+  // e^-x is 0 long before; the fraction's terms would overflow from 1e154 on.
+  if (x > 1e100 && x > 2 * a) return 0;
   if (!bySeries(a, x)) return upperFraction(a, x);
   return a < 1 ? upperSmall(a, x) : 1 - lowerSeries(a, x);
 }
