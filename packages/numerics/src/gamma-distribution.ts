@@ -62,10 +62,10 @@ export function gammaQuantile(p: number, { shape, scale }: GammaDistribution): n
   }
   if (p === 0) return 0;
   if (p === 1) return Infinity;
-  return scale * Math.exp(logStandardQuantile(p, shape));
+  return scale * standardQuantile(p, shape);
 }
 
-function logStandardQuantile(p: number, shape: number): number {
+function standardQuantile(p: number, shape: number): number {
   const lowerSide = p <= 0.5;
   const target = Math.log(lowerSide ? p : 1 - p);
   let low = -Infinity;
@@ -73,19 +73,22 @@ function logStandardQuantile(p: number, shape: number): number {
   let u = firstGuess(p, shape);
   for (let step = 0; step < 200; step += 1) {
     const x = Math.exp(u);
-    if (x === 0) return -Infinity;
+    if (x === 0) return 0;
     const tail = lowerSide ? lowerGammaRatio(shape, x) : upperGammaRatio(shape, x);
     const excess = Math.log(tail) - target;
     const below = lowerSide ? excess < 0 : excess > 0;
     if (below) low = u;
     else high = u;
     const slope = (Math.exp(logGammaKernel(shape, x)) * shape) / tail;
-    let next = u - (lowerSide ? excess : -excess) / slope;
+    const move = (lowerSide ? -excess : excess) / slope;
+    // From x itself: u has fewer digits of it.
+    if (Math.abs(move) <= 1e-14 * Math.max(1, Math.abs(u))) return x * Math.exp(move);
+    let next = u + move;
     if (!(next > low && next < high)) next = between(low, high, u);
-    if (Math.abs(next - u) <= 1e-15 * Math.max(1, Math.abs(u))) return next;
+    if (next === u) return x;
     u = next;
   }
-  return u;
+  return Math.exp(u);
 }
 
 function between(low: number, high: number, u: number): number {

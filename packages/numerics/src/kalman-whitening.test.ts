@@ -1,4 +1,5 @@
 import { expect, test } from "vitest";
+import fixture from "./fixtures/kalman-whitening.json";
 import { whitenSmooth } from "./kalman-whitening";
 import { NumericsError } from "./numerics-error";
 import { sobolPoints } from "./sobol";
@@ -67,6 +68,20 @@ test("the filter's forms and determinant are the dense matrix's, for 200 cases",
       expect(Math.abs(dot(columns[a], columns[b]) - form) / size, label).toBeLessThan(allowed);
     }
   }
+});
+
+test.each(fixture.cases)("sd $sd over length $length gives mpmath's forms", (expected) => {
+  const { x, variance } = fixture;
+  const [a, b] = [Float64Array.from(fixture.a), Float64Array.from(fixture.b)];
+  const { sd, length, logDeterminant: determinant, aa, ab, bb } = expected;
+  const found = whitenSmooth({ x, variance, sd, length, columns: [a, b] });
+  // N eps = 2e-15, five times over. With a large sd column a nearly vanishes: its whitened entries
+  // are differences, right to eps of its values over the noise's sd, 1 / sqrt 0.125 at most.
+  const size = 3 * Math.sqrt(bb);
+  expect(Math.abs(found - determinant)).toBeLessThan(1e-14 * Math.max(1, Math.abs(determinant)));
+  expect(Math.abs(dot(a, a) / aa - 1)).toBeLessThan(1e-14);
+  expect(Math.abs(dot(a, b) - ab)).toBeLessThan(1e-14 * size);
+  expect(Math.abs(dot(b, b) / bb - 1)).toBeLessThan(1e-14);
 });
 
 test("the rows' order makes no difference, and rows stay where they are", () => {

@@ -41,8 +41,11 @@ export function upperEntry({ rows, columns, diagonal }: PivotedQr, i: number, k:
   return i === k ? diagonal[k]! : i < k ? columns[k * rows + i]! : 0;
 }
 
-/** The norm of [begin, end), scaled, so that squares neither overflow nor vanish. */
+/** The norm of [begin, end), scaled where squares overflow or vanish. */
 export function norm(v: Float64Array, begin = 0, end = v.length): number {
+  let plain = 0;
+  for (let i = begin; i < end; i += 1) plain += v[i]! * v[i]!;
+  if (plain > 1e-280 && plain < 1e280) return Math.sqrt(plain);
   let largest = 0;
   for (let i = begin; i < end; i += 1) largest = Math.max(largest, Math.abs(v[i]!));
   if (largest === 0 || !(largest < Infinity)) return largest;
