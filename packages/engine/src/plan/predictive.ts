@@ -13,22 +13,41 @@ export interface Predictive {
   sd: number;
 }
 
+/** Components farther than this many of their sd add nothing: e^-72. */
+const FAR = 12;
+
 /** ln of the density of a reading with noise sd; below sqrt(floor) as smooth as that. */
 export function logDensity({ components, floor }: Predictive, y: number, sd: number): number {
   const own = Math.max(sd * sd - floor, 0);
   let most = -Infinity;
   let sum = 0;
-  for (const { weight, mean, variance } of components) {
+  for (let i = firstNear(components, y, own); i < components.length; i += 1) {
+    const { weight, mean, variance } = components[i]!;
     const total = variance + own;
     const z = y - mean;
     const log = Math.log(weight / Math.sqrt(total)) - (z * z) / (2 * total);
-    if (log <= most) sum += Math.exp(log - most);
-    else {
+    if (log <= most) {
+      sum += Math.exp(log - most);
+      if (z < 0 && z * z > FAR * FAR * total) break;
+    } else {
       sum = sum * Math.exp(most - log) + 1;
       most = log;
     }
   }
   return most + Math.log(sum) - LN_SQRT_2PI;
+}
+
+/** Components are in increasing order of their means, and of one variance where they are many. */
+function firstNear(components: Predictive["components"], y: number, own: number): number {
+  if (components.length < 8) return 0;
+  const least = y - FAR * Math.sqrt(components[0]!.variance + own);
+  let [low, high] = [0, components.length - 1];
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (components[middle]!.mean < least) low = middle + 1;
+    else high = middle;
+  }
+  return low;
 }
 
 /** ln p(y) of the reading under each hypothesis, with a noise of its own; null: impossible. */
@@ -130,7 +149,7 @@ function parabolaThrough(
 }
 
 const SCAN = 64;
-const CELLS = 160;
+const CELLS = 100;
 /** Below the peak by this much in ln nothing counts. */
 const NEGLIGIBLE = 30;
 const MOST_ZOOMS = 40;
@@ -149,7 +168,7 @@ function tabulated(
   if (support === null) return null;
   const [lower, upper] = support;
   const step = Math.min((upper - lower) / CELLS, sd / 2);
-  const cells = Math.min(Math.ceil((upper - lower) / step), 4 * CELLS);
+  const cells = Math.min(Math.ceil((upper - lower) / step), 3 * CELLS);
   const h = (upper - lower) / cells;
   const own = Math.min(h, sd);
   // On a circle the last point would be the first again.
