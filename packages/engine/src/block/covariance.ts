@@ -22,6 +22,7 @@ export interface NoisePlan {
 
 export function noisePlanOf(layout: Layout): NoisePlan {
   const { rows } = layout.problem;
+  if (rows.groups.length + rows.smooth.length === 0) return { singles: layout.gaussian, parts: [] };
   const gaussian = new Set(layout.gaussian);
   const sets = [...rows.groups, ...rows.smooth].map((one) =>
     one.rows.filter((i) => gaussian.has(i)),

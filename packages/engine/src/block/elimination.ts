@@ -1,10 +1,7 @@
-import {
-  addRow,
-  createSystem,
-  type TriangularSystem,
-} from "@weighhouse/numerics/triangular-system";
+import { createSystem, type TriangularSystem } from "@weighhouse/numerics/triangular-system";
 import type { Layout } from "./layout";
 import type { PivotRow, PriorRows } from "./prior-rows";
+import { flushRows, nextRow, rowBlock, ROWS_APART, type RowBlock } from "./row-block";
 import type { WhiteRows } from "./whitening";
 
 /**
@@ -21,17 +18,17 @@ export interface Eliminated {
 }
 
 /**
- * Multifrontal QR: the rows that begin with one unknown are rotated together in a small system over
+ * Multifrontal QR: the rows that begin with one unknown are reflected together in a small system over
  * the unknowns they have, its first row is that unknown's pivot, the others go on to the unknown
  * they begin with. A row costs O(k^2) for the k unknowns that it meets, not for all.
  *
- * Rotations of the rows themselves, so that the ratio of uncertainties isn't squared.
+ * Reflections of the rows themselves, so that the ratio of uncertainties isn't squared.
  * Source: Golub & Van Loan, Matrix Computations, 5.1; Davis, Direct Methods for Sparse Linear
  * Systems (2006), 5.
  */
 export function eliminate(layout: Layout, white: WhiteRows, prior: PriorRows): Eliminated {
   const { inner, size } = layout;
-  const tail = createSystem(size - inner);
+  const tail = rowBlock(createSystem(size - inner));
   const waiting: PivotRow[][] = Array.from({ length: inner }, () => []);
   for (const row of prior.rows) passOn(row, { inner, tail, waiting });
   const byFirst = rowsByFirst(white, inner);
@@ -46,12 +43,17 @@ export function eliminate(layout: Layout, white: WhiteRows, prior: PriorRows): E
     pivots.push(pivot!);
     logPivots += Math.log(Math.abs(pivot!.value[0]!));
     for (const row of others) passOn(row, { inner, tail, waiting });
-    tail.rss += front.rss;
+    tail.system.rss += front.rss;
   }
-  return { pivots, logPivots, tail };
+  flushRows(tail);
+  return { pivots, logPivots, tail: tail.system };
 }
 
-type Target = { inner: number; tail: TriangularSystem; waiting: PivotRow[][] };
+interface Target {
+  inner: number;
+  tail: RowBlock;
+  waiting: PivotRow[][];
+}
 
 function passOn(row: PivotRow, { inner, tail, waiting }: Target): void {
   const first = row.position[0]!;
@@ -59,10 +61,12 @@ function passOn(row: PivotRow, { inner, tail, waiting }: Target): void {
     waiting[first]!.push(row);
     return;
   }
-  const dense = new Float64Array(tail.size + 1);
-  row.position.forEach((p, e) => (dense[p - inner]! += row.value[e]!));
-  dense[tail.size] = row.value.at(-1)!;
-  addRow(tail, dense, first - inner);
+  const at = nextRow(tail);
+  const { data, system } = tail;
+  for (let e = 0; e < row.position.length; e += 1) {
+    data[at + ROWS_APART * (row.position[e]! - inner)]! += row.value[e]!;
+  }
+  data[at + ROWS_APART * system.size] = row.value[row.position.length]!;
 }
 
 /** White rows by the position that they begin with; those beyond `inner`, or of none, in `rest`. */
@@ -85,24 +89,24 @@ function rowsByFirst({ count, start, position }: WhiteRows, inner: number) {
 }
 
 function passTail(
-  white: WhiteRows,
+  { start, position, value, right }: WhiteRows,
   rows: Int32Array,
-  { inner, tail }: { inner: number; tail: TriangularSystem },
+  { inner, tail }: { inner: number; tail: RowBlock },
 ): void {
-  const { start, position, value, right } = white;
-  const dense = new Float64Array(tail.size + 1);
+  const { data, system } = tail;
   for (let n = 0; n < rows.length; n += 1) {
     const row = rows[n]!;
     const begin = start[row]!;
     const end = start[row + 1]!;
     if (begin === end) {
-      tail.rss += right[row]! * right[row]!;
+      system.rss += right[row]! * right[row]!;
       continue;
     }
-    dense.fill(0);
-    for (let e = begin; e < end; e += 1) dense[position[e]! - inner]! += value[e]!;
-    dense[tail.size] = right[row]!;
-    addRow(tail, dense, position[begin]! - inner);
+    const at = nextRow(tail);
+    for (let e = begin; e < end; e += 1) {
+      data[at + ROWS_APART * (position[e]! - inner)]! += value[e]!;
+    }
+    data[at + ROWS_APART * system.size] = right[row]!;
   }
 }
 
@@ -123,25 +127,26 @@ function frontOf({
   const positions = unionOf({ white, rows, waiting, place });
   positions.forEach((p, c) => (place[p] = c));
   const size = positions.length;
-  const system = createSystem(size);
-  const dense = new Float64Array(size + 1);
+  const block = rowBlock(createSystem(size));
+  const { data } = block;
   for (const row of waiting) {
-    dense.fill(0);
-    for (let e = 0; e < row.position.length; e += 1)
-      dense[place[row.position[e]!]!]! += row.value[e]!;
-    dense[size] = row.value[row.position.length]!;
-    addRow(system, dense);
+    const at = nextRow(block);
+    for (let e = 0; e < row.position.length; e += 1) {
+      data[at + ROWS_APART * place[row.position[e]!]!]! += row.value[e]!;
+    }
+    data[at + ROWS_APART * size] = row.value[row.position.length]!;
   }
   for (let n = 0; n < rows.length; n += 1) {
     const row = rows[n]!;
-    dense.fill(0);
-    for (let e = start[row]!; e < start[row + 1]!; e += 1)
-      dense[place[position[e]!]!]! += value[e]!;
-    dense[size] = right[row]!;
-    addRow(system, dense);
+    const at = nextRow(block);
+    for (let e = start[row]!; e < start[row + 1]!; e += 1) {
+      data[at + ROWS_APART * place[position[e]!]!]! += value[e]!;
+    }
+    data[at + ROWS_APART * size] = right[row]!;
   }
+  flushRows(block);
   for (const p of positions) place[p] = -1;
-  return rowsOf(system, positions);
+  return rowsOf(block.system, positions);
 }
 
 function rowsOf({ size, data, rss }: TriangularSystem, positions: Int32Array): Front {
@@ -178,7 +183,9 @@ function unionOf({
   for (const row of waiting) for (const p of row.position) note(p);
   for (let n = 0; n < rows.length; n += 1) {
     const row = rows[n]!;
-    for (let e = start[row]!; e < start[row + 1]!; e += 1) note(position[e]!);
+    for (let e = start[row]!; e < start[row + 1]!; e += 1) {
+      if (place[position[e]!] === -1) note(position[e]!);
+    }
   }
   for (const p of found) place[p] = -1;
   return Int32Array.from(found).sort();

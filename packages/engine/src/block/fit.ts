@@ -170,6 +170,7 @@ function isInside(one: OuterUnknown, value: number): boolean {
 }
 
 function flatsInside({ layout }: Workbench, positions: Float64Array): number {
+  if (layout.bounds.length === 0) return 0;
   const touched = new Set<number>();
   for (const i of layout.gaussian) {
     for (let e = layout.start[i]!; e < layout.start[i + 1]!; e += 1)

@@ -176,14 +176,19 @@ function seenBy({ start, unknown }: Entries, rows: Int32Array): Set<number> {
 }
 
 function patternOf({ start, unknown, source }: Entries, place: Int32Array) {
-  const position = Int32Array.from(unknown, (k) => place[k]!);
+  const position = new Int32Array(unknown.length);
+  for (let e = 0; e < unknown.length; e += 1) position[e] = place[unknown[e]!]!;
   const sources = source.slice();
   for (let i = 0; i + 1 < start.length; i += 1) {
+    const begin = start[i]!;
+    const end = start[i + 1]!;
     // Rows are short: sorted by insertion.
-    for (let e = start[i]! + 1; e < start[i + 1]!; e += 1) {
-      const [p, s] = [position[e]!, sources[e]!];
+    for (let e = begin + 1; e < end; e += 1) {
+      const p = position[e]!;
+      if (position[e - 1]! <= p) continue;
+      const s = sources[e]!;
       let to = e;
-      for (; to > start[i]! && position[to - 1]! > p; to -= 1) {
+      for (; to > begin && position[to - 1]! > p; to -= 1) {
         position[to] = position[to - 1]!;
         sources[to] = sources[to - 1]!;
       }
