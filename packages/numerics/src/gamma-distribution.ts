@@ -11,16 +11,19 @@ export interface GammaDistribution {
 /**
  * The gamma distribution of a given mean and sd: shape = (mean / sd)^2, scale = sd^2 / mean.
  *
- * @throws {NumericsError} `out-of-domain` unless mean and sd are finite and > 0
+ * @throws {NumericsError} `out-of-domain` unless mean and sd are finite and > 0, and their ratio within 1e-150 to 1e150
  */
 export function gammaFromMoments(mean: number, sd: number): GammaDistribution {
-  if (!(mean > 0 && sd > 0 && mean < Infinity && sd < Infinity)) {
+  const shape = (mean / sd) ** 2;
+  const scale = sd * (sd / mean);
+  // Both of them also refuse ratios beyond 1e150.
+  if (!(mean > 0 && sd > 0 && shape > 0 && scale > 0 && shape < Infinity && scale < Infinity)) {
     throw new NumericsError(
       "out-of-domain",
       `a gamma distribution needs mean > 0 and sd > 0; found mean = ${mean}, sd = ${sd}`,
     );
   }
-  return { shape: (mean / sd) ** 2, scale: sd * (sd / mean) };
+  return { shape, scale };
 }
 
 /**

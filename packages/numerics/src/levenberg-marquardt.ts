@@ -1,6 +1,7 @@
 import { differenceJacobian } from "./difference-jacobian";
-import { applyTransposed, norm, pivotedQr, upperEntry } from "./pivoted-qr";
-import { addRow, createSystem, type TriangularSystem } from "./triangular-system";
+import { columnSystem, scaledRank, triangularFactor } from "./jacobian-factors";
+import { norm } from "./pivoted-qr";
+import type { TriangularSystem } from "./triangular-system";
 import { trustRegionStep } from "./trust-region-step";
 
 const EPSILON = 2 ** -52;
@@ -185,7 +186,7 @@ function updateScale(state: State, first: boolean): void {
 /** Shortens the step until one lowers the sum of squares; true where none can any more. */
 function improve(problem: LeastSquaresProblem, state: State): boolean {
   const free = freeComponents(state);
-  const { system, order } = freeSystem(state, free);
+  const { system, order } = columnSystem(state, free, state.residuals);
   const scale = Float64Array.from(order, (j) => state.scale[j]!);
   const trial = { x: state.x.slice(), residuals: new Float64Array(state.count) };
   for (;;) {
@@ -208,26 +209,6 @@ function improve(problem: LeastSquaresProblem, state: State): boolean {
     if (spent || !(state.radius > EPSILON * size) || state.radius < 1e-300) return true;
     if (accepted) return false;
   }
-}
-
-/** R and Q'r of the free columns; `order` says which component each column of R is. */
-function freeSystem(state: State, free: number[]): { system: TriangularSystem; order: number[] } {
-  const { size, count, jacobian, residuals } = state;
-  const columns = new Float64Array(count * free.length);
-  free.forEach((j, k) => {
-    for (let i = 0; i < count; i += 1) columns[k * count + i] = jacobian[i * size + j]!;
-  });
-  const qr = pivotedQr(columns, count, free.length);
-  const right = residuals.slice();
-  applyTransposed(qr, right);
-  const system = createSystem(free.length);
-  const width = free.length + 1;
-  for (let i = 0; i < Math.min(count, free.length); i += 1) {
-    if (qr.diagonal[i] === 0) break;
-    for (let k = i; k < free.length; k += 1) system.data[i * width + k] = upperEntry(qr, i, k);
-    system.data[i * width + free.length] = right[i]!;
-  }
-  return { system, order: Array.from(qr.order, (k) => free[k]!) };
 }
 
 interface Plan {
@@ -300,30 +281,4 @@ function updateRadius(state: State, plan: Plan, { length, actual, ratio }: Outco
     state.radius = plan.reach / 0.5;
     state.parameter *= 0.5;
   }
-}
-
-function scaledRank({ size, count, jacobian, columnNorms }: State): number {
-  const columns = new Float64Array(count * size);
-  for (let j = 0; j < size; j += 1) {
-    const length = columnNorms[j]! || 1;
-    for (let i = 0; i < count; i += 1) columns[j * count + i] = jacobian[i * size + j]! / length;
-  }
-  const { diagonal } = pivotedQr(columns, count, size);
-  const threshold = Math.max(count, size) * EPSILON * Math.abs(diagonal[0] ?? 0);
-  return diagonal.filter((value) => Math.abs(value) > threshold).length;
-}
-
-function triangularFactor({ size, count, jacobian }: State): Float64Array {
-  const system = createSystem(size);
-  const row = new Float64Array(size + 1);
-  for (let i = 0; i < count; i += 1) {
-    row.set(jacobian.subarray(i * size, (i + 1) * size));
-    row[size] = 0;
-    addRow(system, row);
-  }
-  const factor = new Float64Array(size * size);
-  for (let j = 0; j < size; j += 1) {
-    factor.set(system.data.subarray(j * (size + 1), j * (size + 1) + size), j * size);
-  }
-  return factor;
 }
