@@ -1,9 +1,19 @@
 import { chiSquareUpperTail } from "@weighhouse/numerics/chi-square";
-import { blocksOf } from "./blocks";
+import { boundedLeastSquares } from "./block/bounded-least-squares";
+import { measuredBlocks } from "./evidence";
+import { blockKey } from "./evidence-key";
+import { boxOf, lastUnknowns } from "./flat-levels";
 import { marginalOf } from "./marginal";
-import type { Part } from "./marginal-form";
-import { boundsOf, solve, type Level } from "./solve";
-import { levelOf, measuredIn, onlyMeasurand, type Roles, type Workspace } from "./workspace";
+import { generalFit } from "./model/general-fit";
+import { isPlain } from "./plain-blocks";
+import { boundsOf, solve } from "./solve";
+import {
+  levelOf,
+  onlyMeasurand,
+  type BlockChiSquare,
+  type Roles,
+  type Workspace,
+} from "./workspace";
 
 export interface Fit {
   chiSquare: number;
@@ -16,40 +26,28 @@ export interface Fit {
 const AT_BOUND = 1e-6;
 
 /**
- * The penalised minimum (section 5) over normal levels and draws, which is r' (D + WW')^-1 r.
+ * The penalised minimum (section 5) over everything unknown, over the measurements with a value of
+ * the measurands that have a role. With everything Gaussian it is r' (D + WW')^-1 r.
  *
- * @param roles of measurands with normal levels only
- * @returns null with nothing compared
+ * @returns null with no such measurement
+ * @throws {EngineError} `refused`
  */
 export function fit(workspace: Workspace, roles: Roles): Fit | null {
-  const measured = measuredIn(workspace, roles);
-  if (measured.length === 0) return null;
   let chiSquare = 0;
   let counted = 0;
-  for (const block of blocksOf(measured, workspace.coupling)) {
-    const { marginal, solved } = solveBlock(workspace, block, roles);
-    chiSquare += marginal.squares + solved.system.rss;
-    for (const m of block) counted += workspace.sums.measurands[m]!.counted;
+  let flatInside = 0;
+  for (const block of measuredBlocks(workspace, roles)) {
+    const one = blockFit(workspace, block, roles);
+    chiSquare += one.chiSquare;
+    counted += one.counted;
+    flatInside += one.flatInside;
   }
-  return fitOf(chiSquare, counted);
+  return counted === 0 ? null : fitOf(chiSquare, counted - flatInside);
 }
 
 /** How well a measurand's reference describes its own measurements; null without any. */
 export function referenceFit(workspace: Workspace, measurand: number): Fit | null {
-  const { counted } = workspace.sums.measurands[measurand]!;
-  if (counted === 0) return null;
-  const level = levelOf(workspace, measurand, 0);
-  if (level.role.kind === "normal") return fit(workspace, onlyMeasurand(workspace, measurand, 0));
-  const roles = onlyMeasurand(workspace, measurand, 0);
-  const { marginal, solved } = solveBlock(workspace, [measurand], roles);
-  const { lower, upper, width } = boundsOf(level);
-  const { scale, value } = lastUnknown(solved.system);
-  const best = Math.min(Math.max(value, lower), upper);
-  const margin = AT_BOUND * width;
-  const inside = best - lower > margin && upper - best > margin;
-  const beyond = scale * (best - value);
-  const chiSquare = marginal.squares + solved.system.rss + beyond * beyond;
-  return fitOf(chiSquare, counted - (inside ? 1 : 0));
+  return fit(workspace, onlyMeasurand(workspace, measurand, 0));
 }
 
 /** @param least a minimum; one beyond all doubles is infinite, and its p 0 */
@@ -59,11 +57,35 @@ export function fitOf(least: number, degreesOfFreedom: number): Fit {
   return { chiSquare, degreesOfFreedom, pValue };
 }
 
-function solveBlock(workspace: Workspace, block: number[], roles: Roles) {
-  const levels: Level[] = block.map((m) => levelOf(workspace, m, roles[m]!));
-  const parts: Part[] = block.map((m, i) => ({ measurand: m, noise: levels[i]!.role.noise }));
+function blockFit(workspace: Workspace, block: number[], roles: Roles): BlockChiSquare {
+  const key = blockKey(block, roles);
+  const there = workspace.fits.get(key);
+  if (there !== undefined) return there;
+  const made = isPlain(workspace, block, roles)
+    ? plainFit(workspace, block, roles)
+    : generalFit(workspace, block, roles);
+  workspace.fits.set(key, made);
+  return made;
+}
+
+function plainFit(workspace: Workspace, block: number[], roles: Roles): BlockChiSquare {
+  const levels = block.map((m) => levelOf(workspace, m, roles[m]!));
+  const parts = block.map((m, i) => ({ measurand: m, noise: levels[i]!.role.noise }));
   const marginal = marginalOf(workspace.marginals, parts);
-  return { marginal, solved: solve(marginal, levels) };
+  const { system, gaussians, flats } = solve(marginal, levels);
+  let counted = 0;
+  for (const m of block) counted += workspace.sums.measurands[m]!.counted;
+  const fixed = marginal.squares + system.rss;
+  if (flats.length === 0) return { chiSquare: fixed, counted, flatInside: 0 };
+  const bounds = flats.map((part) => boundsOf(levels[part]!));
+  const best = boundedLeastSquares(lastUnknowns(system, gaussians), boxOf(bounds));
+  let flatInside = 0;
+  bounds.forEach(({ lower, upper, width }, i) => {
+    const margin = AT_BOUND * width;
+    const value = best.values[i]!;
+    if (value - lower > margin && upper - value > margin) flatInside += 1;
+  });
+  return { chiSquare: fixed + best.chiSquare, counted, flatInside };
 }
 
 /** The last unknown's best value, and what one of its unit costs in standard deviations. */

@@ -1,5 +1,6 @@
 import { logSumExp } from "@weighhouse/numerics/log-sum-exp";
 import type { Pair } from "@weighhouse/campaign/standings";
+import { enteredCounts } from "./entered";
 import { evidence } from "./evidence";
 import type { HypothesisScore } from "./hypothesis-scores";
 import type { Workspace } from "./workspace";
@@ -48,8 +49,8 @@ function commonGround(
 ): Pair["commonGround"] {
   let measurements = 0;
   const shared = a.spoken.map((role, m) => role !== null && b.spoken[m] !== null);
-  workspace.sums.measurands.forEach(({ counted }, m) => {
-    if (shared[m]) measurements += counted;
+  enteredCounts(workspace).forEach((count, m) => {
+    if (shared[m]) measurements += count;
   });
   if (measurements === 0) return { measurements, log10BayesFactor: null };
   const only = ({ spoken }: HypothesisScore) => spoken.map((role, m) => (shared[m] ? role : null));

@@ -13,7 +13,6 @@ import type {
   MeasurandFrame,
   PredictionFrame,
 } from "./frame";
-import { unsupportedParts } from "./not-yet-supported";
 import { predictionFrame } from "./prediction-frame";
 import { referenceRole } from "./reference-role";
 import { toScoringSpace } from "./scoring-space";
@@ -21,10 +20,13 @@ import { oversizedParts } from "./sizes";
 
 /** @returns the frame, or everything in the document that can't be scored */
 export function compileFrame(whole: CampaignDocument): Result<Frame> {
-  const problems = [...unsupportedParts(whole), ...oversizedParts(whole)];
+  const problems = oversizedParts(whole);
   if (problems.length > 0) return { ok: false, problems };
   const document = { ...whole, measurements: [] };
   const measurands = compileMeasurands(document);
+  measurands.forEach(({ derived }, m) => {
+    for (const { measurand } of derived?.from ?? []) measurands[measurand]!.usedBy.push(m);
+  });
   const measurandIndex = indexOf(measurands);
   const hypotheses: HypothesisFrame[] = [];
   for (let i = 0; i < document.hypotheses.length; i += 1) {
@@ -66,6 +68,7 @@ function compileMeasurands(document: CampaignDocument): MeasurandFrame[] {
       return withReference(observable, one.reference, one.where, {
         ...frameOf(one.key, `/measurands/${i}`, observable),
         curve: one.shape === "curve",
+        apart: one.shape === "curve" || scale === "cyclic",
         closed: one.closed !== null,
         scatterVariance: one.scatter ** 2,
         thresholds: one.thresholds.map(({ key, value }) => ({
@@ -110,10 +113,12 @@ function frameOf(key: string, pointer: string, observable: Observable): Measuran
     roles: [],
     natural: null,
     noises: [0],
+    apart: false,
     thresholds: [],
     firstPostedAt: null,
     firstObservedAt: null,
     derived: null,
+    usedBy: [],
   };
 }
 

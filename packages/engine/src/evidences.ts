@@ -1,7 +1,7 @@
 import { scoreHypothesis, scoreSilence } from "./hypothesis-scores";
+import { openWorkspace } from "./open-workspace";
 import type { ScoreOptions } from "./score-options";
 import type { EngineState } from "./engine-state";
-import { createWorkspace } from "./workspace";
 
 export interface EvidencePoint {
   /** A hypothesis's key, `noneOfThese` (where its weight is above 0), or `noModel`. */
@@ -12,12 +12,12 @@ export interface EvidencePoint {
 
 /** One point of the timeline: every hypothesis in the document's order, then noneOfThese, then noModel. */
 export function evidencesOf(
-  { frame, sums, tally }: EngineState,
+  state: EngineState,
   { includeAfter = false }: Pick<ScoreOptions, "includeAfter"> = {},
 ): EvidencePoint[] {
-  const workspace = createWorkspace(frame, sums);
-  const context = { dates: tally.dates, includeAfter };
-  const scores = frame.hypotheses.map((one) => scoreHypothesis(workspace, one, context));
+  const workspace = openWorkspace(state);
+  const context = { dates: state.tally.dates, includeAfter };
+  const scores = state.frame.hypotheses.map((one) => scoreHypothesis(workspace, one, context));
   const silence = scoreSilence(workspace);
   const points = silence.share > 0 ? [...scores, silence] : scores;
   return [...points, { ...silence, key: "noModel" }].map(({ key, lnEvidence }) => ({

@@ -49,7 +49,7 @@ export function logFlatLevels(workspace: Workspace, block: Block): LogIntegral {
 
 type Bounds = ReturnType<typeof boundsOf>;
 
-function boxOf(bounds: readonly Bounds[]): Required<Box> {
+export function boxOf(bounds: readonly Bounds[]): Required<Box> {
   return {
     lower: Float64Array.from(bounds, ({ lower }) => lower),
     upper: Float64Array.from(bounds, ({ upper }) => upper),
@@ -58,7 +58,7 @@ function boxOf(bounds: readonly Bounds[]): Required<Box> {
 }
 
 /** The system of the unknowns from `begin` on, those before integrated out. */
-function lastUnknowns(system: TriangularSystem, begin: number): TriangularSystem {
+export function lastUnknowns(system: TriangularSystem, begin: number): TriangularSystem {
   const size = system.size - begin;
   const last = createSystem(size);
   for (let i = 0; i < size; i += 1) {

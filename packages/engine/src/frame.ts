@@ -72,11 +72,15 @@ export interface MeasurandFrame {
   natural: { lower: number; upper: number } | null;
   /** Variances that roles add to each measurement; 0 is none. `Role.noise` is an index here. */
   noises: number[];
+  /** Its readings can't be summed up: something said of it tells each measurement apart. */
+  apart: boolean;
   thresholds: { key: string; value: number }[];
   firstPostedAt: string | null;
   firstObservedAt: string | null;
   /** Null for what is measured itself. */
   derived: DerivedFrame | null;
+  /** Derived values that are computed from it. */
+  usedBy: number[];
 }
 
 /** A value computed from others' combined values. */

@@ -3,7 +3,7 @@ import { readCampaign } from "@weighhouse/campaign/read";
 import { createState, standingsOf } from "./state";
 import fixture from "./fixtures/hard-cases.json";
 import { scoreSilence } from "./hypothesis-scores";
-import { createWorkspace } from "./workspace";
+import { createWorkspace } from "./create-workspace";
 
 interface HardCase {
   name: string;

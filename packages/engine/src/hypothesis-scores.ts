@@ -1,7 +1,10 @@
-import type { Order } from "@weighhouse/campaign/standings";
+import type { HypothesisStanding, Order } from "@weighhouse/campaign/standings";
 import { fit, type Fit } from "./chi-square-fit";
+import { enteredCounts } from "./entered";
+import { givenState } from "./events";
 import { evidence } from "./evidence";
 import type { HypothesisFrame, PredictionFrame } from "./frame";
+import { effectiveRows, parameterStandings } from "./model/parameter-standings";
 import { orderOf, type FirstDates } from "./order";
 import type { Roles, Workspace } from "./workspace";
 
@@ -15,7 +18,7 @@ export interface HypothesisScore {
   pointer: string;
   share: number;
   listed: ListedPrediction[];
-  /** Its role where it speaks and counts, null where it is silent. */
+  /** Its role where it speaks and counts, null where it is silent, or nothing enters. */
   spoken: Roles;
   compared: number;
   silent: number;
@@ -23,6 +26,9 @@ export interface HypothesisScore {
   /** -Infinity where the likelihood is zero. */
   lnEvidence: number;
   lnEvidenceError: number;
+  parameters: HypothesisStanding["parameters"];
+  /** Effective number of its ensemble's rows, 1 / sum w^2; null where no measurement hangs on one. */
+  effectiveRows: number | null;
 }
 
 /** A prediction that says nothing in the standings: filed after data, unless those were asked for. */
@@ -38,40 +44,55 @@ export function scoreHypothesis(
   const listed = listPredictions(workspace, hypothesis, dates);
   const spoken: (number | null)[] = workspace.frame.measurands.map(() => null);
   for (const one of listed) {
-    if (one.kind === "open" && !isSilenced(one.order, includeAfter)) {
-      spoken[one.prediction.measurand] = one.prediction.role;
-    }
+    if (one.kind !== "open" || isSilenced(one.order, includeAfter)) continue;
+    const { measurand, role, given } = one.prediction;
+    if (given !== null && givenState(workspace, given) !== "met") continue;
+    spoken[measurand] = role;
   }
   const { key, pointer, share } = hypothesis;
-  return { key, pointer, share, listed, ...scoreRoles(workspace, spoken) };
+  const { charged, ...scores } = scoreRoles(workspace, spoken);
+  return {
+    key,
+    pointer,
+    share,
+    listed,
+    ...scores,
+    parameters: parameterStandings(workspace, hypothesis, charged),
+    effectiveRows: effectiveRows(workspace, hypothesis, charged),
+  };
 }
 
 /** The hypothesis silent on everything: `noneOfThese`, and the evidence of `noModel`. */
 export function scoreSilence(workspace: Workspace): HypothesisScore {
   const { weight } = workspace.frame.document.campaign.noneOfThese;
-  const spoken = workspace.frame.measurands.map(() => null);
+  const silent = workspace.frame.measurands.map(() => null);
+  const { charged: _, ...scores } = scoreRoles(workspace, silent);
   return {
     key: "noneOfThese",
     pointer: "/campaign/noneOfThese",
     share: weight,
     listed: [],
-    ...scoreRoles(workspace, spoken),
+    ...scores,
+    parameters: [],
+    effectiveRows: null,
   };
 }
 
-function scoreRoles(workspace: Workspace, spoken: Roles) {
+function scoreRoles(workspace: Workspace, said: Roles) {
   let compared = 0;
   let silent = 0;
-  workspace.sums.measurands.forEach(({ counted }, m) => {
-    if (spoken[m] === null) silent += counted;
-    else compared += counted;
+  const counts = enteredCounts(workspace);
+  counts.forEach((count, m) => {
+    if (said[m] === null) silent += count;
+    else compared += count;
   });
+  const spoken = said.map((role, m) => (counts[m]! > 0 ? role : null));
   // Where it is silent it is charged the measurand's reference.
-  const charged = spoken.map((role) => role ?? 0);
+  const charged = said.map((role, m) => (counts[m]! > 0 ? (role ?? 0) : null));
   const { ln, error } = evidence(workspace, charged);
   const lnEvidence = Number.isFinite(ln) ? ln : -Infinity;
   const own = fit(workspace, spoken);
-  return { spoken, compared, silent, fit: own, lnEvidence, lnEvidenceError: error };
+  return { spoken, charged, compared, silent, fit: own, lnEvidence, lnEvidenceError: error };
 }
 
 function listPredictions(

@@ -16,6 +16,18 @@ export function firstDates({ firstObservedAt, firstPostedAt }: MeasurandFrame): 
   return { measured, observed: firstObservedAt, posted: firstPostedAt, known: null };
 }
 
+/** The earliest dates of several measurands together. */
+export function earliestOf(measurands: readonly MeasurandFrame[]): FirstDates {
+  const dates: FirstDates = { measured: false, observed: null, posted: null, known: null };
+  for (const one of measurands) {
+    const { measured, observed, posted } = firstDates(one);
+    dates.measured ||= measured;
+    dates.observed = earlier(dates.observed, observed);
+    dates.posted = earlier(dates.posted, posted);
+  }
+  return dates;
+}
+
 export function noteDates(dates: FirstDates, measurement: Measurement): void {
   const { observedAt, postedAt, knownSince } = measurement;
   dates.measured = true;

@@ -9,7 +9,6 @@ import {
   type Role,
   type ToleranceFrame,
 } from "./frame";
-import { notYetSupported } from "./not-yet-supported";
 import { toScoringSpace } from "./scoring-space";
 import { MOST_SD } from "./sizes";
 import { toleranceFrame } from "./tolerance-frame";
@@ -37,11 +36,6 @@ export function predictionFrame(
   if (!compiled.ok) return compiled;
   const given = compiled.value;
   const tolerance = toleranceFrame(prediction, frame, given);
-  if (given.expectation !== null) {
-    const found = `"${prediction.expected}"`;
-    const allowed = "a number, or an expression of numbers only";
-    return { ok: false, problems: [notYetSupported(`${pointer}/expected`, found, allowed)] };
-  }
   const expected = given.natural === null ? null : toScoringSpace(given.natural, frame.scale);
   if (expected !== null && !Number.isFinite(expected)) {
     const allowed = frame.scale === "log10" ? "a number above 0" : "a finite number";
@@ -66,6 +60,10 @@ export function predictionFrame(
     registeredAt: prediction.registeredAt,
     given: context.given,
   };
+  if (tellsApart(tolerance)) frame.apart = true;
+  if (tolerance.family === "normal" && tolerance.sharing === "each" && !tolerance.relative) {
+    noiseIndex(frame, tolerance.sd * tolerance.sd);
+  }
   value.role = roleIndex(frame, roleOf(value, given, context));
   return { ok: true, value };
 }
@@ -73,6 +71,12 @@ export function predictionFrame(
 function refused(pointer: string, found: string, allowed: string): Result<never> {
   const problem: Problem = { pointer, code: "out-of-range", found, allowed };
   return { ok: false, problems: [problem] };
+}
+
+/** Whether each measurement has something of its own that isn't one normal noise for all. */
+function tellsApart(tolerance: ToleranceFrame): boolean {
+  if (!("sharing" in tolerance) || tolerance.sharing !== "each") return false;
+  return tolerance.family !== "normal" || tolerance.relative;
 }
 
 function sdOf(tolerance: ToleranceFrame, expected: number | null): number | null {
@@ -142,11 +146,14 @@ function roleOf(
 }
 
 function roleIndex(frame: MeasurandFrame, role: Role): number {
-  const there = frame.roles.findIndex((other) => sameRole(role, other));
+  const there = frame.roles.findIndex((other, i) => i > 0 && sameRole(role, other));
   return there >= 0 ? there : frame.roles.push(role) - 1;
 }
 
-/** Roles that say the same of a measurand are one, whoever says it. */
+/**
+ * Predictions that say the same of a measurand are one role, whoever says it. A reference stays by
+ * itself: relative shared errors are a share of its level, but of what is expected in a prediction.
+ */
 function sameRole(a: Role, b: Role): boolean {
   if (a.kind === "normal" && b.kind === "normal") {
     return a.mean === b.mean && a.sd === b.sd && a.noise === b.noise;

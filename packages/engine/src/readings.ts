@@ -1,11 +1,4 @@
-import type { Measurement } from "@weighhouse/campaign/document";
-import { below } from "@weighhouse/campaign/pointer";
-import type { Problem, Result } from "@weighhouse/campaign/problem";
 import type { Frame } from "./frame";
-import { unsupportedMeasurement } from "./not-yet-supported";
-import { readResult } from "./results";
-import { relativeSd } from "./scoring-space";
-import { MOST_SD } from "./sizes";
 
 export interface Loading {
   error: number;
@@ -46,12 +39,11 @@ export interface Reading {
 }
 
 /**
- * Whether a reading goes into its measurand's sums: an ordinary value of a constant measurand on a
- * line, not correlated with another. Any other is kept as it is.
+ * Whether a reading goes into its measurand's sums: an ordinary value, not correlated with another,
+ * of a constant measurand on a line. Any other is kept as it is.
  */
 export function isSummed(frame: Frame, { id, measurand, told }: Reading): boolean {
-  const { curve, period } = frame.measurands[measurand]!;
-  return told.form === "value" && !curve && period === 0 && !frame.correlated.has(id);
+  return told.form === "value" && !frame.measurands[measurand]!.apart && !frame.correlated.has(id);
 }
 
 /** A value that a residual can be taken of: it counts in chi-square. */
@@ -61,68 +53,4 @@ export function isValue(told: Told): boolean {
     told.form === "asymmetric" ||
     (told.form === "linear-noise" && !told.limit)
   );
-}
-
-/** Brings a measurement into scoring space, or says why it can't be scored. */
-export function readMeasurement(
-  frame: Frame,
-  measurement: Measurement,
-  pointer: string,
-): Result<Reading> {
-  const measurand = frame.measurandIndex.get(measurement.measurand)!;
-  const own = frame.measurands[measurand]!;
-  const problems = unsupportedMeasurement(
-    measurement,
-    pointer,
-    new Set(frame.errors.filter(({ relative }) => relative).map(({ key }) => key)),
-  );
-  if (problems.length > 0) return { ok: false, problems };
-  const read = readResult(measurement, own, pointer);
-  if ("pointer" in read) return { ok: false, problems: [read] };
-  const loadings = readLoadings(frame, measurement, { pointer, told: read.told });
-  if ("pointer" in loadings) return { ok: false, problems: [loadings] };
-  const { conditions } = measurement;
-  const value: Reading = {
-    id: measurement.id,
-    measurand,
-    ...read,
-    conditions: own.curve ? own.conditions.map((key) => conditions[key] ?? Number.NaN) : [],
-    loadings,
-    provisional: measurement.status === "provisional",
-  };
-  return { ok: true, value };
-}
-
-function readLoadings(
-  frame: Frame,
-  measurement: Measurement,
-  { pointer, told }: { pointer: string; told: Told },
-): Loading[] | Problem {
-  const loadings: Loading[] = [];
-  const { scale } = frame.measurands[frame.measurandIndex.get(measurement.measurand)!]!;
-  const most = MOST_SD * Math.min(1, "variance" in told ? Math.sqrt(told.variance) : 1);
-  for (const [position, { error: key, coefficient }] of measurement.shared.entries()) {
-    const error = frame.errorIndex.get(key);
-    if (error === undefined) {
-      const found = `"${key}"`;
-      const allowed = "a shared error of the campaign";
-      return { pointer: below(pointer, "shared"), code: "unknown-key", found, allowed };
-    }
-    const { sd, perBatch, relative } = frame.errors[error]!;
-    if (perBatch && measurement.batch === null) {
-      const allowed = `a batch, as "${key}" is drawn per batch`;
-      return { pointer: below(pointer, "batch"), code: "missing", found: "none", allowed };
-    }
-    const batch = perBatch ? measurement.batch : null;
-    const constant = relative ? relativeSd(sd, scale) : sd;
-    const value = coefficient * (constant ?? sd);
-    if (!(Math.abs(value) <= most)) {
-      const found = `${coefficient}, a loading of ${value}`;
-      const at = below(pointer, "shared", position, "coefficient");
-      const allowed = `a loading of at most ${most}`;
-      return { pointer: at, code: "out-of-range", found, allowed };
-    }
-    loadings.push({ error, batch, value, relative: constant === null });
-  }
-  return loadings;
 }

@@ -1,6 +1,7 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { compileFrame } from "./compile-frame";
 import type { EngineState } from "./engine-state";
+import type { Reading } from "./readings";
 import { indexSums, placeOf, type Draw, type MeasurandSums, type Pattern } from "./sums";
 import type { Tally } from "./tally";
 import { ENGINE_VERSION, STATE_VERSION } from "./version";
@@ -12,12 +13,15 @@ interface StateText {
   document: CampaignDocument;
   draws: Draw[];
   patterns: Pattern[];
-  measurands: (Omit<MeasurandSums, "sums"> & { sums: number[] })[];
+  measurands: (Omit<MeasurandSums, "sums" | "kept"> & { sums: number[]; kept: KeptText[] })[];
   tally: Omit<Tally, "sameData" | "unknownUnits"> & {
     sameData: [string, Tally["sameData"] extends Map<string, infer V> ? V : never][];
     unknownUnits: [string, Tally["unknownUnits"] extends Map<string, infer V> ? V : never][];
   };
 }
+
+/** A condition that wasn't given is NaN, which JSON has no number for. */
+type KeptText = Omit<Reading, "conditions"> & { conditions: (number | null)[] };
 
 /** JSON text; `restoreState` reads it back to the same numbers, bit for bit. */
 export function serialiseState({ frame, sums, tally }: EngineState): string {
@@ -54,7 +58,14 @@ export function restoreState(text: string): EngineState | null {
   const sums = indexSums({
     draws,
     patterns,
-    measurands: measurands.map((one) => ({ ...one, sums: Float64Array.from(one.sums) })),
+    measurands: measurands.map((one) => ({
+      ...one,
+      sums: Float64Array.from(one.sums),
+      kept: one.kept.map((reading) => ({
+        ...reading,
+        conditions: reading.conditions.map((value) => value ?? Number.NaN),
+      })),
+    })),
   });
   return {
     frame: frame.value,

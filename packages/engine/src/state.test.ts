@@ -119,7 +119,7 @@ describe("a state", () => {
     const [good] = document.measurements;
     const refused = addMeasurements(state, [
       { ...good!, id: "n" },
-      { ...good!, id: "p", limit: "upper", confidence: 0.9, sd: null },
+      { ...good!, id: "p", limit: "upper", confidence: 0.9, sd: null, value: 3 },
       { ...good!, id: "q", measurand: "z" },
       { ...good!, id: "r", unit: "kg" },
       { ...good!, id: "s", sd: null },
@@ -130,7 +130,6 @@ describe("a state", () => {
     ]);
     const problems = refused.ok ? [] : refused.problems;
     expect(problems.map(({ pointer, code }) => `${pointer} ${code}`)).toEqual([
-      "/measurements/2/limit not-yet-supported",
       "/measurements/3/measurand unknown-key",
       "/measurements/4/unit wrong-dimension",
       "/measurements/5/sd missing",

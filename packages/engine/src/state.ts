@@ -4,21 +4,18 @@ import type { Standings } from "@weighhouse/campaign/standings";
 import { compileFrame } from "./compile-frame";
 import type { EngineState } from "./engine-state";
 import type { Frame } from "./frame";
-import { unsupportedMeasurements } from "./not-yet-supported";
-import { readMeasurement, type Reading } from "./readings";
+import { openWorkspace } from "./open-workspace";
+import { readMeasurement } from "./read-measurement";
+import type { Reading } from "./readings";
 import type { ScoreOptions } from "./score-options";
 import { standings } from "./standings";
 import { addReading, createSums } from "./sums";
 import { createTally, noteMeasurement } from "./tally";
-import { createWorkspace } from "./workspace";
 
 /** The state of a campaign with all measurements of its document in it. */
 export function createState(document: CampaignDocument): Result<EngineState> {
   const compiled = compileFrame(document);
-  if (!compiled.ok) {
-    const problems = [...compiled.problems, ...unsupportedMeasurements(document)];
-    return { ok: false, problems };
-  }
+  if (!compiled.ok) return compiled;
   const frame = compiled.value;
   const state = { frame, sums: createSums(frame.measurands), tally: createTally(frame) };
   const problems: Problem[] = [];
@@ -85,11 +82,8 @@ function readCounted(
 }
 
 /** The standings document of a state. */
-export function standingsOf(
-  { frame, sums, tally }: EngineState,
-  options: ScoreOptions = {},
-): Standings {
-  return standings(createWorkspace(frame, sums), tally, options);
+export function standingsOf(state: EngineState, options: ScoreOptions = {}): Standings {
+  return standings(openWorkspace(state), state.tally, options);
 }
 
 export type { EngineState } from "./engine-state";

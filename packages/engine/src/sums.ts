@@ -36,8 +36,9 @@ export interface MeasurandSums {
   /** How many of those that count are values that a residual can be taken of. */
   valued: number;
   noises: number;
-  /** The pattern of each group. */
+  /** The pattern of each group, and how many measurements are in it. */
   patterns: number[];
+  counts: number[];
   /**
    * Per group, per noise class, of y minus the centre: sum of 1/v, weighted mean, weighted squares
    * about it, sum of ln v. Longer than its groups need.
@@ -76,6 +77,7 @@ export function createSums(measurands: readonly MeasurandFrame[]): Sums {
       valued: 0,
       noises: noises.length,
       patterns: [],
+      counts: [],
       sums: new Float64Array(noises.length * PER_CLASS),
       kept: [],
     })),
@@ -113,8 +115,13 @@ export function addReading(sums: Sums, reading: Reading, frame: Frame): void {
   if (reading.provisional) own.provisional += 1;
   if (isValue(told)) own.valued += 1;
   if (told.form === "value" && isSummed(frame, reading)) {
-    addValue(own, { ...told, group: groupOf(sums, reading) }, frame.measurands[reading.measurand]!);
-  } else own.kept.push(reading);
+    const group = groupOf(sums, reading);
+    own.counts[group] = (own.counts[group] ?? 0) + 1;
+    addValue(own, { ...told, group }, frame.measurands[reading.measurand]!);
+    return;
+  }
+  own.kept.push(reading);
+  for (const { error, batch } of reading.loadings) drawIndex(sums, { error, batch });
 }
 
 function centreOf(told: Told): number {
@@ -184,7 +191,7 @@ function patternOf(sums: Sums, loadings: readonly Loading[]): number {
 function sortedPattern(sums: Sums, loadings: readonly Loading[]): Pattern {
   const byDraw = new Map<number, { value: number; relative: boolean }>();
   for (const { error, batch, value, relative } of loadings) {
-    const draw = drawOf(sums, { error, batch });
+    const draw = drawIndex(sums, { error, batch });
     byDraw.set(draw, { value: (byDraw.get(draw)?.value ?? 0) + value, relative });
   }
   const pairs = [...byDraw].filter(([, { value }]) => value !== 0).sort(([a], [b]) => a - b);
@@ -202,7 +209,8 @@ function patternKey({ draws, loadings, relative }: Pattern): string {
   return draws.map((draw, i) => `${draw}:${loadings[i]}${relative[i] ? "*" : ""}`).join(";");
 }
 
-function drawOf(sums: Sums, draw: Draw): number {
+/** The place of a draw, added if new. */
+export function drawIndex(sums: Sums, draw: Draw): number {
   const key = drawKey(draw);
   const there = sums.index.draws.get(key);
   if (there !== undefined) return there;

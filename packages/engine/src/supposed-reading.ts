@@ -4,7 +4,8 @@ import type { Frame, PredictionFrame } from "./frame";
 import type { Reading, Told } from "./readings";
 import { addReading, createSums } from "./sums";
 import { verdictOf } from "./verdict";
-import { createWorkspace, onlyMeasurand, type Workspace } from "./workspace";
+import { onlyMeasurand, type Workspace } from "./workspace";
+import { createWorkspace } from "./create-workspace";
 
 /** The one measurement that a preview supposes. */
 export interface Supposed {

@@ -3,7 +3,7 @@ import { scoreSilence } from "./hypothesis-scores";
 import { createState } from "./state";
 import { documentFrom, standingsFrom } from "./testing/documents";
 import { warningsOf as allWarnings } from "./warnings";
-import { createWorkspace } from "./workspace";
+import { createWorkspace } from "./create-workspace";
 
 type Part = Record<string, unknown>;
 

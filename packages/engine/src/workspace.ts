@@ -1,9 +1,9 @@
 import type { LogIntegral } from "@weighhouse/numerics/box";
-import { couplingDraws } from "./blocks";
 import type { Frame } from "./frame";
-import { createMarginals, type Marginals } from "./marginal";
+import type { Marginals } from "./marginal";
 import type { Loading } from "./readings";
 import type { Level } from "./solve";
+import type { GeneralEvidence } from "./model/block-parts";
 import type { Sums } from "./sums";
 
 /** A measurand's measurements taken together, in scoring space. */
@@ -47,23 +47,21 @@ export interface Workspace {
   evidences: Map<string, LogIntegral>;
   combinations: Map<number, Combination | null>;
   derived: DerivedVector;
+  /** Of measurements that are correlated with one another, the group by id. */
+  correlationGroups: Map<string, number>;
+  /** Measurands that something other than a draw ties together, whatever is said of them. */
+  ties: number[][];
+  general: Map<string, GeneralEvidence>;
+  fits: Map<string, BlockChiSquare>;
 }
 
-export function createWorkspace(frame: Frame, sums: Sums): Workspace {
-  return {
-    frame,
-    sums,
-    marginals: createMarginals(sums),
-    coupling: couplingDraws(sums),
-    evidences: new Map(),
-    combinations: new Map(),
-    derived: {
-      measurands: [],
-      values: new Float64Array(),
-      covariance: new Float64Array(),
-      loadings: [],
-    },
-  };
+/** A block's part of chi-square. */
+export interface BlockChiSquare {
+  chiSquare: number;
+  /** Measurements with a value that it is over. */
+  counted: number;
+  /** Flat unknowns whose minimum lies inside their bounds: each costs a degree of freedom. */
+  flatInside: number;
 }
 
 /** Roles that leave out all measurands but one. */
@@ -71,11 +69,12 @@ export function onlyMeasurand({ frame }: Workspace, measurand: number, role: num
   return frame.measurands.map((_, m) => (m === measurand ? role : null));
 }
 
-/** The measurands that have a role and counted measurements, in increasing order. */
-export function measuredIn({ sums }: Workspace, roles: Roles): number[] {
+/** The measurands that have a role and something that counts, in increasing order. */
+export function measuredIn({ sums, derived }: Workspace, roles: Roles): number[] {
   const measured: number[] = [];
   roles.forEach((role, m) => {
-    if (role !== null && sums.measurands[m]!.counted > 0) measured.push(m);
+    if (role === null) return;
+    if (sums.measurands[m]!.counted > 0 || derived.measurands.includes(m)) measured.push(m);
   });
   return measured;
 }

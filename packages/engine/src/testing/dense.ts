@@ -256,7 +256,7 @@ function logBox({
 
 let nodes: { x: number; w: number }[] | null = null;
 
-function legendre20(): { x: number; w: number }[] {
+export function legendre20(): { x: number; w: number }[] {
   if (nodes !== null) return nodes;
   const n = 20;
   nodes = Array.from({ length: n }, (_, k) => {
@@ -275,7 +275,7 @@ function legendre20(): { x: number; w: number }[] {
   return nodes;
 }
 
-function cholesky(matrix: number[][]): number[][] {
+export function cholesky(matrix: number[][]): number[][] {
   const factor = matrix.map((row) => row.map(() => 0));
   matrix.forEach((row, i) => {
     for (let j = 0; j <= i; j += 1) {
@@ -287,7 +287,7 @@ function cholesky(matrix: number[][]): number[][] {
   return factor;
 }
 
-function forward(factor: number[][], right: number[]): number[] {
+export function forward(factor: number[][], right: number[]): number[] {
   const solved: number[] = [];
   right.forEach((value, i) => {
     let sum = value;
@@ -306,7 +306,7 @@ function backward(factor: number[][], right: number[]): number[] {
   return solved;
 }
 
-function dot(a: number[], b: number[]): number {
+export function dot(a: number[], b: number[]): number {
   let sum = 0;
   for (let i = 0; i < a.length; i += 1) sum += a[i]! * b[i]!;
   return sum;
