@@ -1,6 +1,13 @@
 import { LN_SQRT_2PI } from "@weighhouse/numerics/normal";
 import { convolved } from "./convolution";
-import { ASYMMETRIC, EACH_FLAT, type BlockProblem, type BlockRows, type Factor } from "./problem";
+import {
+  ASYMMETRIC,
+  EACH_FLAT,
+  NORMAL,
+  type BlockProblem,
+  type BlockRows,
+  type Factor,
+} from "./problem";
 
 /**
  * The variance of a reading x with uncertainties plus and minus, linear in the true value and
@@ -24,7 +31,11 @@ export function asymmetryFactor(variance: number, plus: number, minus: number): 
   return Math.log((2 * Math.sqrt(variance)) / (plus + minus));
 }
 
-/** L(mu) = exp(-(mu - x)^2 / 2V(mu)) 2 / (sqrt(2 pi) (plus + minus)), seen through `variance`. */
+/**
+ * L(mu) = exp(-(mu - x)^2 / 2V(mu)) 2 / (sqrt(2 pi) (plus + minus)), seen through the extra
+ * variance: mu is what was there to be read, with scatter and all. In chi-square it is
+ * (x - mu) / sqrt(V(mu)), the least over what the extra variance may have added.
+ */
 export function asymmetricFactor(rows: BlockRows, i: number): Factor {
   const x = rows.observed[i]!;
   const plus = rows.asymmetric!.plus[i]!;
@@ -36,19 +47,10 @@ export function asymmetricFactor(rows: BlockRows, i: number): Factor {
     centre: x,
     scale: Math.max(plus, minus),
     breaks: [x - minus, x + plus],
-    residual: null,
+    residual: (mu) => (x - mu) / Math.sqrt(asymmetricVariance(mu - x, plus, minus)),
     box: null,
   };
-  const seen = extra > 0 ? convolved(factor, extra) : factor;
-  return { ...seen, residual: (mu) => asymmetricResidual(rows, i, mu) };
-}
-
-/** (x - mu) / sqrt(V(mu) + extra). */
-export function asymmetricResidual(rows: BlockRows, i: number, mu: number): number {
-  const x = rows.observed[i]!;
-  const { plus, minus } = rows.asymmetric!;
-  const variance = asymmetricVariance(mu - x, plus[i]!, minus[i]!) + rows.variance[i]!;
-  return (x - mu) / Math.sqrt(variance);
+  return extra > 0 ? convolved(factor, extra) : factor;
 }
 
 /**
@@ -74,15 +76,20 @@ export function allowsExactAsymmetry(problem: BlockProblem): boolean {
   return linear.length === 1 || (normal && isOneSum(problem));
 }
 
-/** Whether the columns of all linear unknowns are multiples of one another. */
-function isOneSum({ rows, design, linear }: BlockProblem): boolean {
+/**
+ * Whether the columns of all linear unknowns are multiples of one another; but for those that only
+ * one row has, and that a normal one, of whose noise they are a part.
+ */
+function isOneSum(problem: BlockProblem): boolean {
+  const { rows, design, linear } = problem;
+  const own = noiseOfOneRow(problem);
   let first: Float64Array | null = null;
   let largest = 0;
   const row = new Float64Array(linear.length);
   for (let i = 0; i < rows.count; i += 1) {
     row.fill(0);
     for (let e = design.start[i]!; e < design.start[i + 1]!; e += 1) {
-      row[design.column[e]!]! += design.value[e]!;
+      if (!own.has(design.column[e]!)) row[design.column[e]!]! += design.value[e]!;
     }
     if (first === null) {
       if (row.every((value) => value === 0)) continue;
@@ -100,6 +107,21 @@ function isOneSum({ rows, design, linear }: BlockProblem): boolean {
     if (!same) return false;
   }
   return true;
+}
+
+function noiseOfOneRow({ rows, design, linear }: BlockProblem): Set<number> {
+  const touched = linear.map(() => new Set<number>());
+  for (let i = 0; i < rows.count; i += 1) {
+    for (let e = design.start[i]!; e < design.start[i + 1]!; e += 1) {
+      touched[design.column[e]!]!.add(i);
+    }
+  }
+  const own = new Set<number>();
+  touched.forEach((some, k) => {
+    const [only] = some;
+    if (some.size === 1 && rows.kind[only!] === NORMAL) own.add(k);
+  });
+  return own;
 }
 
 function indicesOf(kinds: Uint8Array, kind: number): number[] {

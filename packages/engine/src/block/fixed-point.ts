@@ -149,8 +149,11 @@ function moveVariances(bench: Workbench, values: Float64Array, share: number): n
   for (const i of layout.gaussian) {
     if (rows.kind[i] !== ASYMMETRIC) continue;
     const { plus, minus } = rows.asymmetric!;
-    const target = asymmetricVariance(distance[i]!, plus[i]!, minus[i]!) + rows.variance[i]!;
+    const extra = rows.variance[i]!;
     const before = state.variance[i]!;
+    // What was there to be read has moved with the extra variance's share of the difference.
+    const read = (distance[i]! * (before - extra)) / before;
+    const target = asymmetricVariance(read, plus[i]!, minus[i]!) + extra;
     const next = before + share * (target - before);
     moved = Math.max(moved, Math.abs(next - before) / before);
     state.variance[i] = next;

@@ -280,8 +280,8 @@ describe("asymmetric readings", () => {
     const r = observed.map((y) => y - 2);
     for (let round = 0; round < 200; round += 1) {
       const weights = solveDense(covariance(), r);
-      // mu - 2 = WW' C^-1 r.
-      const mu = r.map((value, i) => value - (v[i]! + extra[i]!) * weights[i]!);
+      // All but the reading's own noise, V C^-1 r.
+      const mu = r.map((value, i) => value - v[i]! * weights[i]!);
       v = plus.map((p, i) => {
         const m = minus[i]!;
         const d = mu[i]! - r[i]!;
