@@ -8,6 +8,8 @@ export interface DifferencePoint {
   x: Float64Array;
   lower: Float64Array;
   upper: Float64Array;
+  /** The largest |x| so far: next to 0 the size of x says nothing of what to step by. */
+  largest: Float64Array;
   /** The residuals at x. */
   residuals: Float64Array;
   /** Receives the derivatives, row by row. */
@@ -16,7 +18,7 @@ export interface DifferencePoint {
 
 /**
  * Derivatives of residuals by central differences, (r(x + h) - r(x - h)) / 2h with
- * h = eps^(1/3) max(|x|, 1e-3 of the bounds' width, 1 where both are 0); one-sided with the residuals
+ * h = eps^(1/3) max(largest |x|, 1e-3 of the bounds' width, 1 where both are 0); one-sided with the residuals
  * at x where one side is out of bounds or isn't finite.
  *
  * Accuracy: about 1e-10 relative, one-sided 1e-5.
@@ -41,9 +43,9 @@ export function differenceJacobian(f: DifferencedFunction, point: DifferencePoin
   }
 }
 
-function stepOf({ x, lower, upper }: DifferencePoint, j: number): number {
+function stepOf({ x, lower, upper, largest }: DifferencePoint, j: number): number {
   const width = upper[j]! - lower[j]!;
-  const typical = Math.max(Math.abs(x[j]!), width < Infinity ? 1e-3 * width : 0);
+  const typical = Math.max(Math.abs(x[j]!), largest[j]!, width < Infinity ? 1e-3 * width : 0);
   return CUBE_ROOT_EPSILON * (typical || 1);
 }
 

@@ -211,3 +211,13 @@ test("without unknowns the sum of squares is the residuals'", () => {
   expect(fit.chiSquare).toBe(25);
   expect(fit.converged).toBe(true);
 });
+
+test("a step that ends next to 0 doesn't end the search there", () => {
+  // From 0.5 the first radius is 0.5, so that the step towards -0.5 stops at 0 but for rounding.
+  const fit = minimiseLeastSquares({
+    count: 2,
+    start: [0.5],
+    residuals: (x, out) => out.set([x[0]! + 1, x[0]!]),
+  });
+  expect(fit.x[0]).toBeCloseTo(-0.5, 9);
+});

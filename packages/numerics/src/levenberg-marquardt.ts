@@ -83,6 +83,7 @@ interface State {
   x: Float64Array;
   lower: Float64Array;
   upper: Float64Array;
+  largest: Float64Array;
   residuals: Float64Array;
   /** |residuals|. */
   length: number;
@@ -110,6 +111,7 @@ function startingState(problem: LeastSquaresProblem): State {
     x,
     lower,
     upper,
+    largest: x.map(Math.abs),
     residuals,
     length: lengthOf(residuals),
     jacobian: new Float64Array(problem.count * size),
@@ -133,7 +135,8 @@ function sumOfSquares(residuals: Float64Array): number {
 }
 
 function updateJacobian(problem: LeastSquaresProblem, state: State): boolean {
-  const { size, count, jacobian, residuals, gradient, columnNorms } = state;
+  const { size, count, jacobian, residuals, gradient, columnNorms, largest, x } = state;
+  for (let j = 0; j < size; j += 1) largest[j] = Math.max(largest[j]!, Math.abs(x[j]!));
   problem.jacobian?.(state.x, jacobian);
   if (problem.jacobian === undefined || !jacobian.every(Number.isFinite)) {
     differenceJacobian(problem, state);
