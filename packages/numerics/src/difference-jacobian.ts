@@ -18,7 +18,7 @@ export interface DifferencePoint {
 
 /**
  * Derivatives of residuals by central differences, (r(x + h) - r(x - h)) / 2h with
- * h = eps^(1/3) max(largest |x|, 1e-3 of the bounds' width, 1 where both are 0); one-sided with the residuals
+ * h = eps^(1/3) max(|x|, 1e-3 of the largest so far and of the bounds' width, 1 where all are 0); one-sided with the residuals
  * at x where one side is out of bounds or isn't finite.
  *
  * Accuracy: about 1e-10 relative, one-sided 1e-5.
@@ -45,7 +45,11 @@ export function differenceJacobian(f: DifferencedFunction, point: DifferencePoin
 
 function stepOf({ x, lower, upper, largest }: DifferencePoint, j: number): number {
   const width = upper[j]! - lower[j]!;
-  const typical = Math.max(Math.abs(x[j]!), largest[j]!, width < Infinity ? 1e-3 * width : 0);
+  const typical = Math.max(
+    Math.abs(x[j]!),
+    1e-3 * largest[j]!,
+    width < Infinity ? 1e-3 * width : 0,
+  );
   return CUBE_ROOT_EPSILON * (typical || 1);
 }
 
