@@ -18,6 +18,29 @@ const GAUSS = [
   0.29552422471475287,
 ];
 
+/** The rule on [-1, 1], its 21 nodes from left to right; `gauss` is 0 where Gauss has no node. */
+export const KRONROD_RULE = bothSides();
+
+function bothSides(): { nodes: Float64Array; kronrod: Float64Array; gauss: Float64Array } {
+  const rule = {
+    nodes: new Float64Array(21),
+    kronrod: new Float64Array(21),
+    gauss: new Float64Array(21),
+  };
+  for (let i = 0; i <= 10; i += 1) {
+    for (const [at, sign] of [
+      [i, -1],
+      [20 - i, 1],
+    ] as const) {
+      rule.nodes[at] = sign * NODES[i]!;
+      rule.kronrod[at] = KRONROD[i]!;
+      rule.gauss[at] = i % 2 === 1 ? GAUSS[(i - 1) / 2]! : 0;
+    }
+  }
+  rule.nodes[10] = 0;
+  return rule;
+}
+
 interface Piece {
   lower: number;
   upper: number;

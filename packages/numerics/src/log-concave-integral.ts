@@ -31,7 +31,13 @@ export function logConcaveIntegral(
   return { ln: height + Math.log(value), error: (below.error + above.error) / value };
 }
 
-function findPeak(
+/**
+ * The peak of g that lies uphill from `start`: bracketed by doubling steps, narrowed by golden
+ * sections until g falls by no more than half a nat to either side. For a concave g the only one.
+ *
+ * @returns where, g there, and the larger of the distances to the two sides
+ */
+export function findPeak(
   g: (x: number) => number,
   range: { lower: number; upper: number; start: number; scale: number },
 ): { x: number; height: number; width: number } {
