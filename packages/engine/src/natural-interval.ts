@@ -15,8 +15,7 @@ export function naturalInterval(
   const { scale, period } = frame.measurands[prediction.measurand]!;
   const { tolerance, natural } = prediction;
   if (tolerance.family === "exact" && natural !== null) return { lower: natural, upper: natural };
-  // A curve has no interval of its own, but bounds that are the same everywhere.
-  const interval = prediction.interval ?? intervalOf(frame, prediction);
+  const interval = intervalOf(frame, prediction);
   if (interval === null) return { lower: null, upper: null };
   const [lower, upper] = [interval.lower, interval.upper];
   if (period > 0) {

@@ -1,18 +1,9 @@
-import type { Prior } from "@weighhouse/campaign/document";
 import { linearParameters } from "@weighhouse/campaign/expression-linearity";
 import { gammaFromMoments } from "@weighhouse/numerics/gamma-distribution";
-import { normalQuantile } from "@weighhouse/numerics/normal";
-import { sobolPoints } from "@weighhouse/numerics/sobol";
 import type { Distribution } from "./distribution/distribution";
 import { drawsOf } from "./distribution/draws";
-import type {
-  EnsembleFrame,
-  Expectation,
-  Frame,
-  HypothesisFrame,
-  PredictionFrame,
-  ToleranceFrame,
-} from "./frame";
+import type { Expectation, Frame, HypothesisFrame, PredictionFrame, ToleranceFrame } from "./frame";
+import { freeSlots, middleOf, pointsOf } from "./prior-points";
 import { toScoringSpace, wrapped } from "./scoring-space";
 
 /** Of a smooth mixture, and of draws whose own order is the answer. */
@@ -32,6 +23,17 @@ const DRAWS = 2 ** 17;
  * Accuracy: closed forms 1e-12 of sd; mixtures 1e-4 of sd in their 95 % quantiles, draws 1e-3.
  */
 export function predictiveOf(frame: Frame, prediction: PredictionFrame): Distribution | null {
+  const there = known.get(prediction);
+  if (there !== undefined) return there;
+  const made = compute(frame, prediction);
+  known.set(prediction, made);
+  return made;
+}
+
+/** A prediction doesn't change, and neither does what it says beforehand. */
+const known = new WeakMap<PredictionFrame, Distribution | null>();
+
+function compute(frame: Frame, prediction: PredictionFrame): Distribution | null {
   const { tolerance, expectation, expected, measurand } = prediction;
   const { curve } = frame.measurands[measurand]!;
   if (curve || tolerance.family === "event") return null;
@@ -109,20 +111,13 @@ function linearNormal(
   return { kind: "normal", mean, sd: Math.sqrt(variance) };
 }
 
-function middleOf({ parameters, ensemble }: HypothesisFrame): Float64Array {
-  const columns = ensemble?.columns ?? [];
-  return Float64Array.from([
-    ...parameters.map(({ prior }) => priorQuantile(prior, 0.5)),
-    ...columns.map((column) => column[0]!),
-  ]);
-}
-
 function overPriors(
   frame: Frame,
   { prediction: { tolerance, measurand }, expectation, hypothesis }: Spoken,
 ): Distribution | null {
   const { scale, period } = frame.measurands[measurand]!;
   const exact = tolerance.family === "exact";
+  const free = freeSlots(hypothesis, expectation);
   const points = pointsOf(hypothesis, expectation, exact ? DRAWS : PARTS);
   const expected: { mode: number; natural: number; weight: number }[] = [];
   let whole = 0;
@@ -136,8 +131,8 @@ function overPriors(
     whole += weight;
   }
   if (!(whole > 0)) return null;
-  const equal = expected.every(({ weight }) => weight === expected[0]!.weight);
-  if (exact && equal && expected.length > 1) {
+  // Rows of an ensemble are steps, and stay so: only points of priors stand for what is between them.
+  if (exact && free.length > 0) {
     return drawsOf(Float64Array.from(expected, ({ mode }) => mode));
   }
   return {
@@ -147,83 +142,4 @@ function overPriors(
       of: about(tolerance, { mode, natural }),
     })),
   };
-}
-
-/**
- * Points of the priors of what the expression reads, in the middle of the cells that Sobol's points
- * are the corners of: so that no coordinate is 0. Without free parameters, the ensemble's rows.
- * The slots are one array, filled anew for each point.
- */
-function* pointsOf(
-  { parameters, ensemble, ...rest }: HypothesisFrame,
-  { uses }: Expectation,
-  count: number,
-): Generator<{ slots: Float64Array; weight: number }> {
-  const slots = middleOf({ parameters, ensemble, ...rest });
-  const free = uses.filter(
-    (slot) => slot < parameters.length && parameters[slot]!.prior.family !== "fixed",
-  );
-  const inRows = uses.some((slot) => slot >= parameters.length);
-  if (free.length === 0 && ensemble !== null) {
-    for (let row = 0; row < ensemble.logWeights.length; row += 1) {
-      setRow(slots, ensemble, { row, begin: parameters.length });
-      yield { slots, weight: Math.exp(ensemble.logWeights[row]!) };
-    }
-    return;
-  }
-  const dimension = free.length + (inRows ? 1 : 0);
-  const points = sobolPoints(dimension, count);
-  const shares = inRows ? cumulative(ensemble!) : null;
-  for (let i = 0; i < count; i += 1) {
-    free.forEach((slot, k) => {
-      const u = points[i * dimension + k]! + 0.5 / count;
-      slots[slot] = priorQuantile(parameters[slot]!.prior, u);
-    });
-    if (shares !== null) {
-      const u = points[i * dimension + free.length]! + 0.5 / count;
-      setRow(slots, ensemble!, { row: rowAt(shares, u), begin: parameters.length });
-    }
-    yield { slots, weight: 1 };
-  }
-}
-
-function setRow(
-  slots: Float64Array,
-  { columns }: EnsembleFrame,
-  { row, begin }: { row: number; begin: number },
-): void {
-  columns.forEach((column, k) => (slots[begin + k] = column[row]!));
-}
-
-function cumulative({ logWeights }: EnsembleFrame): Float64Array {
-  let sum = 0;
-  return logWeights.map((log) => (sum += Math.exp(log)));
-}
-
-function rowAt(shares: Float64Array, u: number): number {
-  let [low, high] = [0, shares.length - 1];
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (shares[middle]! < u) low = middle + 1;
-    else high = middle;
-  }
-  return low;
-}
-
-/** The value that a share u of a prior lies below, 0 < u < 1. */
-function priorQuantile(prior: Prior, u: number): number {
-  switch (prior.family) {
-    case "normal":
-      return prior.mean + prior.sd * normalQuantile(u);
-    case "lognormal":
-      return prior.median * 10 ** (prior.sdLog10 * normalQuantile(u));
-    case "halfnormal":
-      return prior.sd * normalQuantile((1 + u) / 2);
-    case "uniform":
-      return prior.lower + (prior.upper - prior.lower) * u;
-    case "loguniform":
-      return prior.lower * (prior.upper / prior.lower) ** u;
-    case "fixed":
-      return prior.value;
-  }
 }

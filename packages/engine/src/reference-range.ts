@@ -51,19 +51,9 @@ export function isOutsideReference(
   if (reference.kind === "polynomial" && x !== undefined) {
     return Math.abs(y - reference.centre) > OUTSIDE_SD * polynomialSd(reference, x);
   }
-  return isApart(referenceRange(frame, measurand), { lower: y, upper: y }, period);
-}
-
-/** Whether two ranges have no value in common. */
-export function isApart(
-  range: { lower: number; upper: number },
-  other: { lower: number; upper: number },
-  period: number,
-): boolean {
-  if (period === 0) return other.lower > range.upper || other.upper < range.lower;
-  const distance = wrapped((other.lower + other.upper - range.lower - range.upper) / 2, period);
-  const reach = (range.upper - range.lower + other.upper - other.lower) / 2;
-  return Math.abs(distance) > reach;
+  const { lower, upper } = referenceRange(frame, measurand);
+  if (period === 0) return y < lower || y > upper;
+  return Math.abs(wrapped(y - (lower + upper) / 2, period)) > (upper - lower) / 2;
 }
 
 /** sqrt(sum of P_n(x)^2) sd, Legendre polynomials over the range mapped to [-1, 1]. */

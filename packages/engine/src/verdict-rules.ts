@@ -72,18 +72,24 @@ export function exactWord(p: number | null, lnB: number): VerdictWord {
 }
 
 /**
- * An event that is called by a probability of at least 0.8, or at most 0.2.
+ * P(what was called | reports): an event is called by a probability of at least 0.8, or at most 0.2.
  *
  * @param occurred P(it occurred | reports) with prior 1/2
- * @param lnB against 1/2
+ * @returns null where nothing is called
  */
+export function calledProbability(probability: number, occurred: number): number | null {
+  if (probability > NOT_CALLED && probability < CALLED) return null;
+  return probability >= CALLED ? occurred : 1 - occurred;
+}
+
+/** @param lnB of the event's reports, against 1/2 */
 export function eventWord(
   probability: number,
   rule: Rule,
   { occurred, lnB }: { occurred: number; lnB: number },
 ): VerdictWord {
-  if (probability > NOT_CALLED && probability < CALLED) return "undecided";
-  const called = probability >= CALLED ? occurred : 1 - occurred;
+  const called = calledProbability(probability, occurred);
+  if (called === null) return "undecided";
   if (called >= rule.pass) return "pass";
   return called <= rule.fail && lnB <= -LN_SQRT_10 ? "fail" : "undecided";
 }

@@ -12,7 +12,14 @@ import type { Frame, PredictionFrame } from "./frame";
 import { predictiveOf } from "./predictive";
 import { shareOfReference } from "./reference-range";
 import { wrapped } from "./scoring-space";
-import { eventWord, exactWord, intervalWord, placesOf, tensionOfBounds } from "./verdict-rules";
+import {
+  calledProbability,
+  eventWord,
+  exactWord,
+  intervalWord,
+  placesOf,
+  tensionOfBounds,
+} from "./verdict-rules";
 import { onlyMeasurand, type Workspace } from "./workspace";
 
 /** Below this the measurements of a measurand disagree with one another. */
@@ -170,7 +177,8 @@ function ofEvent(
   const occurred = occurredProbability(reportsOf(workspace, measurand));
   const lnB = logBayesFactor(workspace, measurand, role);
   const { rule } = workspace.frame.document.campaign;
-  return withoutResult(eventWord(probability, rule, { occurred, lnB }));
+  const word = eventWord(probability, rule, { occurred, lnB });
+  return { ...withoutResult(word), conformance: calledProbability(probability, occurred) };
 }
 
 /** Against the reference, on this measurand alone. */

@@ -8,11 +8,11 @@ import type {
 import { binomialUpperTail } from "@weighhouse/numerics/binomial";
 import { referenceFit } from "./chi-square-fit";
 import { combine } from "./combination";
-import { quantile } from "./distribution/distribution";
+import { meanOf } from "./distribution/distribution";
 import type { HypothesisScore } from "./hypothesis-scores";
 import type { PredictionFrame } from "./frame";
 import { predictiveOf } from "./predictive";
-import { isApart, isOutsideReference, referenceRange, shareOfReference } from "./reference-range";
+import { isOutsideReference, shareOfReference } from "./reference-range";
 import type { Tally } from "./tally";
 import { DISAGREEING, intervalOf } from "./verdict";
 import type { Workspace } from "./workspace";
@@ -106,19 +106,18 @@ function vague({ workspace }: WarningContext, prediction: PredictionFrame): stri
   return `predicts for ${key} an interval that covers ${short(100 * share)} % of its reference.`;
 }
 
-/** What is expected, or bounds with no value of the reference between them. */
+/** What is expected, or a bound, outside of the reference. */
 function outside({ workspace }: WarningContext, prediction: PredictionFrame): string | null {
   const { frame } = workspace;
-  const { measurand, tolerance, expected } = prediction;
-  const { key, period } = frame.measurands[measurand]!;
+  const { measurand, tolerance, expected, interval } = prediction;
+  const { key } = frame.measurands[measurand]!;
   if ("width" in tolerance) {
-    const { lower, width } = tolerance;
-    const bounds = { lower, upper: lower + width };
-    if (!isApart(referenceRange(frame, measurand), bounds, period)) return null;
-    return `predicts for ${key} an interval outside its reference.`;
+    const bounds = [interval!.lower, interval!.upper].filter(Number.isFinite);
+    if (!bounds.some((y) => isOutsideReference(frame, measurand, { y }))) return null;
+    return `predicts for ${key} a bound outside its reference.`;
   }
   const predictive = expected === null ? predictiveOf(frame, prediction) : null;
-  const y = expected ?? (predictive === null ? null : quantile(predictive, 0.5));
+  const y = expected ?? (predictive === null ? null : meanOf(predictive));
   if (y === null || !isOutsideReference(frame, measurand, { y })) return null;
   return `predicts for ${key} a value outside its reference.`;
 }

@@ -1,4 +1,5 @@
 import { asymmetricVariance } from "../block/asymmetric";
+import { convolved } from "../block/convolution";
 import { censoredFactor, fainterFactor, linearNoiseFactor } from "../block/factors";
 import type { Factor } from "../block/problem";
 import { tiedLikelihood } from "./tied-likelihood";
@@ -93,13 +94,19 @@ function normalLikelihood({ value, sd }: { value: number; sd: number }): Likelih
 function likelihoodOf(told: Told, extra: number): Likelihood | null {
   if (told.form !== "asymmetric") return factorOf(told, { extra, centre: 0 });
   const { y, plus, minus } = told;
-  const ln = (mu: number) =>
-    -((mu - y) ** 2) / (2 * (asymmetricVariance(mu - y, plus, minus) + extra));
-  return { ln, centre: y, scale: Math.max(plus, minus), breaks: [y - minus, y + plus] };
+  const plain: Factor = {
+    ln: (mu) => -((mu - y) ** 2) / (2 * asymmetricVariance(mu - y, plus, minus)),
+    centre: y,
+    scale: Math.max(plus, minus),
+    breaks: [y - minus, y + plus],
+    residual: null,
+    box: null,
+  };
+  return extra > 0 ? convolved(plain, extra) : plain;
 }
 
 /** A limit's or a linear noise's factor; null for another form. */
-export function factorOf(
+function factorOf(
   told: Reading["told"],
   { extra, centre }: { extra: number; centre: number },
 ): Factor | null {

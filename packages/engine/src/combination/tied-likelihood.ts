@@ -1,6 +1,7 @@
 import { evidence } from "../evidence";
 import type { NormalRole } from "../frame";
 import { onlyMeasurand, type Workspace } from "../workspace";
+import { interpolatedLog } from "./interpolated-log";
 import type { Likelihood } from "./true-value-density";
 
 /**
@@ -14,21 +15,13 @@ export function tiedLikelihood(
   measurand: number,
   apart: readonly Likelihood[],
 ): Likelihood {
-  const known = new Map<number, number>();
-  const ln = (level: number): number => {
-    const there = known.get(level);
-    if (there !== undefined) return there;
-    const made = exactEvidence(workspace, measurand, level);
-    known.set(level, made);
-    return made;
-  };
   const centres = apart.map(({ centre }) => centre);
-  return {
-    ln,
+  const scale = Math.max(...apart.map((one) => one.scale));
+  const ln = interpolatedLog((level) => exactEvidence(workspace, measurand, level), {
     centre: centres[0]!,
-    scale: Math.max(...apart.map(({ scale }) => scale)),
-    breaks: centres.slice(1),
-  };
+    scale,
+  });
+  return { ln, centre: centres[0]!, scale, breaks: centres.slice(1) };
 }
 
 function exactEvidence(workspace: Workspace, measurand: number, level: number): number {
