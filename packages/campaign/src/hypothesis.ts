@@ -96,7 +96,7 @@ export const predictionSchema = z.strictObject({
 export const toleranceCorrelationSchema = z.strictObject({
   a: key,
   b: key,
-  coefficient: z.number().min(-1).max(1),
+  coefficient: z.number().gt(-1).lt(1),
 });
 
 const identity = {

@@ -1,11 +1,17 @@
 import { below } from "../pointer";
-import { legible } from "./reading";
+import { indefiniteBlocks } from "./definite";
+import type { Pair } from "./definite";
+import { legible, oneOf } from "./reading";
 import type { Reading } from "./reading";
 
-/** Correlations between measurements: both known, not one with itself, each pair once. */
+/**
+ * Correlations between measurements: both known, not one with itself, each pair once, and such as
+ * there can be together.
+ */
 export function checkCorrelations(reading: Reading): void {
   const correlations = reading.form.correlations ?? [];
   if (correlations.length === 0) return;
+  const before = reading.problems.length;
   const known = new Map<string, boolean>();
   for (const [, measurement] of legible(reading.form.measurements)) {
     const { id, occurred, count } = measurement;
@@ -26,6 +32,38 @@ export function checkCorrelations(reading: Reading): void {
       }
     }
     checkPair(reading, { ...correlation, pointer, pairs });
+  }
+  if (reading.problems.length > before) return;
+  const counted = countedIds(reading);
+  const between = [...legible(correlations)].map(([, one]) => one);
+  checkDefinite(
+    reading,
+    "/correlations",
+    between.filter(isPair).filter(({ a, b }) => {
+      return counted.has(a) && counted.has(b);
+    }),
+  );
+}
+
+/** What isn't counted correlates with nothing. */
+function countedIds(reading: Reading): Set<string> {
+  const counted = new Set<string>();
+  for (const [, { id, measurand, setAside }] of legible(reading.form.measurements)) {
+    if (id === undefined || setAside !== null || measurand === undefined) continue;
+    if (reading.measurands.get(measurand)?.closed === null) counted.add(id);
+  }
+  return counted;
+}
+
+export function isPair(one: Partial<Pair>): one is Pair {
+  return one.a !== undefined && one.b !== undefined && one.coefficient !== undefined;
+}
+
+/** Blocks whose correlations can't all be so together are named. */
+export function checkDefinite(reading: Reading, pointer: string, pairs: readonly Pair[]): void {
+  for (const names of indefiniteBlocks(pairs)) {
+    const found = `correlations of ${oneOf(names, "block")} that can't be so together`;
+    reading.refuse(pointer, "not-positive-definite", found, "a matrix that is positive definite");
   }
 }
 

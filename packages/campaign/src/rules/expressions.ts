@@ -2,6 +2,7 @@ import type { Hypothesis, Scale, Table } from "../document";
 import { compileExpression } from "../expression";
 import type { Legible } from "../form";
 import { below } from "../pointer";
+import { conditionRanges } from "./condition-ranges";
 import { conditionKeys } from "./measurands";
 import type { PredictionPlace } from "./prediction-place";
 import { legible } from "./reading";
@@ -40,7 +41,9 @@ export function checkExpression(reading: Reading, place: PredictionPlace, text: 
   }
   const { expression } = compiled;
   if (measurand?.shape === "curve") checkSeenOnce(reading, place, conditions);
-  if (telling && !hasValueSomewhere(expression, place, conditions)) {
+  if (!telling) return;
+  const used = [...expression.names].filter((name) => conditions.has(name));
+  if (!hasValueSomewhere(expression, place, conditionRanges(reading, place, used))) {
     const allowed = "a finite value somewhere between the 1 % and 99 % of the priors";
     const sign = observable?.scale === undefined ? "" : (signs[observable.scale] ?? "");
     const found = "an expression without a value at any parameter tried";

@@ -1,7 +1,7 @@
 import type { Ensemble, Hypothesis, Prior, Table } from "../document";
 import type { Legible } from "../form";
 import { below } from "../pointer";
-import { checkPair } from "./correlations";
+import { checkDefinite, checkPair, isPair } from "./correlations";
 import { checkReserved } from "./declarations";
 import { checkPredictions } from "./predictions";
 import { legible } from "./reading";
@@ -159,6 +159,7 @@ function checkToleranceCorrelations(
     [...legible(hypothesis.predictions)].map(([, one]) => [one.measurand, one.tolerance]),
   );
   const pairs = new Set<string>();
+  const before = reading.problems.length;
   for (const [index, correlation] of legible(hypothesis.toleranceCorrelations)) {
     const at = below(pointer, "toleranceCorrelations", index);
     for (const end of ["a", "b"] as const) {
@@ -174,4 +175,7 @@ function checkToleranceCorrelations(
     }
     checkPair(reading, { ...correlation, pointer: at, pairs });
   }
+  if (reading.problems.length > before) return;
+  const between = [...legible(hypothesis.toleranceCorrelations)].map(([, one]) => one);
+  checkDefinite(reading, below(pointer, "toleranceCorrelations"), between.filter(isPair));
 }

@@ -169,6 +169,12 @@ export function checkRange(
   const cyclic = observable?.scale === undefined || observable.scale === "cyclic";
   positiveOnLog10(reading, lower, observable, below(pointer, "lower"));
   if (lower === undefined || upper === undefined) return;
+  const period = observable?.period;
+  if (cyclic && typeof period === "number" && Math.abs(upper - lower) > period) {
+    const allowed = `at most ${period} from ${lower}, once around`;
+    reading.refuse(below(pointer, "upper"), "out-of-range", String(upper), allowed);
+    return;
+  }
   if (cyclic ? lower !== upper : lower < upper) return;
   const allowed = cyclic ? `another end than ${lower}` : `a number above ${lower}`;
   reading.refuse(below(pointer, "upper"), "out-of-range", String(upper), allowed);
@@ -227,13 +233,29 @@ function checkDerived(reading: Reading, derived: Legible<DerivedForm>, pointer: 
   for (const [name, key] of Object.entries(derived.from ?? {})) {
     const at = below(pointer, "from", name);
     checkReserved(reading, name, at);
-    reading.refer(at, key, measurands, "measurand");
-    checkInput(reading, key, at);
+    if (key !== undefined && reading.derived.has(key) && !measurands.has(key)) {
+      const allowed = "a measurand: a derived value has no measurements of its own";
+      reading.refuse(at, "not-applicable", `the derived value ${key}`, allowed);
+    } else {
+      reading.refer(at, key, measurands, "measurand");
+      checkInput(reading, key, at);
+    }
   }
+  checkFormula(reading, derived, pointer);
+}
+
+/** A derived value's expression: it parses, and there is something that it is derived from. */
+function checkFormula(reading: Reading, derived: Legible<DerivedForm>, pointer: string): void {
   if (derived.expression === undefined || derived.from === undefined) return;
   const names = new Set(Object.keys(derived.from));
   const compiled = compileExpression(derived.expression, { names });
-  if (compiled.ok) return;
+  if (compiled.ok) {
+    if (compiled.expression.names.size > 0) return;
+    const found = "an expression that names no input";
+    const allowed = names.size === 0 ? "names that from declares" : [...names].join(", ");
+    reading.refuse(below(pointer, "expression"), "bad-expression", found, allowed);
+    return;
+  }
   for (const { found, allowed } of compiled.faults) {
     reading.refuse(below(pointer, "expression"), "bad-expression", found, allowed);
   }

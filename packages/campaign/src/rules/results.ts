@@ -237,9 +237,10 @@ function checkSize(
   { reading, measurement, scale, pointer }: Place,
   target: Target | undefined,
 ): void {
-  const { value, minus, noise, limit, unit, confidence, sigmas } = measurement;
+  const { value, minus, noise, limit, confidence, sigmas } = measurement;
   if (typeof value !== "number") return;
-  const inUnit = converted(value, unit, target?.observable?.unit);
+  const { factor, offset } = toObservable(measurement, target);
+  const inUnit = value * factor + offset;
   const compatible = confidence !== null || sigmas !== null;
   if (scale === "log10" && noise === null && inUnit <= 0) {
     const allowed = 'a number above 0 on the scale log10; or noise "linear" with sd';
@@ -248,18 +249,18 @@ function checkSize(
     const allowed = "a limit above 0: the quantity was compatible with zero";
     reading.refuse(below(pointer, "value"), "not-positive", String(value), allowed);
   }
-  if (scale === "log10" && typeof minus === "number" && value > 0 && minus >= value) {
-    const allowed = `a number below the value ${value} on the scale log10`;
-    reading.refuse(below(pointer, "minus"), "out-of-range", String(minus), allowed);
-  }
+  if (scale !== "log10" || typeof minus !== "number" || inUnit <= 0) return;
+  if (minus * factor < inUnit) return;
+  const allowed = `a number below the value ${inUnit / factor} on the scale log10`;
+  reading.refuse(below(pointer, "minus"), "out-of-range", String(minus), allowed);
 }
 
-function converted(
-  value: number,
-  from: string | null | undefined,
-  to: string | null | undefined,
-): number {
-  if (typeof from !== "string" || typeof to !== "string") return value;
-  const found = conversion(from, to);
-  return found.kind === "factor" ? value * found.factor + found.offset : value;
+function toObservable(
+  { unit }: Legible<Measurement>,
+  target: Target | undefined,
+): { factor: number; offset: number } {
+  const to = target?.observable?.unit;
+  if (typeof unit !== "string" || typeof to !== "string") return { factor: 1, offset: 0 };
+  const found = conversion(unit, to);
+  return found.kind === "factor" ? found : { factor: 1, offset: 0 };
 }

@@ -1,75 +1,162 @@
-import type { Ensemble, Measurand, Parameter, Prior, Scale } from "../document";
+import type { Ensemble, Parameter, Prior, Scale } from "../document";
 import type { Expression } from "../expression";
-import type { Legible } from "../form";
+import { rangeOf } from "../expression-range";
+import type { Range } from "../expression-range";
 import type { PredictionPlace } from "./prediction-place";
 
-/** Draws of parameters, and points of conditions, at which an expression is tried. */
+/** Draws of parameters, and points of conditions, at which an expression is tried first. */
 const DRAWS = 256;
 const CONDITION_POINTS = 16;
+/** Boxes that are looked into where none of those has a value, and ensemble rows among them. */
+const BOXES = 4000;
+const ROWS = 80;
 /** The 1 % and 99 % points of the standard normal and half-normal (Abramowitz & Stegun 26.2). */
 const NORMAL_99 = 2.3263478740408408;
 const HALF_NORMAL_01 = 0.012533469508069276;
 const HALF_NORMAL_99 = 2.5758293035489004;
 
 /**
- * Whether an expression is finite (positive on log10, a rate on counts) at one of the points tried: the middle of
- * the priors, then a Halton sequence over their 1 % to 99 % range, each with an ensemble row,
- * at the ends and between the ends of the measurand's `where`.
+ * Whether an expression is finite (positive on log10, a rate on counts) anywhere over the 1 % to
+ * 99 % range of its parameters, its ensemble's rows, and its conditions in the measurand's `where`
+ * (else where they were measured).
+ *
+ * Tried are the middle of the priors and a Halton sequence (1960). Where none of these has a value,
+ * the box is halved again and again: halves whose bounds rule a value out are dropped, the middles
+ * of the others tried, up to 4,000 of them. So a value in a narrow corner is found nearly always.
  *
  * True also where a condition has no bounds to try between: then nothing can be said.
  */
 export function hasValueSomewhere(
   expression: Expression,
   place: PredictionPlace,
-  conditions: ReadonlySet<string>,
+  ranges: readonly ConditionRange[] | null,
 ): boolean {
-  const { hypothesis, measurand, observable } = place;
-  const parameters = (hypothesis.parameters ?? []) as Parameter[];
-  const used = parameters.filter(({ key }) => expression.names.has(key));
-  const ensemble = hypothesis.ensemble as Ensemble | null;
-  const rows = ensemble === null ? 1 : (Object.values(ensemble.columns)[0]?.length ?? 1);
-  const ranges = rangesOf(measurand, conditions, expression);
   if (ranges === null) return true;
+  const { hypothesis, observable } = place;
+  const parameters = ((hypothesis.parameters ?? []) as Parameter[]).filter(({ key }) =>
+    expression.names.has(key),
+  );
+  const columns = Object.entries((hypothesis.ensemble as Ensemble | null)?.columns ?? {}).filter(
+    ([name]) => expression.names.has(name),
+  );
+  const lowest = lowestBelow(observable?.scale);
+  const search = { expression, parameters, columns, ranges, lowest };
+  return foundByDraws(search) || foundInBoxes(search);
+}
+
+/** A condition with the least and the greatest of its values. */
+export type ConditionRange = readonly [name: string, lower: number, upper: number];
+
+type Search = {
+  expression: Expression;
+  parameters: readonly Parameter[];
+  columns: readonly (readonly [name: string, column: readonly number[]])[];
+  ranges: readonly ConditionRange[];
+  lowest: number;
+};
+
+function foundByDraws(search: Search): boolean {
+  const { parameters, columns, ranges } = search;
+  const rows = columns[0]?.[1].length ?? 1;
   const points = ranges.length === 0 ? 1 : CONDITION_POINTS;
-  const draws = used.length === 0 ? rows : Math.max(DRAWS, rows);
+  const draws = parameters.length === 0 ? rows : Math.max(DRAWS, rows);
   for (let draw = 0; draw < draws; draw++) {
     const scope: Record<string, number> = {};
-    used.forEach(({ key, prior }, dimension) => {
+    parameters.forEach(({ key, prior }, dimension) => {
       scope[key] = quantile(prior, draw === 0 ? 0.5 : halton(draw, dimension));
     });
-    for (const [name, column] of Object.entries(ensemble?.columns ?? {})) {
-      scope[name] = column[draw % rows]!;
-    }
+    for (const [name, column] of columns) scope[name] = column[draw % rows]!;
     for (let point = 0; point < points; point++) {
       ranges.forEach(([name, lower, upper], dimension) => {
         scope[name] = lower + (upper - lower) * spread(point, dimension);
       });
-      const value = expression.evaluate(scope);
-      if (Number.isFinite(value) && value > lowestBelow(observable?.scale)) return true;
+      if (isValue(search, scope)) return true;
     }
   }
   return false;
+}
+
+function isValue({ expression, lowest }: Search, scope: Record<string, number>): boolean {
+  const value = expression.evaluate(scope);
+  return Number.isFinite(value) && value > lowest;
+}
+
+function foundInBoxes(search: Search): boolean {
+  const { columns } = search;
+  const rows = Math.min(columns[0]?.[1].length ?? 1, ROWS);
+  for (let row = 0; row < rows; row++) {
+    const fixed = new Map(columns.map(([name, column]) => [name, column[row]!]));
+    const most = Math.ceil(BOXES / rows / 2);
+    // The newest first gets deep into one corner; the oldest first forgets no corner.
+    if (foundInBox(search, fixed, { most, first: "newest" })) return true;
+    if (foundInBox(search, fixed, { most, first: "oldest" })) return true;
+  }
+  return false;
+}
+
+/** Each box halved along one dimension after the other. */
+function foundInBox(
+  search: Search,
+  row: ReadonlyMap<string, number>,
+  { most, first }: { most: number; first: "newest" | "oldest" },
+): boolean {
+  const axes: Axis[] = [
+    ...search.parameters.map(({ key, prior }): Axis => [key, (u) => quantile(prior, u)]),
+    ...search.ranges.map(([name, a, b]): Axis => [name, (u) => a + (b - a) * u]),
+  ];
+  if (axes.length === 0) return false;
+  const boxes: Box[] = [{ depth: 0, from: axes.map(() => 0), to: axes.map(() => 1) }];
+  let oldest = 0;
+  for (let looked = 0; looked < most && oldest < boxes.length; looked++) {
+    const box = first === "oldest" ? boxes[oldest++]! : boxes.pop()!;
+    const found = lookInto(search, { row, axes, box });
+    if (found === "a value") return true;
+    if (found === "none") continue;
+    const { depth, from, to } = box;
+    const axis = depth % axes.length;
+    const middle = (from[axis]! + to[axis]!) / 2;
+    boxes.push({ depth: depth + 1, from, to: to.with(axis, middle) });
+    boxes.push({ depth: depth + 1, from: from.with(axis, middle), to });
+  }
+  return false;
+}
+
+/** A dimension of the box: from 0 to 1 of a prior's range, or of a condition's. */
+type Axis = readonly [name: string, at: (u: number) => number];
+type Box = { depth: number; from: number[]; to: number[] };
+
+function lookInto(
+  search: Search,
+  { row, axes, box }: { row: ReadonlyMap<string, number>; axes: readonly Axis[]; box: Box },
+): "a value" | "none" | "perhaps" {
+  const bounds = new Map<string, Range>([...row].map(([name, value]) => [name, exactly(value)]));
+  const scope: Record<string, number> = Object.fromEntries(row);
+  axes.forEach(([name, at], axis) => {
+    const [from, to] = [box.from[axis]!, box.to[axis]!];
+    bounds.set(name, { lower: at(from), upper: at(to) });
+    scope[name] = at((from + to) / 2);
+  });
+  if (isRuledOut(rangeOf(search.expression.tree, bounds), search.lowest)) return "none";
+  return isValue(search, scope) ? "a value" : "perhaps";
+}
+
+function exactly(value: number): Range {
+  return { lower: value, upper: value };
+}
+
+function isRuledOut(range: Range, lowest: number): boolean {
+  return (
+    range === null ||
+    !(range.upper > lowest) ||
+    range.lower === Infinity ||
+    range.upper === -Infinity
+  );
 }
 
 /** What a value has to lie above: a logarithm needs more than 0, a rate at least 0. */
 function lowestBelow(scale: Scale | undefined): number {
   if (scale === "log10") return 0;
   return scale === "count" ? -Number.MIN_VALUE : -Infinity;
-}
-
-function rangesOf(
-  measurand: Legible<Measurand> | undefined,
-  conditions: ReadonlySet<string>,
-  expression: Expression,
-): [string, number, number][] | null {
-  const ranges: [string, number, number][] = [];
-  for (const name of expression.names) {
-    if (!conditions.has(name)) continue;
-    const [lower, upper] = measurand?.where?.[name] ?? [];
-    if (typeof lower !== "number" || typeof upper !== "number") return null;
-    ranges.push([name, lower, upper]);
-  }
-  return ranges;
 }
 
 /** Both ends first, then points between. */
