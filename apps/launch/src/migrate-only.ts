@@ -1,9 +1,9 @@
-import { openKeys } from "@weighhouse/store/keys";
+import { openKeys, openSealKey } from "@weighhouse/store/keys";
 import { migrate } from "@weighhouse/store/migrate";
 import type { Settings } from "@weighhouse/store/settings";
 import { say } from "./say";
 
-/** Migrates as the owner and makes the signing key where the folder has none. */
+/** Migrates as the owner and makes the keys where their folder has none. */
 export async function migrateOnly(settings: Settings): Promise<number> {
   const { DATABASE_ADMIN_URL: adminUrl, DATABASE_URL: url, WEIGHHOUSE_KEYS: keys } = settings;
   if (!adminUrl || !url || !keys) {
@@ -12,6 +12,7 @@ export async function migrateOnly(settings: Settings): Promise<number> {
   }
   const origin = settings.WEIGHHOUSE_ORIGIN ?? `http://localhost:${settings.PORT}`;
   await openKeys({ folder: keys, name: new URL(origin).hostname, make: true });
+  openSealKey({ folder: keys, make: true });
   await migrate({ adminUrl, url });
   say("migrated");
   return 0;

@@ -3,7 +3,7 @@ import { accessSync, constants, existsSync, mkdirSync, readFileSync, writeFileSy
 import path from "node:path";
 import { defaultHome, startEmbeddedPostgres } from "@weighhouse/store/embedded";
 import type { EmbeddedPostgres } from "@weighhouse/store/embedded";
-import { openKeys } from "@weighhouse/store/keys";
+import { openKeys, openSealKey } from "@weighhouse/store/keys";
 import { migrate } from "@weighhouse/store/migrate";
 import type { Settings } from "@weighhouse/store/settings";
 import { StoreError } from "@weighhouse/store/store-error";
@@ -39,6 +39,7 @@ export async function startEverything(settings: Settings): Promise<number> {
     if (port !== settings.PORT) say(`port ${settings.PORT} is taken; using ${port}`);
     const origin = settings.WEIGHHOUSE_ORIGIN ?? `http://localhost:${port}`;
     await openKeys({ folder: keys, name: new URL(origin).hostname, make: database !== null });
+    openSealKey({ folder: keys, make: database !== null });
 
     if (adminUrl) {
       say("migrating the database");

@@ -1,11 +1,13 @@
 import { EventEmitter } from "node:events";
 import { ENGINE_VERSION } from "@weighhouse/engine/version";
 import type { Store } from "@weighhouse/store/open-store";
+import { DATES_TASK, queueOverdue } from "@weighhouse/store/dates-queue";
 import { queueScoring, queueUnscored, SCORE_TASK } from "@weighhouse/store/scoring-queue";
 import { StoreError } from "@weighhouse/store/store-error";
 import { workerLogger } from "@weighhouse/store/worker-logger";
 import { run } from "graphile-worker";
 import type { WorkerEvents } from "graphile-worker";
+import { datesTask } from "./dates-task";
 import { watchScorers } from "./living-scorers";
 import { scoreCampaign } from "./score-campaign";
 
@@ -14,7 +16,7 @@ export type RunningScorer = { stop(): Promise<void>; ended: Promise<void> };
 export type ScorerOptions = {
   /** Campaigns scored at once; scoring is computing, so more than one per processor gains nothing. */
   concurrency?: number;
-  /** How often lost scorers and unscored campaigns are looked for. */
+  /** How often lost scorers are looked for; unscored and overdue campaigns are every sixth time. */
   everyMs?: number;
 };
 
@@ -36,12 +38,16 @@ export async function runScorer(store: Store, options: ScorerOptions = {}): Prom
     noHandleSignals: true,
     logger: workerLogger(store.log),
     events,
-    taskList: { [SCORE_TASK]: (payload) => scoreTask(store, payload, () => stopping) },
+    taskList: {
+      [SCORE_TASK]: (payload) => scoreTask(store, payload, () => stopping),
+      // What dates ask for is appended, so only who holds the signing key takes such jobs.
+      ...(store.signer === null ? {} : { [DATES_TASK]: (payload) => datesTask(store, payload) }),
+    },
   });
-  await queueUnscored(store, ENGINE_VERSION);
+  await lookForLost(store);
   const timer = setInterval(() => {
-    queueUnscored(store, ENGINE_VERSION).catch((error: unknown) =>
-      store.log.warn({ error }, "could not look for unscored campaigns"),
+    lookForLost(store).catch((error: unknown) =>
+      store.log.warn({ error }, "could not look for unscored and overdue campaigns"),
     );
   }, 6 * everyMs);
   return {
@@ -53,6 +59,11 @@ export async function runScorer(store: Store, options: ScorerOptions = {}): Prom
       await watch.leave();
     },
   };
+}
+
+async function lookForLost(store: Store): Promise<void> {
+  await queueUnscored(store, ENGINE_VERSION);
+  if (store.signer !== null) await queueOverdue(store);
 }
 
 async function scoreTask(store: Store, payload: unknown, stopping: () => boolean): Promise<void> {

@@ -1,7 +1,9 @@
 /** The scorer's process: takes scoring jobs until SIGTERM or SIGINT, then ends cleanly. */
+import { openKeys, openSealKey } from "@weighhouse/store/keys";
 import { isWriteAfterClose } from "@weighhouse/store/lost-connection";
 import { openStore } from "@weighhouse/store/open-store";
 import { readSettings } from "@weighhouse/store/settings";
+import type { Settings } from "@weighhouse/store/settings";
 import { StoreError } from "@weighhouse/store/store-error";
 import { pino } from "pino";
 import { runScorer } from "./run-scorer";
@@ -19,13 +21,28 @@ async function main(): Promise<number> {
     if (!isWriteAfterClose(error)) throw error;
     log.warn({ error: error.message }, "a connection closed while it was written to");
   });
-  const store = await openStore({ url: settings.DATABASE_URL, signer: null, log, connections: 3 });
+  const store = await openStore({
+    url: settings.DATABASE_URL,
+    ...(await keysOf(settings)),
+    log,
+    connections: 3,
+  });
   const scorer = await runScorer(store);
   log.info({}, "scoring");
   await Promise.race([scorer.ended, signalled()]);
   await scorer.stop();
   await store.close();
   return 0;
+}
+
+/** With keys it does what dates ask for, too; without, it scores and signs nothing. */
+async function keysOf({ WEIGHHOUSE_KEYS: folder, WEIGHHOUSE_ORIGIN: origin, PORT }: Settings) {
+  if (folder === undefined) return { signer: null, sealKey: null };
+  const name = new URL(origin ?? `http://localhost:${PORT}`).hostname;
+  return {
+    signer: await openKeys({ folder, name, make: false }),
+    sealKey: openSealKey({ folder, make: false }),
+  };
 }
 
 async function signalled(): Promise<void> {

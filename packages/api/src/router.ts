@@ -6,6 +6,7 @@ import { hypothesesRouter } from "./routers/hypotheses";
 import { ledgerRouter } from "./routers/ledger";
 import { measurementsRouter } from "./routers/measurements";
 import { membersRouter, teamsRouter } from "./routers/people";
+import { sealsRouter } from "./routers/seals";
 import { standingsRouter } from "./routers/standings";
 
 import { router } from "./trpc";
@@ -18,6 +19,7 @@ export const appRouter = router({
   standings: standingsRouter,
   hypotheses: hypothesesRouter,
   measurements: measurementsRouter,
+  seals: sealsRouter,
   ledger: ledgerRouter,
   audit: auditRouter,
   events: eventsRouter,

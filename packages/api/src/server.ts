@@ -1,5 +1,5 @@
 import type { Desk } from "@weighhouse/desk/desk";
-import { openKeys } from "@weighhouse/store/keys";
+import { openKeys, openSealKey } from "@weighhouse/store/keys";
 import { openStore } from "@weighhouse/store/open-store";
 import type { Log } from "@weighhouse/store/open-store";
 import { readSettings } from "@weighhouse/store/settings";
@@ -39,6 +39,7 @@ async function openServer(environment: NodeJS.ProcessEnv, log: Log): Promise<Ser
     url: DATABASE_URL,
     readUrl: settings.DATABASE_READ_URL,
     signer: await openKeys({ folder: WEIGHHOUSE_KEYS, name, make: false }),
+    sealKey: openSealKey({ folder: WEIGHHOUSE_KEYS, make: false }),
     log,
   });
   const desk: Desk = { store };

@@ -52,6 +52,12 @@ export function requireOwnTeam(access: Access, action: Action, of: string | null
   throw new DeskError("not-allowed", `found ${action} for ${named(of)}; allowed ${allowed}`);
 }
 
+/** Refuses who is in no team, where a team's word is asked for. */
+export function requireTeam(access: Access, action: Action): string {
+  if (access.team !== null) return access.team;
+  throw new DeskError("not-allowed", `found ${action} for no team; allowed to members of a team`);
+}
+
 /** The actor, where an account is needed and no campaign is concerned yet. */
 export function requireAccount(actor: Actor, action: Action): NonNullable<Actor> {
   if (actor && permission("account", action) === "yes") return actor;

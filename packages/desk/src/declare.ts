@@ -4,7 +4,7 @@ import { enter } from "./access";
 import { appended } from "./appended";
 import type { Appended } from "./appended";
 import type { Actor, Desk } from "./desk";
-import { refuseTaken } from "./declared-parts";
+import { measurandOf, refuseTaken } from "./declared-parts";
 import type { DeclaredField } from "./declared-parts";
 import type { NewEntry } from "./document-after";
 import { parseInput } from "./parse-input";
@@ -19,6 +19,11 @@ export const declareObservableInput = z.strictObject({
 export const declareMeasurandInput = z.strictObject({
   key,
   measurand: payloadSchemas["measurand.declared"],
+});
+export const amendMeasurandInput = declareMeasurandInput;
+export const declareDerivedInput = z.strictObject({
+  key,
+  derived: payloadSchemas["derived.declared"],
 });
 export const declareSharedErrorInput = z.strictObject({
   key,
@@ -52,6 +57,38 @@ export async function declareMeasurand(
   return declare(desk, actor, key, {
     entry: { kind: "measurand.declared", payload: measurand },
     field: { list: "measurands", key: measurand.key, pointer: "/measurand" },
+  });
+}
+
+/**
+ * Declares a measurand anew: whole before its first measurement, only its title afterwards. What was
+ * predicted of it stands.
+ */
+export async function amendMeasurand(
+  desk: Desk,
+  actor: Actor,
+  input: z.input<typeof amendMeasurandInput>,
+): Promise<Appended> {
+  const { key, measurand } = parseInput(amendMeasurandInput, input);
+  const access = await enter(desk, actor, key, "declare");
+  const field = { list: "measurands", key: measurand.key, pointer: "/measurand" } as const;
+  const stored = await recordEntries(desk, access, ({ document }) => {
+    measurandOf(document, measurand.key);
+    return { entries: [{ kind: "measurand.declared", payload: measurand }], fields: [field] };
+  });
+  return appended(key, stored);
+}
+
+/** Declares a quantity computed from measurands. */
+export async function declareDerived(
+  desk: Desk,
+  actor: Actor,
+  input: z.input<typeof declareDerivedInput>,
+): Promise<Appended> {
+  const { key, derived } = parseInput(declareDerivedInput, input);
+  return declare(desk, actor, key, {
+    entry: { kind: "derived.declared", payload: derived },
+    field: { list: "derived", key: derived.key, pointer: "/derived" },
   });
 }
 

@@ -58,6 +58,12 @@ export async function readStandings(
 
 type Outcome = Pick<Scored, "size" | "standings" | "problems">;
 
+/** The standings of exactly that size, for who may read them; problems where there are none. */
+export async function standingsAt(desk: Desk, key: string, size: number): Promise<Outcome> {
+  const kept = await readKept(desk.store, { campaign: key, size, engine: ENGINE_VERSION });
+  return kept ?? scoreNow(desk, key, size);
+}
+
 async function scoreNow(desk: Desk, key: string, wanted: number | undefined): Promise<Outcome> {
   const { document, size, treeHead } = await onStore(() => readDocument(desk.store, key, wanted));
   const scored = scoreCampaign(document, { asOf: { size, treeHead } });

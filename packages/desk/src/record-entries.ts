@@ -1,6 +1,7 @@
 import type { Entry } from "@weighhouse/ledger/entry";
 import { appendEntries } from "@weighhouse/store/append";
-import type { Appended as Stored } from "@weighhouse/store/append";
+import type { Alongside, Appended as Stored } from "@weighhouse/store/append";
+import { holding, releasing } from "@weighhouse/store/held-seals";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { documentFromParts } from "@weighhouse/campaign/fold";
 import type { Part } from "@weighhouse/campaign/parts";
@@ -25,7 +26,14 @@ export type Now = { document: CampaignDocument; parts: Part[]; size: number; at:
  * Entries to append, and which part of the document each field of the input becomes. `pointer` is
  * the field that the payload is, where that isn't the first of `fields`.
  */
-export type Decision = { entries: NewEntry[]; fields: Field[]; pointer?: string };
+export type Decision = {
+  entries: NewEntry[];
+  fields: Field[];
+  pointer?: string;
+  /** What of a seal is held from now on, and the digest of what is held no longer. */
+  holds?: { digest: string; nonce: string; content: Record<string, unknown> } | null;
+  releases?: string;
+};
 
 /**
  * Appends what `decide` makes of the campaign as it is now, once the campaign document that results
@@ -50,9 +58,9 @@ export async function appendDecided(
   decide: (now: Now) => Decision | Promise<Decision>,
 ): Promise<Stored> {
   for (let attempt = 0; attempt < ATTEMPTS; attempt++) {
-    const { parts, size, at } = await onStore(() => readEverything(desk.store, campaign));
-    const now = { document: documentFromParts(parts), parts, size, at };
-    const { entries, fields, pointer } = await decide(now);
+    const now = await readNow(desk, campaign);
+    const { parts, size } = now;
+    const { entries, fields, pointer, ...secret } = await decide(now);
     checkAfter(parts, entries, { by, at: timeAt(desk), size, fields, pointer });
     try {
       return await appendEntries(desk.store, {
@@ -61,6 +69,7 @@ export async function appendDecided(
         entries,
         clock: desk.clock,
         expectedSize: size,
+        alongside: alongsideOf(desk, campaign, secret),
       });
     } catch (error) {
       if (!(error instanceof StoreError && error.code === "moved-on")) {
@@ -69,6 +78,23 @@ export async function appendDecided(
     }
   }
   throw new DeskError("busy", "others kept appending to this campaign; try again");
+}
+
+function alongsideOf(
+  { store }: Desk,
+  campaign: string,
+  { holds = null, releases }: Pick<Decision, "holds" | "releases">,
+): Alongside | undefined {
+  if (releases !== undefined) return releasing(releases);
+  if (holds === null) return undefined;
+  const { digest, ...held } = holds;
+  return holding(store, { campaign, digest, held });
+}
+
+/** The campaign as the newest entry left it. */
+export async function readNow(desk: Desk, campaign: string): Promise<Now> {
+  const { parts, size, at } = await onStore(() => readEverything(desk.store, campaign));
+  return { document: documentFromParts(parts), parts, size, at };
 }
 
 /** Who stands in the entry. Only members write: the table gives readers no action that appends. */

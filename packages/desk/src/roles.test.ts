@@ -19,6 +19,16 @@ import { registerHypothesis } from "./register-hypothesis";
 import { actions, may, permission, roles } from "./roles";
 import type { Action, Permission, Role } from "./roles";
 import { setAsideMeasurement } from "./set-aside-measurement";
+import { citeStandings } from "./cite-standings";
+import { correctMeasurement } from "./correct-measurement";
+import { makeRemark } from "./make-remark";
+import { objectToReference } from "./object-to-reference";
+import { openSeal } from "./open-seal";
+import { proposeMeasurand } from "./propose-measurand";
+import { retireHypothesis } from "./retire-hypothesis";
+import { sealMeasurement } from "./seal-measurement";
+import { sealPrediction } from "./seal-prediction";
+import { withdrawMeasurements } from "./withdraw-measurements";
 import { hypothesis, openLagoon, reading } from "./testing/lagoon";
 import type { Lagoon } from "./testing/lagoon";
 import { openTestDesk } from "./testing/test-desk";
@@ -40,12 +50,29 @@ const stated: Record<Action, [visitor: Permission, account: Permission, reader: 
   "preview-measurements": [n, n, n, y, y],
   "post-measurements": [n, n, n, y, y],
   "set-aside-measurement": [n, n, n, o, y],
+  "correct-measurement": [n, n, n, o, y],
+  "withdraw-measurements": [n, n, n, o, y],
+  "retire-hypothesis": [n, n, n, o, o],
+  "propose-measurand": [n, n, n, o, o],
+  "object-to-reference": [n, n, n, o, o],
+  "seal-prediction": [n, n, n, o, o],
+  "seal-measurement": [n, n, n, y, y],
+  "open-seal": [n, n, n, y, y],
+  "make-remark": [n, n, n, y, y],
+  "cite-standings": [n, n, n, y, y],
   "amend-campaign": [n, n, n, n, y],
   declare: [n, n, n, n, y],
   "add-team": [n, n, n, n, y],
   "add-member": [n, n, n, n, y],
   "close-registration": [n, n, n, n, y],
 };
+
+const LONG_AGO = "2001-01-01T00:00:00Z";
+const DIGEST = "5e".repeat(32);
+const kept = { keeping: "kept", digest: DIGEST, measurand: "new-moon" } as const;
+const NOTHING = { by: "ids" as const, ids: ["night-9"] };
+const SAME = { ...reading("night-1", 41), id: "night-1" };
+const TAKEN = { key: "new-moon", observable: "glow" };
 
 describe("the table of roles", () => {
   const cells = actions.flatMap((action) => roles.map((role, i) => ({ action, role, i })));
@@ -110,6 +137,25 @@ describe("every use-case asks the table", () => {
       postMeasurements(desk, actor, { key, source: { from: "csv", text: "" } }),
     "set-aside-measurement": (desk, actor, key) =>
       setAsideMeasurement(desk, actor, { key, id: "night-1", reason: "clouds" }),
+    "correct-measurement": (desk, actor, key) =>
+      correctMeasurement(desk, actor, { key, measurement: SAME, reason: "none" }),
+    "withdraw-measurements": (desk, actor, key) =>
+      withdrawMeasurements(desk, actor, { key, selection: NOTHING, reason: "clouds" }),
+    "retire-hypothesis": (desk, actor, key) =>
+      retireHypothesis(desk, actor, { key, hypothesis: "algae", reason: "r" }),
+    "propose-measurand": (desk, actor, key) =>
+      proposeMeasurand(desk, actor, { key, measurand: TAKEN, reason: "r" }),
+    "object-to-reference": (desk, actor, key) =>
+      objectToReference(desk, actor, { key, measurand: "no-moon", reason: "r" }),
+    "seal-prediction": (desk, actor, key) =>
+      sealPrediction(desk, actor, { key, hypothesis: "algae", until: LONG_AGO, seal: kept }),
+    "seal-measurement": (desk, actor, key) =>
+      sealMeasurement(desk, actor, { key, until: LONG_AGO, seal: kept }),
+    "open-seal": (desk, actor, key) =>
+      openSeal(desk, actor, { key, digest: DIGEST, nonce: DIGEST, content: {} }),
+    "make-remark": (desk, actor, key) =>
+      makeRemark(desk, actor, { key, on: 9_999, kind: "question", text: "?" }),
+    "cite-standings": (desk, actor, key) => citeStandings(desk, actor, { key, note: "a paper" }),
     "amend-campaign": (desk, actor, key) =>
       amendCampaign(desk, actor, {
         key,

@@ -15,6 +15,7 @@ const meanings: Record<StoreErrorCode, DeskErrorCode | null> = {
   "rule-broken": "conflict",
   "clock-not-simulated": null,
   "no-signer": null,
+  "no-seal-key": "closed",
   "strange-key": null,
   "bad-keys": null,
   "bad-settings": null,

@@ -16,6 +16,7 @@ import { readDocument } from "./read-document";
 import { readHeads, readSigningKeys, streamEntries } from "./read-ledger";
 import type { StoredEntry } from "./read-ledger";
 import { rebuildProjections } from "./rebuild";
+import { SCORE_TASK } from "./scoring-queue";
 import { declarations, hum, opening, openTestStore, system } from "./testing/sample-campaign";
 import { createTestDatabase } from "./testing/test-database";
 import type { TestDatabase } from "./testing/test-database";
@@ -133,7 +134,8 @@ describe("an append", () => {
   });
 
   it("queues one scoring for a burst of postings", async () => {
-    const jobs = await store.sql<{ key: string }[]>`select key from graphile_worker.jobs`;
+    const jobs = await store.sql<{ key: string }[]>`
+      select key from graphile_worker.jobs where task_identifier = ${SCORE_TASK}`;
     expect(jobs.map(({ key }) => key).sort()).toEqual(["score:hum", "score:played"]);
   });
 });

@@ -7,6 +7,7 @@ import type { Queries } from "./queries";
 import type { Clock } from "./clock";
 import { extendLedger } from "./extend-ledger";
 import type { WriteInput } from "./extend-ledger";
+import { queueDates } from "./dates-queue";
 import { lockTip } from "./lock-tip";
 import type { Store } from "./open-store";
 import { preparePayload } from "./prepare-payload";
@@ -37,7 +38,11 @@ export type AppendInput = {
   clock?: Clock | undefined;
   /** The size that the caller's decision was made on; if the ledger has grown since: `moved-on`. */
   expectedSize?: number | undefined;
+  /** What else the transaction writes: what is held of a seal, and held no longer. */
+  alongside?: Alongside | undefined;
 };
+
+export type Alongside = (tx: Queries, campaignId: number) => Promise<unknown>;
 
 /** Name of the channel on which every append and scoring is told. */
 export const CHANNEL = "weighhouse";
@@ -59,6 +64,7 @@ export async function appendEntries(store: Store, input: AppendInput): Promise<A
         `found the ledger at size ${tip.size}; allowed is ${input.expectedSize}, on which this was decided`,
       );
     }
+    await input.alongside?.(tx, tip.campaignId);
     return writeEntries(store, tx, { tip, by: input.by, payloads, clock: input.clock });
   }) as Promise<Appended>;
 }
@@ -79,6 +85,7 @@ export async function writeEntries(
     ...writeRows(tx, tip.campaignId, projector),
     ...visibilityWrites(tx, tip.campaignId, payloads),
     queueScoring(tx, tip.campaign),
+    ...queueDates(tx, tip.campaign, payloads),
     tx`select pg_notify(${CHANNEL}, ${JSON.stringify({
       campaign: tip.campaign,
       size: extended.size,

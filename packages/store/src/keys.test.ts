@@ -1,8 +1,9 @@
-import { chmodSync, mkdtempSync, rmSync, statSync } from "node:fs";
+import { chmodSync, mkdtempSync, rmSync, statSync, truncateSync } from "node:fs";
 import { tmpdir } from "node:os";
 import path from "node:path";
 import { afterAll, describe, expect, it } from "vitest";
-import { openKeys } from "./keys";
+import { openKeys, openSealKey } from "./keys";
+import { decryptSealed, encryptSealed } from "./seal-key";
 
 const parent = mkdtempSync(path.join(tmpdir(), "weighhouse-keys-"));
 afterAll(() => rmSync(parent, { recursive: true, force: true }));
@@ -32,5 +33,44 @@ describe("the keys' folder", () => {
       code: "bad-keys",
       message: expect.stringContaining("640") as string,
     });
+  });
+});
+
+describe("the key of held seals", () => {
+  const file = path.join(folder, "seals.key");
+
+  it("lies beside the signing key, made only where that is asked for", () => {
+    expect(openSealKey({ folder, make: false })).toBeNull();
+    const made = openSealKey({ folder, make: true })!;
+    expect(made.bytes).toHaveLength(32);
+    expect(statSync(file).mode & 0o777).toBe(0o600);
+    expect(openSealKey({ folder, make: false })).toEqual(made);
+  });
+
+  it("opens what it encrypted, for that seal alone, unaltered", () => {
+    const key = openSealKey({ folder, make: false })!;
+    const place = { campaign: "dune", digest: "5e".repeat(32) };
+    const encrypted = encryptSealed(key, place, "sixty");
+    expect(Buffer.from(encrypted).includes("sixty")).toBe(false);
+    expect(encryptSealed(key, place, "sixty")).not.toEqual(encrypted);
+    expect(decryptSealed(key, place, encrypted)).toBe("sixty");
+    for (const other of [
+      { ...place, campaign: "dunes" },
+      { ...place, digest: "00".repeat(32) },
+    ]) {
+      expect(() => decryptSealed(key, other, encrypted)).toThrow("doesn't open");
+    }
+    for (const index of encrypted.keys()) {
+      const altered = Uint8Array.from(encrypted, (byte, at) => (at === index ? byte ^ 1 : byte));
+      expect(() => decryptSealed(key, place, altered)).toThrow("doesn't open");
+    }
+  });
+
+  it("is refused where others can read it, or where it is cut short", () => {
+    chmodSync(file, 0o644);
+    expect(() => openSealKey({ folder, make: false })).toThrow("644");
+    chmodSync(file, 0o600);
+    truncateSync(file, 31);
+    expect(() => openSealKey({ folder, make: false })).toThrow("31 bytes; allowed is 32");
   });
 });

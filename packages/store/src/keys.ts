@@ -1,8 +1,11 @@
+import { randomBytes } from "node:crypto";
 import { chmodSync, existsSync, mkdirSync, readFileSync, statSync, writeFileSync } from "node:fs";
 import path from "node:path";
 import { createPrivateKeyPem, signerFromPem } from "@weighhouse/ledger/node-keys";
 import type { TreeHeadSigner } from "@weighhouse/ledger/tree-head";
 import { decodeVerifierKey, encodeVerifierKey, fingerprint } from "@weighhouse/ledger/verifier-key";
+import { SEAL_KEY_BYTES, sealKeyOf } from "./seal-key";
+import type { SealKey } from "./seal-key";
 import { StoreError } from "./store-error";
 
 export type KeysOptions = {
@@ -15,6 +18,7 @@ export type KeysOptions = {
 
 const PRIVATE = "tree-heads.pem";
 const PUBLIC = "tree-heads.vkey";
+const SEALS = "seals.key";
 
 /** Reads the signing key of a folder; with `make`, makes folder and key if there is none. */
 export async function openKeys({ folder, name, make }: KeysOptions): Promise<TreeHeadSigner> {
@@ -24,10 +28,7 @@ export async function openKeys({ folder, name, make }: KeysOptions): Promise<Tre
     if (!make) throw refusal(`no ${privateFile}`, "a folder with the installation's key");
     makeKey(folder, name);
   }
-  const { mode } = statSync(privateFile);
-  if ((mode & 0o077) !== 0) {
-    throw refusal(`${privateFile} with mode ${(mode & 0o777).toString(8)}`, "mode 600");
-  }
+  requirePrivate(privateFile);
   // The name is part of every signature, so it is kept with the key, not taken from settings.
   const verifier = readPublic(publicFile);
   const signer = signerFromPem(readFileSync(privateFile, "utf8"), verifier.name);
@@ -35,6 +36,32 @@ export async function openKeys({ folder, name, make }: KeysOptions): Promise<Tre
     throw refusal(`${PUBLIC} of another key than ${PRIVATE}`, "the two halves of one key");
   }
   return signer;
+}
+
+/**
+ * Reads the key of held seals, 32 bytes; with `make`, makes it if there is none. Null without one:
+ * then this installation holds no seals.
+ */
+export function openSealKey({
+  folder,
+  make,
+}: Pick<KeysOptions, "folder" | "make">): SealKey | null {
+  const file = path.join(folder, SEALS);
+  if (!existsSync(file)) {
+    if (!make) return null;
+    writeFileSync(file, randomBytes(SEAL_KEY_BYTES), { mode: 0o600, flag: "wx" });
+  }
+  requirePrivate(file);
+  const bytes = new Uint8Array(readFileSync(file));
+  if (bytes.length === SEAL_KEY_BYTES) return sealKeyOf(bytes);
+  throw refusal(`${file} of ${bytes.length} bytes`, `${SEAL_KEY_BYTES} random bytes`);
+}
+
+function requirePrivate(file: string): void {
+  const { mode } = statSync(file);
+  if ((mode & 0o077) !== 0) {
+    throw refusal(`${file} with mode ${(mode & 0o777).toString(8)}`, "mode 600");
+  }
 }
 
 function makeKey(folder: string, name: string): void {

@@ -7,6 +7,7 @@ import { ledgerTables } from "./grants";
 import { instantFromPostgres } from "./instant";
 import { silentLog } from "./log";
 import type { Log } from "./log";
+import type { SealKey } from "./seal-key";
 import * as schema from "./schema/tables";
 import { requireListedKey } from "./signing-keys";
 import { StoreError } from "./store-error";
@@ -24,6 +25,8 @@ export type Store = {
   readonly readDb: Database;
   readonly url: string;
   readonly signer: TreeHeadSigner | null;
+  /** null: this process holds no seals' contents. */
+  readonly sealKey: SealKey | null;
   readonly log: Log;
   close(): Promise<void>;
 };
@@ -33,6 +36,7 @@ export type StoreOptions = {
   readUrl?: string | undefined;
   /** null: this process appends nothing (a scorer). */
   signer: TreeHeadSigner | null;
+  sealKey?: SealKey | null;
   log?: Log;
   /** Connections for each of the two clients; 8 unless given. */
   connections?: number;
@@ -64,6 +68,7 @@ export async function openStore(options: StoreOptions): Promise<Store> {
     readDb: readClient === null ? db : drizzle(readClient, { schema }),
     url: options.url,
     signer: options.signer,
+    sealKey: options.sealKey ?? null,
     log: options.log ?? silentLog,
     close,
   };

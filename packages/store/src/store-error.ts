@@ -11,6 +11,7 @@ export type StoreErrorCode =
   | "rule-broken"
   | "clock-not-simulated"
   | "no-signer"
+  | "no-seal-key"
   | "strange-key"
   | "bad-keys"
   | "bad-settings"

@@ -1,5 +1,6 @@
 import { amendHypothesis, amendHypothesisInput } from "@weighhouse/desk/amend-hypothesis";
 import { registerHypothesis, registerHypothesisInput } from "@weighhouse/desk/register-hypothesis";
+import { retireHypothesis, retireHypothesisInput } from "@weighhouse/desk/retire-hypothesis";
 import { procedure, router, takes } from "../trpc";
 
 export const hypothesesRouter = router({
@@ -9,4 +10,7 @@ export const hypothesesRouter = router({
   amend: procedure
     .input(takes(amendHypothesisInput))
     .mutation(({ ctx, input }) => amendHypothesis(ctx.desk, ctx.actor, input)),
+  retire: procedure
+    .input(takes(retireHypothesisInput))
+    .mutation(({ ctx, input }) => retireHypothesis(ctx.desk, ctx.actor, input)),
 });

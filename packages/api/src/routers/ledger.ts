@@ -1,5 +1,7 @@
+import { makeRemark, makeRemarkInput } from "@weighhouse/desk/make-remark";
 import { readEntries, readEntriesInput } from "@weighhouse/desk/read-entries";
 import { readEntry, readEntryInput } from "@weighhouse/desk/read-entry";
+import { readRemarks, readRemarksInput } from "@weighhouse/desk/read-remarks";
 import { procedure, router, takes } from "../trpc";
 
 export const ledgerRouter = router({
@@ -9,4 +11,10 @@ export const ledgerRouter = router({
   entry: procedure
     .input(takes(readEntryInput))
     .query(({ ctx, input }) => readEntry(ctx.desk, ctx.actor, input)),
+  remark: procedure
+    .input(takes(makeRemarkInput))
+    .mutation(({ ctx, input }) => makeRemark(ctx.desk, ctx.actor, input)),
+  remarks: procedure
+    .input(takes(readRemarksInput))
+    .query(({ ctx, input }) => readRemarks(ctx.desk, ctx.actor, input)),
 });

@@ -1,12 +1,23 @@
+import { correctMeasurement, correctMeasurementInput } from "@weighhouse/desk/correct-measurement";
 import { postMeasurements, postMeasurementsInput } from "@weighhouse/desk/post-measurements";
 import {
   previewMeasurements,
   previewMeasurementsInput,
 } from "@weighhouse/desk/preview-measurements";
 import {
+  readMeasurementHistory,
+  readMeasurementHistoryInput,
+} from "@weighhouse/desk/read-measurement-history";
+import {
   setAsideMeasurement,
   setAsideMeasurementInput,
 } from "@weighhouse/desk/set-aside-measurement";
+import {
+  previewWithdrawal,
+  previewWithdrawalInput,
+  withdrawMeasurements,
+  withdrawMeasurementsInput,
+} from "@weighhouse/desk/withdraw-measurements";
 import { procedure, router, takes } from "../trpc";
 
 export const measurementsRouter = router({
@@ -20,4 +31,16 @@ export const measurementsRouter = router({
   setAside: procedure
     .input(takes(setAsideMeasurementInput))
     .mutation(({ ctx, input }) => setAsideMeasurement(ctx.desk, ctx.actor, input)),
+  correct: procedure
+    .input(takes(correctMeasurementInput))
+    .mutation(({ ctx, input }) => correctMeasurement(ctx.desk, ctx.actor, input)),
+  previewWithdrawal: procedure
+    .input(takes(previewWithdrawalInput))
+    .mutation(({ ctx, input }) => previewWithdrawal(ctx.desk, ctx.actor, input)),
+  withdraw: procedure
+    .input(takes(withdrawMeasurementsInput))
+    .mutation(({ ctx, input }) => withdrawMeasurements(ctx.desk, ctx.actor, input)),
+  history: procedure
+    .input(takes(readMeasurementHistoryInput))
+    .query(({ ctx, input }) => readMeasurementHistory(ctx.desk, ctx.actor, input)),
 });

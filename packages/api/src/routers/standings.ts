@@ -1,3 +1,5 @@
+import { citeStandings, citeStandingsInput } from "@weighhouse/desk/cite-standings";
+import { readCitation, readCitationInput } from "@weighhouse/desk/read-citation";
 import { readStandings, readStandingsInput } from "@weighhouse/desk/read-standings";
 import { readTimeline, readTimelineInput } from "@weighhouse/desk/read-timeline";
 import { procedure, router, takes } from "../trpc";
@@ -9,4 +11,10 @@ export const standingsRouter = router({
   timeline: procedure
     .input(takes(readTimelineInput))
     .query(({ ctx, input }) => readTimeline(ctx.desk, ctx.actor, input)),
+  cite: procedure
+    .input(takes(citeStandingsInput))
+    .mutation(({ ctx, input }) => citeStandings(ctx.desk, ctx.actor, input)),
+  cited: procedure
+    .input(takes(readCitationInput))
+    .query(({ ctx, input }) => readCitation(ctx.desk, ctx.actor, input)),
 });
