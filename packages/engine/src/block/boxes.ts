@@ -1,5 +1,5 @@
 import type { Box, LogIntegral } from "@weighhouse/numerics/box";
-import { logBoxIntegral } from "@weighhouse/numerics/box-integral";
+import { logBoxIntegral, logCoupledBoxIntegral } from "@weighhouse/numerics/box-integral";
 import { LN_SQRT_2PI, normalCdf } from "@weighhouse/numerics/normal";
 import {
   addRow,
@@ -8,7 +8,6 @@ import {
   type TriangularSystem,
 } from "@weighhouse/numerics/triangular-system";
 import type { Layout } from "./layout";
-import type { Workbench } from "./workbench";
 
 /** Bounds may be let go where all of them together cut off less than this share of the integral. */
 const NEGLIGIBLE_SHARE = 1e-13;
@@ -16,31 +15,48 @@ const NEGLIGIBLE_SHARE = 1e-13;
 const NOTHING_KNOWN = 1e-8;
 
 /**
- * The flat unknowns' part of ln Z: a Gaussian over a box, divided by the box's volume,
+ * The tail's part of ln Z: a Gaussian over a box, divided by the box's volume,
  *
  *   ln int exp(-|R t - q|^2 / 2) dt - sum ln(upper - lower)
  *
- * One is closed-form. Of more, those whose bounds cut off nothing that counts are integrated over
- * the whole line, in closed form; two or three that are left by nested quadrature, more on a
+ * One flat unknown is closed-form. Of more, those whose bounds cut off nothing that counts are
+ * integrated over the whole line, in closed form; two or three that are left by nested quadrature;
+ * more by quadrature over the normal unknowns that couple them where the tail has those, else on a
  * lattice.
  *
- * @param tail over the flat unknowns alone
- * Accuracy: up to three 1e-9 in ln; more within three stated errors.
+ * @param tail over the layout's couplers, each N(0, 1), and then its flat unknowns
+ * Accuracy: up to three, and with couplers, 1e-9 in ln; more within three stated errors.
  */
-export function lnBoxes({ layout }: Workbench, tail: TriangularSystem): LogIntegral {
+export function lnBoxes(layout: Layout, tail: TriangularSystem): LogIntegral {
   const { bounds } = layout;
-  if (bounds.length === 0) return { ln: 0, error: 0 };
+  const couplers = layout.open - layout.inner;
+  const lnNormals = -logDiagonal(tail, 0, couplers);
+  if (bounds.length === 0) return { ln: lnNormals, error: 0 };
   let lnVolume = 0;
   for (const { width } of bounds) lnVolume += Math.log(width);
-  const system = tail.size === 1 ? tail : informed(tail, bounds);
-  const integral =
-    tail.size === 1 ? logBoxIntegral(system, boxOf(bounds)) : overBoxes(system, bounds);
-  return { ln: integral.ln - lnVolume, error: integral.error };
+  const integral = lnBox(lastUnknowns(tail, couplers), bounds, (order, free) => {
+    const coupled = overCouplers(tail, { bounds, couplers, open: order.slice(0, free) });
+    return { ln: coupled.ln - lnNormals, error: coupled.error };
+  });
+  return { ln: lnNormals + integral.ln - lnVolume, error: integral.error };
+}
+
+/** Where more than three bounds count: by the couplers, where the tail has some. */
+type Coupled = (order: readonly number[], free: number) => LogIntegral;
+
+/** ln of the integral over a box, bounds infinite or not; diagonals of 0 allowed. */
+export function lnBox(
+  system: TriangularSystem,
+  bounds: Bounds,
+  coupled: Coupled | null = null,
+): LogIntegral {
+  if (system.size === 1) return logBoxIntegral(system, boxOf(bounds));
+  return overBoxes(informed(system, bounds), bounds, coupled);
 }
 
 type Bounds = Layout["bounds"];
 
-function boxOf(bounds: Bounds): Box {
+function boxOf(bounds: Bounds): Required<Box> {
   return {
     lower: Float64Array.from(bounds, ({ lower }) => lower),
     upper: Float64Array.from(bounds, ({ upper }) => upper),
@@ -65,7 +81,7 @@ function informed(tail: TriangularSystem, bounds: Bounds): TriangularSystem {
 }
 
 /** Lets go of bounds as far as the answer allows, checked against the answer itself. */
-function overBoxes(system: TriangularSystem, bounds: Bounds): LogIntegral {
+function overBoxes(system: TriangularSystem, bounds: Bounds, coupled: Coupled | null): LogIntegral {
   const cutOff = sharesOutside(system, bounds);
   const order = cutOff.map((_, i) => i).sort((a, b) => cutOff[a]! - cutOff[b]! || a - b);
   const whole = system.size * LN_SQRT_2PI - logDiagonal(system, 0, system.size);
@@ -77,7 +93,9 @@ function overBoxes(system: TriangularSystem, bounds: Bounds): LogIntegral {
       lost += cutOff[i]!;
       free += 1;
     }
-    const integral = bounded(system, { bounds, order, free });
+    const many = order.length - free > 3;
+    const integral =
+      many && coupled !== null ? coupled(order, free) : bounded(system, { bounds, order, free });
     const found = Math.exp(integral.ln - whole);
     if (free === 0 || lost <= NEGLIGIBLE_SHARE * found) return integral;
     // The bounds that are kept leave less than was thought, so that more of the others count.
@@ -123,6 +141,23 @@ function bounded(
   return { ln: scale + integral.ln, error: integral.error };
 }
 
+/** @param open flat unknowns whose bounds are let go */
+function overCouplers(
+  tail: TriangularSystem,
+  { bounds, couplers, open }: { bounds: Bounds; couplers: number; open: readonly number[] },
+): LogIntegral {
+  const flats = bounds.map((_, f) => couplers + f);
+  const sorted = reordered(tail, [...flats, ...Array.from({ length: couplers }, (_, c) => c)]);
+  const box = boxOf(bounds);
+  for (const f of open) {
+    box.lower[f] = -Infinity;
+    box.upper[f] = Infinity;
+    box.width[f] = Infinity;
+  }
+  const integral = logCoupledBoxIntegral(sorted, box);
+  return { ln: integral.ln - couplers * LN_SQRT_2PI, error: integral.error };
+}
+
 function reordered(system: TriangularSystem, order: readonly number[]): TriangularSystem {
   const { size, data } = system;
   const sorted = createSystem(size);
@@ -136,7 +171,7 @@ function reordered(system: TriangularSystem, order: readonly number[]): Triangul
 }
 
 /** The system of the unknowns from `begin` on, those before integrated out. */
-function lastUnknowns(system: TriangularSystem, begin: number): TriangularSystem {
+export function lastUnknowns(system: TriangularSystem, begin: number): TriangularSystem {
   const size = system.size - begin;
   const last = createSystem(size);
   for (let i = 0; i < size; i += 1) {

@@ -1,5 +1,6 @@
 import { asymmetryFactor } from "./asymmetric";
 import type { Eliminated } from "./elimination";
+import { tailAt, type FixedDesign } from "./fixed-design";
 import { settle } from "./fixed-point";
 import type { Layout } from "./layout";
 import { ASYMMETRIC, FACTOR } from "./problem";
@@ -53,14 +54,35 @@ export function conditionalAt(
   scenario: number,
 ): Conditional | null | { singular: number[] } {
   if (!evaluateRows(bench, outer, scenario)) return null;
-  const { layout, prior, state } = bench;
+  const { layout, state } = bench;
   const settled = settle(bench);
   if ("singular" in settled) return settled;
   const { eliminated, white } = settled;
-  let ln = -(layout.gaussian.length * LN_2PI + white.logDeterminant + prior.logDeterminant) / 2;
-  ln -= eliminated.tail.rss / 2 + eliminated.logPivots;
+  let ln = lnAround(bench, eliminated, white.logDeterminant);
   if (layout.moving) ln += asymmetryFactors(layout, state.variance);
   return { ln, eliminated, base: bench.evaluated.base };
+}
+
+/** The same by a design worked out before: its pivots' right sides aren't those of this point. */
+export function conditionalBy(
+  bench: Workbench,
+  design: FixedDesign,
+  { outer, scenario }: { outer: Float64Array; scenario: number },
+): Conditional | null {
+  if (!evaluateRows(bench, outer, scenario)) return null;
+  const tail = tailAt(design.eliminated, design.solve(bench.state.residual));
+  const eliminated = { ...design.eliminated, tail };
+  const ln = lnAround(bench, eliminated, design.logDeterminant);
+  return { ln, eliminated, base: bench.evaluated.base };
+}
+
+function lnAround(
+  { layout, prior }: Workbench,
+  { tail, logPivots }: Eliminated,
+  logDeterminant: number,
+): number {
+  const constants = layout.gaussian.length * LN_2PI + logDeterminant + prior.logDeterminant;
+  return -(constants + tail.rss) / 2 - logPivots;
 }
 
 function asymmetryFactors({ gaussian, problem }: Layout, variance: Float64Array): number {

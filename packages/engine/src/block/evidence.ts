@@ -1,10 +1,15 @@
 import { logSumExp } from "@weighhouse/numerics/log-sum-exp";
 import { integrandOf } from "./integrand";
-import { layoutOf } from "./layout";
+import { couplersOf } from "./couplers";
+import { layoutOf, type Layout } from "./layout";
+import { lnOrthant } from "./orthant";
 import { outerQuantileOf, posteriorOf } from "./posterior";
 import type { BlockEvidence, BlockOutcome, BlockProblem, BlockRefusal } from "./problem";
 import { integralOf, type ScenarioEvidence } from "./scenario-integral";
 import { workbenchOf, type Workbench } from "./workbench";
+
+/** Of an integral done on a lattice: the posterior is found when it is asked for. */
+const NO_POINTS = { points: [], weights: new Float64Array(0), cdf: null };
 
 /**
  * ln Z of a block: linear unknowns in closed form where only Gaussian rows see them, flat ones over
@@ -14,7 +19,8 @@ import { workbenchOf, type Workbench } from "./workbench";
  * four to thirty by nested sampling, within three of the stated errors.
  */
 export function blockEvidence(problem: BlockProblem): BlockOutcome<BlockEvidence> {
-  const made = workbenchOf(layoutOf(problem, "evidence"));
+  const layout = layoutOf(problem, "evidence");
+  const made = workbenchOf(withCouplers(layout));
   if (!made.ok) return made;
   const { bench } = made;
   const found: ScenarioEvidence[] = [];
@@ -39,11 +45,20 @@ export function blockEvidence(problem: BlockProblem): BlockOutcome<BlockEvidence
   };
 }
 
+/** Many flat unknowns that a few normal ones couple: those are kept, to condition on. */
+function withCouplers(layout: Layout): Layout {
+  const { problem, others, bounds } = layout;
+  if (others.length > 0 || bounds.length < 4) return layout;
+  const couplers = couplersOf(problem);
+  return couplers.size === 0 ? layout : layoutOf(problem, "evidence", couplers);
+}
+
 function scenarioEvidence(
   bench: Workbench,
   scenario: number,
 ): ScenarioEvidence | { refusal: BlockRefusal } {
   const integrand = integrandOf(bench, scenario, { flatsOpen: bench.layout.others.length > 0 });
-  const integral = integralOf(bench, integrand);
+  const orthant = lnOrthant(bench, integrand);
+  const integral = orthant === null ? integralOf(bench, integrand) : { ...orthant, ...NO_POINTS };
   return "refusal" in integral ? integral : { integrand, integral };
 }

@@ -1,6 +1,7 @@
 import { minimiseLeastSquares } from "@weighhouse/numerics/levenberg-marquardt";
 import { sobolPoints } from "@weighhouse/numerics/sobol";
 import { evaluateRows } from "./conditional";
+import { fixedDesignOf, type FixedDesign } from "./fixed-design";
 import { bestFit, settle } from "./fixed-point";
 import { layoutOf } from "./layout";
 import {
@@ -68,7 +69,7 @@ export function outerMinima(
   starts: readonly Float64Array[],
 ): Minimum[] | { singular: number[] } {
   const { outer } = bench.layout.problem;
-  const first = residualsAt(bench, starts[0]!, scenario);
+  const first = residualsAt(bench, starts[0]!, { scenario, design: null });
   if (first !== null && "singular" in first) return first;
   if (outer.length === 0) {
     return first === null ? [] : [{ outer: starts[0]!, chiSquare: sumOfSquares(first) }];
@@ -77,9 +78,10 @@ export function outerMinima(
   const upper = Float64Array.from(outer, (one) => one.upper);
   const count = countOf(bench);
   const minima: Minimum[] = [];
+  const design = bench.layout.bounds.length === 0 ? fixedDesignOf(bench) : null;
   for (const start of starts) {
     const residuals = (c: Float64Array, out: Float64Array) => {
-      const found = residualsAt(bench, c, scenario);
+      const found = residualsAt(bench, c, { scenario, design });
       if (found === null || "singular" in found) out.fill(NaN);
       else out.set(found);
     };
@@ -105,14 +107,23 @@ function valuesAt(outer: readonly OuterUnknown[], c: Float64Array): Float64Array
 function residualsAt(
   bench: Workbench,
   c: Float64Array,
-  scenario: number,
+  { scenario, design }: { scenario: number; design: FixedDesign | null },
 ): Float64Array | null | { singular: number[] } {
   const { layout, prior } = bench;
   const { outer } = layout.problem;
+  const residuals = new Float64Array(countOf(bench));
+  const penalties = layout.gaussian.length + prior.rows.length;
+  outer.forEach(({ penalised }, j) => (residuals[penalties + j] = penalised ? c[j]! : 0));
+  if (design !== null) {
+    if (!evaluateRows(bench, valuesAt(outer, c), scenario)) return null;
+    const { rows, priors } = design.solve(bench.state.residual);
+    residuals.set(rows);
+    residuals.set(priors, rows.length);
+    return residuals;
+  }
   const fit = linearFitAt(bench, valuesAt(outer, c), scenario);
   if (fit === null || "singular" in fit) return fit;
   const { white, values } = fit;
-  const residuals = new Float64Array(countOf(bench));
   for (let n = 0; n < white.count; n += 1) {
     let rest = white.right[n]!;
     for (let e = white.start[n]!; e < white.start[n + 1]!; e += 1) {
@@ -124,9 +135,6 @@ function residualsAt(
     let rest = 0;
     for (let e = 0; e < position.length; e += 1) rest += value[e]! * values[position[e]!]!;
     residuals[white.count + n] = rest;
-  });
-  outer.forEach(({ penalised }, j) => {
-    residuals[white.count + prior.rows.length + j] = penalised ? c[j]! : 0;
   });
   return residuals;
 }

@@ -1,9 +1,10 @@
 import type { LogIntegral } from "@weighhouse/numerics/box";
 import { LN_SQRT_2PI } from "@weighhouse/numerics/normal";
 import { lnBoxes } from "./boxes";
-import { conditionalAt, type Conditional } from "./conditional";
+import { conditionalAt, conditionalBy, type Conditional } from "./conditional";
 import { boundedCoordinate, normalCoordinate, type Coordinate } from "./coordinates";
 import { startsFor } from "./fit";
+import { fixedDesignOf } from "./fixed-design";
 import { lnOpen, openPartOf, type OpenPart } from "./open-part";
 import type { Workbench } from "./workbench";
 
@@ -43,7 +44,11 @@ export function integrandOf(
   const openly = others.length > 0 || flats > 0;
   let singular: number[] | null = null;
   let shape: { most?: number; padded?: boolean } = {};
-  const valuesAt = (c: Float64Array) => Float64Array.from(outer, (one, j) => one.valueAt(c[j]!));
+  const valuesAt = (c: Float64Array) => {
+    const values = new Float64Array(outer.length);
+    for (let j = 0; j < values.length; j += 1) values[j] = outer[j]!.valueAt(c[j]!);
+    return values;
+  };
   const conditional = (c: Float64Array): Conditional | null => {
     const found = conditionalAt(bench, valuesAt(c), scenario);
     if (found === null || !("singular" in found)) return found;
@@ -58,18 +63,24 @@ export function integrandOf(
   const rank = reference?.rank ?? 0;
   shape = { most: rank, padded: varying.length > 0 };
   const fixed = outer.length === 0 && openly ? reference : null;
+  const design = outer.length > 0 ? fixedDesignOf(bench) : null;
+  const near = (c: Float64Array) =>
+    design === null
+      ? conditional(c)
+      : conditionalBy(bench, design, { outer: valuesAt(c), scenario });
   const density = (c: Float64Array): LogIntegral => {
     let ln = 0;
     for (let j = 0; j < outer.length; j += 1) ln += outer[j]!.lnPrior(c[j]!);
     if (outerFactor !== undefined) ln += outerFactor(valuesAt(c), scenario);
     if (!(ln > -Infinity)) return NOTHING;
     if (!openly) {
-      const one = conditional(c);
+      const one = near(c);
       if (one === null) return NOTHING;
-      const box = lnBoxes(bench, one.eliminated.tail);
+      const box = lnBoxes(bench.layout, one.eliminated.tail);
       return { ln: ln + one.ln + box.ln, error: box.error };
     }
-    const part = fixed ?? (outer.length > 0 ? (openAt(c)?.part ?? null) : null);
+    const one = outer.length > 0 ? near(c) : null;
+    const part = one === null ? fixed : openPartOf(bench, one, shape);
     if (part === null) return NOTHING;
     const at = c.subarray(outer.length);
     for (let r = 0; r < rank; r += 1) ln -= (at[r]! * at[r]!) / 2 + LN_SQRT_2PI;

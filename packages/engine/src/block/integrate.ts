@@ -1,8 +1,9 @@
-import type { CubeMode } from "@weighhouse/numerics/cube-integral";
+import type { CubeMode, CubeOptions } from "@weighhouse/numerics/cube-integral";
 import { integrateUnitCube } from "@weighhouse/numerics/log-integral";
 import { LN_SQRT_2PI, normalCdf, truncatedNormalQuantile } from "@weighhouse/numerics/normal";
 import type { Axis, Coordinate } from "./coordinates";
 import { climb, type Mode } from "./modes";
+import { mapAboutPeak, type CubeMap } from "./peak-map";
 
 export interface Integral {
   ln: number;
@@ -21,6 +22,8 @@ const MARGIN = 9;
  * are within this many standard deviations: further out (0, 1) runs out of numbers.
  */
 const REACH = 5;
+/** Up to so many dimensions there are rules that need no map about the peak. */
+const FEW = 3;
 
 /**
  * ln of the integral of exp(lnDensity) over the coordinates, priors included in it.
@@ -37,34 +40,54 @@ export function integrate(
 ): Integral {
   const size = coordinates.length;
   const modes = peaksOf(lnDensity, coordinates, starts);
+  const about =
+    size > FEW && modes.length === 1 ? mapAboutPeak(lnDensity, coordinates, modes[0]!) : null;
+  if (about !== null) return overCube(lnDensity, about, { size, seed });
   const axes = coordinates.map((one, j) => axisOf(one, modes, j));
-  const c = new Float64Array(size);
-  const onCube = (u: Float64Array) => {
-    let ln = 0;
-    for (let j = 0; j < size; j += 1) {
-      c[j] = axes[j]!.toCoordinate(u[j]!);
-      ln += axes[j]!.lnJacobian(u[j]!);
-    }
-    return lnDensity(c) + ln;
+  const map: CubeMap = {
+    place: (u, c) => {
+      let ln = 0;
+      for (let j = 0; j < size; j += 1) {
+        c[j] = axes[j]!.toCoordinate(u[j]!);
+        ln += axes[j]!.lnJacobian(u[j]!);
+      }
+      return ln;
+    },
   };
-  const found = integrateUnitCube(onCube, size, {
-    seed,
-    modes: modes.map((mode) => cubeMode(mode, axes)),
-    breaks: coordinates.map(({ breaks }, j) => {
-      const places = breaks.map((at) => axes[j]!.toUnit(at)).filter((u) => u > 0 && u < 1);
-      return [...new Set(places)].sort((a, b) => a - b);
-    }),
+  const breaks = coordinates.map((one, j) => {
+    const places = one.breaks.map((at) => axes[j]!.toUnit(at)).filter((u) => u > 0 && u < 1);
+    return [...new Set(places)].sort((a, b) => a - b);
   });
-  const { points, lnWeights } = found.nodes;
+  const cubeModes = modes.map((mode) => cubeMode(mode, axes));
+  const found = overCube(lnDensity, map, { size, seed, modes: cubeModes, breaks });
   const { cdf } = found;
   return {
-    ln: found.ln,
-    error: found.error,
-    points: Array.from(lnWeights, (_, n) =>
-      Float64Array.from(axes, (axis, j) => axis.toCoordinate(points[n * size + j]!)),
-    ),
-    weights: Float64Array.from(lnWeights, Math.exp),
-    cdf: cdf === undefined ? null : (axis, at) => cdf(axis, axes[axis]!.toUnit(at)),
+    ...found,
+    cdf: cdf === null ? null : (axis, at) => cdf(axis, axes[axis]!.toUnit(at)),
+  };
+}
+
+function overCube(
+  lnDensity: (c: Float64Array) => number,
+  map: CubeMap,
+  { size, ...options }: CubeOptions & { size: number },
+): Integral {
+  const c = new Float64Array(size);
+  const onCube = (u: Float64Array) => {
+    const ln = map.place(u, c);
+    return ln > -Infinity ? ln + lnDensity(c) : -Infinity;
+  };
+  const { ln, error, nodes, cdf } = integrateUnitCube(onCube, size, options);
+  return {
+    ln,
+    error,
+    points: Array.from(nodes.lnWeights, (_, n) => {
+      const point = new Float64Array(size);
+      map.place(nodes.points.subarray(n * size, (n + 1) * size), point);
+      return point;
+    }),
+    weights: Float64Array.from(nodes.lnWeights, Math.exp),
+    cdf: cdf ?? null,
   };
 }
 

@@ -54,8 +54,15 @@ interface Latent {
   x: number;
 }
 
-/** @param purpose for a fit, rows without a residual are left out and no row is kept open */
-export function layoutOf(problem: BlockProblem, purpose: "evidence" | "fit"): Layout {
+/**
+ * @param purpose for a fit, rows without a residual are left out and no row is kept open
+ * @param couplers normal unknowns that aren't eliminated, only Gaussian rows seeing any
+ */
+export function layoutOf(
+  problem: BlockProblem,
+  purpose: "evidence" | "fit",
+  couplers: ReadonlySet<number> = new Set(),
+): Layout {
   const { rows, linear } = problem;
   const exact = purpose === "evidence" && allowsExactAsymmetry(problem);
   const split = purpose === "fit" ? fittedRows(problem) : splitRows(problem, exact);
@@ -67,7 +74,7 @@ export function layoutOf(problem: BlockProblem, purpose: "evidence" | "fit"): La
   const flats: number[] = [];
   linear.forEach(({ kind }, k) => {
     if (kind === "flat") flats.push(k);
-    else if (seen.has(k)) open.push(k);
+    else if (seen.has(k) || couplers.has(k)) open.push(k);
     else inner.push(k);
   });
   const touches = new Float64Array(linear.length);

@@ -48,7 +48,7 @@ export function openPartOf(
   const centre = new Float64Array(count);
   const row = new Float64Array(tail.size);
   for (let o = 0; o < count; o += 1) {
-    loadingsOf(bench, o, row);
+    othersLoadings(bench, o, row);
     // b R_nn = a, then what b takes along to the flat unknowns and to the centre.
     let mean = base[layout.others[o]!]!;
     for (let j = 0; j < normals; j += 1) {
@@ -101,7 +101,7 @@ export function lnOpen({ layout }: Workbench, part: OpenPart, at: Float64Array):
 }
 
 /** Loadings of one of the others over the tail's unknowns. */
-function loadingsOf({ layout, state }: Workbench, o: number, row: Float64Array): void {
+export function othersLoadings({ layout, state }: Workbench, o: number, row: Float64Array): void {
   const { start, position, source, problem, inner, latentOf } = layout;
   const i = layout.others[o]!;
   row.fill(0);

@@ -23,7 +23,7 @@ export function posteriorOf(bench: Workbench, { shares, found }: Scenarios): Pos
   const pieces: PosteriorPiece[] = [];
   found.forEach((one, r) => {
     if (shares[r]! <= NO_WEIGHT) return;
-    const { integrand, integral } = withFlatsOpen(bench, one);
+    const { integrand, integral } = withPoints(bench, one);
     integral.points.forEach((point, n) => {
       const weight = shares[r]! * integral.weights[n]!;
       if (weight <= NO_WEIGHT) return;
@@ -42,9 +42,13 @@ export function posteriorOf(bench: Workbench, { shares, found }: Scenarios): Pos
   return pieces;
 }
 
-/** The integral once more with flat unknowns as coordinates, where their bounds count. */
-function withFlatsOpen(bench: Workbench, one: ScenarioEvidence): ScenarioEvidence {
+/** The integral once more where its points don't tell the linear unknowns. */
+function withPoints(bench: Workbench, one: ScenarioEvidence): ScenarioEvidence {
   const { layout } = bench;
+  if (one.integral.points.length === 0) {
+    const integral = integralOf(bench, one.integrand);
+    return "refusal" in integral ? one : { integrand: one.integrand, integral };
+  }
   if (layout.size === layout.open || one.integrand.flats > 0) return one;
   let best = 0;
   one.integral.weights.forEach((weight, n) => {

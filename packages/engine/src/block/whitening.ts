@@ -1,4 +1,4 @@
-import { whitenSmooth } from "@weighhouse/numerics/kalman-whitening";
+import { whitenSmooth, type SmoothNoise } from "@weighhouse/numerics/kalman-whitening";
 import {
   choleskyFactor,
   logDeterminant,
@@ -110,11 +110,11 @@ function whitenSingles(
 
 function whitenPart(layout: Layout, part: NoisePart, { state, rows }: Work): number[] {
   const columns = columnsOf(layout, part, state);
-  const plain = part.groups.length === 0 && part.processes.length === 1;
-  if (plain) {
+  const noise = smoothNoiseOf(layout, part, state.variance);
+  if (noise !== null) {
     const bad = part.rows.filter((i) => !(state.variance[i]! > 0));
     if (bad.length > 0) return bad;
-    rows.logDeterminant += whitenProcess(layout, part, { columns, variance: state.variance });
+    rows.logDeterminant += whitenSmooth({ ...noise, columns });
   } else {
     const matrix = covarianceOf(layout, part, state.variance);
     const size = part.rows.length + part.latents.length;
@@ -164,15 +164,17 @@ function columnsOf(
   return columns;
 }
 
-function whitenProcess(
+/** What the Kalman filter needs of a part that is one smooth process; null for another part. */
+export function smoothNoiseOf(
   layout: Layout,
-  { rows, latents, processes }: NoisePart,
-  { columns, variance }: { columns: Float64Array[]; variance: Float64Array },
-): number {
+  { rows, latents, groups, processes }: NoisePart,
+  variance: Float64Array,
+): Omit<SmoothNoise, "columns"> | null {
+  if (groups.length > 0 || processes.length !== 1) return null;
   const process = layout.problem.rows.smooth[processes[0]!]!;
   const { sd, length } = process;
   const place = new Map(Array.from(process.rows, (i, k) => [i, process.x[k]!]));
   const x = [...rows.map((i) => place.get(i)!), ...latents.map((l) => layout.latents[l]!.x)];
   const own = [...rows.map((i) => variance[i]!), ...latents.map(() => NO_NOISE * sd * sd)];
-  return whitenSmooth({ x, variance: own, sd, length, columns });
+  return { x, variance: own, sd, length };
 }
