@@ -81,6 +81,10 @@ function posteriorOf(
     return from;
   };
   const mixture = mixtureOf(evidence, query);
-  const [lower, middle, upper] = mixtureQuantiles(mixture, SHARES);
+  const { outerQuantile } = evidence;
+  const [lower, middle, upper] =
+    step === 0 && outerQuantile !== null
+      ? SHARES.map((share) => outerQuantile(place, share))
+      : mixtureQuantiles(mixture, SHARES);
   return { ...mixtureMoments(mixture), quantiles: [lower!, middle!, upper!] };
 }

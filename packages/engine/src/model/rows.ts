@@ -65,7 +65,13 @@ export function rowsOf(workspace: Workspace, measurand: number, role: Role): Rol
     });
   });
   const extra = scatterVariance + noise;
-  for (const reading of own.kept) result.rows.push(keptRow(workspace, reading, extra));
+  for (const reading of own.kept) {
+    const { form } = reading.told;
+    // Counts and events have no row: they are factors of their own.
+    if (form !== "count" && form !== "event") {
+      result.rows.push(keptRow(workspace, reading, extra));
+    }
+  }
   const place = derived.measurands.indexOf(measurand);
   if (place >= 0) result.rows.push(derivedRow(workspace, place, noise));
   return result;
