@@ -34,10 +34,12 @@ export function lnBoxes(layout: Layout, tail: TriangularSystem): LogIntegral {
   if (bounds.length === 0) return { ln: lnNormals, error: 0 };
   let lnVolume = 0;
   for (const { width } of bounds) lnVolume += Math.log(width);
-  const integral = lnBox(lastUnknowns(tail, couplers), bounds, (order, free) => {
-    const coupled = overCouplers(tail, { bounds, couplers, open: order.slice(0, free) });
-    return { ln: coupled.ln - lnNormals, error: coupled.error };
-  });
+  const coupled: Coupled = (order, free) => {
+    const { ln, error } = overCouplers(tail, { bounds, couplers, open: order.slice(0, free) });
+    return { ln: ln - lnNormals, error };
+  };
+  const system = lastUnknowns(tail, couplers);
+  const integral = lnBox(system, bounds, couplers > 0 ? coupled : null);
   return { ln: lnNormals + integral.ln - lnVolume, error: integral.error };
 }
 

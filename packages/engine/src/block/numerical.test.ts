@@ -1,6 +1,6 @@
-import { gaussLegendre } from "@weighhouse/numerics/gauss-legendre";
 import { describe, expect, test } from "vitest";
 import { blockProblem, denseNormal, type BlockTerms } from "../testing/block-problems";
+import { panels } from "../testing/panels";
 import { blockEvidence } from "./evidence";
 import { censoredFactor, fainterFactor, linearNoiseFactor } from "./factors";
 import { normalUnknown, splitNormalUnknown, uniformUnknown } from "./outer-unknowns";
@@ -14,15 +14,6 @@ function lnZ(terms: BlockTerms): number {
   const found = blockEvidence(blockProblem(terms));
   if (!found.ok) throw new Error(found.refusal.kind);
   return found.ln;
-}
-
-function panels(f: (x: number) => number, lower: number, upper: number, count = 400): number {
-  let sum = 0;
-  const width = (upper - lower) / count;
-  for (let i = 0; i < count; i += 1) {
-    sum += gaussLegendre(f, lower + i * width, lower + (i + 1) * width);
-  }
-  return sum;
 }
 
 const phi = (z: number, variance = 1) =>
