@@ -100,11 +100,20 @@ function isExact(
 export function intervalOf(frame: Frame, prediction: PredictionFrame): Interval | null {
   if (frame.measurands[prediction.measurand]!.curve) return null;
   if (prediction.interval !== null) return prediction.interval;
+  const there = central.get(prediction);
+  if (there !== undefined) return there;
   const predictive = predictiveOf(frame, prediction);
-  if (predictive === null) return null;
   const outside = normalCdf(-frame.document.campaign.rule.coverage);
-  return { lower: quantile(predictive, outside), upper: quantile(predictive, 1 - outside) };
+  const interval =
+    predictive === null
+      ? null
+      : { lower: quantile(predictive, outside), upper: quantile(predictive, 1 - outside) };
+  central.set(prediction, interval);
+  return interval;
 }
+
+/** Neither a prediction nor the campaign's rule changes. */
+const central = new WeakMap<PredictionFrame, Interval | null>();
 
 function ofInterval(
   workspace: Workspace,

@@ -150,7 +150,7 @@ function clampShare(share: number): number {
   return Math.min(Math.max(share, 0), 1);
 }
 
-/** By halving between the parts' own quantiles, which it can't be outside of. */
+/** Between the parts' own quantiles, which it can't be outside of: by chords, and halves where slow. */
 function mixtureQuantile(of: Mixture, p: number): number {
   let [a, b] = [Infinity, -Infinity];
   for (const part of of.parts) {
@@ -159,11 +159,15 @@ function mixtureQuantile(of: Mixture, p: number): number {
     a = Math.min(a, own);
     b = Math.max(b, own);
   }
-  for (let step = 0; step < 200 && b - a > 1e-15 * Math.max(Math.abs(a), Math.abs(b)); step += 1) {
-    const middle = (a + b) / 2;
-    if (middle === a || middle === b) break;
-    if (cdf(of, middle) < p) a = middle;
-    else b = middle;
+  let [atA, atB] = [cdf(of, a) - p, cdf(of, b) - p];
+  for (let step = 0; step < 300 && b - a > 1e-15 * Math.max(Math.abs(a), Math.abs(b)); step += 1) {
+    const chord = a - (atA * (b - a)) / (atB - atA);
+    const x = step % 3 < 2 && chord > a && chord < b ? chord : (a + b) / 2;
+    if (x === a || x === b) break;
+    const at = cdf(of, x) - p;
+    if (at < 0) [a, atA] = [x, at];
+    else [b, atB] = [x, at];
+    if (at === 0) return x;
   }
   return (a + b) / 2;
 }
