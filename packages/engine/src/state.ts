@@ -6,9 +6,11 @@ import type { EngineState } from "./engine-state";
 import type { Frame } from "./frame";
 import { openWorkspace } from "./open-workspace";
 import { readMeasurement } from "./read-measurement";
-import type { Reading } from "./readings";
+import { unscorableParts } from "./model/unscorable";
+import { isSummed, type Reading } from "./readings";
 import type { ScoreOptions } from "./score-options";
 import { standings } from "./standings";
+import { restoreState, serialiseState } from "./state-text";
 import { addReading, createSums } from "./sums";
 import { createTally, noteMeasurement } from "./tally";
 
@@ -26,6 +28,7 @@ export function createState(document: CampaignDocument): Result<EngineState> {
     if (problems.length === 0) take(state, measurement, read.ok ? read.value : null);
     else state.tally.size += 1;
   }
+  if (problems.length === 0) problems.push(...unscorableParts(state));
   return problems.length > 0 ? { ok: false, problems } : { ok: true, value: state };
 }
 
@@ -47,9 +50,28 @@ export function addMeasurements(
     if (read.ok) readings.push(read.value);
     else problems.push(...read.problems);
   });
+  if (problems.length === 0 && readings.some((one) => mayAddUnknowns(frame, one))) {
+    problems.push(...unscorableWith(state, measurements, readings));
+  }
   if (problems.length > 0) return { ok: false, problems };
   measurements.forEach((measurement, i) => take(state, measurement, readings[i]!));
   return { ok: true, value: state };
+}
+
+/** A reading that is kept as it is and loads shared errors may need them integrated numerically. */
+function mayAddUnknowns(frame: Frame, reading: Reading | null): boolean {
+  return reading !== null && reading.loadings.length > 0 && !isSummed(frame, reading);
+}
+
+/** Tried on a copy: the state given must stay good. */
+function unscorableWith(
+  state: EngineState,
+  measurements: readonly Measurement[],
+  readings: readonly (Reading | null)[],
+): Problem[] {
+  const copy = restoreState(serialiseState(state))!;
+  measurements.forEach((measurement, i) => take(copy, measurement, readings[i]!));
+  return unscorableParts(copy);
 }
 
 function take(
