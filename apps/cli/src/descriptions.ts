@@ -7,5 +7,7 @@ export const descriptions = {
   simulate: "Draw campaigns from each hypothesis: would they decide?",
   chance: "Correct a coincidence's p for the looks, and bound its Bayes factor",
   verify: "Recompute everything in an audit trail, a line per check",
+  seal: "Seal a prediction or a measurement: the digest to file, and the file to keep",
+  reveal: "Open a seal on a server with the file that was kept",
   export: "Save a campaign's audit trail from a server",
 } as const;

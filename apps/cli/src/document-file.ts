@@ -17,6 +17,11 @@ export async function readDocumentFile(path: string): Promise<CampaignDocument> 
   return read.value;
 }
 
+/** A file's text. @throws {Refusal} 2 where it can't be read, 1 where it is not UTF-8 */
+export async function readTextFile(path: string): Promise<string> {
+  return decode(await readBytes(path));
+}
+
 /** @throws {Refusal} 2 where the file can't be read */
 export async function readBytes(path: string): Promise<Uint8Array> {
   try {

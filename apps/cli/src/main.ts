@@ -11,5 +11,7 @@ process.exitCode = await run(process.argv.slice(2), {
   simulate: () => import("./commands/simulate").then((module) => module.simulate as CommandDef),
   chance: () => import("./commands/chance").then((module) => module.chance as CommandDef),
   verify: () => import("./commands/verify").then((module) => module.verify as CommandDef),
+  seal: () => import("./commands/seal").then((module) => module.seal as CommandDef),
+  reveal: () => import("./commands/reveal").then((module) => module.reveal as CommandDef),
   export: () => import("./commands/export").then((module) => module.exportTrail as CommandDef),
 });

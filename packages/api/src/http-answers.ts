@@ -1,10 +1,17 @@
+import type * as z from "zod";
+import { parseJson } from "@weighhouse/campaign/json-text";
+import { DeskError, invalid } from "@weighhouse/desk/desk-error";
 import { exportAuditTrail } from "@weighhouse/desk/export-audit-trail";
+import { openSeal } from "@weighhouse/desk/open-seal";
+import type { openSealInput } from "@weighhouse/desk/open-seal";
 import { readCampaign } from "@weighhouse/desk/read-campaign";
 import { readConsistency } from "@weighhouse/desk/read-consistency";
 import { readEntry } from "@weighhouse/desk/read-entry";
 import { readLedgerLines } from "@weighhouse/desk/read-ledger-lines";
 import { readStandings } from "@weighhouse/desk/read-standings";
 import { readTreeHead } from "@weighhouse/desk/read-tree-head";
+import { sealMeasurement } from "@weighhouse/desk/seal-measurement";
+import { sealPrediction } from "@weighhouse/desk/seal-prediction";
 import type { Context } from "./context";
 
 export type Question = Context & {
@@ -70,6 +77,45 @@ export const ledgerConsistency: Answer = async ({ desk, actor, request, key, num
   const proved = await readConsistency(desk, actor, { key, from, to });
   return json(request, proved, `consistency-${proved.from}-${proved.to}`);
 };
+
+/** Files a kept seal: a prediction's where the body names a hypothesis, else a measurement's. */
+export const sealedDigest: Answer = async ({ desk, actor, request, key }) => {
+  const { hypothesis, until, digest, measurand, ...others } = await readJson(request);
+  const seal = { keeping: "kept", digest, measurand, ...others } as never;
+  const kept = { key, until: until as string, seal };
+  const sealed =
+    hypothesis === undefined || hypothesis === null
+      ? await sealMeasurement(desk, actor, kept)
+      : await sealPrediction(desk, actor, { ...kept, hypothesis: hypothesis as string });
+  return created(sealed);
+};
+
+export const openedSeal: Answer = async ({ desk, actor, request, key }) => {
+  const opening = (await readJson(request)) as Omit<z.input<typeof openSealInput>, "key">;
+  return created(await openSeal(desk, actor, { ...opening, key }));
+};
+
+/** The JSON object that was sent; the use-case reads what is in it. */
+async function readJson(request: Request): Promise<Record<string, unknown>> {
+  const type = request.headers.get("content-type") ?? "nothing";
+  if (!/^application\/json\b/.test(type)) {
+    throw new DeskError("invalid", `found content of type ${type}; allowed is application/json`);
+  }
+  const parsed = parseJson(await request.text());
+  if (parsed.problems.length > 0) throw invalid(parsed.problems);
+  const { value } = parsed;
+  if (typeof value === "object" && value !== null && !Array.isArray(value)) {
+    return value as Record<string, unknown>;
+  }
+  throw new DeskError("invalid", "found no object in the body; allowed is a JSON object");
+}
+
+function created(value: unknown): Response {
+  return new Response(`${JSON.stringify(value)}\n`, {
+    status: 201,
+    headers: { "content-type": "application/json", "cache-control": "no-store" },
+  });
+}
 
 function json(request: Request, value: unknown, tag: string): Response {
   return respond(request, `${JSON.stringify(value)}\n`, { type: "application/json", tag });

@@ -3,6 +3,8 @@ import { hypothesis, openLagoon, reading } from "@weighhouse/desk/testing/lagoon
 import type { Lagoon } from "@weighhouse/desk/testing/lagoon";
 import { postMeasurements } from "@weighhouse/desk/post-measurements";
 import { registerHypothesis } from "@weighhouse/desk/register-hypothesis";
+import { readCampaign } from "@weighhouse/desk/read-campaign";
+import { readSealRequest, sealFile } from "@weighhouse/campaign/sealed-file";
 import { answerHttp } from "./http";
 import { openTestServer, ORIGIN } from "./testing/test-server";
 import type { TestServer } from "./testing/test-server";
@@ -145,5 +147,48 @@ describe("refusals are problem details (RFC 9457)", () => {
     const response = await answerHttp(await server.context(), request);
     expect(response.status).toBe(405);
     expect(response.headers.get("allow")).toBe("GET, HEAD");
+  });
+});
+
+describe("seals sent by a program", () => {
+  /** As `weighhouse seal` makes it. */
+  function sealedBy(ledger: string) {
+    const prediction = { measurand: "full-moon", expected: 30 };
+    const bound = { campaign: open.key, ledger, team: "algae", hypothesis: "algae" };
+    const asked = { ...bound, until: "2058-01-01T00:00:00Z", prediction };
+    const request = readSealRequest(JSON.stringify(asked));
+    if (!request.ok) throw new Error(JSON.stringify(request.problems));
+    return sealFile(request.value, "5e".repeat(32));
+  }
+
+  async function post(path: string, body: unknown, actor: Lagoon["member"] | null) {
+    const context = { ...(await server.context()), actor };
+    const headers = { "content-type": "application/json" };
+    const url = `${ORIGIN}/api/v1/campaigns/${open.key}/${path}`;
+    const text = typeof body === "string" ? body : JSON.stringify(body);
+    return answerHttp(context, new Request(url, { method: "POST", headers, body: text }));
+  }
+
+  it("are filed and opened by their team, refused to others with the reason", async () => {
+    const { ledger } = await readCampaign(server.desk, null, { key: open.key });
+    const { digest, hypothesis, measurand, until, nonce, content } = sealedBy(ledger);
+    const filed = { digest, hypothesis, measurand, until };
+    expect((await post("seals", filed, null)).status).toBe(401);
+    expect((await post("seals", filed, open.rival)).status).toBe(403);
+    const sealed = await post("seals", filed, open.member);
+    expect(sealed.status).toBe(201);
+    expect(await sealed.json()).toMatchObject({ digest });
+    const opening = { digest, nonce, content };
+    const wrong = await post("seals/openings", { ...opening, nonce: "00".repeat(32) }, open.member);
+    expect(wrong.status).toBe(422);
+    expect(await wrong.json()).toMatchObject({ problems: [{ pointer: "/content" }] });
+    expect((await post("seals/openings", opening, open.member)).status).toBe(201);
+  });
+
+  it("that are no JSON object are refused", async () => {
+    expect((await post("seals/openings", "[1]", open.member)).status).toBe(422);
+    expect((await post("seals/openings", "{,}", open.member)).status).toBe(422);
+    expect((await post("seals", { measurand: 3 }, open.member)).status).toBe(422);
+    expect((await post("nothing", {}, open.member)).status).toBe(404);
   });
 });

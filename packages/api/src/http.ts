@@ -4,25 +4,37 @@ import * as answers from "./http-answers";
 import type { Answer } from "./http-answers";
 import { details, problemResponse } from "./problem-details";
 
+type Route = { method: "GET" | "POST"; path: RegExp; takes: string[]; answer: Answer };
+
 /** What stands below `/api/v1/campaigns/{key}/`, with the numbers that its query may hold. */
-const routes: { path: RegExp; takes: string[]; answer: Answer }[] = [
-  { path: /^audit\.zip$/, takes: ["size"], answer: answers.auditZip },
-  { path: /^document\.json$/, takes: ["size"], answer: answers.documentJson },
-  { path: /^standings\.json$/, takes: ["size"], answer: answers.standingsJson },
-  { path: /^ledger\/head$/, takes: [], answer: answers.ledgerHead },
-  { path: /^ledger\/entries$/, takes: ["from", "to"], answer: answers.ledgerEntries },
-  { path: /^ledger\/entries\/(\d{1,15})$/, takes: [], answer: answers.ledgerEntry },
-  { path: /^ledger\/consistency$/, takes: ["from", "to"], answer: answers.ledgerConsistency },
+const routes: Route[] = [
+  { method: "GET", path: /^audit\.zip$/, takes: ["size"], answer: answers.auditZip },
+  { method: "GET", path: /^document\.json$/, takes: ["size"], answer: answers.documentJson },
+  { method: "GET", path: /^standings\.json$/, takes: ["size"], answer: answers.standingsJson },
+  { method: "GET", path: /^ledger\/head$/, takes: [], answer: answers.ledgerHead },
+  {
+    method: "GET",
+    path: /^ledger\/entries$/,
+    takes: ["from", "to"],
+    answer: answers.ledgerEntries,
+  },
+  { method: "GET", path: /^ledger\/entries\/(\d{1,15})$/, takes: [], answer: answers.ledgerEntry },
+  {
+    method: "GET",
+    path: /^ledger\/consistency$/,
+    takes: ["from", "to"],
+    answer: answers.ledgerConsistency,
+  },
+  { method: "POST", path: /^seals$/, takes: [], answer: answers.sealedDigest },
+  { method: "POST", path: /^seals\/openings$/, takes: [], answer: answers.openedSeal },
 ];
 
 /**
- * Answers a GET below `/api/v1/campaigns/{key}/`: of public campaigns to everyone, of others to
- * those who have a place in them. Refusals are problem details (RFC 9457).
+ * Answers what is asked below `/api/v1/campaigns/{key}/`: of public campaigns everyone reads, of
+ * others those who have a place in them; what is sent is entered for who may enter it. Refusals are
+ * problem details (RFC 9457).
  */
 export async function answerHttp(ctx: Context, request: Request): Promise<Response> {
-  if (request.method !== "GET" && request.method !== "HEAD") {
-    return details({ status: 405, title: "Method Not Allowed" }, { allow: "GET, HEAD" });
-  }
   try {
     return await route(ctx, request);
   } catch (error) {
@@ -32,14 +44,27 @@ export async function answerHttp(ctx: Context, request: Request): Promise<Respon
 
 async function route(ctx: Context, request: Request): Promise<Response> {
   const url = new URL(request.url);
-  const [, key, below] = /^\/api\/v1\/campaigns\/([^/]+)\/(.+)$/.exec(url.pathname) ?? [];
-  for (const { path, takes, answer } of routes) {
-    const match = path.exec(below ?? "");
-    if (!key || !match) continue;
-    const numbers = readQuery(url.searchParams, takes);
-    return answer({ ...ctx, request, key, numbers, seq: Number(match[1] ?? 0) });
+  const [, key, below = ""] = /^\/api\/v1\/campaigns\/([^/]+)\/(.+)$/.exec(url.pathname) ?? [];
+  const method = request.method === "HEAD" ? "GET" : request.method;
+  const there = routes.filter(({ path }) => path.test(below));
+  const found = there.find((one) => one.method === method);
+  if (!key || there.length === 0) {
+    throw new DeskError("not-found", `found nothing at ${url.pathname}`);
   }
-  throw new DeskError("not-found", `found nothing at ${url.pathname}`);
+  if (found === undefined) {
+    const allow = there.map((one) => (one.method === "GET" ? "GET, HEAD" : one.method)).join(", ");
+    return details({ status: 405, title: "Method Not Allowed" }, { allow });
+  }
+  const numbers = readQuery(url.searchParams, found.takes);
+  const seq = Number(found.path.exec(below)?.[1] ?? 0);
+  const context = method === "GET" ? ctx : onPrimary(ctx);
+  return found.answer({ ...context, request, key, numbers, seq });
+}
+
+/** A replica lags, and who decides on it decides on yesterday. */
+function onPrimary(ctx: Context): Context {
+  const { store } = ctx.desk;
+  return { ...ctx, desk: { ...ctx.desk, store: { ...store, readDb: store.db } } };
 }
 
 /** Whole numbers of the query; anything else in it is refused, as it would be overlooked else. */

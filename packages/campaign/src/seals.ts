@@ -5,11 +5,11 @@ import { key, time } from "./fields";
  * Seals as payloads. A seal's content is kept as it was sealed, word by word, since its digest is
  * over that: what it says is read by the schema of what it holds.
  */
-const sha256 = z
+export const sha256 = z
   .string()
   .regex(/^[0-9a-f]{64}$/)
   .describe("a SHA-256: 64 of 0-9 and a-f");
-const nonce = z
+export const nonce = z
   .string()
   .regex(/^[0-9a-f]{64}$/)
   .describe("32 random bytes: 64 of 0-9 and a-f");
