@@ -137,18 +137,19 @@ describe("a document that is not valid", () => {
     );
   });
 
-  test("what this version can't score is refused by name and place", async () => {
+  test("what the engine can't score is refused by name and place", async () => {
     const input = changed((copy) => {
       copy.hypotheses[0].predictions[0] = {
         measurand: "limb",
-        tolerance: { family: "interval", lower: 1, upper: 2 },
+        expected: 1,
+        tolerance: { family: "normal", sd: 1e200 },
       };
     });
     for (const command of ["score", "check"]) {
       const { code, out, err } = await weighhouse([command, "-"], { input });
       expect([code, out]).toEqual([1, ""]);
       expect(err).toMatch(
-        /^\/hypotheses\/0\/predictions\/0\/tolerance\/family: found "interval" \(not-yet-supported\); allowed .+\n$/,
+        /^\/hypotheses\/0\/predictions\/0\/tolerance\/sd: found 1e\+200; allowed .+\n$/,
       );
     }
   });

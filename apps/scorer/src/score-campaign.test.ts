@@ -150,24 +150,24 @@ describe("scoring a campaign", () => {
     await append(
       {
         kind: "observable.declared",
-        payload: { key: "gusts", title: "Gusts", unit: "1", scale: "count" },
+        payload: { key: "gusts", title: "Gusts", unit: "m/s", scale: "linear" },
       },
       {
         kind: "measurand.declared",
         payload: {
           key: "gusts-june",
           observable: "gusts",
-          reference: { family: "gamma", mean: 4, sd: 2 },
+          reference: { family: "normal", mean: 4, sd: 1e200 },
         },
       },
     )("refused");
     await post(hum("a", 96))("refused");
-    await post({ id: "n", measurand: "gusts-june", count: 3 })("refused");
+    await post({ id: "n", measurand: "gusts-june", value: 3, sd: 1 })("refused");
     await scoreCampaign(store, "refused");
     const latest = await readStandings(store, { campaign: "refused", size: "latest", engine });
     const { size } = await findCampaign(store, "refused");
     expect(latest).toMatchObject({ size, standings: null });
-    expect(latest?.problems?.map(({ code }) => code)).toContain("not-yet-supported");
+    expect(latest?.problems?.map(({ code }) => code)).toContain("out-of-range");
     // The step before it came to be stands.
     const timeline = await readTimeline(store, { campaign: "refused", engine });
     expect(timeline.map(({ movedBy }) => movedBy.kind)).toContain("hypothesis.registered");

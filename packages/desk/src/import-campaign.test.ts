@@ -202,15 +202,12 @@ it("a text that no entry can hold is told by its pointer", async () => {
   await expect(importIt({ ...spring, campaign })).rejects.toMatchObject({ code: "invalid" });
 });
 
-it("what the engine can't score yet is refused by name", async () => {
-  const count = {
-    ...spring,
-    observables: [{ key: "iron", title: "Iron", unit: "1", scale: "count" }],
-    hypotheses: [],
-    measurements: [],
-  };
-  const { problems } = await preview(count, "counted-spring");
-  expect(problems.map(({ code }) => code)).toContain("not-yet-supported");
+it("what the engine can't score is refused by name", async () => {
+  const measurands = spring.measurands.map((one) => ({ ...one, scatter: 1e200 }));
+  const { problems } = await preview({ ...spring, measurands }, "boundless-spring");
+  expect(problems).toContainEqual(
+    expect.objectContaining({ pointer: "/measurands/0/scatter", code: "out-of-range" }),
+  );
 });
 
 function withoutDates(document: unknown): unknown {

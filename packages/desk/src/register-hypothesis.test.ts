@@ -74,24 +74,25 @@ it("a fault of the hypothesis points at its field in the input, all of them at o
   expect((await newest()).size).toBe(before);
 });
 
-it("what the engine can't score yet is refused by name, never entered", async () => {
+it("what the engine can't score is refused by name, never entered", async () => {
   const { key, member } = lagoon;
-  const interval = {
+  const boundless = {
     ...hypothesis("algae", 40),
     predictions: [
       {
         measurand: "new-moon",
-        tolerance: { family: "interval" as const, lower: 30, upper: 50 },
+        expected: 40,
+        tolerance: { family: "normal" as const, sd: 1e200 },
       },
     ],
   };
   await expect(
-    registerHypothesis(house.desk, member, { key, hypothesis: interval }),
+    registerHypothesis(house.desk, member, { key, hypothesis: boundless }),
   ).rejects.toMatchObject({
     problems: [
       {
         pointer: expect.stringMatching(/^\/hypothesis\/predictions\/0/),
-        code: "not-yet-supported",
+        code: "out-of-range",
       },
     ],
   });
