@@ -20,7 +20,7 @@ export const declareMeasurandInput = z.strictObject({
   key,
   measurand: payloadSchemas["measurand.declared"],
 });
-export const amendMeasurandInput = declareMeasurandInput;
+export const amendMeasurandInput = z.strictObject(declareMeasurandInput.shape);
 export const declareDerivedInput = z.strictObject({
   key,
   derived: payloadSchemas["derived.declared"],

@@ -1,8 +1,8 @@
 import { randomBytes } from "node:crypto";
-import postgres from "postgres";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { nodeHasher } from "@weighhouse/ledger/node-hasher";
 import { sealDigest } from "@weighhouse/ledger/seal";
+import { connect } from "@weighhouse/store/open-store";
 import { rebuildProjections } from "@weighhouse/store/rebuild";
 import { sealKeyOf } from "@weighhouse/store/seal-key";
 import { amendHypothesis } from "./amend-hypothesis";
@@ -68,7 +68,7 @@ describe("a held prediction", () => {
   it("is nowhere in the database for who reads all of it", async () => {
     const { key, member } = await lagoon();
     await sealPrediction(desk, member, { key, hypothesis: "algae", until, seal: held });
-    const sql = postgres(house.adminUrl, { max: 1 });
+    const sql = connect(house.adminUrl, 1);
     const tables = await sql<{ schema: string; name: string }[]>`
       select schemaname as schema, tablename as name from pg_tables
       where schemaname not in ('pg_catalog', 'information_schema')`;

@@ -112,6 +112,30 @@ describe("an append", () => {
     ).rejects.toMatchObject({ code: "campaign-exists" });
   });
 
+  it("refuses an entry that breaks a rule, whoever decided on it, and leaves nothing of its transaction", async () => {
+    const before = await entriesOf("hum");
+    const wider = {
+      ...(declarations[1]?.payload as object),
+      reference: { family: "uniform", lower: 0, upper: 900 },
+    };
+    await expect(
+      appendEntries(store, {
+        campaign: "hum",
+        by: system,
+        entries: [
+          { kind: "team.joined", payload: { key: "wind" } },
+          { kind: "measurand.declared", payload: wider },
+        ],
+      }),
+    ).rejects.toMatchObject({
+      code: "rule-broken",
+      message: expect.stringContaining("entry 10, measurand.declared: /reference") as string,
+      problems: [{ pointer: "/reference", code: "contradiction" }],
+    });
+    expect(await entriesOf("hum")).toEqual(before);
+    expect((await rebuildProjections(store, "hum")).same).toBe(true);
+  });
+
   it("takes another clock only where entry 0 says that it is simulated", async () => {
     const clock = () => "2044-05-01T00:00:00.000000Z";
     await openCampaign(store, {

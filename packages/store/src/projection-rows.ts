@@ -63,18 +63,24 @@ export function readRow(row: StoredRow): ProjectedRow {
   return { ...row, text: row.content, content: JSON.parse(row.content) as PartContent };
 }
 
+/** The tables that rows are written to: the projections, or those of a rebuild. */
+export type Target = { parts: string; measurements: string };
+
+const PROJECTIONS: Target = { parts: "parts", measurements: "measurements" };
+
 /** Writes what a projector did. Bulk rows go as one JSON text: multi-row values are slow. */
 export function writeRows(
   sql: Queries,
   campaignId: number,
   { made, closed }: { made: ProjectedRow[]; closed: ProjectedRow[] },
+  target: Target = PROJECTIONS,
 ): Promise<unknown>[] {
   const isMeasurement = (row: ProjectedRow) => row.part === "measurement";
   const isPart = (row: ProjectedRow) => !isMeasurement(row);
   return [
     ...closeRows(sql, campaignId, closed),
-    ...insertParts(sql, campaignId, made.filter(isPart)),
-    ...insertMeasurements(sql, campaignId, made.filter(isMeasurement)),
+    ...insertParts(sql, campaignId, made.filter(isPart), target),
+    ...insertMeasurements(sql, campaignId, made.filter(isMeasurement), target),
   ];
 }
 
@@ -99,12 +105,17 @@ function closeRows(sql: Queries, campaignId: number, rows: ProjectedRow[]): Prom
   ];
 }
 
-function insertParts(sql: Queries, campaignId: number, rows: ProjectedRow[]): Promise<unknown>[] {
+function insertParts(
+  sql: Queries,
+  campaignId: number,
+  rows: ProjectedRow[],
+  target: Target,
+): Promise<unknown>[] {
   if (rows.length === 0) return [];
   const inserting = JSON.stringify(rows.map((row) => ({ ...row, content: undefined })));
   return [
     sql`
-      insert into parts
+      insert into ${sql(target.parts)}
         (campaign_id, part, key, from_size, to_size, first_seq, first_place, content)
       select ${campaignId}::int, part, key, "fromSize", "toSize", "firstSeq", "firstPlace", text::json
       from json_to_recordset(${inserting}::text::json)
@@ -117,6 +128,7 @@ function insertMeasurements(
   sql: Queries,
   campaignId: number,
   rows: ProjectedRow[],
+  target: Target,
 ): Promise<unknown>[] {
   if (rows.length === 0) return [];
   const inserting = JSON.stringify(
@@ -124,7 +136,7 @@ function insertMeasurements(
   );
   return [
     sql`
-      insert into measurements
+      insert into ${sql(target.measurements)}
         (campaign_id, id, from_size, to_size, first_seq, first_place, measurand, facility, team,
         batch, observed_at, posted_at, value, sd, unit, set_aside, withdrawn, content)
       select ${campaignId}::int, key, "fromSize", "toSize", "firstSeq", "firstPlace", measurand,

@@ -27,18 +27,20 @@ export async function rebuildProjections(
     for await (const record of records(tx, campaignId)) {
       projector.apply(record);
     }
-    // Temporary tables of the same names come before the real ones in every statement that follows.
-    await tx`create temporary table parts (like public.parts) on commit drop`;
-    await tx`create temporary table measurements (like public.measurements) on commit drop`;
-    await Promise.all(writeRows(tx, campaignId, projector));
+    // Names of their own: a statement that an append prepared on this connection would go on
+    // writing to the table that it was prepared for, whatever came to stand before it.
+    await tx`create temporary table rebuilt_parts (like parts) on commit drop`;
+    await tx`create temporary table rebuilt_measurements (like measurements) on commit drop`;
+    const target = { parts: "rebuilt_parts", measurements: "rebuilt_measurements" };
+    await Promise.all(writeRows(tx, campaignId, projector, target));
     const differences = [
       ...(await differencesIn(tx, campaignId, "parts", ["part", "key", "from_size"])),
       ...(await differencesIn(tx, campaignId, "measurements", ["id", "from_size"])),
     ];
     if (differences.length > 0) {
       for (const table of ["parts", "measurements"]) {
-        await tx`delete from ${tx(`public.${table}`)} where campaign_id = ${campaignId}`;
-        await tx`insert into ${tx(`public.${table}`)} select * from ${tx(`pg_temp.${table}`)}`;
+        await tx`delete from ${tx(table)} where campaign_id = ${campaignId}`;
+        await tx`insert into ${tx(table)} select * from ${tx(`rebuilt_${table}`)}`;
       }
     }
     return { same: differences.length === 0, differences };
@@ -72,11 +74,11 @@ async function differencesIn(
   key: string[],
 ): Promise<Difference[]> {
   const keyText = tx.unsafe(key.map((column) => `${column}::text`).join(", "));
-  const side = (schema: string) => tx`
+  const side = (name: string) => tx`
     select array_to_string(array[${keyText}], ' ') as key, t::text as row
-    from ${tx(`${schema}.${table}`)} t where campaign_id = ${campaignId}`;
+    from ${tx(name)} t where campaign_id = ${campaignId}`;
   return tx<Difference[]>`
     select ${table} as table, key, found.row as found, expected.row as expected
-    from (${side("public")}) found full join (${side("pg_temp")}) expected using (key)
+    from (${side(table)}) found full join (${side(`rebuilt_${table}`)}) expected using (key)
     where found.row is distinct from expected.row order by key`;
 }
