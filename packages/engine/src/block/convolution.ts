@@ -40,18 +40,36 @@ function logConvolution(factor: Factor, sd: number, mu: number): number {
   for (const at of factor.breaks) cuts.add((at - mu) / sd);
   cuts.add(-reach).add(reach);
   const sorted = [...cuts].filter((at) => at >= -reach && at <= reach).sort((a, b) => a - b);
-  let height = -Infinity;
-  for (const at of sorted) height = Math.max(height, g(at));
-  for (let i = 1; i < sorted.length; i += 1) {
-    height = Math.max(height, g((sorted[i]! + sorted[i - 1]!) / 2));
-  }
+  const { peak, height } = highest(g, sorted);
   if (height === -Infinity) return -Infinity;
   const f = (s: number) => Math.exp(g(s) - height);
+  const pieces = [...new Set([...sorted, peak])].sort((a, b) => a - b);
   let sum = 0;
-  for (let i = 1; i < sorted.length; i += 1) {
-    sum += gaussKronrod(f, sorted[i - 1]!, sorted[i]!, { relative: 1e-11, maximum: 60 }).value;
+  for (let i = 1; i < pieces.length; i += 1) {
+    sum += gaussKronrod(f, pieces[i - 1]!, pieces[i]!, { relative: 1e-11, maximum: 60 }).value;
   }
   return height + Math.log(sum) - LN_SQRT_2PI;
+}
+
+/** The best of the places and of what lies between, then by golden sections about it. */
+function highest(g: (s: number) => number, places: readonly number[]) {
+  const looked = places.flatMap((at, i) => (i === 0 ? [at] : [(places[i - 1]! + at) / 2, at]));
+  const values = looked.map(g);
+  let best = 0;
+  values.forEach((value, i) => (best = value > values[best]! ? i : best));
+  let [peak, height] = [looked[best]!, values[best]!];
+  let [a, b] = [looked[best - 1] ?? peak, looked[best + 1] ?? peak];
+  for (let step = 0; step < 80 && b - a > 1e-12 * Math.abs(peak); step += 1) {
+    const x = b - peak > peak - a ? peak + 0.381966 * (b - peak) : peak - 0.381966 * (peak - a);
+    const value = g(x);
+    if (value > height) {
+      if (x > peak) a = peak;
+      else b = peak;
+      [peak, height] = [x, value];
+    } else if (x > peak) b = x;
+    else a = x;
+  }
+  return { peak, height };
 }
 
 /** The signed root of min over s of residual(mu + s)^2 + (s / sd)^2. */
