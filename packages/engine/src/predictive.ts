@@ -7,7 +7,7 @@ import { freeSlots, middleOf, pointsOf } from "./prior-points";
 import { toScoringSpace, wrapped } from "./scoring-space";
 
 /** Of a smooth mixture, and of draws whose own order is the answer. */
-const PARTS = 2 ** 13;
+const PARTS = 2 ** 12;
 const DRAWS = 2 ** 17;
 
 /**

@@ -29,7 +29,8 @@ export function interpolatedLog(
   const value = (x: number) => {
     const there = known.get(x);
     if (there !== undefined) return there;
-    const made = ln(x);
+    const found = ln(x);
+    const made = Number.isNaN(found) || found === Infinity ? -Infinity : found;
     known.set(x, made);
     if (made > top) top = made;
     return made;
@@ -99,6 +100,7 @@ function isClose(
 /** The barycentric formula at Chebyshev's places of the first kind. */
 function valueIn({ lower, upper, values, ends }: Piece, x: number): number {
   if (values === null) {
+    if (ends.includes(-Infinity)) return -Infinity;
     const share = (x - lower) / (upper - lower);
     return ends[0] + share * (ends[1] - ends[0]);
   }

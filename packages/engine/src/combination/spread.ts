@@ -4,6 +4,7 @@ import { censoredFactor, fainterFactor, linearNoiseFactor } from "../block/facto
 import type { Factor } from "../block/problem";
 import { tiedLikelihood } from "./tied-likelihood";
 import { trueValueDensity, type Likelihood } from "./true-value-density";
+import { interpolatedLog } from "./interpolated-log";
 import { generalisedLeastSquares } from "./least-squares";
 import { drawName, levelRows } from "./level-rows";
 import type { Density } from "../distribution/density";
@@ -32,8 +33,8 @@ export function spreadOf(
   return trueValueDensity(likelihoods, flat ? null : reference);
 }
 
-/** Whether draws couple what isn't Gaussian to anything else, or scale with the level. */
-function isTied({ sums }: Workspace, measurand: number): boolean {
+/** Whether draws or correlations couple what isn't Gaussian to others, or scale with the level. */
+function isTied({ frame, sums }: Workspace, measurand: number): boolean {
   const { patterns, kept } = sums.measurands[measurand]!;
   const uses = new Map<string, { any: number; odd: number }>();
   let relative = false;
@@ -49,8 +50,9 @@ function isTied({ sums }: Workspace, measurand: number): boolean {
       use(drawName(error, batch), false);
     }
   }
-  for (const { told, loadings } of kept) {
+  for (const { id, told, loadings } of kept) {
     const odd = told.form !== "value" && told.form !== "zero";
+    if (odd && frame.correlated.has(id)) return true;
     for (const one of loadings) {
       relative ||= one.relative;
       if (told.form === "asymmetric") return true;
@@ -81,7 +83,10 @@ function likelihoodsApart(workspace: Workspace, measurand: number): Likelihood[]
     let extra = scatterVariance;
     for (const { value, relative } of reading.loadings) if (!relative) extra += value * value;
     const one = likelihoodOf(reading.told, extra);
-    if (one !== null) likelihoods.push(one);
+    if (one === null) continue;
+    // An integral each time it is asked, but for a censored one.
+    const costly = extra > 0 && reading.told.form !== "censored";
+    likelihoods.push(costly ? { ...one, ln: interpolatedLog((mu) => one.ln(mu), one) } : one);
   }
   return likelihoods;
 }
