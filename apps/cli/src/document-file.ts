@@ -1,10 +1,11 @@
-import { readFile } from "node:fs/promises";
+import { readFile, stat } from "node:fs/promises";
 import { buffer } from "node:stream/consumers";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { problemLine, type Problem } from "@weighhouse/campaign/problem";
-import { readCampaignText } from "@weighhouse/campaign/read";
+import { readCampaignPieces, readCampaignText } from "@weighhouse/campaign/read";
 import { Refusal, wrongUsage } from "./refusal";
 import { harmless } from "./terminal";
+import { textPieces } from "./text-pieces";
 
 /**
  * Reads and validates a campaign document from a file, or from stdin for `-`.
@@ -12,9 +13,27 @@ import { harmless } from "./terminal";
  * @throws {Refusal} 2 where there is no such file, 1 with every error of the document
  */
 export async function readDocumentFile(path: string): Promise<CampaignDocument> {
-  const read = readCampaignText(decode(path === "-" ? await readStdin() : await readBytes(path)));
+  const read =
+    (await readInPieces(path)) ??
+    readCampaignText(decode(path === "-" ? await readStdin() : await readBytes(path)));
   if (!read.ok) throw invalid(read.problems);
   return read.value;
+}
+
+/**
+ * A large file is read in pieces, so that its text is never there as a whole. Null where that can't be: then
+ * it is read as a whole, which says what is wrong with it.
+ */
+async function readInPieces(path: string): Promise<ReturnType<typeof readCampaignPieces>> {
+  try {
+    // What comes through a pipe can't be read a second time.
+    if (path === "-" || !(await stat(path)).isFile()) return null;
+    return readCampaignPieces(textPieces(path));
+  } catch (error) {
+    // No such file, or bytes that are no text.
+    if ((error as NodeJS.ErrnoException).code !== undefined) return null;
+    throw error;
+  }
 }
 
 /** A file's text. @throws {Refusal} 2 where it can't be read, 1 where it is not UTF-8 */

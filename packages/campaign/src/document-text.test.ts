@@ -1,8 +1,8 @@
-import { assert, constantFrom, integer, nat, oneof, property, double, tuple } from "fast-check";
+import { assert, constantFrom, double, integer, nat, oneof, property, tuple } from "fast-check";
 import { describe, expect, test } from "vitest";
 import { divideText } from "./document-text";
 import { parseJson } from "./json-text";
-import { readCampaign, readCampaignText } from "./read";
+import { readCampaign, readCampaignPieces, readCampaignText } from "./read";
 import { duneDocument, junk, placesOf, put } from "./testing/documents";
 import { everyForm } from "./testing/every-form";
 import { TextCursor } from "./text-cursor";
@@ -16,9 +16,17 @@ function readByParsing(text: string) {
   return problems.length === 0 ? read : { ok: false, problems };
 }
 
-function expectTheSame(text: string): void {
+function expectTheSame(text: string, size = 40): void {
   // As texts, so that the order of members counts too.
-  expect(JSON.stringify(readCampaignText(text))).toBe(JSON.stringify(readByParsing(text)));
+  const expected = JSON.stringify(readByParsing(text));
+  expect(JSON.stringify(readCampaignText(text))).toBe(expected);
+  const inPieces = readCampaignPieces(piecesOf(text, size));
+  if (inPieces === null) expect(divideText(text)).toBeNull();
+  else expect(JSON.stringify(inPieces)).toBe(expected);
+}
+
+function* piecesOf(text: string, size: number): Generator<string> {
+  for (let at = 0; at < text.length; at += size) yield text.slice(at, at + size);
 }
 
 const documents = { ...everyForm(), dune: duneDocument() };
@@ -29,6 +37,7 @@ describe("a text is read as its value is", () => {
     (_, document) => {
       expectTheSame(JSON.stringify(document));
       expectTheSame(JSON.stringify(document, null, 2));
+      for (const size of [1, 3, 500]) expectTheSame(JSON.stringify(document), size);
       expect(divideText(JSON.stringify(document, null, 2))?.measurements).toHaveLength(
         document.measurements.length,
       );
@@ -94,6 +103,11 @@ describe("a text is read as its value is", () => {
 function course() {
   return documents.course.measurements.slice(0, 3);
 }
+
+test("a measurement that has no end isn't waited for for ever", () => {
+  const endless = `{"measurements":[${"[".repeat(1_100_000)}`;
+  expect(readCampaignPieces(piecesOf(endless, 50_000))).toBeNull();
+});
 
 test("equal lists of shared errors are one, which can't be changed", () => {
   const text = JSON.stringify(documents.sharedErrors);

@@ -29,14 +29,10 @@ const SHARED_KEPT = 4096;
  * for JSON.parse and the schema, which have the words; a property test holds the two together.
  */
 export class MeasurementText {
-  readonly cursor: TextCursor;
+  readonly cursor = new TextCursor();
   readonly #shared = new Map<string, Measurement["shared"]>();
   /** The members of the measurement before, in their order: the next one's are mostly the same. */
   readonly #order: number[] = [];
-
-  constructor(text: string) {
-    this.cursor = new TextCursor(text);
-  }
 
   /** The measurement at the cursor, or null, with the cursor anywhere. */
   next(): Measurement | null {

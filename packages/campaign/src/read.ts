@@ -1,7 +1,7 @@
 import { completeDocument } from "./complete";
 import { campaignDocumentSchema } from "./document";
 import type { CampaignDocument, DocumentForm } from "./document";
-import { divideText } from "./document-text";
+import { DocumentText, divideText } from "./document-text";
 import type { DividedText } from "./document-text";
 import { readForm } from "./form";
 import type { Legible } from "./form";
@@ -49,6 +49,20 @@ export function readCampaignText(text: string): Result<CampaignDocument> {
   if (parsed.value === undefined) return { ok: false, problems: parsed.problems };
   const read = readCampaign(parsed.value);
   return { ok: false, problems: [...parsed.problems, ...(read.ok ? [] : read.problems)] };
+}
+
+/**
+ * As `readCampaignText`, of a text that comes in pieces, and with room for its parts alone: of a long
+ * list of measurements the text is several times as large as what is read of it.
+ *
+ * @param pieces the text, cut anywhere
+ * @returns null where the text has a fault, or isn't as plain as it could be: then read it as a whole
+ */
+export function readCampaignPieces(pieces: Iterable<string>): Result<CampaignDocument> | null {
+  const text = new DocumentText();
+  for (const piece of pieces) text.push(piece);
+  const divided = text.end();
+  return divided === null ? null : readDivided(divided);
 }
 
 function readDivided({

@@ -28,30 +28,45 @@ function mark(all: string, bits: number): void {
 const EXACT_DIGITS = 15;
 const powersOfTen = Float64Array.from({ length: EXACT_DIGITS + 1 }, (_, i) => 10 ** i);
 
+/**
+ * Nothing is looked at from `limit` on, but for strings that run on: looking behind a text's end
+ * makes every look at a letter slower from then on (the engine gives up its fastest form of it).
+ */
 export class TextCursor {
   at = 0;
+  limit: number;
+  readonly #strings = new Strings();
 
-  constructor(
-    readonly text: string,
-    readonly strings = new Strings(),
-  ) {}
+  constructor(public text = "") {
+    this.limit = text.length;
+  }
 
+  turnTo(text: string, at = 0, limit = text.length): void {
+    this.text = text;
+    this.at = at;
+    this.limit = limit;
+  }
+
+  isAtEnd(): boolean {
+    return this.at >= this.limit;
+  }
+
+  /** The sign that stands next; 0 at the end. */
   code(): number {
-    return this.text.charCodeAt(this.at);
+    return this.at < this.limit ? this.text.charCodeAt(this.at) : 0;
   }
 
   space(): void {
-    const { text } = this;
+    const { text, limit } = this;
     let { at } = this;
-    let code = text.charCodeAt(at);
-    while (code === 32 || code === 10 || code === 13 || code === 9) code = text.charCodeAt(++at);
+    while (at < limit && isSpace(text.charCodeAt(at))) at += 1;
     this.at = at;
   }
 
   /** Passes a sign and the space around it; false where there is another. */
   take(sign: number): boolean {
     this.space();
-    if (this.text.charCodeAt(this.at) !== sign) return false;
+    if (this.code() !== sign) return false;
     this.at += 1;
     this.space();
     return true;
@@ -60,6 +75,7 @@ export class TextCursor {
   /** Passes the word where it stands next. */
   word(word: string): boolean {
     const { text, at } = this;
+    if (at + word.length > this.limit) return false;
     for (let i = 0; i < word.length; i++) {
       if (text.charCodeAt(at + i) !== word.charCodeAt(i)) return false;
     }
@@ -73,37 +89,37 @@ export class TextCursor {
    */
   lettered(bit: number, most: number): string | null {
     const { text } = this;
-    if (text.charCodeAt(this.at) !== QUOTE) return null;
+    if (this.code() !== QUOTE) return null;
     const start = this.at + 1;
     let at = start;
     let hash = 0;
-    let code = text.charCodeAt(at);
+    let code = letterAt(text, at);
     while (code < 128 && (letters[code]! & bit) !== 0) {
       hash = (Math.imul(hash, 31) + code) | 0;
-      code = text.charCodeAt(++at);
+      code = letterAt(text, ++at);
     }
     if (code !== QUOTE || at === start || at - start > most) return null;
     this.at = at + 1;
     return bit === ID_LETTER
-      ? text.slice(start, at)
-      : this.strings.of(text, { start, end: at, hash });
+      ? copyOf(text, start, at)
+      : this.#strings.of(text, { start, end: at, hash });
   }
 
   /** Any string without an escape; null for one with, and for what is no string. */
   plain(most: number): string | null {
     const { text } = this;
-    if (text.charCodeAt(this.at) !== QUOTE) return null;
+    if (this.code() !== QUOTE) return null;
     const start = this.at + 1;
     let at = start;
     let hash = 0;
-    let code = text.charCodeAt(at);
+    let code = letterAt(text, at);
     while (code >= 32 && code !== QUOTE && code !== BACKSLASH) {
       hash = (Math.imul(hash, 31) + code) | 0;
-      code = text.charCodeAt(++at);
+      code = letterAt(text, ++at);
     }
     if (code !== QUOTE || at === start || at - start > most) return null;
     this.at = at + 1;
-    return this.strings.of(text, { start, end: at, hash });
+    return this.#strings.of(text, { start, end: at, hash });
   }
 
   /** The number that stands next; NaN where none does, and for one too large for a double. */
@@ -111,24 +127,24 @@ export class TextCursor {
     const { text } = this;
     const start = this.at;
     let at = start;
-    const negative = text.charCodeAt(at) === MINUS;
+    const negative = letterAt(text, at) === MINUS;
     if (negative) at += 1;
     const first = at;
     let mantissa = 0;
-    let code = text.charCodeAt(at);
+    let code = letterAt(text, at);
     while (code >= ZERO && code <= NINE) {
       mantissa = mantissa * 10 + (code - ZERO);
-      code = text.charCodeAt(++at);
+      code = letterAt(text, ++at);
     }
     let digits = at - first;
     if (digits === 0 || (digits > 1 && text.charCodeAt(first) === ZERO)) return Number.NaN;
     let decimals = 0;
     if (code === POINT) {
       const point = ++at;
-      code = text.charCodeAt(at);
+      code = letterAt(text, at);
       while (code >= ZERO && code <= NINE) {
         mantissa = mantissa * 10 + (code - ZERO);
-        code = text.charCodeAt(++at);
+        code = letterAt(text, ++at);
       }
       decimals = at - point;
       if (decimals === 0) return Number.NaN;
@@ -147,10 +163,10 @@ export class TextCursor {
   #power(start: number, from: number): number {
     const { text } = this;
     let at = from;
-    const sign = text.charCodeAt(at);
+    const sign = letterAt(text, at);
     if (sign === 43 || sign === MINUS) at += 1;
     const first = at;
-    while (text.charCodeAt(at) >= ZERO && text.charCodeAt(at) <= NINE) at += 1;
+    while (letterAt(text, at) >= ZERO && letterAt(text, at) <= NINE) at += 1;
     if (at === first) return Number.NaN;
     this.at = at;
     return finite(Number(text.slice(start, at)));
@@ -160,9 +176,8 @@ export class TextCursor {
   pass(): boolean {
     const { text } = this;
     let depth = 0;
-    for (;;) {
+    while (this.at < text.length) {
       const code = text.charCodeAt(this.at);
-      if (Number.isNaN(code)) return false;
       if (code === QUOTE) {
         if (!this.#passString()) return false;
       } else if (depth === 0 && (code === 44 || code === 93 || code === 125)) {
@@ -174,24 +189,44 @@ export class TextCursor {
       }
       if (depth === 0 && (code === QUOTE || code === 93 || code === 125)) return true;
     }
+    return false;
   }
 
   #passString(): boolean {
     const { text } = this;
     let at = this.at + 1;
-    for (;;) {
+    while (at < text.length) {
       const code = text.charCodeAt(at);
-      if (Number.isNaN(code)) return false;
-      if (code === QUOTE) break;
+      if (code === QUOTE) {
+        this.at = at + 1;
+        return true;
+      }
       at += code === BACKSLASH ? 2 : 1;
     }
-    this.at = at + 1;
-    return true;
+    return false;
   }
+}
+
+function isSpace(code: number): boolean {
+  return code === 32 || code === 10 || code === 13 || code === 9;
+}
+
+/** 0, which no string or number has in it, where the text has ended. */
+function letterAt(text: string, at: number): number {
+  return at < text.length ? text.charCodeAt(at) : 0;
 }
 
 function finite(value: number): number {
   return Number.isFinite(value) ? value : Number.NaN;
+}
+
+/** From 13 letters on, V8's slices are views that keep the whole text from being freed. */
+const LONGEST_COPY = 12;
+
+function copyOf(text: string, start: number, end: number): string {
+  const slice = text.slice(start, end);
+  // A text put together is made anew when it is looked at.
+  return slice.length > LONGEST_COPY ? ` ${slice}`.slice(1) : slice;
 }
 
 type Piece = { start: number; end: number; hash: number };
@@ -207,7 +242,7 @@ export class Strings {
     const slot = (hash ^ (hash >>> 12)) & 4095;
     const known = this.#slots[slot];
     if (known !== undefined && isAt(text, start, end, known)) return known;
-    const made = text.slice(start, end);
+    const made = copyOf(text, start, end);
     this.#slots[slot] = made;
     return made;
   }
