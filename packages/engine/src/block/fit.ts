@@ -15,6 +15,8 @@ import { workbenchOf, type Workbench } from "./workbench";
 
 /** A flat unknown's minimum within this share of its width of a bound is at the bound. */
 const AT_BOUND = 1e-6;
+const STARTS = 8;
+const MOST_STARTS = 512;
 
 /**
  * The penalised minimum of
@@ -25,7 +27,7 @@ const AT_BOUND = 1e-6;
  * it is r' (D + WW')^-1 r. Linear unknowns are eliminated at each step, the outer ones found by
  * Levenberg-Marquardt from several starts. Rows whose factor has no residual aren't looked at.
  *
- * @returns null where the likelihood is zero at every start
+ * @returns null where the likelihood is zero at every one of 512 starts
  * Accuracy: 1e-10 relative; with outer unknowns the lowest of the minima that the starts lead to.
  */
 export function blockFit(problem: BlockProblem): BlockOutcome<BlockFit | null> {
@@ -34,7 +36,11 @@ export function blockFit(problem: BlockProblem): BlockOutcome<BlockFit | null> {
   const { bench } = made;
   let best: (Minimum & { scenario: number }) | null = null;
   for (let scenario = 0; scenario < problem.scenarios.length; scenario += 1) {
-    const found = outerMinima(bench, scenario, startsFor(problem.outer, 8));
+    let found = outerMinima(bench, scenario, startsFor(problem.outer, STARTS));
+    // Where expressions have a value in a corner of the priors only.
+    for (let more = 8 * STARTS; isNone(found) && more <= MOST_STARTS; more *= 8) {
+      found = outerMinima(bench, scenario, startsFor(problem.outer, more));
+    }
     if ("singular" in found)
       return { ok: false, refusal: { kind: "singular", rows: found.singular } };
     const [least] = found;
@@ -43,6 +49,10 @@ export function blockFit(problem: BlockProblem): BlockOutcome<BlockFit | null> {
     }
   }
   return best === null ? null : { ok: true, ...described(bench, best) };
+}
+
+function isNone(found: readonly Minimum[] | { singular: number[] }): boolean {
+  return Array.isArray(found) && found.length === 0;
 }
 
 export interface Minimum {
