@@ -14,6 +14,7 @@ import type { Workspace } from "./workspace";
 
 /** Bounds may be let go where all of them together cut off less than this share of the integral. */
 const NEGLIGIBLE_SHARE = 1e-13;
+const LEAST_SHARE = 1e-280;
 
 interface Block {
   parts: readonly Part[];
@@ -88,9 +89,11 @@ function integrate(
     }
     const integral = integrateBounded(workspace, { ...block, order, free });
     const found = Math.exp(integral.ln - whole);
-    if (free === 0 || lost <= NEGLIGIBLE_SHARE * found) return integral;
+    // Below the smallest doubles the shares that are lost can't be told from nothing.
+    const told = found > LEAST_SHARE;
+    if (free === 0 || (told && lost <= NEGLIGIBLE_SHARE * found)) return integral;
     // The bounds that are kept leave less than was thought, so that more of the others count.
-    share = Math.min(found, share / 2);
+    share = told ? Math.min(found, share / 2) : 0;
   }
 }
 
