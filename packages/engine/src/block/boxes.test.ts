@@ -8,6 +8,7 @@ import {
 import { panels } from "../testing/panels";
 import { blockEvidence } from "./evidence";
 import { censoredFactor } from "./factors";
+import { uniformUnknown } from "./outer-unknowns";
 import { EACH_FLAT, FACTOR, type LinearUnknown } from "./problem";
 
 // Checked against plain Gauss-Legendre over the levels, or over what couples them.
@@ -229,4 +230,32 @@ test("flat tolerances of each row's own under two shared errors, by cubature", (
     4,
   );
   expect(Math.abs(ln - Math.log(z))).toBeLessThan(1e-6);
+});
+
+test("bounds far from the data: one that would cut off nothing alone does beside another that does", () => {
+  const observed = [-40, 3];
+  const design = [
+    [1, 1],
+    [0.5, -0.2],
+  ];
+  const bounds = [
+    { lower: -0.4, upper: 5 },
+    { lower: -60, upper: -47 },
+  ] as const;
+  const terms = { observed, variance: [1e-4, 1e-4] };
+  const boxed = found({
+    ...terms,
+    linear: bounds.map((one) => flat(one.lower, one.upper)),
+    design,
+  });
+  const outer = found({
+    ...terms,
+    outer: bounds.map((one) => uniformUnknown(one, { counted: true })),
+    evaluate: ([a, b], _scenario, { base }) => {
+      design.forEach((row, i) => (base[i] = row[0]! * a! + row[1]! * b!));
+      return true;
+    },
+  });
+  expect(boxed.ln).toBeLessThan(-1e5);
+  expect(Math.abs(boxed.ln / outer.ln - 1)).toBeLessThan(1e-10);
 });

@@ -11,6 +11,7 @@ import type { Layout } from "./layout";
 
 /** Bounds may be let go where all of them together cut off less than this share of the integral. */
 const NEGLIGIBLE_SHARE = 1e-13;
+const LEAST_SHARE = 1e-280;
 /** A diagonal of less than this over the width says nothing that could be told. */
 const NOTHING_KNOWN = 1e-8;
 
@@ -99,9 +100,11 @@ function overBoxes(system: TriangularSystem, bounds: Bounds, coupled: Coupled | 
     const integral =
       many && coupled !== null ? coupled(order, free) : bounded(system, { bounds, order, free });
     const found = Math.exp(integral.ln - whole);
-    if (free === 0 || lost <= NEGLIGIBLE_SHARE * found) return integral;
+    // Below the smallest doubles the shares that are lost can't be told from nothing.
+    const told = found > LEAST_SHARE;
+    if (free === 0 || (told && lost <= NEGLIGIBLE_SHARE * found)) return integral;
     // The bounds that are kept leave less than was thought, so that more of the others count.
-    share = Math.min(found, share / 2);
+    share = told ? Math.min(found, share / 2) : 0;
   }
 }
 

@@ -34,8 +34,18 @@ const LEAST_ANGLE = 1e-5;
 /** Each takes the error down by the square of that condition times eps. */
 const REFINEMENTS = 2;
 
+const designs = new WeakMap<Workbench, FixedDesign | null>();
+
 /** @returns null where the design moves, or is too near to singular */
 export function fixedDesignOf(bench: Workbench): FixedDesign | null {
+  const there = designs.get(bench);
+  if (there !== undefined) return there;
+  const made = workOut(bench);
+  designs.set(bench, made);
+  return made;
+}
+
+function workOut(bench: Workbench): FixedDesign | null {
   const { layout, plan, prior, state } = bench;
   const { varying, atFit } = layout.problem;
   if (layout.moving || layout.bent.length + varying.length + atFit.length > 0) return null;

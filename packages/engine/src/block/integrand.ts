@@ -63,7 +63,8 @@ export function integrandOf(
   const rank = reference?.rank ?? 0;
   shape = { most: rank, padded: varying.length > 0 };
   const fixed = outer.length === 0 && openly ? reference : null;
-  const design = outer.length > 0 ? fixedDesignOf(bench) : null;
+  const many = outer.length > 0 || problem.scenarios.length > 1;
+  const design = many ? fixedDesignOf(bench) : null;
   const near = (c: Float64Array) =>
     design === null
       ? conditional(c)

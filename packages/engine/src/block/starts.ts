@@ -39,10 +39,22 @@ export function startsOf(bench: Workbench, integrand: Integrand): Float64Array[]
   return starts;
 }
 
-function minimaOf(bench: Workbench, scenario: number): Float64Array[] {
+const fittings = new WeakMap<Workbench, Workbench | null>();
+
+/** The same block laid out for a fit; null where chi-square counts none of its rows. */
+function fittingBench(bench: Workbench): Workbench | null {
+  const there = fittings.get(bench);
+  if (there !== undefined) return there;
   const made = workbenchOf(layoutOf(bench.layout.problem, "fit"));
-  if (!made.ok || made.bench.layout.gaussian.length === 0) return [];
-  const found = outerMinima(made.bench, scenario, startsFor(bench.layout.problem.outer, 5));
+  const fitting = made.ok && made.bench.layout.gaussian.length > 0 ? made.bench : null;
+  fittings.set(bench, fitting);
+  return fitting;
+}
+
+function minimaOf(bench: Workbench, scenario: number): Float64Array[] {
+  const fitting = fittingBench(bench);
+  if (fitting === null) return [];
+  const found = outerMinima(fitting, scenario, startsFor(bench.layout.problem.outer, 5));
   if ("singular" in found) return [];
   const near = found.filter(({ chiSquare }) => chiSquare < found[0]!.chiSquare + FAR);
   return near.slice(0, MOST_MINIMA).map(({ outer }) => outer);
