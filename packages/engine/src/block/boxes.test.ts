@@ -232,17 +232,18 @@ test("flat tolerances of each row's own under two shared errors, by cubature", (
   expect(Math.abs(ln - Math.log(z))).toBeLessThan(1e-6);
 });
 
-test("bounds far from the data: one that would cut off nothing alone does beside another that does", () => {
-  const observed = [-40, 3];
+test("in strong tension a bound counts that would cut off nothing were the others not there", () => {
+  const observed = [0.42, 0.077, 0.13];
   const design = [
-    [1, 1],
-    [0.5, -0.2],
+    [-0.31, 0.52],
+    [-0.81, 0.66],
+    [-0.57, -0.63],
   ];
   const bounds = [
-    { lower: -0.4, upper: 5 },
-    { lower: -60, upper: -47 },
+    { lower: -0.011, upper: 54 },
+    { lower: -2.5, upper: -2.4 },
   ] as const;
-  const terms = { observed, variance: [1e-4, 1e-4] };
+  const terms = { observed, variance: [9.1e-6, 1.8e-6, 7.7e-4] };
   const boxed = found({
     ...terms,
     linear: bounds.map((one) => flat(one.lower, one.upper)),
