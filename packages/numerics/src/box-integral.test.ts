@@ -1,6 +1,7 @@
 import { describe, expect, test } from "vitest";
 import { logBoxIntegral, logCoupledBoxIntegral } from "./box-integral";
 import fixture from "./fixtures/coupled-boxes.json";
+import equicorrelatedBoxes from "./fixtures/equicorrelated-boxes.json";
 import { LN_SQRT_2PI } from "./normal";
 import { addRow, createSystem, logDiagonal, setUnitPrior } from "./triangular-system";
 
@@ -87,5 +88,34 @@ describe("boxes coupled by one shared error", () => {
     const ln = direct.ln - noise - logDiagonal(system, 0, 1) - system.rss / 2;
     const allowed = n > 3 ? 3 * direct.error : 1e-9;
     expect(Math.abs(ln - expected)).toBeLessThan(allowed);
+  });
+});
+
+// fixtures/equicorrelated-boxes.json: mpmath, one-dimensional quadrature over the common factor.
+describe("boxes of equally correlated normals", () => {
+  const cases = equicorrelatedBoxes.cases.map((one) => ({ ...one, n: one.lower.length }));
+
+  test.each(cases)("$name, correlation $rho", ({ n, rho, lower, upper, ln }) => {
+    const system = equicorrelated(n, rho);
+    const box = {
+      lower: Float64Array.from(lower, (x) => x ?? -Infinity),
+      upper: Float64Array.from(upper, (x) => x ?? Infinity),
+    };
+    const integral = logBoxIntegral(system, box);
+    const found = integral.ln - n * LN_SQRT_2PI + logDiagonal(system, 0, n);
+    // Boxes up to three 1e-6; more within three stated errors (and rounding), these at most 1e-3.
+    const allowed = n <= 3 ? 1e-6 : 3 * integral.error + 1e-14 * Math.abs(found);
+    expect(Math.abs(found - Number(ln))).toBeLessThan(allowed);
+    expect(integral.error).toBeLessThan(1e-3);
+  });
+
+  test("the order in which unknowns are given doesn't matter", () => {
+    const bounds = [0.4, -1, 1, 0.2, -0.3];
+    const of = (values: number[]) => {
+      const upper = Float64Array.from(values);
+      return logBoxIntegral(equicorrelated(5, 0.95), { lower: upper.map(() => -Infinity), upper });
+    };
+    const [one, other] = [of(bounds), of(bounds.toReversed())];
+    expect(Math.abs(one.ln - other.ln)).toBeLessThan(3 * (one.error + other.error));
   });
 });

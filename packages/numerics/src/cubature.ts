@@ -1,14 +1,18 @@
 import { gridBelow, gridOn, gridWeights, type ChartGrid, type Integrand } from "./chart-grid";
-import { squareFromPeak, type Chart, type Peak } from "./cube-chart";
+import { squareFromPeak, type Chart } from "./cube-chart";
 import type { CubeIntegral, CubeMode } from "./cube-integral";
 import { peaksOf, type TopPeak } from "./cube-peaks";
 import { iteratedIntegral } from "./iterated-integral";
+import { partedAroundNarrow } from "./narrow-peaks";
 
 /** Nodes an axis, step by step. */
-const ORDERS = { 2: [12, 16, 20, 24, 28, 34, 40], 3: [12, 16, 20, 24, 28] } as const;
-/** The first orders may agree by chance. */
+const ORDERS = { 2: [12, 16, 20, 24, 28, 34, 40], 3: [8, 12, 16, 20, 24, 28, 34, 40] } as const;
+/** Two orders may agree by chance, so that the difference before counts too, by this share. */
 const FIRST_STEPS = 2;
-/** From the fourth order on, a step that leaves more than this of the error leads nowhere. */
+const OF_BEFORE = 0.03;
+/** Coarser agreement of two orders proves nothing, whatever is asked for. */
+const COARSEST = 1e-6;
+/** Where most steps are done, one that leaves more than this of the error leads nowhere. */
 const CONVERGING = 0.3;
 const MOST_CALLS = 2_000_000;
 /** Nodes of less than e^-40 of the mass are left out of the posterior's points. */
@@ -29,7 +33,9 @@ interface Piece {
   integrand: Integrand;
   step: number;
   grid: ChartGrid;
-  /** Difference from the order before, over exp(grid.top). */
+  /** ln of the difference from the order before. */
+  lnDifference: number;
+  /** Over exp(grid.top). */
   error: number;
 }
 
@@ -40,7 +46,8 @@ interface Piece {
  * several, f is shared out among them by weights that add up to 1. On each chart, parted at the
  * breaks, a tensor Gauss-Legendre rule is refined until two orders agree; their difference, which
  * overstates the error of the finer one, is the error. Where a chart doesn't converge, the
- * integral is done anew axis by axis (iterated-integral.ts).
+ * cube is parted around its narrow peaks (narrow-peaks.ts); where that doesn't help either, the
+ * integral is done axis by axis (iterated-integral.ts).
  *
  * @param f log density; -Infinity allowed
  * @param modes needed for peaks below some 1e-2 of the cube beside others; a single smooth peak of
@@ -58,34 +65,69 @@ export function cubature(f: LogDensity, dimension: 2 | 3, options: CubatureOptio
     return f(u);
   };
   const { breaks, relative, mayGoOn = () => evaluations < MOST_CALLS } = options;
-  const orders = ORDERS[dimension];
   const peaks = peaksOf(counted, dimension, options.modes);
-  const pieces = peaks.flatMap((peak, k) => {
-    const integrand = { density: counted, share: peaks.length > 1 ? shareOf(peaks, k) : () => 0 };
-    return chartsOf(peak, dimension, breaks).map((chart) => firstPiece(integrand, chart, orders));
+  const onCharts =
+    integralOnCharts(counted, { peaks, breaks, relative }) ??
+    integralAroundNarrow(counted, { peaks, breaks, relative });
+  if (onCharts !== null) return { ...onCharts, evaluations };
+  const square = (g: LogDensity, inner: CubatureOptions) => cubature(g, 2, inner);
+  const byAxes = { peaks, breaks, relative, mayGoOn, square };
+  return { ...iteratedIntegral(counted, dimension, byAxes), evaluations };
+}
+
+interface OnCharts extends Pick<CubatureOptions, "breaks" | "relative"> {
+  peaks: readonly TopPeak[];
+}
+
+type Found = Omit<CubeIntegral, "evaluations">;
+
+function integralOnCharts(
+  density: LogDensity,
+  { peaks, breaks, relative }: OnCharts,
+): Found | null {
+  const boxes = boxesBetween(breaks, peaks[0]!.centre.length);
+  const starts = peaks.flatMap((peak, k) => {
+    const share = peaks.length > 1 ? shareOf(peaks, k) : () => 0;
+    return boxes.map((box) => ({ integrand: { density, share }, chart: { peak, ...box } }));
   });
+  return converged(starts, relative);
+}
+
+function integralAroundNarrow(
+  density: LogDensity,
+  { peaks, breaks, relative }: OnCharts,
+): Found | null {
+  const parting = partedAroundNarrow(peaks, breaks);
+  if (parting === null) return null;
+  const starts = boxesBetween(parting.breaks, peaks[0]!.centre.length).flatMap((box) => {
+    const here = parting.peaksIn(box);
+    return here.map((peak, k) => {
+      const share = here.length > 1 ? shareOf(here, k) : () => 0;
+      return { integrand: { density, share }, chart: { peak, ...box } };
+    });
+  });
+  return converged(starts, relative);
+}
+
+/** null where the rule doesn't converge on one of the charts. */
+function converged(
+  starts: readonly { integrand: Integrand; chart: Chart }[],
+  relative: number,
+): Found | null {
+  const orders = starts[0]!.chart.lower.length === 2 ? ORDERS[2] : ORDERS[3];
+  const pieces = starts.map(({ integrand, chart }) => firstPiece(integrand, chart, orders));
   for (;;) {
     const { top, value, error, worst } = totalOf(pieces);
-    if (value === 0) return nothing(evaluations);
-    if (error <= relative * value) {
+    if (value === 0) return nothing();
+    if (error <= Math.min(relative, COARSEST) * value) {
       const ln = top + Math.log(value);
-      return { ...posterior(pieces, ln), ln, error: error / value, evaluations };
+      return { ...posterior(pieces, ln), ln, error: error / value };
     }
-    if (!improve(pieces[worst]!, orders)) {
-      const square = (g: LogDensity, inner: CubatureOptions) => cubature(g, 2, inner);
-      const iterated = iteratedIntegral(counted, dimension, {
-        peaks,
-        breaks,
-        relative,
-        mayGoOn,
-        square,
-      });
-      return { ...iterated, evaluations };
-    }
+    if (!improve(pieces[worst]!, orders)) return null;
   }
 }
 
-function chartsOf(peak: Peak, dimension: number, breaks: CubatureOptions["breaks"]): Chart[] {
+function boxesBetween(breaks: CubatureOptions["breaks"], dimension: number) {
   let boxes = [{ lower: new Float64Array(dimension), upper: new Float64Array(dimension).fill(1) }];
   for (let axis = 0; axis < dimension; axis += 1) {
     const inside = (breaks[axis] ?? []).filter((x) => x > 0 && x < 1).sort((a, b) => a - b);
@@ -98,7 +140,7 @@ function chartsOf(peak: Peak, dimension: number, breaks: CubatureOptions["breaks
       }),
     );
   }
-  return boxes.map((box) => ({ peak, ...box }));
+  return boxes;
 }
 
 /**
@@ -123,7 +165,7 @@ function shareOf(peaks: readonly TopPeak[], k: number): LogDensity {
 
 function firstPiece(integrand: Integrand, chart: Chart, orders: readonly number[]): Piece {
   const grid = gridOn(integrand, chart, orders[0]!);
-  const piece = { integrand, step: 0, grid, error: grid.value };
+  const piece = { integrand, step: 0, grid, lnDifference: Infinity, error: grid.value };
   while (piece.step < FIRST_STEPS) raise(piece, orders);
   return piece;
 }
@@ -131,8 +173,11 @@ function firstPiece(integrand: Integrand, chart: Chart, orders: readonly number[
 function raise(piece: Piece, orders: readonly number[]): void {
   const { integrand, grid } = piece;
   const next = gridOn(integrand, grid.chart, orders[piece.step + 1]!);
-  const before = grid.top === -Infinity ? 0 : grid.value * Math.exp(grid.top - next.top);
-  piece.error = Math.abs(next.value - before);
+  const last = grid.top === -Infinity ? 0 : grid.value * Math.exp(grid.top - next.top);
+  const difference = Math.abs(next.value - last);
+  const before = piece.step === 0 ? 0 : OF_BEFORE * Math.exp(piece.lnDifference - next.top);
+  piece.error = next.top === -Infinity ? 0 : Math.max(difference, before);
+  piece.lnDifference = next.top + Math.log(difference);
   piece.grid = next;
   piece.step += 1;
 }
@@ -143,7 +188,7 @@ function improve(piece: Piece, orders: readonly number[]): boolean {
   const before = piece.grid.top + Math.log(piece.error);
   raise(piece, orders);
   const after = piece.grid.top + Math.log(piece.error);
-  return piece.step <= FIRST_STEPS + 1 || after < before + Math.log(CONVERGING);
+  return piece.step <= FIRST_STEPS + 3 || after < before + Math.log(CONVERGING);
 }
 
 function totalOf(pieces: readonly Piece[]) {
@@ -163,9 +208,9 @@ function totalOf(pieces: readonly Piece[]) {
   return { top, value, error, worst };
 }
 
-function nothing(evaluations: number): CubeIntegral {
+function nothing(): Found {
   const nodes = { points: new Float64Array(0), lnWeights: new Float64Array(0) };
-  return { ln: -Infinity, error: 0, evaluations, information: 0, nodes };
+  return { ln: -Infinity, error: 0, information: 0, nodes };
 }
 
 function posterior(

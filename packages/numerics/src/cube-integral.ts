@@ -16,7 +16,7 @@ export interface CubeOptions {
   modes?: readonly CubeMode[];
   /** For each axis the places, in (0, 1), where the density has a kink or a step. */
   breaks?: readonly (readonly number[])[];
-  /** Relative error of Z to stop at, up to three dimensions: 1e-11 for one, 1e-7 for two and three. */
+  /** Relative error of Z to stop at, up to three dimensions; 1e-11, 1e-8, 5e-7 for one to three. */
   relative?: number;
 }
 

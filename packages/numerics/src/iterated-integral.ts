@@ -9,7 +9,7 @@ const INNER_SCAN = 40;
 /** Inner integrals are this much more exact, so that the outer rule sees no noise. */
 const FINER = 0.1;
 /** Once the work has run out, what is begun is finished this coarsely; the error says so. */
-const COARSE = 1e-3;
+const COARSE = 1e-5;
 
 interface IteratedOptions {
   peaks: readonly Peak[];

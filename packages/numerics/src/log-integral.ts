@@ -7,7 +7,10 @@ import { NumericsError } from "./numerics-error";
 const MOST_DIMENSIONS = 30;
 const LINE_RELATIVE = 1e-11;
 const SQUARE_RELATIVE = 1e-8;
-const CUBE_RELATIVE = 3e-7;
+const CUBE_RELATIVE = 5e-7;
+/** The faces themselves are never asked for: a prior's quantile is often infinite there. */
+const FIRST = 2 ** -60;
+const LAST = 1 - 2 ** -53;
 
 /**
  * ln of the integral of a density over the unit cube,
@@ -17,7 +20,7 @@ const CUBE_RELATIVE = 3e-7;
  * by adaptive Gauss-Kronrod panels for one dimension, cubature for two and three, nested sampling
  * from four on; for none it is the density itself.
  *
- * @param logDensity natural log of a density, any finite number, -Infinity where that is 0 (NaN
+ * @param logDensity natural log of a density at a place in (0, 1)^d, any finite number, -Infinity where that is 0 (NaN
  *   counts as 0 too); smooth but for `breaks` where accuracy counts; doesn't keep its argument
  * @param dimension 0 to 30
  * @returns never NaN; `ln` -Infinity where the density is 0 everywhere
@@ -32,6 +35,7 @@ export function integrateUnitCube(
   const { seed, modes = [], breaks = [] } = options;
   refuseMisfits(dimension, modes, breaks);
   const safe = (u: Float64Array) => {
+    for (let i = 0; i < u.length; i += 1) u[i] = Math.min(Math.max(u[i]!, FIRST), LAST);
     const ln = logDensity(u);
     if (ln < Infinity) return ln;
     if (Number.isNaN(ln)) return -Infinity;

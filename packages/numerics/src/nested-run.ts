@@ -14,7 +14,7 @@ const REMAINDER = 0.01;
 /** Live points are enclosed anew each time the volume has shrunk by about e^-0.3. */
 const ENCLOSE_EVERY = 0.3;
 /** Draws from the whole cube in search of a density above 0. */
-const MOST_PRIOR_DRAWS = 200_000;
+const MOST_PRIOR_DRAWS = 100_000;
 
 export interface RunOptions {
   dimension: number;

@@ -32,16 +32,17 @@ export function refineShape(f: LogDensity, peak: Peak): Peak & { height: number 
   centre = centre.map((x) => Math.min(Math.max(x, 0), 1));
   let height = f(centre);
   for (let round = 0; round < ROUNDS && height > -Infinity; round += 1) {
-    const at = (z: number[]) => f(moved({ centre, factor }, z));
+    const at = (z: number[]) => {
+      const u = moved({ centre, factor }, z);
+      return u.every((x) => x >= 0 && x <= 1) ? f(u) : Number.NaN;
+    };
     const { gradient, curvature } = differences(at, height, dimension);
     const root = choleskyOf(curvature, dimension);
     if (root === null) break;
     const step = solveTwice(root, gradient, dimension);
     const length = Math.hypot(...step);
-    const next = moved(
-      { centre, factor },
-      step.map((s) => s / Math.max(1, length / 3)),
-    );
+    const limited = step.map((s) => s / Math.max(1, length / 3));
+    const next = moved({ centre, factor }, limited).map((x) => Math.min(Math.max(x, 0), 1));
     factor = rescaled(factor, root, dimension);
     const there = f(next);
     if (there >= height) [centre, height] = [next, there];
@@ -118,7 +119,11 @@ function axisWidth(
     const fall = drop(width);
     if (fall > 2) width /= fall > 1000 ? 16 : 2;
     else if (fall < 0.25 && width < 0.5) width *= 2;
-    else return width * Math.sqrt(0.5 / Math.max(fall, 0.125));
+    else {
+      // A straight fall, as at a face of the cube, reaches further than a normal's.
+      const straight = drop(2 * width) < 3 * fall;
+      return straight ? (2 * width) / Math.max(fall, 0.5) : width * Math.sqrt(0.5 / fall);
+    }
   }
   return width;
 }
@@ -128,7 +133,7 @@ function moved({ centre, factor }: Peak, z: ArrayLike<number>): Float64Array {
   return centre.map((x, i) => {
     let sum = x;
     for (let j = 0; j <= i; j += 1) sum += factor[i * dimension + j]! * z[j]!;
-    return Math.min(Math.max(sum, 0), 1);
+    return sum;
   });
 }
 

@@ -2,6 +2,7 @@ import { describe, expect, test } from "vitest";
 import { gaussKronrod } from "./gauss-kronrod";
 import { gaussLegendre } from "./gauss-legendre";
 import { logConcaveIntegral } from "./log-concave-integral";
+import { legendreRule } from "./legendre-rule";
 import { LN_SQRT_2PI } from "./normal";
 
 describe("rules are exact where their theory says so", () => {
@@ -41,5 +42,19 @@ describe("log-concave integrals", () => {
     const range = { lower: 0, upper: 1, start: 0.7, scale: 0.25 };
     const ln = logConcaveIntegral((x) => -1e7 * x, range).ln;
     expect(ln).toBeCloseTo(-Math.log(1e7), 9);
+  });
+});
+
+describe("the n-point Gauss-Legendre rule", () => {
+  // Abramowitz & Stegun 25.4.29: exact up to degree 2n - 1, and not one degree further.
+  test.each([2, 7, 12, 40])("of %d points has the degree 2n - 1", (n) => {
+    const { nodes, weights } = legendreRule(n);
+    const integral = (degree: number) =>
+      nodes.reduce((sum, x, i) => sum + weights[i]! * x ** degree, 0);
+    for (const degree of [0, 2, 2 * n - 2]) {
+      expect(Math.abs(integral(degree) * (degree + 1) - 2)).toBeLessThan(1e-13 * (degree + 1));
+    }
+    if (n < 12) expect(Math.abs(integral(2 * n) - 2 / (2 * n + 1))).toBeGreaterThan(1e-7);
+    expect(nodes.every((x, i) => i === 0 || x > nodes[i - 1]!)).toBe(true);
   });
 });
