@@ -184,6 +184,14 @@ describe("tables and ensembles", () => {
       ],
     ],
     [
+      "a row too few in a table that an expression looks values up in",
+      (document) => {
+        document.hypotheses[0].tables[1].values = [[1, 2]];
+        predict(1, { expected: "table(plane, 30, 50) + table(plane, f0, 50)" })(document);
+      },
+      ["/hypotheses/0/tables/1/values: found a list of 1; allowed one for each of the 2 points"],
+    ],
+    [
       "an axis without a name",
       table((tables) => (tables[0].in = ["slope", "day"])),
       ["/hypotheses/0/tables/0/at: found 1 axes for 2 names; allowed an axis for each name of in"],

@@ -1,5 +1,6 @@
 import type { Hypothesis, Scale, Table } from "../document";
 import { compileExpression } from "../expression";
+import type { Expression } from "../expression";
 import type { Legible } from "../form";
 import { below } from "../pointer";
 import { conditionRanges } from "./condition-ranges";
@@ -41,7 +42,7 @@ export function checkExpression(reading: Reading, place: PredictionPlace, text: 
   }
   const { expression } = compiled;
   if (measurand?.shape === "curve") checkSeenOnce(reading, place, conditions);
-  if (!telling) return;
+  if (!telling || isUnsound(place, expression)) return;
   const used = [...expression.names].filter((name) => conditions.has(name));
   if (!hasValueSomewhere(expression, place, conditionRanges(reading, place, used))) {
     const allowed = "a finite value somewhere between the 1 % and 99 % of the priors";
@@ -49,6 +50,25 @@ export function checkExpression(reading: Reading, place: PredictionPlace, text: 
     const found = "an expression without a value at any parameter tried";
     reading.refuse(pointer, "bad-expression", found, allowed + sign);
   }
+}
+
+/** Whether a part that the expression uses is wrong in itself: then its value says nothing. */
+function isUnsound(
+  { hypothesis, hypothesisPointer, faults }: PredictionPlace,
+  { names, tables }: Expression,
+): boolean {
+  if (faults.length === 0) return false;
+  const parts: string[] = [];
+  for (const [index, { key }] of legible(hypothesis.parameters)) {
+    if (names.has(key ?? "")) parts.push(below(hypothesisPointer, "parameters", index));
+  }
+  for (const [index, { key }] of legible(hypothesis.tables)) {
+    if (tables.has(key ?? "")) parts.push(below(hypothesisPointer, "tables", index));
+  }
+  if (Object.keys(hypothesis.ensemble?.columns ?? {}).some((column) => names.has(column))) {
+    parts.push(below(hypothesisPointer, "ensemble"));
+  }
+  return faults.some((fault) => parts.some((part) => `${fault}/`.startsWith(`${part}/`)));
 }
 
 const signs: Partial<Record<Scale, string>> = {

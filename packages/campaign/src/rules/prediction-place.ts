@@ -8,6 +8,8 @@ export type PredictionPlace = {
   prediction: Legible<Prediction>;
   pointer: string;
   observable: Legible<Observable> | undefined;
+  /** Where parts of the hypothesis that expressions use have been found wrong. */
+  faults: readonly string[];
   /** Whether the names of the hypothesis could all be read. */
   whole: boolean;
   /** Undefined also for a derived value, which has no conditions. */

@@ -16,6 +16,9 @@ export function checkPredictions(
 ): void {
   const earlier = new Set<string>();
   const whole = isWhole(hypothesis);
+  const faults = reading.problems
+    .map(({ pointer }) => pointer)
+    .filter((pointer) => pointer.startsWith(`${hypothesisPointer}/`));
   for (const [index, prediction] of legible(hypothesis.predictions)) {
     const pointer = below(hypothesisPointer, "predictions", index);
     const key = prediction.measurand;
@@ -27,6 +30,7 @@ export function checkPredictions(
       hypothesisPointer,
       prediction,
       pointer,
+      faults,
       whole,
       observable: reading.observableOf(key),
       measurand: key === undefined ? undefined : reading.measurands.get(key),

@@ -1,6 +1,8 @@
+import { assert, constantFrom, property } from "fast-check";
 import { expect, test } from "vitest";
 import { problemLine } from "../problem";
 import { readCampaign } from "../read";
+import { junk, placesOf, put } from "./documents";
 import { everyForm } from "./every-form";
 
 test.each(Object.entries(everyForm()))("the campaign %s is valid", (_name, document) => {
@@ -46,3 +48,19 @@ function readWholeForm() {
   if (!read.ok) throw new Error("the whole campaign isn't valid");
   return read.value;
 }
+
+test("none of them, with anything in any place, is more than refused", () => {
+  const documents = everyForm();
+  const places = Object.entries(documents).flatMap(([name, document]) =>
+    name === "whole" ? [] : placesOf(document).map((path) => ({ document, path })),
+  );
+  assert(
+    property(constantFrom(...places), junk, ({ document, path }, value) => {
+      const read = readCampaign(put(structuredClone(document), path, value));
+      if (read.ok) return;
+      for (const problem of read.problems)
+        expect(problemLine(problem)).toMatch(/found .+ allowed ./);
+    }),
+    { numRuns: 1000, seed: 20340301 },
+  );
+});
