@@ -7,6 +7,8 @@ import type { ArchiveFile } from "./zip/write";
 /** What an archive is of, and the SHA-256 of every file in it but the manifest's own two. */
 export const manifestSchema = z.strictObject({
   format: z.literal(ARCHIVE_FORMAT),
+  /** Version of the program's part that wrote the files for readers. */
+  writer: z.string(),
   campaign: z.string(),
   /** The ledger's id: the origin line of its tree heads. */
   ledger: z.string(),
@@ -18,6 +20,16 @@ export const manifestSchema = z.strictObject({
   at: z.string(),
   clock: z.enum(["real", "simulated"]),
   engine: z.string(),
+  /** Tree heads that were signed, and how many of them are in the archive. */
+  heads: z.strictObject({ signed: z.int().positive(), kept: z.int().positive() }),
+  /** What is not in the archive though it might be expected, each with the reason, in words. */
+  leftOut: z.array(z.string()),
+  /** Address of the licence, where one was given. */
+  licence: z.string().nullable(),
+  /** Members who published who they are; all others stay opaque ids. */
+  people: z.array(
+    z.strictObject({ member: z.string(), name: z.string(), orcid: z.string().nullable() }),
+  ),
   files: z.array(
     z.strictObject({ path: z.string(), bytes: z.int().nonnegative(), sha256: z.string() }),
   ),

@@ -1,7 +1,7 @@
 import type { Manifest } from "./manifest";
 
 /** What the README of an archive has to say of it. */
-export type ReadmeFacts = Omit<Manifest, "files" | "format"> & {
+export type ReadmeFacts = Omit<Manifest, "files"> & {
   title: string;
   /** Of the key that signs the manifest. */
   fingerprint: string;
@@ -36,7 +36,7 @@ ${facts.clock === "simulated" ? SIMULATED : ""}
 A signature says who signed, and anybody can sign. Compare the fingerprint with one that you got
 another way, or the root with a tree head that you kept.
 
-${CONTENT}
+${contentWords(facts)}
 ## Check everything
 
 With the \`weighhouse\` command, on the ZIP itself; nothing is sent anywhere:
@@ -46,26 +46,42 @@ With the \`weighhouse\` command, on the ZIP itself; nothing is sent anywhere:
     weighhouse verify AUDIT.zip --head HEAD.note  # a tree head that you kept
 
 It answers with a line for each check. Bayes factors, chi-squares and verdicts are computed anew
-from the entries and compared to 1e-9.
+from the entries and compared to 1e-9; evidences that are integrated numerically, to their stated
+errors.
+
+Without it, in the folder into which the ZIP was unpacked, with Python 3 and nothing else; it names
+what it doesn't cover:
+
+    python3 check.py
 
 ${byHand(facts)}`;
 }
 
-const CONTENT = `## What is in it
+function contentWords({ leftOut, heads }: ReadmeFacts): string {
+  const left =
+    leftOut.length === 0 ? "" : `\nNot in it:\n\n${leftOut.map((one) => `- ${one}`).join("\n")}\n`;
+  return `## What is in it
 
 | file | what |
 | --- | --- |
 | \`manifest.json\` | the SHA-256 of every file; \`manifest.note\` signs it |
+| \`ro-crate-metadata.json\` | every file described, who posted what, sources (RO-Crate 1.2) |
 | \`ledger.ndjson\` | an entry a line: number, time, author, kind, SHA-256 of its payload (RFC 8785) |
 | \`payloads.ndjson\` | the payload of the entry in the same line |
-| \`heads/*.note\` | the signed tree head of each transaction (C2SP checkpoints) |
+| \`heads/*.note\` | signed tree heads (C2SP checkpoints), ${heads.kept} of ${heads.signed}; \`heads/*.tsr\` time-stamp them (RFC 3161) |
 | \`keys/*.pub\` | the public keys that signed (Ed25519) |
 | \`campaign.json\` | the campaign document that the entries add up to |
 | \`standings.json\` | the standings that the engine computes from it |
-| \`tables/*.csv\` | both as tables (RFC 4180, UTF-8) |
+| \`sensitivity.json\` | what the standings hang on: the campaign scored again with each thing changed |
+| \`tables/*.csv\` | all of that as tables (RFC 4180, UTF-8), units in the header |
+| \`tables/*.tex\` | the same rounded for print (LaTeX with booktabs; each compiles as it is) |
+| \`figures/*.svg\` | standings, verdicts, evidence over time; one for each quantity |
+| \`methods.md\` | what a methods section has to say, with its counts |
+| \`check.py\` | another implementation of the checks, in Python's standard library |
 
 Entries hold no names of people, only ids: \`member\` in an entry's \`by\`.
-`;
+${left}`;
+}
 
 function byHand(facts: ReadmeFacts): string {
   return `## Check it by hand

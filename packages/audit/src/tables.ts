@@ -8,6 +8,7 @@ import type {
 import type { Standings } from "@weighhouse/campaign/standings";
 import type { CsvCell } from "@weighhouse/tables/write-csv";
 import type { TableName } from "./layout";
+import type { TimelineRow } from "./timeline";
 
 export type ArchiveTable = { name: TableName; header: string[]; rows: CsvCell[][] };
 
@@ -17,7 +18,11 @@ type Column<Row> = [title: string, cell: (row: Row) => CsvCell];
  * The tables of an archive: campaign and standings as rows, each column's unit in its title.
  * Quantities of several units share a column; the unit then stands in the row (`in unit`).
  */
-export function tablesOf(document: CampaignDocument, standings: Standings): ArchiveTable[] {
+export function tablesOf(
+  document: CampaignDocument,
+  standings: Standings,
+  timeline: readonly TimelineRow[],
+): ArchiveTable[] {
   const units = unitsOf(document);
   return [
     table("hypotheses", hypothesisColumns, document.hypotheses),
@@ -25,6 +30,7 @@ export function tablesOf(document: CampaignDocument, standings: Standings): Arch
     table("measurements", measurementColumns(units), document.measurements),
     table("verdicts", verdictColumns(units), standings.verdicts),
     table("standings", standingColumns, standings.hypotheses),
+    table("timeline", timelineColumns, timeline),
   ];
 }
 
@@ -148,6 +154,14 @@ const standingColumns: Column<Standings["hypotheses"][number]>[] = [
   ["withheld (count)", (row) => row.verdicts.withheld],
   ["void (count)", (row) => row.verdicts.void],
   ["failed decisive predictions", (row) => row.failedDecisive.join(" ")],
+];
+
+const timelineColumns: Column<TimelineRow>[] = [
+  ["entries (count)", (row) => row.size],
+  ["at (UTC)", (row) => row.at],
+  ["hypothesis", (row) => row.hypothesis],
+  ["ln evidence (nat)", (row) => row.lnEvidence],
+  ["ln evidence error (nat)", (row) => row.lnEvidenceError],
 ];
 
 /** A measurand's unit, and the unit of its sds: dex on a log10 scale. */

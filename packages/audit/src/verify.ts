@@ -1,6 +1,7 @@
 import type { LedgerRecord } from "@weighhouse/campaign/changes";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { Standings } from "@weighhouse/campaign/standings";
+import { sensitivityOf } from "@weighhouse/engine/sensitivity/sensitivity";
 import { base64 } from "@weighhouse/ledger/bytes";
 import type { Hasher } from "@weighhouse/ledger/hasher";
 import { nobleVerifySignature } from "@weighhouse/ledger/signed-note";
@@ -21,11 +22,20 @@ import {
   rootsOf,
 } from "./checks/heads";
 import type { Roots } from "./checks/heads";
-import { CHECKS, counted, failed, notChecked, notPresent } from "./checks/line";
+import { CHECKS, notChecked } from "./checks/line";
 import type { CheckLine, CheckName, VerifyReport } from "./checks/line";
 import { checkManifest, checkManifestFacts, checkManifestNote } from "./checks/manifest";
 import type { Manifest } from "./manifest";
 import { checkOrder } from "./checks/order";
+import { checkRules } from "./checks/rules";
+import { checkSeals } from "./checks/seals";
+import { checkSensitivity } from "./checks/sensitivity";
+import type { Sense } from "./checks/sensitivity";
+import { checkFigures } from "./checks/figures";
+import { checkTexts } from "./checks/texts";
+import { checkTimeStamps } from "./checks/time-stamps";
+import type { VerifyToken } from "./checks/time-stamps";
+import { checkTimeline } from "./checks/timeline";
 import { checkStandings, readStandings } from "./checks/standings";
 import type { Score } from "./checks/standings";
 import { checkTables } from "./checks/tables";
@@ -41,6 +51,10 @@ export type VerifyOptions = {
   verifySignature?: VerifySignature;
   /** The engine: `scoreCampaign`. */
   score: Score;
+  /** What standings hang on; the engine's `sensitivityOf` unless given. */
+  sensitivity?: Sense;
+  /** Verifies RFC 3161 tokens; an archive that has some fails without. */
+  verifyToken?: VerifyToken;
   /** Texts of key files (verifier keys) that the reader had before. */
   trustedKeys?: readonly string[];
   /** Text of a tree head's note that the reader kept. */
@@ -77,7 +91,13 @@ function verifyFiles(files: Files, options: VerifyOptions, add: Add): void {
   verifyTree(files, { roots, opening, trustedHead: options.trustedHead }, add);
   const { standings } = readStandings(files);
   add(factsLine(manifest.value, { entries: entries.value, roots, opening, standings }));
-  verifyContent(files, { entries: entries.value, roots }, options, add);
+  add(checkTimeStamps(files, readHeads(files).heads, options.verifyToken));
+  verifyContent(
+    files,
+    { entries: entries.value, roots, opening, manifest: manifest.value, signers },
+    options,
+    add,
+  );
 }
 
 function verifySignatures(files: Files, options: VerifyOptions, add: Add): Signers {
@@ -137,67 +157,97 @@ function factsLine(
   });
 }
 
-type ContentParts = { entries: ReadEntries | null; roots: Roots | null };
+type ContentParts = {
+  entries: ReadEntries | null;
+  roots: Roots | null;
+  opening: Opening | null;
+  manifest: Manifest | null;
+  signers: Signers;
+};
+
+/** What needs the entries' content, in the order in which one thing rests on another. */
+const CONTENT = [
+  "payloads",
+  "rules of the entries",
+  "seals",
+  "campaign document",
+  "before and after data",
+  "standings",
+  "timeline",
+  "sensitivity",
+  "tables",
+  "figures",
+  "texts",
+] as const satisfies readonly CheckName[];
+
+/** The checks from one on can't be made. */
+function refuseFrom(first: (typeof CONTENT)[number], because: CheckName, add: Add): void {
+  for (const check of CONTENT.slice(CONTENT.indexOf(first))) add(notChecked(check, because));
+}
 
 function verifyContent(files: Files, parts: ContentParts, options: VerifyOptions, add: Add): void {
-  const { entries, roots } = parts;
-  const content = ["campaign document", "before and after data", "standings", "tables"] as const;
-  const refuseFrom = (from: number, because: CheckName) => {
-    for (const check of content.slice(from)) add(notChecked(check, because));
-  };
+  const { entries, roots, opening } = parts;
   if (entries === null || roots === null) {
-    add(notChecked("payloads", "entries: hash and order"));
-    addAbsent(files, null, add);
-    return refuseFrom(0, "entries: hash and order");
+    return refuseFrom("payloads", "entries: hash and order", add);
   }
   const payloads = checkPayloads(files, entries.entries, options.hasher);
   add(payloads.line);
-  addAbsent(files, payloads.value, add);
-  if (payloads.value === null) return refuseFrom(0, "payloads");
-  const document = checkDocument(files, payloads.value);
+  const records = payloads.value;
+  if (records === null || opening === null) {
+    return refuseFrom("rules of the entries", "payloads", add);
+  }
+  add(checkSeals(records, { ledger: opening.ledger, hasher: options.hasher }));
+  const folded = checkRules(records);
+  add(folded.line);
+  if (folded.value === null) {
+    return refuseFrom("campaign document", "rules of the entries", add);
+  }
+  const document = checkDocument(files, folded.value);
   add(document.line);
-  if (document.value === null) return refuseFrom(1, "campaign document");
-  verifyScores(files, { records: payloads.value, document: document.value, roots }, options, add);
+  if (document.value === null) {
+    return refuseFrom("before and after data", "campaign document", add);
+  }
+  verifyScores(files, { ...parts, records, document: document.value, roots }, options, add);
 }
 
-type ScoreParts = { records: LedgerRecord[]; document: CampaignDocument; roots: Roots };
+type ScoreParts = ContentParts & {
+  records: LedgerRecord[];
+  document: CampaignDocument;
+  roots: Roots;
+};
 
 function verifyScores(files: Files, parts: ScoreParts, options: VerifyOptions, add: Add): void {
   const { records, document, roots } = parts;
   const asOf = { size: roots.size, treeHead: base64(roots.of(roots.size) as Uint8Array) };
   const standings = checkStandings(files, { document, asOf }, options.score);
-  add(standings.line);
   if (standings.value === null) {
-    add(notChecked("before and after data", "standings"));
-    add(notChecked("tables", "standings"));
+    refuseFrom("before and after data", "standings", add);
+    add(standings.line);
     return;
   }
+  add(standings.line);
   add(checkOrder(records, document, standings.value));
-  add(checkTables(files, document, standings.value));
+  const sense = options.sensitivity ?? sensitivityOf;
+  add(checkSensitivity(files, { document, standings: standings.value }, sense));
+  verifyReading(files, { ...parts, standings: standings.value }, options, add);
 }
 
-/** What this version's archives don't hold: said, never passed over. */
-function addAbsent(files: Files, records: LedgerRecord[] | null, add: Add): void {
-  add(
-    records === null
-      ? notChecked("seals", "payloads")
-      : notPresent("seals", `none among ${counted(records.length, "entry", "entries")}`),
-  );
-  const unknown = (check: CheckName, paths: string[]) =>
-    paths.length === 0
-      ? notPresent(check, "none")
-      : failed(check, `this version can't check ${counted(paths.length, "file")}: ${paths[0]}`);
-  const paths = [...files.keys()];
-  add(
-    unknown(
-      "time-stamps",
-      paths.filter((path) => path.endsWith(".tsr")),
-    ),
-  );
-  add(
-    unknown(
-      "figures",
-      paths.filter((path) => path.startsWith("figures/")),
-    ),
-  );
+/** The files for readers, made again from what was found in the archive. */
+function verifyReading(
+  files: Files,
+  parts: ScoreParts & { standings: Standings },
+  options: VerifyOptions,
+  add: Add,
+): void {
+  const { records, document, standings, manifest, signers } = parts;
+  const heads = readHeads(files).heads.map(({ head }) => head.size);
+  const timeline = checkTimeline(files, { records, heads, standings }, options.score);
+  add(timeline.line);
+  if (timeline.value === null) return refuseFrom("tables", "timeline", add);
+  if (manifest === null) return refuseFrom("tables", "files against the manifest", add);
+  const { files: listed, ...facts } = manifest;
+  const substance = { document, standings, timeline: timeline.value, records, manifest: facts };
+  add(checkTables(files, substance));
+  add(checkFigures(files, substance));
+  add(checkTexts(files, substance, { listed, signers }));
 }

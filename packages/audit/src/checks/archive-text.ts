@@ -18,16 +18,32 @@ export function readText(
   }
 }
 
-/** The lines of a file in which each line ends in a newline. */
+/**
+ * The lines of a file in which each line ends in a newline. Read line by line: all of a long ledger
+ * is more than one string may hold.
+ */
 export function readLines(
   files: ReadonlyMap<string, Uint8Array>,
   path: string,
 ): { ok: true; lines: string[] } | TextFault {
-  const read = readText(files, path);
-  if (!read.ok) return read;
-  if (!read.text.endsWith("\n")) return { ok: false, fault: `${path} doesn't end in a newline` };
-  return { ok: true, lines: read.text.slice(0, -1).split("\n") };
+  const bytes = files.get(path);
+  if (bytes === undefined) return { ok: false, fault: `${path} is missing` };
+  if (bytes.at(-1) !== NEWLINE) return { ok: false, fault: `${path} doesn't end in a newline` };
+  const decoder = new TextDecoder("utf-8", { fatal: true, ignoreBOM: true });
+  const lines: string[] = [];
+  for (let from = 0; from < bytes.length;) {
+    const to = bytes.indexOf(NEWLINE, from);
+    try {
+      lines.push(decoder.decode(bytes.subarray(from, to)));
+    } catch {
+      return { ok: false, fault: `${path}, line ${lines.length + 1} is not UTF-8` };
+    }
+    from = to + 1;
+  }
+  return { ok: true, lines };
 }
+
+const NEWLINE = 0x0a;
 
 /**
  * A JSON object of the archive. One form only, as the export writes it: a doubled name, which JSON

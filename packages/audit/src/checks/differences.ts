@@ -1,7 +1,12 @@
 import { below } from "@weighhouse/campaign/pointer";
 
 /** How far two numbers may lie apart: |a - b| <= tolerance * max(1, |a|, |b|). 0: the same double. */
-export type CompareOptions = { tolerance: number; passOver?: (pointer: string) => boolean };
+export type CompareOptions = {
+  tolerance: number;
+  /** How much farther apart two numbers may lie, absolutely. */
+  within?: (pointer: string) => number;
+  passOver?: (pointer: string) => boolean;
+};
 
 export type Comparison = {
   /** Numbers compared, the equal ones too. */
@@ -27,7 +32,10 @@ function compareAt(pointer: string, found: unknown, computed: unknown, walk: Wal
   if (walk.passOver?.(pointer) === true) return;
   if (typeof found === "number" && typeof computed === "number") {
     walk.comparison.numbers += 1;
-    if (!close(found, computed, walk.tolerance)) note(pointer, found, computed, walk);
+    const apart = Math.abs(found - computed);
+    if (!close(found, computed, walk.tolerance) && !(apart <= (walk.within?.(pointer) ?? 0))) {
+      note(pointer, found, computed, walk);
+    }
     return;
   }
   if (Array.isArray(found) && Array.isArray(computed)) {

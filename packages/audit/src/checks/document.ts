@@ -1,7 +1,4 @@
-import { CampaignError } from "@weighhouse/campaign/campaign-error";
-import type { LedgerRecord } from "@weighhouse/campaign/changes";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
-import { foldRecords } from "@weighhouse/campaign/fold";
 import { problemLine } from "@weighhouse/campaign/problem";
 import { readCampaign } from "@weighhouse/campaign/read";
 import { readJson } from "./archive-text";
@@ -11,19 +8,14 @@ import type { Checked } from "./line";
 import { compareJson } from "./differences";
 import { DOCUMENT } from "../layout";
 
-/** `campaign.json` is what the entries add up to. Gives the document folded from the entries. */
-export function checkDocument(
-  files: Files,
-  records: readonly LedgerRecord[],
-): Checked<CampaignDocument> {
+/**
+ * `campaign.json` is what the entries add up to, and that is a campaign.
+ *
+ * @param folded the document from the entries
+ * @returns it, where an engine may be asked to score it
+ */
+export function checkDocument(files: Files, folded: CampaignDocument): Checked<CampaignDocument> {
   const check = "campaign document";
-  let folded: CampaignDocument;
-  try {
-    folded = foldRecords(records);
-  } catch (error) {
-    if (!(error instanceof CampaignError)) throw error;
-    return { line: failed(check, `the entries don't add up: ${error.message}`), value: null };
-  }
   const read = readJson(files, DOCUMENT);
   if (!read.ok) return { line: failed(check, read.fault), value: folded };
   const { differences } = compareJson(read.value, folded, { tolerance: 0 });

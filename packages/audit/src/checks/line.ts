@@ -13,14 +13,18 @@ export const CHECKS = [
   "consistency of the tree heads",
   "keys you hold",
   "tree head you hold",
+  "time-stamps",
   "clock",
+  "rules of the entries",
+  "seals",
   "campaign document",
   "before and after data",
   "standings",
+  "timeline",
+  "sensitivity",
   "tables",
-  "seals",
-  "time-stamps",
   "figures",
+  "texts",
 ] as const;
 export type CheckName = (typeof CHECKS)[number];
 

@@ -1,6 +1,6 @@
 import type { LedgerRecord } from "@weighhouse/campaign/changes";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
-import type { HypothesisContent, Payload } from "@weighhouse/campaign/entries";
+import type { HypothesisContent, MeasurementContent, Payload } from "@weighhouse/campaign/entries";
 import { compareInstants } from "@weighhouse/campaign/instants";
 import type { Order, Standings } from "@weighhouse/campaign/standings";
 import { counted, judged } from "./line";
@@ -10,8 +10,8 @@ import { STANDINGS } from "../layout";
 /** When something was put on record. */
 type Filed = { seq: number; at: string };
 
-/** What the ledger knows of the measurements of one measurand. */
-type Posted = { first: Filed; observedAt: (string | null)[]; knownSince: string[] };
+/** What the ledger knows of the measurements of one measurand, withdrawn and corrected ones too. */
+type Posted = { measurand: string; first: Filed; observedAt: (string | null)[] };
 
 /**
  * Each verdict's order, by the numbers and times of the entries themselves: not by the document's
@@ -38,7 +38,8 @@ export function checkOrder(
     const posted = (inputs.get(row.measurand) ?? [row.measurand]).flatMap(
       (measurand) => postings.get(measurand) ?? [],
     );
-    const found = orderOf(filed, posted, closes);
+    const known = knownTimes(document, posted);
+    const found = orderOf(filed, { posted, known, closes });
     if (found.order === "after") after += 1;
     if (found.order !== row.order) {
       faults.push(`${place}: found ${row.order}, but ${found.because}`);
@@ -50,20 +51,34 @@ export function checkOrder(
 
 function postingsOf(records: readonly LedgerRecord[]): Map<string, Posted> {
   const postings = new Map<string, Posted>();
-  for (const { kind, seq, at, payload } of records) {
-    if (kind !== "measurements.posted") continue;
-    for (const measurement of (payload as Payload<"measurements.posted">).measurements) {
-      const posted = postings.get(measurement.measurand) ?? {
-        first: { seq, at },
-        observedAt: [],
-        knownSince: [],
-      };
-      posted.observedAt.push(measurement.observedAt);
-      if (measurement.knownSince !== null) posted.knownSince.push(measurement.knownSince);
-      postings.set(measurement.measurand, posted);
+  for (const record of records) {
+    for (const { measurand, observedAt } of measurementsIn(record)) {
+      const first = { seq: record.seq, at: record.at };
+      const posted = postings.get(measurand) ?? { measurand, first, observedAt: [] };
+      posted.observedAt.push(observedAt);
+      postings.set(measurand, posted);
     }
   }
   return postings;
+}
+
+type Dated = { measurand: string; observedAt: string | null };
+
+/** A sealed measurement counts as posted when it is revealed; a correction may change its time. */
+function measurementsIn({ kind, payload }: LedgerRecord): Dated[] {
+  switch (kind) {
+    case "measurements.posted":
+      return (payload as Payload<"measurements.posted">).measurements;
+    case "measurement.corrected":
+      return [(payload as Payload<"measurement.corrected">).measurement];
+    case "measurement.revealed": {
+      const { content } = payload as Payload<"measurement.revealed">;
+      const { measurand, observedAt = null } = content as Partial<MeasurementContent>;
+      return measurand === undefined ? [] : [{ measurand, observedAt }];
+    }
+    default:
+      return [];
+  }
 }
 
 /** The entry that filed a prediction as it stands in the document. */
@@ -77,31 +92,48 @@ function filedAt(
     ?.predictions.find(({ measurand }) => measurand === row.measurand);
   if (prediction === undefined) return "no prediction";
   const record = records.find(
-    ({ kind, at, payload }) =>
-      at === prediction.registeredAt &&
-      (kind === "hypothesis.registered" || kind === "hypothesis.amended") &&
-      (payload as HypothesisContent).key === row.hypothesis,
+    (one) => one.at === prediction.registeredAt && files(one, row.hypothesis, row.measurand),
   );
   return record === undefined ? "not in the ledger" : { seq: record.seq, at: record.at };
 }
 
+/** A sealed prediction is filed by its seal, though its content comes later. */
+function files({ kind, payload }: LedgerRecord, hypothesis: string, measurand: string): boolean {
+  if (kind === "hypothesis.registered" || kind === "hypothesis.amended") {
+    return (payload as HypothesisContent).key === hypothesis;
+  }
+  if (kind !== "prediction.sealed") return false;
+  const sealed = payload as Payload<"prediction.sealed">;
+  return sealed.hypothesis === hypothesis && sealed.measurand === measurand;
+}
+
+/** Since when results that still stand were known before they were posted, by their own word. */
+function knownTimes({ measurements }: CampaignDocument, posted: readonly Posted[]): string[] {
+  const measurands = new Set(posted.map(({ measurand }) => measurand));
+  return measurements.flatMap(({ measurand, knownSince }) =>
+    knownSince !== null && measurands.has(measurand) ? [knownSince] : [],
+  );
+}
+
 function orderOf(
   filed: Filed,
-  posted: readonly Posted[],
-  closes: string | null,
+  {
+    posted,
+    known,
+    closes,
+  }: { posted: readonly Posted[]; known: readonly string[]; closes: string | null },
 ): { order: Order; because: string } {
   const by = `entry ${filed.seq} of ${filed.at} files it`;
   if (closes !== null && compareInstants(filed.at, closes) > 0) {
     return { order: "after", because: `${by}, after registration's close at ${closes}` };
   }
-  for (const { first, knownSince } of posted) {
-    if (first.seq < filed.seq) {
-      return { order: "after", because: `${by}, after entry ${first.seq} posted a measurement` };
-    }
-    const known = knownSince.find((since) => compareInstants(since, filed.at) <= 0);
-    if (known !== undefined) {
-      return { order: "after", because: `${by}, when a measurement was known since ${known}` };
-    }
+  const first = posted.find((one) => one.first.seq < filed.seq)?.first;
+  if (first !== undefined) {
+    return { order: "after", because: `${by}, after entry ${first.seq} posted a measurement` };
+  }
+  const since = known.find((time) => compareInstants(time, filed.at) <= 0);
+  if (since !== undefined) {
+    return { order: "after", because: `${by}, when a measurement was known since ${since}` };
   }
   // An undated observation can't be said to come before the filing; its posting didn't.
   const seen = posted

@@ -1,5 +1,3 @@
-import type { CampaignDocument } from "@weighhouse/campaign/document";
-import type { Standings } from "@weighhouse/campaign/standings";
 import { writeCsv } from "@weighhouse/tables/write-csv";
 import type { CsvCell } from "@weighhouse/tables/write-csv";
 import { readText } from "./archive-text";
@@ -7,20 +5,28 @@ import type { Files } from "./container";
 import { readCells } from "./csv-cells";
 import { counted, judged } from "./line";
 import type { CheckLine } from "./line";
+import { checkWritten } from "./written";
+import { texFiles } from "../content";
+import type { Substance } from "../content";
 import { tablePath } from "../layout";
 import { tablesOf } from "../tables";
 import type { ArchiveTable } from "../tables";
 
-/** Each cell of `tables/*.csv` is the document's or the standings' value; numbers as numbers. */
-export function checkTables(
-  files: Files,
-  document: CampaignDocument,
-  standings: Standings,
-): CheckLine {
-  const tables = tablesOf(document, standings);
+/**
+ * Each cell of `tables/*.csv` is the document's or the standings' value, numbers as numbers; and
+ * `tables/*.tex` prints the same.
+ */
+export function checkTables(files: Files, substance: Substance): CheckLine {
+  const { document, standings, timeline, manifest } = substance;
+  const tables = tablesOf(document, standings, timeline);
   const faults = tables.flatMap((table) => tableFaults(files, table));
   const cells = tables.reduce((sum, { header, rows }) => sum + header.length * rows.length, 0);
-  return judged("tables", faults, `${counted(tables.length, "table")}, ${cells} cells as computed`);
+  const printed = checkWritten(files, texFiles(substance), manifest.writer);
+  return judged(
+    "tables",
+    [...faults, ...printed.faults],
+    `${counted(tables.length, "table")}, ${cells} cells as computed; for print, ${printed.detail}`,
+  );
 }
 
 function tableFaults(files: Files, table: ArchiveTable): string[] {

@@ -2,9 +2,21 @@ import { nodeHasher } from "@weighhouse/ledger/node-hasher";
 import { signNote } from "@weighhouse/ledger/signed-note";
 import type { NoteSigner } from "@weighhouse/ledger/signed-note";
 import { encodeVerifierKey, fingerprint } from "@weighhouse/ledger/verifier-key";
-import { jsonText, keyPath, MANIFEST, MANIFEST_NOTE } from "../layout";
+import { canonicalJson } from "@weighhouse/ledger/canonical";
+import { parseTreeHead } from "@weighhouse/ledger/tree-head";
+import {
+  headPath,
+  jsonText,
+  keyPath,
+  LEDGER,
+  MANIFEST,
+  MANIFEST_NOTE,
+  PAYLOADS,
+  sizeOfHeadPath,
+} from "../layout";
 import { listFiles, manifestNoteText } from "../manifest";
 import type { Manifest } from "../manifest";
+import type { SyntheticLedger } from "./synthetic-ledger";
 import { unpackFiles } from "../zip/read";
 import { packFiles } from "../zip/write";
 
@@ -38,6 +50,31 @@ export function forge(
   files.set(MANIFEST, new TextEncoder().encode(text));
   files.set(MANIFEST_NOTE, new TextEncoder().encode(note));
   return packFiles([...files].map(([path, bytes]) => ({ path, bytes })));
+}
+
+/**
+ * The archive with another ledger in it, heads and manifest signed by the forger: entries that no
+ * server would have appended, which no export could write.
+ */
+export function forgeLedger(
+  archive: Uint8Array,
+  ledger: Pick<SyntheticLedger, "entries" | "payloads" | "heads">,
+  forger: NoteSigner,
+): Uint8Array {
+  const lines = (texts: readonly string[]) => texts.map((text) => `${text}\n`).join("");
+  const old = [...unpackFiles(archive).keys()].filter((path) => sizeOfHeadPath(path) !== null);
+  return forge(
+    archive,
+    {
+      ...Object.fromEntries(old.map((path) => [path, () => ""])),
+      [LEDGER]: () => lines(ledger.entries.map((entry) => canonicalJson(entry))),
+      [PAYLOADS]: () => lines(ledger.payloads),
+      ...Object.fromEntries(
+        ledger.heads.map((note) => [headPath(parseTreeHead(note).size), () => note]),
+      ),
+    },
+    forger,
+  );
 }
 
 /** Replaces text that must be there, so that no test changes nothing. */

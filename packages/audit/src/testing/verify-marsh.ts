@@ -1,4 +1,6 @@
+import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { scoreCampaign } from "@weighhouse/engine/score";
+import { sensitivityOf } from "@weighhouse/engine/sensitivity/sensitivity";
 import { nodeHasher } from "@weighhouse/ledger/node-hasher";
 import { nodeVerifySignature } from "@weighhouse/ledger/node-keys";
 import { formatTreeHead, signTreeHead } from "@weighhouse/ledger/tree-head";
@@ -18,8 +20,19 @@ export function verify(bytes: Uint8Array, options: Partial<VerifyOptions> = {}):
     hasher: nodeHasher,
     verifySignature: nodeVerifySignature,
     score: scoreCampaign,
+    sensitivity: rememberedSensitivity,
     ...options,
   });
+}
+
+const remembered = new Map<string, ReturnType<typeof sensitivityOf>>();
+
+/** Computed once for each document: tests verify hundreds of archives of the same one. */
+function rememberedSensitivity(document: CampaignDocument): ReturnType<typeof sensitivityOf> {
+  const text = JSON.stringify(document);
+  const known = remembered.get(text) ?? sensitivityOf(document);
+  remembered.set(text, known);
+  return known;
 }
 
 /** `outcome: detail` of one line. */
