@@ -53,7 +53,7 @@ describe("analytic evidences from four dimensions on", () => {
   });
 
   test("two peaks of unequal widths", () => {
-    const peaks = [normal(4, { mean: 0.3, sd: 0.03 }), normal(4, { mean: 0.7, sd: 0.05 })];
+    const peaks = [normal(4, { mean: 0.25, sd: 0.04 }), normal(4, { mean: 0.7, sd: 0.06 })];
     check((u) => logSumExp(peaks.map((peak) => peak(u))), 4, Math.LN2);
   });
 
@@ -109,17 +109,17 @@ test("the same seed gives the same bytes, another one another run", () => {
   expect(run(6).ln).not.toBe(first.ln);
 });
 
-test("errors are honest: over eight seeds their mean square is that of a standard normal", () => {
+test("errors are honest: over six seeds their mean square is that of a standard normal", () => {
   const sd = 0.25;
   const f = normal(4, { mean: 0.5, sd });
   const exact = 4 * logNormalInterval(-0.5 / sd, 0.5 / sd);
   let squares = 0;
-  for (let seed = 1; seed <= 8; seed += 1) {
+  for (let seed = 1; seed <= 6; seed += 1) {
     const { ln, error } = integrateUnitCube(f, 4, { seed });
     squares += ((ln - exact) / error) ** 2;
   }
-  // Chi-square of 8 degrees of freedom: 99.9 % of it below 26.1 (NIST handbook, upper tails).
-  expect(squares).toBeLessThan(26.1);
+  // Chi-square of 6 degrees of freedom: 99.9 % of it below 22.5 (NIST handbook, upper tails).
+  expect(squares).toBeLessThan(22.5);
 });
 
 test("the posterior's mean, sd and quantiles within their Monte Carlo noise", () => {

@@ -27,12 +27,12 @@ test("uniforms and normals have the moments of theirs", () => {
     normalSquares += z * z;
   }
   expect(inside).toBe(true);
-  // Within four standard errors: sd of x is 0.289, of x^2 0.298, of z 1, of z^2 1.414.
+  // Within four standard errors: sd of x is 0.289, of x^2 0.298, of z 1, of z^2 the root of 2.
   const bound = 4 / Math.sqrt(count);
   expect(Math.abs(sum / count - 1 / 2)).toBeLessThan(0.289 * bound);
   expect(Math.abs(squares / count - 1 / 3)).toBeLessThan(0.298 * bound);
   expect(Math.abs(normals / count)).toBeLessThan(bound);
-  expect(Math.abs(normalSquares / count - 1)).toBeLessThan(1.414 * bound);
+  expect(Math.abs(normalSquares / count - 1)).toBeLessThan(Math.SQRT2 * bound);
 });
 
 test("seeds that differ anywhere in 53 bits give other numbers", () => {
