@@ -3,7 +3,7 @@ import type { Standings } from "@weighhouse/campaign/standings";
 import { formatCount } from "@weighhouse/figures/numbers";
 import { MOST_MEASURAND_FIGURES } from "./figures";
 import type { Manifest } from "./manifest";
-import { inClosedForm } from "./timeline";
+import { inClosedForm } from "./closed-form";
 
 /** Sensitivity scores the campaign some hundreds of times: up to here that takes seconds. */
 const MOST_FOR_SENSITIVITY = 2000;

@@ -12,7 +12,7 @@ import { formatCount, formatNumber, formatPercent } from "@weighhouse/figures/nu
 import { formatLog10B, formatPosterior } from "@weighhouse/figures/standing-numbers";
 import { formatDate } from "@weighhouse/figures/times";
 import { counted } from "./checks/line";
-import { inClosedForm } from "./timeline";
+import { inClosedForm } from "./closed-form";
 
 export type MethodsFacts = {
   document: CampaignDocument;

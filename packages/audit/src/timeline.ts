@@ -2,6 +2,7 @@ import type { LedgerRecord } from "@weighhouse/campaign/changes";
 import { CampaignFold } from "@weighhouse/campaign/fold";
 import type { Standings } from "@weighhouse/campaign/standings";
 import type { Score } from "./checks/standings";
+import { inClosedForm } from "./closed-form";
 
 /** A hypothesis's ln evidence as of the first `size` entries. */
 export type TimelineRow = {
@@ -52,11 +53,6 @@ function pointsFor({ hypotheses, measurements }: Standings): number {
   if (!inClosedForm(hypotheses)) return POINTS_WHERE_NUMERICAL;
   const affordable = Math.floor(MEASUREMENTS_SCORED / Math.max(1, measurements.counted));
   return Math.max(LEAST_POINTS, Math.min(MOST_POINTS, affordable));
-}
-
-/** Whether every evidence has a closed form. */
-export function inClosedForm(hypotheses: Standings["hypotheses"]): boolean {
-  return hypotheses.every(({ lnEvidenceError }) => lnEvidenceError === 0);
 }
 
 /** At most so many of a list, evenly, its first and last among them. */

@@ -31,16 +31,23 @@ export function gridSvg(input: GridInput, options: { widthPx: number }): string 
   const rows = rowsOf(input);
   const drawn =
     wide <= options.widthPx ? drawGrid(input, rows) : drawStacked(input, rows, options.widthPx);
+  const note = lateNote(input.verdicts, drawn.height);
   return figure(
     {
       id: "grid",
       title: "Verdicts by measurand and hypothesis, tension in sigma first",
       description: gridInWords(input, rows),
       width: wide <= options.widthPx ? wide : Math.max(options.widthPx, 240),
-      height: drawn.height,
+      height: drawn.height + (note.length > 0 ? lineHeight : 0),
     },
-    drawn.body,
+    [...drawn.body, ...note],
   );
+}
+
+/** What the asterisk means, where there is one. */
+function lateNote(verdicts: VerdictRow[], top: number): string[] {
+  if (!verdicts.some(({ order }) => order === "after")) return [];
+  return block(["* filed after data: not counted"], MARGIN, top - MARGIN, false, "quiet");
 }
 
 function rowsOf({ measurands, hypotheses, verdicts }: GridInput): Cell[][] {

@@ -75,8 +75,8 @@ export function errorBar(
       `l${back} ${short(-reach)}M${short(end)} ${short(y)}l${back} ${short(reach)}`;
     return [element("path", { d: path, "stroke-width": 1.4, ...style })];
   }
-  const low = within(plot.x.at(measurement.low ?? measurement.value), plot);
-  const high = within(plot.x.at(measurement.high ?? measurement.value), plot);
+  const low = measurement.low === null ? plot.left : within(plot.x.at(measurement.low), plot);
+  const high = measurement.high === null ? plot.right : within(plot.x.at(measurement.high), plot);
   return [
     element("path", {
       d: `M${short(low)} ${short(y)}H${short(high)}M${short(low)} ${short(y - reach)}v${short(2 * reach)}M${short(high)} ${short(y - reach)}v${short(2 * reach)}`,

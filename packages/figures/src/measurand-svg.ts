@@ -28,8 +28,8 @@ type Row = { name: string; height: number; draw: (y: number, plot: Plot) => stri
  */
 export function measurandSvg(input: MeasurandInput, options: { widthPx: number }): string {
   const width = Math.max(280, Math.floor(options.widthPx));
-  const rows = rowsOf(input);
   const names = Math.min(220, width * 0.36);
+  const rows = rowsOf(input, names);
   const [left, right] = [MARGIN + names + 10, width - MARGIN - 8];
   const log = input.observable.scale === "log10";
   const range = rangeOf(extent(input), log);
@@ -61,13 +61,16 @@ export function measurandSvg(input: MeasurandInput, options: { widthPx: number }
   );
 }
 
-function rowsOf({ predictions, measurements, combined, observable }: MeasurandInput): Row[] {
+function rowsOf(
+  { predictions, measurements, combined, observable }: MeasurandInput,
+  names: number,
+): Row[] {
   const named = measurements.length <= MOST_NAMED;
   const height = named ? ROW : (MOST_NAMED * ROW) / measurements.length;
   return [
     ...predictions.map((prediction) => ({
       name: prediction.title,
-      height: ROW,
+      height: nameLines(prediction.title, names, 2).length > 1 ? 2 * lineHeight + 4 : ROW,
       draw: (y: number, plot: Plot) => predictionBand(prediction, y, plot),
     })),
     ...measurements.map((measurement, index) => ({
@@ -99,12 +102,17 @@ function extent({ predictions, measurements, combined, observable, reference }: 
 }
 
 function nameOf(row: Row, y: number, width: number): string[] {
-  const style = { measure: estimateTextWidth, fontSize, bold: false, maxLines: 1 };
-  return wrapText(row.name, width, style).map((text) =>
-    textElement(
-      placeText(text, { x: MARGIN, top: y + (row.height - lineHeight) / 2, style: LABEL_STYLE }),
-    ),
+  const lines = nameLines(row.name, width, row.height > ROW + 4 ? 2 : 1);
+  const top = y + (row.height - lines.length * lineHeight) / 2;
+  return lines.map((text, index) =>
+    textElement(placeText(text, { x: MARGIN, top: top + index * lineHeight, style: LABEL_STYLE })),
   );
+}
+
+/** A title has two lines before it is cut, a measurement's id one. */
+function nameLines(name: string, width: number, maxLines: number): string[] {
+  const style = { measure: estimateTextWidth, fontSize, bold: false, maxLines };
+  return wrapText(name, width, style);
 }
 
 function combinedBand(

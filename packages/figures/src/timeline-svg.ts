@@ -17,6 +17,8 @@ export type TimelineInput = {
 const MARGIN = 8;
 const HEIGHT = 320;
 const { fontSize, lineHeight } = LABEL_STYLE;
+/** Room for the axis' name. */
+const TOP = MARGIN + lineHeight + 4;
 
 type Series = TimelineInput["hypotheses"][number] & { steps: Step[] };
 
@@ -40,7 +42,7 @@ export function timelineSvg(input: TimelineInput, options: { widthPx: number }):
     HEIGHT,
     blocks.reduce((sum, size) => sum + size, 0),
   );
-  const values = axis(rangeOf(valuesOf(series)), [MARGIN + height, MARGIN]);
+  const values = axis(rangeOf(valuesOf(series)), [TOP + height, TOP]);
   const gutter = Math.max(
     30,
     ...values.graduations.map(({ text }) => estimateTextWidth(text, fontSize, false) + 8),
@@ -53,13 +55,14 @@ export function timelineSvg(input: TimelineInput, options: { widthPx: number }):
       title: "ln evidence over time",
       description: timelineInWords(input),
       width,
-      height: MARGIN + height + lineHeight + 12,
+      height: TOP + height + lineHeight + 12,
     },
     [
+      textElement(placeText("ln evidence", { x: MARGIN, top: 4, style: LABEL_STYLE }), "quiet"),
       ...values.graduations.flatMap(({ value, text }) =>
         valueLine(text, values.at(value), [gutter, right]),
       ),
-      ...dates(input, times, MARGIN + height + 6),
+      ...dates(input, times, TOP + height + 6),
       ...series.map((one) => steps(one, { times, values, right })),
       ...endLabels(series, labels, { values, right, height, blocks }),
     ],
@@ -145,12 +148,12 @@ function endLabels(
   const tops = spread(
     ends.map(({ index, y }) => {
       const size = at.blocks[index] ?? lineHeight;
-      return { wanted: y - MARGIN - size / 2, size };
+      return { wanted: y - TOP - size / 2, size };
     }),
     at.height,
   );
   return ends.flatMap(({ index, place, y }, order) => {
-    const top = MARGIN + (tops[order] ?? 0);
+    const top = TOP + (tops[order] ?? 0);
     const middle = top + (at.blocks[index] ?? lineHeight) / 2;
     const x = at.right + 28;
     const elbow = `${short(at.right)},${short(y)} ${short(x - 18)},${short(middle)}`;

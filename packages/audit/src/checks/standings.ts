@@ -9,7 +9,7 @@ import { failed, judged } from "./line";
 import type { Checked } from "./line";
 import { compareJson } from "./differences";
 import { statedErrors } from "./differences-within";
-import { inClosedForm } from "../timeline";
+import { inClosedForm } from "../closed-form";
 import { STANDINGS } from "../layout";
 
 /** The engine, as far as an archive needs it. */

@@ -74,7 +74,7 @@ function texTable<Row>(
     "\\documentclass[10pt,landscape]{article}",
     "\\usepackage[a4paper,margin=15mm]{geometry}",
     "\\usepackage{array,booktabs,longtable}",
-    "\\setlength{\\tabcolsep}{3pt}",
+    "\\setlength{\\tabcolsep}{5pt}",
     "\\begin{document}",
     "\\footnotesize",
     "% from here",
@@ -121,7 +121,7 @@ function titlesOf(document: CampaignDocument): Titles {
 function hypothesisColumns(): Column<CampaignDocument["hypotheses"][number]>[] {
   return [
     { head: "Key", share: 0.14, cell: ({ key }) => key },
-    { head: "Hypothesis", share: 0.2, cell: ({ title }) => title },
+    { head: "Hypothesis", share: 0.19, cell: ({ title }) => title },
     { head: "Statement", share: 0.32, cell: ({ statement }) => statement ?? ABSENT },
     { head: "Team", share: 0.1, cell: ({ team }) => team ?? ABSENT },
     { head: "Weight", cell: ({ weight }) => formatNumber(weight) },
@@ -138,12 +138,12 @@ function predictionColumns(titles: Titles): Column<PredictionRow>[] {
     { head: "Quantity", share: 0.18, cell: (row) => titles.measurand(row.prediction.measurand) },
     {
       head: "Expected",
-      share: 0.2,
+      share: 0.19,
       cell: (row) => predictedRange(row.prediction, observable(row)),
     },
     {
       head: "Theory error",
-      share: 0.2,
+      share: 0.19,
       cell: (row) => toleranceWords(row.prediction, observable(row)),
     },
     { head: "Filed (UTC)", share: 0.15, cell: (row) => instantWords(row.prediction.registeredAt) },
@@ -153,7 +153,7 @@ function predictionColumns(titles: Titles): Column<PredictionRow>[] {
 function measurementColumns(titles: Titles): Column<Measurement>[] {
   return [
     { head: "Measurement", share: 0.22, cell: ({ id }) => id },
-    { head: "Quantity", share: 0.2, cell: (row) => titles.measurand(row.measurand) },
+    { head: "Quantity", share: 0.19, cell: (row) => titles.measurand(row.measurand) },
     {
       head: "Result",
       share: 0.22,
@@ -166,8 +166,8 @@ function measurementColumns(titles: Titles): Column<Measurement>[] {
 
 function verdictColumns(titles: Titles): Column<Standings["verdicts"][number]>[] {
   return [
-    { head: "Quantity", share: 0.2, cell: (row) => titles.measurand(row.measurand) },
-    { head: "Hypothesis", share: 0.2, cell: (row) => titles.hypothesis(row.hypothesis) },
+    { head: "Quantity", share: 0.19, cell: (row) => titles.measurand(row.measurand) },
+    { head: "Hypothesis", share: 0.19, cell: (row) => titles.hypothesis(row.hypothesis) },
     {
       head: "Measured",
       share: 0.17,
