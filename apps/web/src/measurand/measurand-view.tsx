@@ -91,6 +91,7 @@ export function MeasurandView(props: {
             observable={observable}
             facilities={document.facilities}
             sharedErrors={document.sharedErrors}
+            base={`/campaigns/${document.campaign.key}`}
           />
         ) : (
           <Empty title="None yet.">

@@ -1,6 +1,7 @@
 import type { CampaignDocument, Measurement, Observable } from "@weighhouse/campaign/document";
 import { formatNumber } from "@weighhouse/figures/numbers";
 import { resultInWords } from "@/campaign/plain-words";
+import { KeptLink } from "@/look/kept-link";
 import { Table } from "@/look/table";
 import { Time } from "@/look/time";
 
@@ -10,6 +11,7 @@ export function MeasurementRows(props: {
   observable: Observable;
   facilities: CampaignDocument["facilities"];
   sharedErrors: CampaignDocument["sharedErrors"];
+  base: string;
 }) {
   const errors = new Map(props.sharedErrors.map((each) => [each.key, each.title]));
   const facilities = new Map(props.facilities.map((each) => [each.key, each.title]));
@@ -49,7 +51,12 @@ export function MeasurementRows(props: {
             {measurement.postedAt ? <Time at={measurement.postedAt} /> : null}
           </td>
           <td data-label="Id" className="min-w-[16ch]">
-            <code>{measurement.id}</code>
+            <KeptLink
+              className="link font-mono text-[0.92em]"
+              href={`${props.base}/measurements/${encodeURIComponent(measurement.id)}`}
+            >
+              {measurement.id}
+            </KeptLink>
           </td>
         </tr>
       ))}

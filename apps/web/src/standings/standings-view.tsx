@@ -1,14 +1,12 @@
-import { formatLnEvidence } from "@weighhouse/figures/standing-numbers";
-import type { Standings } from "@weighhouse/campaign/standings";
 import { ButtonLink } from "@/look/button";
 import { Empty, Notice } from "@/look/notice";
-import { Num } from "@/look/number";
 import { Section } from "@/look/section";
 import { readCampaign, readStandings, readTimeline } from "@/server/campaign";
 import type { CampaignView } from "@/server/campaign";
 import { AsOf } from "./as-of";
 import { Beam } from "./beam";
 import { beamView } from "./beam-input";
+import { Caution } from "./caution";
 import { DeclaredRules } from "./declared-rules";
 import { MovedNote } from "./moved-note";
 import { Pairs } from "./pairs-table";
@@ -114,38 +112,6 @@ export async function StandingsView(props: { campaignKey: string; size: number |
       <Section title="As declared" id="declared">
         <DeclaredRules document={document} />
       </Section>
-    </div>
-  );
-}
-
-function Caution({ standings }: { standings: Standings }) {
-  return (
-    <div className="mt-3 text-[13.5px] text-quiet">
-      <p className="max-w-[90ch]">
-        These compare the hypotheses on this table under their stated priors and theory errors. The
-        posterior is not the probability that any of them is true.
-      </p>
-      <p className="mt-1 max-w-[90ch]">
-        No model at all, charged the no-model range (reference) of every quantity, has ln evidence{" "}
-        <Num
-          text={formatLnEvidence(standings.noModel.lnEvidence)}
-          exact={standings.noModel.lnEvidence}
-          at="/noModel/lnEvidence"
-        />
-        . Counted are{" "}
-        <Num
-          text={String(standings.measurements.counted)}
-          exact={standings.measurements.counted}
-          at="/measurements/counted"
-        />{" "}
-        measurements,{" "}
-        <Num
-          text={String(standings.measurements.setAside)}
-          exact={standings.measurements.setAside}
-          at="/measurements/setAside"
-        />{" "}
-        set aside; by engine {standings.engine}.
-      </p>
     </div>
   );
 }

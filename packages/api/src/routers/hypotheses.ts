@@ -1,4 +1,5 @@
 import { amendHypothesis, amendHypothesisInput } from "@weighhouse/desk/amend-hypothesis";
+import { readRetired, readRetiredInput } from "@weighhouse/desk/read-retired";
 import { registerHypothesis, registerHypothesisInput } from "@weighhouse/desk/register-hypothesis";
 import { retireHypothesis, retireHypothesisInput } from "@weighhouse/desk/retire-hypothesis";
 import { procedure, router, takes } from "../trpc";
@@ -13,4 +14,7 @@ export const hypothesesRouter = router({
   retire: procedure
     .input(takes(retireHypothesisInput))
     .mutation(({ ctx, input }) => retireHypothesis(ctx.desk, ctx.actor, input)),
+  retired: procedure
+    .input(takes(readRetiredInput))
+    .query(({ ctx, input }) => readRetired(ctx.desk, ctx.actor, input)),
 });

@@ -1,4 +1,5 @@
 import { citeStandings, citeStandingsInput } from "@weighhouse/desk/cite-standings";
+import { readCitations, readCitationsInput } from "@weighhouse/desk/read-citations";
 import { readCitation, readCitationInput } from "@weighhouse/desk/read-citation";
 import { readStandings, readStandingsInput } from "@weighhouse/desk/read-standings";
 import { readTimeline, readTimelineInput } from "@weighhouse/desk/read-timeline";
@@ -17,4 +18,7 @@ export const standingsRouter = router({
   cited: procedure
     .input(takes(readCitationInput))
     .query(({ ctx, input }) => readCitation(ctx.desk, ctx.actor, input)),
+  citations: procedure
+    .input(takes(readCitationsInput))
+    .query(({ ctx, input }) => readCitations(ctx.desk, ctx.actor, input)),
 });

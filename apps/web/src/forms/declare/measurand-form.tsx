@@ -47,12 +47,13 @@ export function MeasurandForm({ document }: { document: CampaignDocument }) {
       send={(measurand) => client.declare.measurand.mutate({ key, measurand })}
       done={({ title }) => `“${title}” is declared. Teams can predict it now.`}
     >
-      <Fields document={document} />
+      <MeasurandFields document={document} />
     </PartForm>
   );
 }
 
-function Fields({ document }: { document: CampaignDocument }) {
+/** The fields of a quantity, as it is declared or proposed. */
+export function MeasurandFields({ document }: { document: CampaignDocument }) {
   const { register, formState } = useFormContext<MeasurandDraft>();
   const { errors } = formState;
   const chosen = useWatch<MeasurandDraft, "observable">({ name: "observable" });

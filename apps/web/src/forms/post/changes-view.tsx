@@ -9,7 +9,10 @@ import { verdictWords } from "@/look/verdict-words";
 import { hypothesisName, standingsChanges, verdictChanges } from "./changes";
 
 /** Which verdicts would turn and how the beam would move, if these were entered. */
-export function ChangesView(props: { document: CampaignDocument; preview: MeasurementsPreview }) {
+export function ChangesView(props: {
+  document: CampaignDocument;
+  preview: Pick<MeasurementsPreview, "changes">;
+}) {
   const { document, preview } = props;
   if (preview.changes === null) return null;
   const turned = verdictChanges(preview.changes);

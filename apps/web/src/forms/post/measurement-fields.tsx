@@ -11,7 +11,14 @@ import type { MeasurementDraft } from "./measurement-draft";
 const typed = { autoComplete: "off" } as const;
 const number = { inputMode: "decimal", autoComplete: "off" } as const;
 
-export function MeasurementFields({ document }: { document: CampaignDocument }) {
+export function MeasurementFields(props: {
+  document: CampaignDocument;
+  /** The id stands fast: it is a measurement that is there. */
+  fixedId?: boolean;
+  /** Nobody makes one here: it has to be given. */
+  idNeeded?: boolean;
+}) {
+  const { document, fixedId = false, idNeeded = false } = props;
   const { register, formState } = useFormContext<MeasurementDraft>();
   const chosen = useWatch<MeasurementDraft, "measurand">({ name: "measurand" });
   const { errors } = formState;
@@ -78,8 +85,10 @@ export function MeasurementFields({ document }: { document: CampaignDocument }) 
         />
       </FieldRow>
       <SharedErrors document={document} />
-      <details className="mb-3" open={wrongInside || undefined}>
-        <summary className="cursor-pointer text-[14.5px]">Batch, status, source, id</summary>
+      <details className="mb-3" open={wrongInside || idNeeded || undefined}>
+        <summary className="cursor-pointer text-[14.5px]">
+          Batch, status, source{fixedId ? ", same data" : ", id"}
+        </summary>
         <div className="mt-2">
           <FieldRow>
             <Field
@@ -109,13 +118,19 @@ export function MeasurementFields({ document }: { document: CampaignDocument }) 
               error={errors.sameData?.message}
               {...register("sameData")}
             />
-            <Field
-              label="Id"
-              help="Made from facility, time and content if empty."
-              {...typed}
-              error={errors.id?.message}
-              {...register("id")}
-            />
+            {fixedId ? null : (
+              <Field
+                label="Id"
+                help={
+                  idNeeded
+                    ? "It is shown once the seal is open: 1 to 200 of A-Z, a-z, 0-9, . _ : and -."
+                    : "Made from facility, time and content if empty."
+                }
+                {...typed}
+                error={errors.id?.message}
+                {...register("id")}
+              />
+            )}
           </FieldRow>
         </div>
       </details>

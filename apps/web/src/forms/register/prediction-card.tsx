@@ -16,8 +16,10 @@ export function PredictionCard(props: {
   document: CampaignDocument;
   quantity: Quantity;
   index: number;
+  /** It speaks, under a seal: there is no silence to choose. */
+  sealing?: boolean;
 }) {
-  const { document, quantity, index } = props;
+  const { document, quantity, index, sealing = false } = props;
   const { register, formState } = useFormContext<HypothesisDraft>();
   const draft = useWatch<HypothesisDraft, `predictions.${number}`>({
     name: `predictions.${index}`,
@@ -47,10 +49,12 @@ export function PredictionCard(props: {
           </strong>
         )}
       </p>
-      <div className="mb-3 flex flex-wrap gap-x-6 gap-y-1">
-        <Side label="We say nothing" value="silent" field={register(`${at}.says`)} />
-        <Side label="We predict a value" value="number" field={register(`${at}.says`)} />
-      </div>
+      {sealing ? null : (
+        <div className="mb-3 flex flex-wrap gap-x-6 gap-y-1">
+          <Side label="We say nothing" value="silent" field={register(`${at}.says`)} />
+          <Side label="We predict a value" value="number" field={register(`${at}.says`)} />
+        </div>
+      )}
       <div className={speaks ? "grid gap-x-8 md:grid-cols-[1.1fr_1fr]" : ""}>
         {speaks ? (
           <div className="min-w-0">

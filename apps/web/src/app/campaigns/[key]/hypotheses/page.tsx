@@ -2,6 +2,7 @@ import type { Metadata } from "next";
 import { CampaignFrame } from "@/campaign/campaign-frame";
 import { HypothesisRows } from "@/hypothesis/hypothesis-rows";
 import { ButtonLink } from "@/look/button";
+import { KeptLink } from "@/look/kept-link";
 import { Empty } from "@/look/notice";
 import { Section } from "@/look/section";
 import { readCampaign, readStandings, sizeFrom } from "@/server/campaign";
@@ -19,7 +20,15 @@ export default async function HypothesesPage(props: {
   const member = role === "coordinator" || role === "member";
   return (
     <CampaignFrame campaignKey={key} size={size}>
-      <Section title="Hypotheses" gloss="in order of registration">
+      <Section
+        title="Hypotheses"
+        gloss="in order of registration"
+        actions={
+          <KeptLink className="link text-[14px]" href={`/campaigns/${key}/seals`}>
+            Seals
+          </KeptLink>
+        }
+      >
         {document.hypotheses.length > 0 ? (
           <HypothesisRows document={document} standings={scored.standings} />
         ) : (

@@ -41,6 +41,15 @@ export default async function PostPage(props: {
               </Link>
             ))}
           </nav>
+          {view.document.measurements.length > 0 ? (
+            <p className="mb-4 text-[14px] text-quiet">
+              To correct, set aside or withdraw one, open it from its quantity’s page; to{" "}
+              <Link className="link" href={`/campaigns/${key}/withdraw`}>
+                withdraw many at once
+              </Link>
+              , say whose and when.
+            </p>
+          ) : null}
           {view.document.measurands.length === 0 ? (
             <Empty title="There is no quantity to measure yet.">
               The coordinator declares quantities first.

@@ -3,8 +3,10 @@ import { CampaignFrame } from "@/campaign/campaign-frame";
 import { ButtonLink } from "@/look/button";
 import { Empty } from "@/look/notice";
 import { Section } from "@/look/section";
+import { Proposals } from "@/measurand/proposals";
 import { QuantityRows } from "@/measurand/quantity-rows";
 import { readCampaign, readStandings, sizeFrom } from "@/server/campaign";
+import { readFor } from "@/server/reader";
 
 export const metadata: Metadata = { title: "Quantities" };
 
@@ -15,10 +17,22 @@ export default async function QuantitiesPage(props: {
   const { key } = await props.params;
   const size = sizeFrom(await props.searchParams);
   const scored = await readStandings(key, size);
-  const { document, role } = await readCampaign(key, size);
+  const { document, role, team } = await readCampaign(key, size);
+  const { proposals } = await readFor(`/campaigns/${key}/quantities`, (caller) =>
+    caller.ledger.remarks({ key, ...(size === null ? {} : { size }) }),
+  );
+  const proposes = team !== null && size === null;
   return (
     <CampaignFrame campaignKey={key} size={size}>
-      <Section title="Quantities" gloss="measurands, in window order">
+      <Section
+        title="Quantities"
+        gloss="measurands, in window order"
+        actions={
+          proposes ? (
+            <ButtonLink href={`/campaigns/${key}/propose`}>Propose a quantity</ButtonLink>
+          ) : null
+        }
+      >
         {document.measurands.length > 0 ? (
           <QuantityRows document={document} standings={scored.standings} campaignKey={key} />
         ) : (
@@ -36,6 +50,16 @@ export default async function QuantitiesPage(props: {
           </Empty>
         )}
       </Section>
+      {proposals.length > 0 ? (
+        <Section title="Proposed" gloss="by teams, for the coordinator to declare" id="proposed">
+          <Proposals
+            proposals={proposals}
+            campaign={key}
+            teams={new Map(document.teams.map((each) => [each.key, each.title]))}
+            answers={role === "coordinator" && size === null}
+          />
+        </Section>
+      ) : null}
     </CampaignFrame>
   );
 }

@@ -2,10 +2,13 @@ import type { Metadata } from "next";
 import Link from "next/link";
 import { notFound } from "next/navigation";
 import { CampaignFrame } from "@/campaign/campaign-frame";
+import { RemarkForm } from "@/forms/records/remark-form";
 import { EntryCheck } from "@/ledger/entry-check";
 import { kindInWords } from "@/ledger/kind-words";
+import { RemarkRows } from "@/ledger/remark-rows";
 import { Section } from "@/look/section";
 import { Time } from "@/look/time";
+import { readCampaign } from "@/server/campaign";
 import { readFor } from "@/server/reader";
 
 interface Props {
@@ -23,6 +26,12 @@ export default async function EntryPage(props: Props) {
   const path = `/campaigns/${key}/ledger`;
   const read = await readFor(`${path}/${seq}`, (caller) => caller.ledger.entry({ key, seq }));
   const { entry } = read;
+  const [view, said] = await Promise.all([
+    readCampaign(key, null),
+    readFor(`${path}/${seq}`, (caller) => caller.ledger.remarks({ key })),
+  ]);
+  const remarks = said.remarks.filter(({ on }) => on === seq);
+  const member = view.role === "member" || view.role === "coordinator";
   return (
     <CampaignFrame campaignKey={key}>
       <Section title={`Entry ${seq}`} gloss={entry.kind}>
@@ -83,6 +92,12 @@ export default async function EntryPage(props: Props) {
           <code>{readable(read.payload)}</code>
         </pre>
       </Section>
+      {remarks.length > 0 || member ? (
+        <Section title="Remarks" gloss="each an entry of its own" id="remarks">
+          {remarks.length > 0 ? <RemarkRows remarks={remarks} path={path} /> : null}
+          {member ? <RemarkForm campaign={key} on={seq} /> : null}
+        </Section>
+      ) : null}
     </CampaignFrame>
   );
 }

@@ -19,7 +19,8 @@ export default async function AmendPage(props: {
   const amending = view.document.hypotheses.find((each) => each.key === hypothesis);
   if (amending === undefined) notFound();
   const registrant = registrantOf(view, actor);
-  const missing = notOnForm(amending, view.document);
+  // What is sealed stays withheld by the ledger itself, whatever a new version says.
+  const missing = notOnForm({ ...amending, withheld: [] }, view.document);
   return (
     <CampaignFrame campaignKey={key}>
       <h2 className="mb-3">Amend “{amending.title}”</h2>
