@@ -2,6 +2,7 @@ import type { Hypothesis, Prediction } from "@weighhouse/campaign/document";
 import { compileExpression, compileSlots } from "@weighhouse/campaign/expression";
 import type { Problem, Result } from "@weighhouse/campaign/problem";
 import type { Expectation, MeasurandFrame } from "./frame";
+import { inLogarithms, isLogged } from "./log-parameters";
 
 /** What a prediction expects: a number, a function of slots, or nothing. */
 export interface Expected {
@@ -49,7 +50,11 @@ export function expectationOf(
   const uses = [...slots.keys()].filter((slot) => expression.names.has(slots[slot]!));
   const evaluate = compileSlots(expression, slots);
   if (uses.some((slot) => parameters[slot]?.prior.family !== "fixed")) {
-    const expectation: Expectation = { expression, slots, uses, evaluate };
+    const inLogs = inLogarithms(
+      expression,
+      new Set(parameters.filter(isLogged).map(({ key }) => key)),
+    );
+    const expectation: Expectation = { expression, inLogs, slots, uses, evaluate };
     return { ok: true, value: { natural: null, expectation } };
   }
   const values = new Float64Array(slots.length);

@@ -95,6 +95,8 @@ export interface DerivedFrame {
 /** `expected` as a function of slots: the hypothesis's parameters, its columns, the conditions. */
 export interface Expectation {
   expression: Expression;
+  /** The same over the log10 of parameters whose priors are plain in it (`log-parameters.ts`). */
+  inLogs: Expression;
   /** What stands in each slot. */
   slots: readonly string[];
   /** The slots that it reads, in increasing order. */

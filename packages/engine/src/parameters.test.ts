@@ -275,3 +275,59 @@ describe("events", () => {
     expect(given(false)).toMatchObject({ compared: 0, silent: 3, chiSquare: null });
   });
 });
+
+describe("on log10 a product of powers is linear in logarithms", () => {
+  const power = (amplitude: Record<string, unknown>) =>
+    scored({
+      scale: "log10",
+      hypothesis: {
+        parameters: [
+          { key: "q", prior: amplitude },
+          { key: "n", prior: { family: "normal", mean: 2, sd: 0.5 } },
+        ],
+      },
+      prediction: { expected: "3 * q * 1.5^n" },
+      measurements: [
+        { value: 40, sdDex: 0.1 },
+        { value: 70, sdDex: 0.2 },
+      ],
+    });
+  const y = [Math.log10(40), Math.log10(70)];
+  const f = Math.log10(3) + 2 * Math.log10(1.5);
+  const loads = (sd: number) => [sd, sd];
+  const exponent = loads(0.5 * Math.log10(1.5));
+
+  test("of a lognormal prior in closed form", () => {
+    const { lnEvidence, lnEvidenceError, parameters } = power({
+      family: "lognormal",
+      median: 8,
+      sdLog10: 0.3,
+    });
+    const covariance = covarianceOf([0.1, 0.2], loads(0.3), exponent);
+    const middle = f + Math.log10(8);
+    near(lnEvidence, lnNormal(y, [middle, middle], covariance));
+    expect(lnEvidenceError).toBe(0);
+    // Given log10 q the rest is normal: its posterior, by quadrature over z.
+    const joint = (z: number) => {
+      const mu = middle + 0.3 * z;
+      return lnNormal(y, [mu, mu], covarianceOf([0.1, 0.2], exponent)) + lnDensity(z);
+    };
+    const moment = (k: number) =>
+      Math.exp(
+        lnIntegral((z) => joint(z) + k * Math.log(8 * 10 ** (0.3 * z)), -9, 9) - lnEvidence!,
+      );
+    near(parameters[0]!.mean, moment(1));
+    near(parameters[0]!.sd, Math.sqrt(moment(2) - moment(1) ** 2), 1e-8);
+    const below = (q: number) =>
+      Math.exp(lnIntegral(joint, -9, Math.log10(q / 8) / 0.3) - lnEvidence!);
+    parameters[0]!.quantiles.forEach((q, i) => near(below(q), [0.025, 0.5, 0.975][i]!));
+  });
+
+  test("of a loguniform prior over its box", () => {
+    const { lnEvidence, degreesOfFreedom } = power({ family: "loguniform", lower: 1, upper: 100 });
+    const joint = (x: number) =>
+      lnNormal(y, [f + x, f + x], covarianceOf([0.1, 0.2], exponent)) - Math.log(2);
+    near(lnEvidence, lnIntegral(joint, 0, 2));
+    expect(degreesOfFreedom).toBe(1);
+  });
+});

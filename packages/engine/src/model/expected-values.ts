@@ -1,6 +1,7 @@
 import { compileSlots } from "@weighhouse/campaign/expression";
 import { designOf } from "@weighhouse/campaign/expression-linearity";
 import type { Expectation, HypothesisFrame, PredictionFrame } from "../frame";
+import { isLogged } from "../log-parameters";
 import { toScoringSpace } from "../scoring-space";
 import { linearUnknown, outerUnknown } from "./parameters";
 import type { Expected, Section } from "./section";
@@ -36,7 +37,7 @@ export function expectExpression(section: Section, prediction: PredictionFrame):
   else if (!fill(assembly.base)) assembly.impossible = true;
   const names = [...linear].filter((slot) => expectation.uses.includes(slot));
   const design = designOf(
-    expectation.expression,
+    expectation.inLogs,
     names.map((slot) => expectation.slots[slot]!),
     frame.scale === "log10",
   );
@@ -48,6 +49,7 @@ export function expectExpression(section: Section, prediction: PredictionFrame):
     const uses = expectation.uses.filter((one) => slope.names.has(expectation.slots[one]!));
     const put = (each: (row: number, value: number) => void) => {
       slots.takeScope();
+      slots.takeLogarithms(uses);
       for (let i = 0; i < rows.length; i += 1) {
         slots.takeConditions(i);
         each(begin + i, evaluate(slots.values) * step);
@@ -109,6 +111,14 @@ function slotsFor(
     values,
     conditional: (uses: readonly number[]) => uses.some((slot) => slot >= own),
     takeScope: () => values.set(scope),
+    /** In slopes the log10 of some parameters is meant. */
+    takeLogarithms: (uses: readonly number[]) => {
+      for (const slot of uses) {
+        const parameter = said.parameters[slot];
+        if (parameter !== undefined && isLogged(parameter))
+          values[slot] = Math.log10(values[slot]!);
+      }
+    },
     takeConditions: (i: number) => {
       const { conditions } = rows[i]!;
       for (let slot = own; slot < slots.length; slot += 1) values[slot] = conditions[slot - own]!;

@@ -1,13 +1,13 @@
 import type { HypothesisStanding } from "@weighhouse/campaign/standings";
 import { mixtureMoments, mixtureOf, mixtureQuantiles } from "../block/mixture";
-import type { Query } from "../block/problem";
+import type { BlockEvidence, Mixture } from "../block/problem";
 import { measuredBlocks } from "../evidence";
 import type { HypothesisFrame } from "../frame";
 import { isPlain } from "../plain-blocks";
 import type { Roles, Workspace } from "../workspace";
 import type { Scored } from "./block-parts";
 import { generalEvidence } from "./general-evidence";
-import { linearUnknown } from "./parameters";
+import { linearUnknown, type LinearParameter } from "./parameters";
 import { priorSummary, type ParameterSummary } from "./prior-summary";
 import { ensembleKey, parameterKey, sharedUnknowns } from "./shared-unknowns";
 
@@ -74,17 +74,55 @@ function posteriorOf(
 ): ParameterSummary | null {
   if (evidence.ln === -Infinity) return null;
   const place = built.placeOf(key)!;
-  const { from, step } = built.isLinear(key) ? linearUnknown(prior) : { from: 0, step: 0 };
-  const query: Query = (outer, _scenario, loadings) => {
-    if (step === 0) return outer[place]!;
-    loadings[place] = step;
-    return from;
-  };
-  const mixture = mixtureOf(evidence, query);
+  return built.isLinear(key)
+    ? linearPosterior(evidence, place, linearUnknown(prior))
+    : outerPosterior(evidence, place);
+}
+
+function outerPosterior(evidence: BlockEvidence, place: number): ParameterSummary {
+  const mixture = mixtureOf(evidence, (outer) => outer[place]!);
   const { outerQuantile } = evidence;
   const [lower, middle, upper] =
-    step === 0 && outerQuantile !== null
-      ? SHARES.map((share) => outerQuantile(place, share))
-      : mixtureQuantiles(mixture, SHARES);
+    outerQuantile === null
+      ? mixtureQuantiles(mixture, SHARES)
+      : SHARES.map((share) => outerQuantile(place, share));
   return { ...mixtureMoments(mixture), quantiles: [lower!, middle!, upper!] };
+}
+
+function linearPosterior(
+  evidence: BlockEvidence,
+  place: number,
+  { from, step, logged }: LinearParameter,
+): ParameterSummary {
+  const mixture = mixtureOf(evidence, (_outer, _scenario, loadings) => {
+    loadings[place] = step;
+    return logged ? Math.log10(from) : from;
+  });
+  const quantiles = mixtureQuantiles(mixture, SHARES);
+  if (!logged) {
+    const [lower, middle, upper] = quantiles;
+    return { ...mixtureMoments(mixture), quantiles: [lower!, middle!, upper!] };
+  }
+  const [lower, middle, upper] = quantiles.map((log) => 10 ** log);
+  return { ...momentsOfPowers(mixture), quantiles: [lower!, middle!, upper!] };
+}
+
+/**
+ * Mean and sd of 10^x over a mixture of normals: E 10^(k x) = 10^(k m) exp((k s ln 10)^2 / 2),
+ * relative to the mixture's middle so that the second moment keeps its digits.
+ */
+function momentsOfPowers(mixture: Mixture): { mean: number; sd: number } {
+  const { mean: centre } = mixtureMoments(mixture);
+  let excess = 0;
+  let second = 0;
+  mixture.weights.forEach((weight, n) => {
+    const m = (mixture.means[n]! - centre) * Math.LN10;
+    const v = (mixture.sds[n]! * Math.LN10) ** 2;
+    const one = Math.expm1(m + v / 2);
+    excess += weight * one;
+    // E (10^x - 1)^2 = e^(2m + 2v) - 2 e^(m + v/2) + 1.
+    second += weight * (Math.expm1(2 * m + 2 * v) - 2 * one);
+  });
+  const unit = 10 ** centre;
+  return { mean: unit * (1 + excess), sd: unit * Math.sqrt(Math.max(0, second - excess ** 2)) };
 }

@@ -14,7 +14,8 @@ import type { Component } from "./block-parts";
 
 /**
  * Parameters of one hypothesis that enter every expectation of a component linearly in scoring
- * space, together: those of normal and of uniform priors are then linear unknowns.
+ * space, together: those of normal and of uniform priors are then linear unknowns, and so are the
+ * logarithms of those whose priors are normal or uniform in them.
  *
  * One that scales something else (a relative tolerance or shared error, the rate of counts), or
  * that decides where a circle is cut, is none.
@@ -29,7 +30,7 @@ export function linearIn(
   const predictions = parts.flatMap(({ role }) => predictionOf(role));
   const candidates = new Set<number>();
   parameters.forEach(({ prior }, p) => {
-    if (prior.family === "normal" || prior.family === "uniform") candidates.add(p);
+    if (prior.family !== "halfnormal" && prior.family !== "fixed") candidates.add(p);
   });
   const barredFrom = predictions.filter(({ measurand }) => bars(measurand));
   for (const { expectation } of barredFrom) {
@@ -41,7 +42,7 @@ export function linearIn(
       const used = expectation!.uses.filter((slot) => candidates.has(slot));
       const names = used.map((slot) => expectation!.slots[slot]!);
       const inLog10 = scaleOf(measurand) === "log10";
-      const linear = new Set(linearParameters(expectation!.expression, names, inLog10));
+      const linear = new Set(linearParameters(expectation!.inLogs, names, inLog10));
       used.forEach((slot, i) => {
         if (!linear.has(names[i]!)) candidates.delete(slot);
       });
@@ -55,19 +56,36 @@ function predictionOf(role: Role): PredictionFrame[] {
   return [role.prediction];
 }
 
-/** A linear parameter is `from + step z`, z the unknown. */
-export function linearUnknown(prior: Prior): {
+export interface LinearParameter {
   unknown: LinearUnknown;
+  /** In the parameter's unit. */
   from: number;
   step: number;
-} {
-  if (prior.family === "normal") {
-    return { unknown: { kind: "normal" }, from: prior.mean, step: prior.sd };
+  logged: boolean;
+}
+
+/** A linear parameter is `from + step z`, z the unknown; `from 10^(step z)` where it is logged. */
+export function linearUnknown(prior: Prior): LinearParameter {
+  switch (prior.family) {
+    case "normal":
+      return { unknown: { kind: "normal" }, from: prior.mean, step: prior.sd, logged: false };
+    case "lognormal":
+      return { unknown: { kind: "normal" }, from: prior.median, step: prior.sdLog10, logged: true };
+    case "uniform": {
+      const { lower, upper } = prior;
+      return { unknown: flatOver(upper - lower), from: lower, step: 1, logged: false };
+    }
+    case "loguniform": {
+      const { lower, upper } = prior;
+      return { unknown: flatOver(Math.log10(upper / lower)), from: lower, step: 1, logged: true };
+    }
+    default:
+      throw new TypeError(`a linear ${prior.family} parameter`);
   }
-  if (prior.family !== "uniform") throw new TypeError(`a linear ${prior.family} parameter`);
-  const width = prior.upper - prior.lower;
-  const unknown: LinearUnknown = { kind: "flat", lower: 0, upper: width, width };
-  return { unknown, from: prior.lower, step: 1 };
+}
+
+function flatOver(width: number): LinearUnknown {
+  return { kind: "flat", lower: 0, upper: width, width };
 }
 
 export function outerUnknown(prior: Prior, place: OuterPlace): OuterUnknown {
