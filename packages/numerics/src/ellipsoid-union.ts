@@ -1,7 +1,9 @@
 import { distanceIn, ellipsoidAround, whiten, withRadius, type Ellipsoid } from "./ellipsoid";
 import type { RandomSource } from "./random-source";
 
-const BOOTSTRAPS = 5;
+const BOOTSTRAPS = 8;
+/** And so much more volume: what is cut off of the region makes Z too large. */
+const MARGIN = 1.3;
 /** Parting must bring the volume down to this share; on the way there it may not rise. */
 const WORTHWHILE = 0.7;
 const ROUNDS_OF_MEANS = 6;
@@ -65,7 +67,8 @@ function relativeVolume(parts: readonly Ellipsoid[], whole: Leaf): number {
 function enclosing(live: LivePoints, members: Uint32Array, random: RandomSource): Ellipsoid {
   const { points, dimension, lnVolume } = live;
   const tight = ellipsoidAround(points, dimension, members);
-  const grown = withRadius(tight, tight.radius * growthOf(live, members, random));
+  const growth = growthOf(live, members, random) * MARGIN ** (1 / dimension);
+  const grown = withRadius(tight, tight.radius * growth);
   const share = lnVolume + Math.log((members.length * dimension) / points.length);
   if (grown.lnVolume >= share) return grown;
   return withRadius(grown, grown.radius * Math.exp((share - grown.lnVolume) / dimension));

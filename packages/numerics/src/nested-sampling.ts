@@ -25,8 +25,8 @@ const NEGLIGIBLE = 30;
  * @param dimension 1 to 30
  * @param seed the same seed gives the same bytes
  * Error: the shrinkages' standard errors 1 / n_j carried through that sum; no plateau adds to it.
- * Accuracy: within three of its errors. Calls for a normal peak, about: 3e4 in four dimensions at 10
- *   nats, 7e4 in six at 15, 2e5 in ten at 25; three to ten times that where the peak isn't compact.
+ * Accuracy: within three of its errors. Calls for a normal peak, about: 4e4 in four dimensions at 10
+ *   nats, 9e4 in six at 15, 3e5 in ten at 25; three to ten times that where the peak isn't compact.
  * Source: Skilling, Bayesian Analysis 1 (2006) 833; merging: Higson et al., Statistics and
  * Computing 29 (2019) 891.
  */
