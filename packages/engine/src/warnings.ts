@@ -9,6 +9,7 @@ import { binomialUpperTail } from "@weighhouse/numerics/binomial";
 import { referenceFit } from "./chi-square-fit";
 import { combine } from "./combination";
 import { meanOf } from "./distribution/distribution";
+import { enteredCounts } from "./entered";
 import type { HypothesisScore } from "./hypothesis-scores";
 import type { PredictionFrame } from "./frame";
 import { predictiveOf } from "./predictive";
@@ -132,8 +133,10 @@ function outsideReference({ workspace, tally }: WarningContext): Warning[] {
 }
 
 function poorReferences({ workspace }: WarningContext): Warning[] {
+  // Silence is charged the references of what enters the evidence, and of nothing else.
+  const counts = enteredCounts(workspace);
   return workspace.frame.measurands.flatMap(({ key, pointer }, m) => {
-    const own = referenceFit(workspace, m);
+    const own = counts[m]! > 0 ? referenceFit(workspace, m) : null;
     if (own === null || own.pValue === null || own.pValue >= POOR_P) return [];
     const text =
       `The reference of ${key} fits its measurements badly (p = ${short(own.pValue)}), so that ` +

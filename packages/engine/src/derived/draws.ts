@@ -20,6 +20,9 @@ export interface DrawnValue {
 /** JCGM 101 asks for at least 1e5 trials; the origin, where every coordinate is 0, is left out. */
 const POINTS = 2 ** 17 - 1;
 
+/** What a normal has within one sd of its mean, as it is usually rounded. */
+const CENTRAL = 0.6827;
+
 /**
  * An expression's distribution by 2^17 - 1 unscrambled Sobol points (JCGM 101:2008, section 7).
  * Inputs have their own distributions, tied by the correlations of the covariance: normals of those
@@ -27,7 +30,8 @@ const POINTS = 2 ** 17 - 1;
  *
  * @param inputs in scoring space
  * @param covariance of the inputs, row by row; only its correlations are looked at
- * @returns null where half of the draws or more have no value, or the covariance isn't one
+ * @returns null where half of the draws or more have no value, or the covariance isn't one; the
+ *   other draws are as if those hadn't been
  * Accuracy: about 1e-5 in probability, from the points alone.
  */
 export function drawValue(
@@ -48,13 +52,15 @@ export function drawValue(
   const draws = drawsOf(values);
   if (draws === null) return null;
   const value = drawsQuantile(draws, 0.5);
-  const sd = (drawsQuantile(draws, normalCdf(1)) - drawsQuantile(draws, normalCdf(-1))) / 2;
-  return Number.isFinite(value) && Number.isFinite(sd) && sd > 0 ? { value, sd, draws } : null;
+  const outside = (1 - CENTRAL) / 2;
+  const sd = (drawsQuantile(draws, 1 - outside) - drawsQuantile(draws, outside)) / 2;
+  return sd > 0 ? { value, sd, draws } : null;
 }
 
-/** Of 0 and below there is no logarithm, but the order is known: lower than all others. */
+/** NaN where there is no value: on log10 also for 0 and below. */
 function scored(natural: number, scale: Scale): number {
-  return scale === "log10" && natural <= 0 ? -Infinity : toScoringSpace(natural, scale);
+  const value = toScoringSpace(natural, scale);
+  return Number.isFinite(value) ? value : Number.NaN;
 }
 
 /** On a circle counted from the first, so that what lies about the period's end stays together. */

@@ -1,4 +1,4 @@
-/** Equally likely values in increasing order; on a log10 scale -Infinity stands for 0 and below. */
+/** Equally likely values in increasing order. */
 export interface Draws {
   kind: "draws";
   sorted: Float64Array;
