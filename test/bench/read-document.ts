@@ -3,7 +3,7 @@
  * `npx tsx test/bench/read-document.ts`.
  */
 import { parseJson } from "@weighhouse/campaign/json-text";
-import { readCampaign } from "@weighhouse/campaign/read";
+import { readCampaign, readCampaignPieces, readCampaignText } from "@weighhouse/campaign/read";
 
 const COUNT = 200_000;
 const ROUNDS = 5;
@@ -54,5 +54,11 @@ function time<T>(label: string, run: () => T): T {
 console.log(`${COUNT} measurements, ${(text.length / 1e6).toFixed(1)} MB, median of ${ROUNDS}`);
 const value = time("JSON.parse", () => JSON.parse(text) as unknown);
 time("parseJson (with members that stand twice)", () => parseJson(text));
-const read = time("readCampaign", () => readCampaign(value));
+const read = time("readCampaign, of what JSON.parse gave", () => readCampaign(value));
 if (!read.ok) throw new Error(JSON.stringify(read.problems.slice(0, 3)));
+time("readCampaignText, of the text", () => readCampaignText(text));
+const PIECE = 2 ** 19;
+const pieces = Array.from({ length: Math.ceil(text.length / PIECE) }, (_, i) =>
+  text.slice(i * PIECE, (i + 1) * PIECE),
+);
+time("readCampaignPieces, of the same in pieces", () => readCampaignPieces(pieces));

@@ -4,35 +4,39 @@
  */
 const TO_SECONDS = 19;
 
-/** Whether a text is a time of the documents: `TIME_PATTERN`, without the cost of a pattern. */
-export function isTime(text: string): boolean {
-  const last = text.length - 1;
-  if (last < TO_SECONDS || text.charCodeAt(last) !== 90) return false;
-  const year = digits(text, 0, 4);
-  const month = digits(text, 5, 2);
-  const day = digits(text, 8, 2);
-  const hour = digits(text, 11, 2);
-  const minute = digits(text, 14, 2);
-  const second = digits(text, 17, 2);
+/**
+ * Whether a text, or a part of it, is a time of the documents: `TIME_PATTERN`, without the cost of a
+ * pattern.
+ */
+export function isTime(text: string, start = 0, end = text.length): boolean {
+  const last = end - 1;
+  if (last - start < TO_SECONDS || text.charCodeAt(last) !== 90) return false;
+  const year = digits(text, start, 4);
+  const month = digits(text, start + 5, 2);
+  const day = digits(text, start + 8, 2);
+  const hour = digits(text, start + 11, 2);
+  const minute = digits(text, start + 14, 2);
+  const second = digits(text, start + 17, 2);
   if (
-    text.charCodeAt(4) !== 45 ||
-    text.charCodeAt(7) !== 45 ||
-    text.charCodeAt(10) !== 84 ||
-    text.charCodeAt(13) !== 58 ||
-    text.charCodeAt(16) !== 58 ||
+    text.charCodeAt(start + 4) !== 45 ||
+    text.charCodeAt(start + 7) !== 45 ||
+    text.charCodeAt(start + 10) !== 84 ||
+    text.charCodeAt(start + 13) !== 58 ||
+    text.charCodeAt(start + 16) !== 58 ||
     !(year >= 0 && month >= 1 && month <= 12 && day >= 1 && day <= daysIn(year, month)) ||
     !(hour >= 0 && hour <= 23 && minute >= 0 && minute <= 59 && second >= 0) ||
     second > (hour === 23 && minute === 59 ? 60 : 59)
   ) {
     return false;
   }
-  if (last === TO_SECONDS) return true;
-  const decimals = last - TO_SECONDS - 1;
+  const point = start + TO_SECONDS;
+  if (last === point) return true;
+  const decimals = last - point - 1;
   return (
-    text.charCodeAt(TO_SECONDS) === 46 &&
+    text.charCodeAt(point) === 46 &&
     decimals >= 1 &&
     decimals <= 9 &&
-    digits(text, TO_SECONDS + 1, decimals) >= 0
+    digits(text, point + 1, decimals) >= 0
   );
 }
 

@@ -1,6 +1,5 @@
 import type { Limit, Measurement } from "./document";
 import { LINE_LENGTH, UNIT_LENGTH } from "./fields";
-import { isTime } from "./instants";
 import { limits, SOURCE_LENGTH, withResultDefaults } from "./measurement";
 import { ID_LETTER, KEY_LETTER, NAME_LETTER, TextCursor } from "./text-cursor";
 
@@ -15,7 +14,6 @@ const CLOSE = 125;
 const KEY_LENGTH = 64;
 const ID_LENGTH = 200;
 const NAME_LENGTH = 32;
-const TIME_LENGTH = 30;
 
 /** What a measurement has that has none of its own; frozen, since thousands have the same. */
 const NOTHING = Object.freeze({});
@@ -33,6 +31,8 @@ export class MeasurementText {
   readonly #shared = new Map<string, Measurement["shared"]>();
   /** The members of the measurement before, in their order: the next one's are mostly the same. */
   readonly #order: number[] = [];
+  /** The measurement before: this one's strings are often the same. */
+  before = blank();
 
   /** The measurement at the cursor, or null, with the cursor anywhere. */
   next(): Measurement | null {
@@ -54,6 +54,7 @@ export class MeasurementText {
       }
     } while (cursor.take(COMMA));
     if (!cursor.take(CLOSE) || (seen & REQUIRED) !== REQUIRED) return null;
+    this.before = one;
     return withResultDefaults(one);
   }
 
@@ -141,13 +142,13 @@ type Reader = (one: Measurement, text: MeasurementText) => boolean;
 /** How each member is read, in the schema's order; false where it isn't plain or isn't in range. */
 const readersByName: { [K in keyof Measurement]: Reader } = {
   id: (one, { cursor }) => is((one.id = cursor.lettered(ID_LETTER, ID_LENGTH)!)),
-  measurand: (one, { cursor }) => isKey((one.measurand = key(cursor)!)),
-  facility: (one, { cursor }) => isKey((one.facility = key(cursor))),
-  team: (one, { cursor }) => isKey((one.team = key(cursor))),
-  batch: (one, { cursor }) => is((one.batch = cursor.plain(LINE_LENGTH))),
-  observedAt: (one, { cursor }) => isInstant((one.observedAt = cursor.plain(TIME_LENGTH))),
-  postedAt: (one, { cursor }) => isInstant((one.postedAt = cursor.plain(TIME_LENGTH))),
-  knownSince: (one, { cursor }) => isInstant((one.knownSince = cursor.plain(TIME_LENGTH))),
+  measurand: (one, text) => isKey((one.measurand = key(text, text.before.measurand)!)),
+  facility: (one, text) => isKey((one.facility = key(text, text.before.facility))),
+  team: (one, text) => isKey((one.team = key(text, text.before.team))),
+  batch: (one, text) => is((one.batch = plain(text, text.before.batch, LINE_LENGTH))),
+  observedAt: (one, text) => is((one.observedAt = time(text, text.before.observedAt))),
+  postedAt: (one, text) => is((one.postedAt = time(text, text.before.postedAt))),
+  knownSince: (one, text) => is((one.knownSince = time(text, text.before.knownSince))),
   conditions: (one, { cursor }) => is((one.conditions = conditionsAt(cursor)!)),
   value: (one, { cursor }) => !Number.isNaN((one.value = cursor.number())),
   sd: (one, { cursor }) => (one.sd = cursor.number()) > 0,
@@ -171,13 +172,13 @@ const readersByName: { [K in keyof Measurement]: Reader } = {
   },
   exposure: (one, { cursor }) => (one.exposure = cursor.number()) > 0,
   background: (one, { cursor }) => (one.background = cursor.number()) >= 0,
-  unit: (one, { cursor }) => is((one.unit = cursor.plain(UNIT_LENGTH))),
+  unit: (one, text) => is((one.unit = plain(text, text.before.unit, UNIT_LENGTH))),
   status: (one, { cursor }) => {
     if (cursor.word('"final"')) return true;
     one.status = "provisional";
     return cursor.word('"provisional"');
   },
-  source: (one, { cursor }) => is((one.source = cursor.plain(SOURCE_LENGTH))),
+  source: (one, text) => is((one.source = plain(text, text.before.source, SOURCE_LENGTH))),
   extra: (_one, { cursor }) => cursor.word("{}"),
   shared: (one, text) => is((one.shared = text.shared()!)),
   sameData: (one, { cursor }) => is((one.sameData = cursor.plain(LINE_LENGTH))),
@@ -195,8 +196,16 @@ function isRequired(field: number): boolean {
   return ((1 << field) & REQUIRED) !== 0;
 }
 
-function key(cursor: TextCursor): string | null {
-  return cursor.lettered(KEY_LETTER, KEY_LENGTH);
+function key({ cursor }: MeasurementText, before: string | null): string | null {
+  return cursor.same(before) ? before : cursor.lettered(KEY_LETTER, KEY_LENGTH);
+}
+
+function plain({ cursor }: MeasurementText, before: string | null, most: number): string | null {
+  return cursor.same(before) ? before : cursor.plain(most);
+}
+
+function time({ cursor }: MeasurementText, before: string | null): string | null {
+  return cursor.same(before) ? before : cursor.time();
 }
 
 function is(value: unknown): boolean {
@@ -205,10 +214,6 @@ function is(value: unknown): boolean {
 
 function isKey(value: string | null): boolean {
   return value !== null && value.charCodeAt(0) !== 45;
-}
-
-function isInstant(value: string | null): boolean {
-  return value !== null && isTime(value);
 }
 
 function isProbability(value: number): boolean {

@@ -1,3 +1,5 @@
+import { isTime } from "./instants";
+
 /**
  * Reads the plainest forms of JSON out of a text, without a copy of it: strings without escapes, numbers,
  * null. What isn't one of these is left for JSON.parse, which knows all forms and all errors.
@@ -23,6 +25,10 @@ mark(".:", ID_LETTER);
 function mark(all: string, bits: number): void {
   for (const letter of all) letters[letter.charCodeAt(0)]! |= bits;
 }
+
+/** 2031-03-01T00:00:00Z, and with nine digits of a second. */
+const SHORTEST_TIME = 20;
+const LONGEST_TIME = 30;
 
 /** Numbers of at most this many digits, with a point among them, are one exact division. */
 const EXACT_DIGITS = 15;
@@ -81,6 +87,34 @@ export class TextCursor {
     }
     this.at = at + word.length;
     return true;
+  }
+
+  /** Passes the string where it stands next: that of the one before, most likely. */
+  same(string: string | null): boolean {
+    if (string === null || string === "" || this.code() !== QUOTE) return false;
+    const { text } = this;
+    const start = this.at + 1;
+    const end = start + string.length;
+    if (end >= this.limit || text.charCodeAt(end) !== QUOTE) return false;
+    if (!isAt(text, start, string)) return false;
+    this.at = end + 1;
+    return true;
+  }
+
+  /** The time that stands next (RFC 3339, in UTC), or null, with the cursor where it was. */
+  time(): string | null {
+    if (this.code() !== QUOTE) return null;
+    const { text } = this;
+    const start = this.at + 1;
+    let end = start + SHORTEST_TIME;
+    while (end < this.limit && end - start < LONGEST_TIME && text.charCodeAt(end) !== QUOTE) {
+      end += 1;
+    }
+    if (end >= this.limit || text.charCodeAt(end) !== QUOTE || !isTime(text, start, end)) {
+      return null;
+    }
+    this.at = end + 1;
+    return copyOf(text, start, end);
   }
 
   /**
@@ -241,17 +275,15 @@ export class Strings {
   of(text: string, { start, end, hash }: Piece): string {
     const slot = (hash ^ (hash >>> 12)) & 4095;
     const known = this.#slots[slot];
-    if (known !== undefined && isAt(text, start, end, known)) return known;
+    if (known?.length === end - start && isAt(text, start, known)) return known;
     const made = copyOf(text, start, end);
     this.#slots[slot] = made;
     return made;
   }
 }
 
-function isAt(text: string, start: number, end: number, known: string): boolean {
-  const { length } = known;
-  if (length !== end - start) return false;
-  for (let i = 0; i < length; i++) {
+function isAt(text: string, start: number, known: string): boolean {
+  for (let i = 0; i < known.length; i++) {
     if (text.charCodeAt(start + i) !== known.charCodeAt(i)) return false;
   }
   return true;
