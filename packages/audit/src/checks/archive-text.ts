@@ -33,6 +33,10 @@ export function readLines(
   const lines: string[] = [];
   for (let from = 0; from < bytes.length;) {
     const to = bytes.indexOf(NEWLINE, from);
+    if (to === from) return { ok: false, fault: `${path}, line ${lines.length + 1} is empty` };
+    if (lines.length === MOST_LINES) {
+      return { ok: false, fault: `${path}: found more than ${MOST_LINES} lines` };
+    }
     try {
       lines.push(decoder.decode(bytes.subarray(from, to)));
     } catch {
@@ -44,6 +48,12 @@ export function readLines(
 }
 
 const NEWLINE = 0x0a;
+/** A file of 256 MiB could hold a line in two bytes, each a string of its own in memory. */
+const MOST_LINES = 4_000_000;
+/** Deepest JSON of an archive; documents of every form stay below 12. */
+const MOST_DEEP = 64;
+/** Of a JSON file, unless its size is known beforehand: parsed, it takes some ten times as much. */
+const MOST_JSON_BYTES = 64 * 2 ** 20;
 
 /**
  * A JSON object of the archive. One form only, as the export writes it: a doubled name, which JSON
@@ -52,9 +62,17 @@ const NEWLINE = 0x0a;
 export function readJson(
   files: ReadonlyMap<string, Uint8Array>,
   path: string,
+  mostBytes = MOST_JSON_BYTES,
 ): { ok: true; value: object; text: string } | TextFault {
+  const bytes = files.get(path)?.length ?? 0;
+  if (bytes > mostBytes) {
+    return { ok: false, fault: `${path}: found ${bytes} bytes; allowed are ${mostBytes}` };
+  }
   const read = readText(files, path);
   if (!read.ok) return read;
+  if (isDeeperThan(read.text, MOST_DEEP)) {
+    return { ok: false, fault: `${path}: found JSON nested more than ${MOST_DEEP} deep` };
+  }
   let value: unknown;
   try {
     value = JSON.parse(read.text);
@@ -72,6 +90,22 @@ export function readJson(
     };
   }
   return { ok: true, value, text: read.text };
+}
+
+/** Looked for before parsing, and in texts that may be no JSON at all. */
+function isDeeperThan(text: string, most: number): boolean {
+  let depth = 0;
+  let quoted = false;
+  for (let at = 0; at < text.length; at += 1) {
+    const code = text.charCodeAt(at);
+    if (code === 0x22) quoted = !quoted;
+    else if (code === 0x5c) at += quoted ? 1 : 0;
+    else if (quoted) continue;
+    else if (code === 0x5b || code === 0x7b) depth += 1;
+    else if (code === 0x5d || code === 0x7d) depth -= 1;
+    if (depth > most) return true;
+  }
+  return false;
 }
 
 function firstLineThatDiffers(found: string, expected: string): number | null {

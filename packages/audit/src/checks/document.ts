@@ -1,12 +1,13 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { problemLine } from "@weighhouse/campaign/problem";
 import { readCampaign } from "@weighhouse/campaign/read";
+import { utf8 } from "@weighhouse/ledger/bytes";
 import { readJson } from "./archive-text";
 import type { Files } from "./container";
 import { counted, failed, judged } from "./line";
 import type { Checked } from "./line";
 import { compareJson } from "./differences";
-import { DOCUMENT } from "../layout";
+import { DOCUMENT, jsonText } from "../layout";
 
 /**
  * `campaign.json` is what the entries add up to, and that is a campaign.
@@ -16,7 +17,8 @@ import { DOCUMENT } from "../layout";
  */
 export function checkDocument(files: Files, folded: CampaignDocument): Checked<CampaignDocument> {
   const check = "campaign document";
-  const read = readJson(files, DOCUMENT);
+  // There is one form only, so its size is known; a forger's may be longer, not without end.
+  const read = readJson(files, DOCUMENT, 2 * utf8(jsonText(folded)).length + 2 ** 16);
   if (!read.ok) return { line: failed(check, read.fault), value: folded };
   const { differences } = compareJson(read.value, folded, { tolerance: 0 });
   const fits = readCampaign(folded);

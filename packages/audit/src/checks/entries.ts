@@ -28,7 +28,10 @@ export function checkEntries(files: Files, hasher: Hasher): Checked<ReadEntries>
   let previous: Entry | null = null;
   const entries = read.lines.map((line, index) => {
     const place = `${LEDGER}, line ${index + 1}`;
-    const entry = attempt(() => readEntry(parseCanonical(line)));
+    const entry =
+      line.length > MOST_ENTRY_CHARACTERS
+        ? `found ${line.length} characters; allowed are ${MOST_ENTRY_CHARACTERS}`
+        : attempt(() => readEntry(parseCanonical(line)));
     if (typeof entry === "string") {
       faults.push(`${place}: ${entry}`);
       return null;
@@ -42,6 +45,9 @@ export function checkEntries(files: Files, hasher: Hasher): Checked<ReadEntries>
   const detail = `${counted(entries.length, "entry", "entries")}, seq 0 to ${entries.length - 1}, ${span}`;
   return { line: judged(check, faults, detail), value: { leaves, entries } };
 }
+
+/** An entry's fields are short; what is long is its payload. */
+const MOST_ENTRY_CHARACTERS = 4096;
 
 function orderFaults(
   entry: Entry,

@@ -13,6 +13,9 @@ import type { TimelineRow } from "../timeline";
 
 const PATH = tablePath("timeline");
 
+/** 200 points of 1,000 hypotheses are 20 MB. */
+const MOST_CHARACTERS = 32_000_000;
+
 /** Two evaluations of one evidence may lie so many standard errors apart. */
 const SIGMAS = 5;
 
@@ -65,6 +68,9 @@ function differences(found: TimelineRow, computed: TimelineRow): string[] {
 function readTimeline(files: Files): TimelineRow[] | string {
   const read = readText(files, PATH);
   if (!read.ok) return read.fault;
+  if (read.text.length > MOST_CHARACTERS) {
+    return `${PATH}: found ${read.text.length} characters; allowed are ${MOST_CHARACTERS}`;
+  }
   const records = readCells(read.text);
   if (typeof records === "string") return `${PATH}, ${records}`;
   const rows: TimelineRow[] = [];
