@@ -52,6 +52,11 @@ export function namesIn(tree: Tree): Set<string> {
   return names;
 }
 
+/** How many parts a tree has; those that are shared count each time. */
+export function sizeOf(tree: Tree): number {
+  return partsOf(tree).reduce((size, part) => size + sizeOf(part), 1);
+}
+
 /** The tree with a number in place of some of its names; parts that are shared stay shared. */
 export function withNumbers(tree: Tree, numbers: ReadonlyMap<string, number>): Tree {
   const done = new Map<Tree, Tree>();

@@ -1,4 +1,5 @@
-import { describe } from "vitest";
+import { describe, expect, test } from "vitest";
+import { problemsAfter } from "../testing/documents";
 import type { Open } from "../testing/documents";
 import { check, place, predict, slip } from "../testing/refusals";
 
@@ -163,6 +164,33 @@ describe("expressions", () => {
     ],
   ]);
 });
+
+test("a thousand expressions without a value, of the greatest size, are answered in seconds", () => {
+  const sum = Array.from({ length: 190 }, () => "f0").join(" + ");
+  const problems = problemsAfter((document) => {
+    const [hypothesis] = document.hypotheses;
+    hypothesis.ensemble.columns.d = Array.from({ length: 1000 }, (_, row) => row);
+    hypothesis.ensemble.weights = null;
+    hypothesis.predictions = hypothesis.predictions.slice(0, 1);
+    hypothesis.toleranceCorrelations = [];
+    document.hypotheses.push(
+      ...Array.from({ length: 200 }, (_, index) => ({
+        ...hypothesis,
+        key: `one-of-many-${index}`,
+        predictions: [
+          "pitch-crest",
+          "shimmer-noon",
+          "grain-foot",
+          "ripple-crest",
+          "grain-crest",
+        ].map((measurand) => ({ measurand, expected: `sqrt(-1 - d * (${sum}) ^ 2)` })),
+      })),
+    );
+  });
+  // The first are refused; what is left when the effort is used up has no answer.
+  expect(problems.length).toBeGreaterThan(5);
+  expect(problems.length).toBeLessThan(1000);
+}, 20_000);
 
 describe("tables and ensembles", () => {
   const table = (change: (tables: Open) => void) => slip((hypothesis) => change(hypothesis.tables));

@@ -44,7 +44,8 @@ export function checkExpression(reading: Reading, place: PredictionPlace, text: 
   if (measurand?.shape === "curve") checkSeenOnce(reading, place, conditions);
   if (!telling || isUnsound(place, expression)) return;
   const used = [...expression.names].filter((name) => conditions.has(name));
-  if (!hasValueSomewhere(expression, place, conditionRanges(reading, place, used))) {
+  const ranges = conditionRanges(reading, place, used);
+  if (!hasValueSomewhere(expression, place, { ranges, effort: reading.effort })) {
     const allowed = "a finite value somewhere between the 1 % and 99 % of the priors";
     const sign = observable?.scale === undefined ? "" : (signs[observable.scale] ?? "");
     const found = "an expression without a value at any parameter tried";

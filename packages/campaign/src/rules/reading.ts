@@ -18,6 +18,8 @@ export class Reading {
   readonly sharedErrors: ReadonlyMap<string, Legible<SharedError>>;
   readonly facilities: ReadonlySet<string>;
   readonly teams: ReadonlySet<string>;
+  /** For trying expressions: a second or two. */
+  readonly effort = { left: 5e7 };
 
   constructor(
     readonly form: Legible<DocumentForm>,

@@ -2,6 +2,7 @@ import type { Ensemble, Parameter, Prior, Scale } from "../document";
 import type { Expression } from "../expression";
 import { rangeOf } from "../expression-range";
 import type { Range } from "../expression-range";
+import { sizeOf } from "../expression-tree";
 import type { PredictionPlace } from "./prediction-place";
 
 /** Draws of parameters, and points of conditions, at which an expression is tried first. */
@@ -10,6 +11,8 @@ const CONDITION_POINTS = 16;
 /** Boxes that are looked into where none of those has a value, and ensemble rows among them. */
 const BOXES = 4000;
 const ROWS = 80;
+/** What bounds cost, in values. */
+const RANGE_EFFORT = 5;
 /** The 1 % and 99 % points of the standard normal and half-normal (Abramowitz & Stegun 26.2). */
 const NORMAL_99 = 2.3263478740408408;
 const HALF_NORMAL_01 = 0.012533469508069276;
@@ -24,12 +27,13 @@ const HALF_NORMAL_99 = 2.5758293035489004;
  * the box is halved again and again: halves whose bounds rule a value out are dropped, the middles
  * of the others tried, up to 4,000 of them. So a value in a narrow corner is found nearly always.
  *
- * True also where a condition has no bounds to try between: then nothing can be said.
+ * True also where a condition has no bounds to try between, and where the document's other
+ * expressions have used up the effort: then nothing can be said.
  */
 export function hasValueSomewhere(
   expression: Expression,
   place: PredictionPlace,
-  ranges: readonly ConditionRange[] | null,
+  { ranges, effort }: { ranges: readonly ConditionRange[] | null; effort: Effort },
 ): boolean {
   if (ranges === null) return true;
   const { hypothesis, observable } = place;
@@ -40,9 +44,13 @@ export function hasValueSomewhere(
     ([name]) => expression.names.has(name),
   );
   const lowest = lowestBelow(observable?.scale);
-  const search = { expression, parameters, columns, ranges, lowest };
-  return foundByDraws(search) || foundInBoxes(search);
+  const size = sizeOf(expression.tree);
+  const search = { expression, parameters, columns, ranges, lowest, size, effort };
+  return foundByDraws(search) || foundInBoxes(search) || effort.left <= 0;
 }
+
+/** Parts of expressions that may still be computed: a document of many bad ones is answered too. */
+export type Effort = { left: number };
 
 /** A condition with the least and the greatest of its values. */
 export type ConditionRange = readonly [name: string, lower: number, upper: number];
@@ -53,6 +61,8 @@ type Search = {
   columns: readonly (readonly [name: string, column: readonly number[]])[];
   ranges: readonly ConditionRange[];
   lowest: number;
+  size: number;
+  effort: Effort;
 };
 
 function foundByDraws(search: Search): boolean {
@@ -71,12 +81,17 @@ function foundByDraws(search: Search): boolean {
         scope[name] = lower + (upper - lower) * spread(point, dimension);
       });
       if (isValue(search, scope)) return true;
+      if (search.effort.left <= 0) return false;
     }
   }
   return false;
 }
 
-function isValue({ expression, lowest }: Search, scope: Record<string, number>): boolean {
+function isValue(
+  { expression, lowest, size, effort }: Search,
+  scope: Record<string, number>,
+): boolean {
+  effort.left -= size;
   const value = expression.evaluate(scope);
   return Number.isFinite(value) && value > lowest;
 }
@@ -108,6 +123,7 @@ function foundInBox(
   const boxes: Box[] = [{ depth: 0, from: axes.map(() => 0), to: axes.map(() => 1) }];
   let oldest = 0;
   for (let looked = 0; looked < most && oldest < boxes.length; looked++) {
+    if (search.effort.left <= 0) return false;
     const box = first === "oldest" ? boxes[oldest++]! : boxes.pop()!;
     const found = lookInto(search, { row, axes, box });
     if (found === "a value") return true;
@@ -136,6 +152,7 @@ function lookInto(
     bounds.set(name, { lower: at(from), upper: at(to) });
     scope[name] = at((from + to) / 2);
   });
+  search.effort.left -= RANGE_EFFORT * search.size;
   if (isRuledOut(rangeOf(search.expression.tree, bounds), search.lowest)) return "none";
   return isValue(search, scope) ? "a value" : "perhaps";
 }
