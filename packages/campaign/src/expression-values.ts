@@ -1,5 +1,5 @@
 import { functions } from "./expression-words";
-import type { Comparison, Tree } from "./expression-tree";
+import type { Comparison, Operator, Tree } from "./expression-tree";
 import { interpolate } from "./interpolation";
 
 export type Scope = Readonly<Record<string, number>>;
@@ -40,8 +40,12 @@ function closureOfPart<V>(
       const of = make(tree.of);
       return (values) => -of(values);
     }
-    case "operation":
-      return operationOf(tree.operator, make(tree.a), make(tree.b));
+    case "operation": {
+      const { operator, a, b } = tree;
+      if (b.kind === "number") return byNumber(operator, make(a), b.value);
+      if (a.kind === "number") return ofNumber(operator, a.value, make(b));
+      return operationOf(operator, make(a), make(b));
+    }
     case "choice": {
       const compare = comparisons[tree.comparison];
       const [a, b, yes, no] = [make(tree.a), make(tree.b), make(tree.yes), make(tree.no)];
@@ -63,7 +67,45 @@ const comparisons: Readonly<Record<Comparison, (a: number, b: number) => boolean
 
 type Closure<V> = (values: V) => number;
 
-function operationOf<V>(operator: string, a: Closure<V>, b: Closure<V>): Closure<V> {
+/** A call less, and for the commonest powers no logarithm. */
+function byNumber<V>(operator: Operator, a: Closure<V>, b: number): Closure<V> {
+  switch (operator) {
+    case "+":
+      return (values) => a(values) + b;
+    case "-":
+      return (values) => a(values) - b;
+    case "*":
+      return (values) => a(values) * b;
+    case "/":
+      return (values) => a(values) / b;
+    case "^":
+      if (b === -1) return (values) => 1 / a(values);
+      if (b === 2) {
+        return (values) => {
+          const value = a(values);
+          return value * value;
+        };
+      }
+      return (values) => a(values) ** b;
+  }
+}
+
+function ofNumber<V>(operator: Operator, a: number, b: Closure<V>): Closure<V> {
+  switch (operator) {
+    case "+":
+      return (values) => a + b(values);
+    case "-":
+      return (values) => a - b(values);
+    case "*":
+      return (values) => a * b(values);
+    case "/":
+      return (values) => a / b(values);
+    case "^":
+      return (values) => a ** b(values);
+  }
+}
+
+function operationOf<V>(operator: Operator, a: Closure<V>, b: Closure<V>): Closure<V> {
   switch (operator) {
     case "+":
       return (values) => a(values) + b(values);
@@ -73,7 +115,7 @@ function operationOf<V>(operator: string, a: Closure<V>, b: Closure<V>): Closure
       return (values) => a(values) * b(values);
     case "/":
       return (values) => a(values) / b(values);
-    default:
+    case "^":
       return (values) => a(values) ** b(values);
   }
 }
