@@ -44,12 +44,14 @@ describe("a parameter", () => {
   });
 
   test("of a uniform prior is an interval by another name, and costs a degree of freedom", () => {
-    const { lnEvidence, chiSquare, degreesOfFreedom } = withPrior({
+    const { lnEvidence, chiSquare, degreesOfFreedom, parameters } = withPrior({
       family: "uniform",
       lower: 5,
       upper: 12,
     });
     near(lnEvidence, lnIntegral(lnL, 5, 12) - Math.log(7));
+    const below = (q: number) => Math.exp(lnIntegral(lnL, 5, q) - lnIntegral(lnL, 5, 12));
+    parameters[0]!.quantiles.forEach((q, i) => near(below(q), [0.025, 0.5, 0.975][i]!));
     near(chiSquare, 4 / 5);
     expect(degreesOfFreedom).toBe(1);
   });

@@ -3,7 +3,7 @@ import { integrandOf } from "./integrand";
 import { couplersOf } from "./couplers";
 import { layoutOf, type Layout } from "./layout";
 import { lnOrthant } from "./orthant";
-import { outerQuantileOf, posteriorOf } from "./posterior";
+import { flatQuantileOf, outerQuantileOf, posteriorOf } from "./posterior";
 import type { BlockEvidence, BlockOutcome, BlockProblem, BlockRefusal } from "./problem";
 import { integralOf, type ScenarioEvidence } from "./scenario-integral";
 import { workbenchOf, type Workbench } from "./workbench";
@@ -42,6 +42,7 @@ export function blockEvidence(problem: BlockProblem): BlockOutcome<BlockEvidence
     unknowns: { outer: problem.outer.length, linear: problem.linear.length },
     posterior: () => (ln === -Infinity ? [] : posteriorOf(bench, { shares, found })),
     outerQuantile: outerQuantileOf(problem, { shares, found }),
+    flatQuantile: flatQuantileOf(bench, { shares, found }),
   };
 }
 

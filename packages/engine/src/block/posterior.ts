@@ -4,6 +4,7 @@ import { sharesOutside } from "./boxes";
 import type { Conditional } from "./conditional";
 import { backSubstitute, varianceGivenTail } from "./elimination";
 import { integrandOf, type Integrand } from "./integrand";
+import type { Integral } from "./integrate";
 import type { OpenPart } from "./open-part";
 import type { BlockProblem, LinearPosterior, PosteriorPiece } from "./problem";
 import { integralOf, type ScenarioEvidence } from "./scenario-integral";
@@ -162,6 +163,34 @@ function squared(vector: Float64Array): number {
   let sum = 0;
   for (const value of vector) sum += value * value;
   return sum;
+}
+
+/**
+ * Posterior quantile of a flat linear unknown that was integrated numerically, from the integrals'
+ * own distribution functions; null where its bounds cut off nothing, or the pieces alone tell it.
+ */
+export function flatQuantileOf(
+  bench: Workbench,
+  { shares, found }: Scenarios,
+): (unknown: number, p: number) => number | null {
+  let counted: { cdf: Integral["cdf"]; share: number; first: number }[] | null = null;
+  return (unknown, p) => {
+    counted ??= found.flatMap((one, r) => {
+      if (shares[r]! <= NO_WEIGHT) return [];
+      const { integrand, integral } = withPoints(bench, one);
+      const first = integrand.flats > 0 ? integrand.outer + integrand.rank : -1;
+      return [{ cdf: integral.cdf, share: shares[r]!, first }];
+    });
+    const flat = bench.layout.place[unknown]! - bench.layout.open;
+    if (flat < 0 || counted.some(({ cdf, first }) => cdf === null || first < 0)) return null;
+    const { lower, upper } = bench.layout.bounds[flat]!;
+    const above = (t: number) => {
+      let sum = -p;
+      for (const { cdf, share, first } of counted!) sum += share * cdf!(first + flat, t);
+      return sum;
+    };
+    return findRoot(above, lower, upper, 1e-12 * (upper - lower));
+  };
 }
 
 /** From the integrals' own distribution functions; null where there is none. */

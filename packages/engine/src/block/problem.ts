@@ -177,6 +177,8 @@ export interface BlockEvidence {
   posterior(): readonly PosteriorPiece[];
   /** Posterior quantile of an outer unknown's value; null where only the pieces tell it. */
   outerQuantile: ((unknown: number, p: number) => number) | null;
+  /** Posterior quantile of a flat linear unknown; null where only the pieces tell it. */
+  flatQuantile(unknown: number, p: number): number | null;
 }
 
 /** A part of the posterior: values of the outer unknowns with a weight. Weights add up to 1. */

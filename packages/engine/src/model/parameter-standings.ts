@@ -98,7 +98,10 @@ function linearPosterior(
     loadings[place] = step;
     return logged ? Math.log10(from) : from;
   });
-  const quantiles = mixtureQuantiles(mixture, SHARES);
+  const flat = SHARES.map((share) => evidence.flatQuantile(place, share));
+  const quantiles = flat.every((one) => one !== null)
+    ? flat.map((t) => (logged ? Math.log10(from) : from) + step * t)
+    : mixtureQuantiles(mixture, SHARES);
   if (!logged) {
     const [lower, middle, upper] = quantiles;
     return { ...mixtureMoments(mixture), quantiles: [lower!, middle!, upper!] };
