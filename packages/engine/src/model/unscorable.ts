@@ -7,6 +7,7 @@ import type { BlockProblem, BlockRefusal } from "../block/problem";
 import { workbenchOf } from "../block/workbench";
 import { EngineError } from "../engine-error";
 import type { EngineState } from "../engine-state";
+import { enteredRoles } from "../entered";
 import { measuredBlocks } from "../evidence";
 import { openWorkspace } from "../open-workspace";
 import { isPlain } from "../plain-blocks";
@@ -30,7 +31,9 @@ export function unscorableParts(state: Pick<EngineState, "frame" | "sums">): Pro
   const { frame } = workspace;
   const silent: Roles = frame.measurands.map(() => 0);
   const looked = new Set<string>();
-  for (const roles of [silent, ...frame.hypotheses.map((one) => saidBy(one, silent))]) {
+  for (const said of [silent, ...frame.hypotheses.map((one) => saidBy(one, silent))]) {
+    // A derived value that only has a verdict is never beside another.
+    const roles = enteredRoles(workspace, said);
     for (const block of measuredBlocks(workspace, roles)) {
       const key = block.map((m) => `${m}:${roles[m]}`).join(" ");
       if (looked.has(key) || isPlain(workspace, block, roles)) continue;
