@@ -36,7 +36,7 @@ function slowly(factor: Factor, sd: number, mu: number): number {
   let height = -Infinity;
   for (let k = -3000; k <= 3000; k += 1) height = Math.max(height, g((far * k) / 3000));
   let sum = 0;
-  const places = [...factor.breaks.map((at) => (at - mu) / sd)];
+  const places = factor.breaks.map((at) => (at - mu) / sd);
   for (let k = -150; k <= 150; k += 1) places.push((far * k) / 150);
   places.sort((a, b) => a - b);
   for (let k = 1; k < places.length; k += 1) {

@@ -21,7 +21,7 @@ const REACH = 9;
  */
 export function convolved(factor: Factor, extra: number): Factor {
   const sd = Math.sqrt(extra);
-  const step = factor.breaks.length > 0 ? sd : Math.hypot(factor.scale, sd) / 2;
+  const step = factor.breaks.length > 0 ? sd : Math.hypot(factor.scale, sd);
   return {
     ...factor,
     ln: tabulated((mu) => logConvolution(factor, sd, mu), { origin: factor.centre, step }),
@@ -32,7 +32,7 @@ export function convolved(factor: Factor, extra: number): Factor {
 }
 
 /** Panels' edges about a peak, in units of its width. */
-const EDGES = [0, 1, 2.5, 5, 10, 20, 40, 80, 160, 320, 640, 1280];
+const EDGES = [0, 1.5, 4, 10, 25, 60, 150, 400, 1000];
 
 /** And about a kink, in the factor's scale: beside one it may bend sharply. */
 const NEAR_KINKS = [0, 0.02, 0.1, 0.4];
@@ -53,10 +53,13 @@ function logConvolution(factor: Factor, sd: number, mu: number): number {
   }
   for (const edge of EDGES) {
     cuts.add(peak + edge * width).add(peak - edge * width);
-    if (own < 1) cuts.add(pull + edge * own).add(pull - edge * own);
+    // A narrow factor beside the peak is another one.
+    if (own < 0.5) cuts.add(pull + edge * own).add(pull - edge * own);
   }
-  for (const at of [0, 2, 4, 6]) cuts.add(at).add(-at);
-  const sorted = [...cuts].filter((at) => at >= lower && at <= upper).sort((a, b) => a - b);
+  for (const at of [0, 3, 6]) cuts.add(at).add(-at);
+  // Kinks have to stay where they are.
+  const least = kinks.length > 0 ? 0 : Math.min(width, own) / 4;
+  const sorted = apart([...cuts], { lower, upper, least });
   const f = (s: number) => Math.exp(g(s) - height);
   let sum = 0;
   for (let i = 1; i < sorted.length; i += 1) {
@@ -64,6 +67,20 @@ function logConvolution(factor: Factor, sd: number, mu: number): number {
     if (to > from && !isNothing(f, from, to)) sum += gaussLegendre(f, from, to);
   }
   return height + Math.log(sum) - LN_SQRT_2PI;
+}
+
+/** In order, between the ends, those left out that lie next to the one before. */
+function apart(
+  cuts: number[],
+  { lower, upper, least }: { lower: number; upper: number; least: number },
+): number[] {
+  cuts.sort((a, b) => a - b);
+  const kept: number[] = [];
+  for (const at of cuts) {
+    if (at < lower || at > upper) continue;
+    if (at === upper || kept.length === 0 || at - kept.at(-1)! >= least) kept.push(at);
+  }
+  return kept;
 }
 
 /** Whether a panel holds nothing that counts: f is below 1e-19 at both ends and between. */

@@ -58,7 +58,7 @@ export function linearNoiseFactor({
   centre: number;
 }): Factor {
   const clear = value > 3 * sd;
-  const residual = (mu: number) => (value - 10 ** (mu + centre)) / sd;
+  const residual = (mu: number) => (value - Math.exp((mu + centre) * Math.LN10)) / sd;
   const plain: Factor = {
     ln: (mu) => {
       const r = residual(mu);
@@ -92,7 +92,7 @@ export function fainterFactor({
 }): Factor {
   const plain: Factor = {
     ln: (mu) => {
-      const z = sigmas * 10 ** (-0.4 * (mu - limit));
+      const z = sigmas * Math.exp(-0.4 * Math.LN10 * (mu - limit));
       return -(z * z) / 2 - LN_SQRT_2PI;
     },
     centre: limit + 2.5 * Math.log10(sigmas),

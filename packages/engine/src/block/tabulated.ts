@@ -1,5 +1,5 @@
 /** Chebyshev points a panel: on a panel of a function's own scale the next term is below 1e-13. */
-const POINTS = 18;
+const POINTS = 22;
 /** A panel that is asked for less often than it has points isn't worth them. */
 const OFTEN = POINTS;
 
