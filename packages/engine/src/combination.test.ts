@@ -76,7 +76,7 @@ const barlow = (d: number, plus: number, minus: number) => {
 /** Least cost on a fine grid, then golden sections; the width at one more by bisection. */
 function bruteLeast(cost: (mu: number) => number, lower: number, upper: number) {
   let best = lower;
-  const step = (upper - lower) / 20000;
+  const step = (upper - lower) / 1000;
   for (let mu = lower; mu <= upper; mu += step) if (cost(mu) < cost(best)) best = mu;
   let [a, b] = [best - step, best + step];
   for (let k = 0; k < 80; k += 1) {
@@ -88,7 +88,7 @@ function bruteLeast(cost: (mu: number) => number, lower: number, upper: number) 
   const goal = cost(value) + 1;
   const edge = (end: number) => {
     let [inside, outside] = [value, value];
-    while (cost(outside) < goal) outside += (end - value) / 5000;
+    while (cost(outside) < goal) outside += (end - value) / 500;
     for (let k = 0; k < 80; k += 1) {
       const middle = (inside + outside) / 2;
       if (cost(middle) < goal) inside = middle;
@@ -106,11 +106,22 @@ describe("values with two sides combine to the maximum of the likelihood", () =>
     { value: 3.1, plus: 0.5, minus: 0.4 },
   ];
   const costOf = (data: typeof three, extra: number) => (mu: number) =>
-    data.reduce(
-      (sum, { value, plus, minus }) =>
-        sum + (mu - value) ** 2 / (barlow(mu - value, plus, minus) + extra),
-      0,
-    );
+    data.reduce((sum, { value, plus, minus }) => sum + seen(mu - value, [plus, minus, extra]), 0);
+
+  /** What is read is the level with its scatter t: the least over t. */
+  const seen = (d: number, [plus, minus, extra]: [number, number, number]) => {
+    const at = (t: number) => (d + t) ** 2 / barlow(d + t, plus, minus) + t ** 2 / extra;
+    if (extra === 0) return d ** 2 / barlow(d, plus, minus);
+    let best = 0;
+    for (let t = -3; t <= 3; t += 0.02) if (at(t) < at(best)) best = t;
+    let [a, b] = [best - 0.02, best + 0.02];
+    for (let k = 0; k < 45; k += 1) {
+      const [c, e] = [b - 0.618034 * (b - a), a + 0.618034 * (b - a)];
+      if (at(c) < at(e)) b = e;
+      else a = c;
+    }
+    return at((a + b) / 2);
+  };
 
   test.each([
     ["alone", three, 0],

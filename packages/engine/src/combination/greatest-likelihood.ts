@@ -1,12 +1,12 @@
-import { asymmetricVariance } from "../block/asymmetric";
 import { wrapped } from "../scoring-space";
+import { rootOf, rowCost } from "./row-cost";
 
 /** Values in scoring space; symmetric ones have plus = minus. */
 export interface AsymmetricRows {
   y: Float64Array;
   plus: Float64Array;
   minus: Float64Array;
-  /** Variance added to each one's V, a target's scatter. */
+  /** Of the scatter that each one's target had beside the level. */
   extra: Float64Array;
   /** Differences are wrapped into (-period / 2, period / 2]; 0: not at all. */
   period: number;
@@ -22,8 +22,10 @@ export interface MostLikely {
 /**
  * The value of greatest likelihood, with half the width at ln L = max - 1/2, of
  *
- *   -2 ln L(mu) = sum (mu - y)^2 / (V(mu) + extra)
- *   V(mu) = plus minus + (plus - minus)(mu - y), clamped to [min(plus, minus)^2, max(plus, minus)^2]
+ *   -2 ln L(mu) = sum over i of min over w of (w - y)^2 / V(w) + (w - mu)^2 / extra
+ *   V(w) = plus minus + (plus - minus)(w - y), clamped to [min(plus, minus)^2, max(plus, minus)^2]
+ *
+ * w is what was there to be read: mu with the target's scatter, mu itself without any.
  *
  * The sum may have more than one minimum: each stretch between values and ends of the clamped
  * ranges is looked at, and the least is taken.
@@ -50,8 +52,7 @@ export function mostLikely(given: AsymmetricRows): MostLikely {
 function costAt({ y, plus, minus, extra, period }: AsymmetricRows, mu: number): number {
   let sum = 0;
   for (let i = 0; i < y.length; i += 1) {
-    const d = wrapped(mu - y[i]!, period);
-    sum += (d * d) / (asymmetricVariance(d, plus[i]!, minus[i]!) + extra[i]!);
+    sum += rowCost(wrapped(mu - y[i]!, period), plus[i]!, minus[i]!, extra[i]!).cost;
   }
   return sum;
 }
@@ -59,11 +60,7 @@ function costAt({ y, plus, minus, extra, period }: AsymmetricRows, mu: number): 
 function slopeAt({ y, plus, minus, extra, period }: AsymmetricRows, mu: number): number {
   let sum = 0;
   for (let i = 0; i < y.length; i += 1) {
-    const [p, m] = [plus[i]!, minus[i]!];
-    const d = wrapped(mu - y[i]!, period);
-    const v = asymmetricVariance(d, p, m) + extra[i]!;
-    const moving = d > -m && d < p ? p - m : 0;
-    sum += (2 * d) / v - (moving * d * d) / (v * v);
+    sum += rowCost(wrapped(mu - y[i]!, period), plus[i]!, minus[i]!, extra[i]!).slope;
   }
   return sum;
 }
@@ -108,18 +105,6 @@ function leastOf({
     if (slope(a + 1e-9 * (b - a)) < 0 && slope(b - 1e-9 * (b - a)) > 0) take(rootOf(slope, a, b));
   }
   return { value, chiSquare, step: Math.max((kept.at(-1)! - kept[0]!) / 64, Number.MIN_VALUE) };
-}
-
-/** Where a slope turns from below 0 to above. */
-function rootOf(slope: (mu: number) => number, lower: number, upper: number): number {
-  let [a, b] = [lower, upper];
-  for (let step = 0; step < 200; step += 1) {
-    const middle = (a + b) / 2;
-    if (middle <= a || middle >= b) break;
-    if (slope(middle) < 0) a = middle;
-    else b = middle;
-  }
-  return (a + b) / 2;
 }
 
 /** The nearest place, that way, at which the cost reaches the goal. */

@@ -1,11 +1,11 @@
 import { minimiseLeastSquares } from "@weighhouse/numerics/levenberg-marquardt";
 import { choleskyFactor, whiten } from "@weighhouse/numerics/symmetric-cholesky";
-import { asymmetricVariance } from "../block/asymmetric";
 import { wrapped } from "../scoring-space";
 import { asymmetricRows } from "./asymmetric-rows";
 import { crossing, type AsymmetricRows, type MostLikely } from "./greatest-likelihood";
 import type { GlsGroup } from "./least-squares";
 import type { LevelRows } from "./level-rows";
+import { rowCost } from "./row-cost";
 
 /** Rows of two sides with what shared errors do to them. */
 interface TiedRows extends AsymmetricRows {
@@ -116,7 +116,7 @@ function residuals(
     let level = mu;
     for (let k = 0; k < draws; k += 1) level += loadings[i * draws + k]! * eta[k]!;
     const d = wrapped(level - y[i]!, period);
-    out[i] = d / Math.sqrt(asymmetricVariance(d, plus[i]!, minus[i]!) + extra[i]!);
+    out[i] = Math.sign(d) * Math.sqrt(rowCost(d, plus[i]!, minus[i]!, extra[i]!).cost);
   }
   for (const group of rows.groups) whitenGroup(rows, group, out);
   for (let k = 0; k < draws; k += 1) out[n + k] = eta[k]!;
