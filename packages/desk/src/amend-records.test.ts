@@ -73,6 +73,12 @@ describe("a correction", () => {
     });
     expect((await document(lagoon)).measurements[0]).toMatchObject({ value: 44, team: "algae" });
     expect(await standings(lagoon)).not.toEqual(before);
+    // The table as it was posted, and the table put right, are both there already.
+    for (const value of [41, 44]) {
+      const source = { from: "drafts" as const, drafts: [reading("night-1", value)] };
+      const posted = await postMeasurements(house.desk, member, { key, source });
+      expect(posted).toMatchObject({ alreadyThere: ["night-1"], appended: null });
+    }
     const history = await readMeasurementHistory(house.desk, null, { key, id: "night-1" });
     const values = history.map(({ kind, measurement }) => [kind, measurement.value]);
     expect(values).toEqual([

@@ -120,50 +120,69 @@ const asItem = (content: MeasurementContent): Item => ({ id: content.id, content
 const asPairItem = (pair: Correlation): Item => ({ id: pairKey(pair), content: pair });
 const pairKey = ({ a, b }: Correlation) => `${a} ${b}`;
 
-/** What was first posted under these ids. */
+/** Every version of what was posted under these ids, the newest first. */
 async function contentsThere(
   tx: Queries,
   campaignId: number,
   contents: MeasurementContent[],
   correlations: Correlation[],
-): Promise<Map<string, Content>> {
+): Promise<Map<string, Content[]>> {
   const [measurements, pairs] = await Promise.all([
     tx<{ id: string; content: string }[]>`
-      select distinct on (id) id, content from measurements
+      select id, content from measurements
       where campaign_id = ${campaignId} and id = any(${contents.map(({ id }) => id)}::text[])
-      order by id, from_size`,
+      order by id, from_size desc`,
     correlations.length === 0
       ? []
       : tx<{ id: string; content: string }[]>`
-          select distinct on (key) key as id, content from parts
+          select key as id, content from parts
           where campaign_id = ${campaignId} and part = 'correlation'
             and key = any(${correlations.map(pairKey)}::text[])
-          order by key, from_size`,
+          order by key, from_size desc`,
   ]);
-  return new Map(
-    [...measurements, ...pairs].map((row) => [row.id, JSON.parse(row.content) as Content]),
-  );
+  const there = new Map<string, Content[]>();
+  for (const row of [...measurements, ...pairs]) {
+    const versions = there.get(row.id);
+    const content = JSON.parse(row.content) as Content;
+    if (versions === undefined) there.set(row.id, [content]);
+    else versions.push(content);
+  }
+  return there;
 }
 
-/** Parts what is posted into new, already there (also twice in one posting), and conflicting. */
-function sortOut(items: Item[], there: Map<string, Content>) {
+/**
+ * Parts what is posted into new, already there (also twice in one posting), and conflicting. A table
+ * posted again is already there also where it was corrected since, or holds the correction.
+ */
+function sortOut(items: Item[], there: Map<string, Content[]>) {
   const fresh = new Set<string>();
   const alreadyThere: string[] = [];
   const conflicts: Conflict[] = [];
   for (const { id, content } of items) {
-    const before = there.get(id);
-    if (before === undefined) {
+    const [newest, ...older] = there.get(id) ?? [];
+    if (newest === undefined) {
       fresh.add(id);
-      there.set(id, content);
+      there.set(id, [content]);
       continue;
     }
-    const differing = Object.keys(content).filter(
-      (field) => canonicalJson(content[field]) !== canonicalJson(before[field] ?? null),
-    );
-    if (differing.length === 0) alreadyThere.push(id);
+    const differing = differingFields(content, newest);
+    if ([differing, ...older.map((one) => differingFields(content, one))].some(isEmpty)) {
+      alreadyThere.push(id);
+      continue;
+    }
     for (const field of differing) {
-      conflicts.push({ id, field, there: before[field] ?? null, posted: content[field] });
+      conflicts.push({ id, field, there: newest[field] ?? null, posted: content[field] });
     }
   }
   return { fresh, alreadyThere, conflicts };
+}
+
+function differingFields(content: Content, there: Content): string[] {
+  return Object.keys(content).filter(
+    (field) => canonicalJson(content[field]) !== canonicalJson(there[field] ?? null),
+  );
+}
+
+function isEmpty(fields: string[]): boolean {
+  return fields.length === 0;
 }

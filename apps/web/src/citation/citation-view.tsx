@@ -22,7 +22,7 @@ export function CitationView({ citation, origin }: { citation: Citation; origin:
   return (
     <>
       <p className="text-[14px] text-quiet">Cited standings</p>
-      <h1 className="my-1 max-w-[34em]">{document.campaign.title}</h1>
+      <h1 className="mt-1 mb-4 max-w-[34em]">{document.campaign.title}</h1>
       {citation.clock === "simulated" ? (
         <Notice label="Simulated clock.">
           This ledger’s times were set by hand, for a demonstration: they prove nothing about when

@@ -101,6 +101,9 @@ function Silent(props: { document: CampaignDocument; hypothesis: Hypothesis; bas
             <KeptLink className="link" href={`${props.base}/quantities/${each.key}`}>
               {each.title}
             </KeptLink>
+            {props.hypothesis.withheld.includes(each.key) ? (
+              <span className="text-quiet"> (withheld)</span>
+            ) : null}
           </li>
         ))}
       </ul>

@@ -38,7 +38,9 @@ export function VersionRows(props: {
             </Link>
           </th>
           <td data-label="What">
-            {kindInWords(version.kind)}, <Time at={version.at} />
+            <span>
+              {kindInWords(version.kind)}, <Time at={version.at} />
+            </span>
           </td>
           <td data-label="Result">
             <Result version={version} observables={props.observables} />
@@ -50,8 +52,10 @@ export function VersionRows(props: {
             {version.reason}
           </td>
           <td data-label="By">
-            {version.name ?? <span className="text-quiet">a person no longer named</span>}
-            {version.team ? <span className="text-quiet">, {version.team}</span> : null}
+            <span>
+              {version.name ?? <span className="text-quiet">a person no longer named</span>}
+              {version.team ? <span className="text-quiet">, {version.team}</span> : null}
+            </span>
           </td>
         </tr>
       ))}

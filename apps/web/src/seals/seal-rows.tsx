@@ -45,22 +45,25 @@ export function SealRows({
             </KeptLink>
           </th>
           <td data-label="What">
-            {seal.of}
             {seal.hypothesis === null
-              ? null
-              : ` of “${hypotheses.get(seal.hypothesis) ?? seal.hypothesis}”`}
+              ? seal.of
+              : `${seal.of} of “${hypotheses.get(seal.hypothesis) ?? seal.hypothesis}”`}
           </td>
           <td data-label="By">
-            {seal.team === null ? "an observer" : (teams.get(seal.team) ?? seal.team)}
-            <span className="text-quiet">
-              {seal.keeping === "held" ? ", held here" : ", kept by them"}
+            <span>
+              {seal.team === null ? "an observer" : (teams.get(seal.team) ?? seal.team)}
+              <span className="text-quiet">
+                {seal.keeping === "held" ? ", held here" : ", kept by them"}
+              </span>
             </span>
           </td>
           <td data-label="Sealed">
-            <Time at={seal.at} />,{" "}
-            <Link className="link" href={`${base}/ledger/${seal.seq}`}>
-              entry {seal.seq}
-            </Link>
+            <span>
+              <Time at={seal.at} />,{" "}
+              <Link className="link" href={`${base}/ledger/${seal.seq}`}>
+                entry {seal.seq}
+              </Link>
+            </span>
           </td>
           <td data-label="Until">
             <Time at={seal.until} />
@@ -79,7 +82,7 @@ export function SealRows({
 
 function State({ seal, base }: { seal: Seal; base: string }) {
   return (
-    <>
+    <div>
       <span className={seal.state === "never" ? "font-medium text-rust" : "font-medium"}>
         {stateWords[seal.state]}
       </span>
@@ -102,7 +105,7 @@ function State({ seal, base }: { seal: Seal; base: string }) {
           </pre>
         </details>
       )}
-    </>
+    </div>
   );
 }
 

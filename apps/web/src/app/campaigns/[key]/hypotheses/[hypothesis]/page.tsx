@@ -46,10 +46,12 @@ export default async function HypothesisPage(props: Props) {
   return (
     <CampaignFrame campaignKey={key} size={size}>
       {retired === undefined ? null : (
-        <Notice label="Retired.">
-          Its team stands behind it no more since <Time at={retired.at} />: {retired.reason}. What
-          it predicted goes on being judged.
-        </Notice>
+        <div className="mb-4">
+          <Notice label="Retired.">
+            Its team stands behind it no more since <Time at={retired.at} />: {retired.reason}. What
+            it predicted goes on being judged.
+          </Notice>
+        </div>
       )}
       {own ? (
         <p className="no-print mb-3 flex flex-wrap gap-2">

@@ -40,7 +40,7 @@ export default async function MeasurementPage(props: Props) {
     role === "coordinator" || (role === "member" && team !== null && team === measurement.team);
   return (
     <CampaignFrame campaignKey={key} size={size}>
-      <Section title={`Measurement ${id}`} gloss={measurand?.title ?? undefined} id="history">
+      <Section title={`Measurement ${id}`} gloss="all that it ever was" id="history">
         <p className="mb-3 text-[14px]">
           <Link className="link" href={`${base}/quantities/${measurement.measurand}`}>
             {measurand?.title ?? measurement.measurand}
