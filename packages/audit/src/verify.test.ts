@@ -6,7 +6,8 @@ import { formatTreeHead, parseTreeHead, signTreeHead } from "@weighhouse/ledger/
 import { encodeVerifierKey, fingerprint } from "@weighhouse/ledger/verifier-key";
 import { CHECKS } from "./checks/line";
 import { forgeLedger, tamper } from "./testing/forge";
-import { archiveInput, LEDGER_ID, marshTransactions } from "./testing/marsh-campaign";
+import { LEDGER_ID } from "./testing/archive-input";
+import { archiveInput, marshTransactions } from "./testing/marsh-campaign";
 import { appendTransactions, fixedSigner } from "./testing/synthetic-ledger";
 import { detailOf, failures, house, signedHead, verify } from "./testing/verify-marsh";
 import { verifyArchive } from "./verify";

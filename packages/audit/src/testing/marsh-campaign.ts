@@ -1,14 +1,8 @@
-import { ENGINE_VERSION } from "@weighhouse/engine/version";
-import { scoreCampaign } from "@weighhouse/engine/score";
-import { foldRecords } from "@weighhouse/campaign/fold";
-import { base64 } from "@weighhouse/ledger/bytes";
-import { parseTreeHead } from "@weighhouse/ledger/tree-head";
 import type { NoteSigner } from "@weighhouse/ledger/signed-note";
 import type { ArchiveInput } from "../write";
-import { appendTransactions, fixedSigner } from "./synthetic-ledger";
+import { archiveInputOf, LEDGER_ID } from "./archive-input";
+import { fixedSigner } from "./synthetic-ledger";
 import type { Posting, SyntheticLedger } from "./synthetic-ledger";
-
-export const LEDGER_ID = "house.example/5f1d3c0a9be84e27";
 
 /** An invented campaign: why does a marsh in an invented valley steam before dawn? */
 export function marshTransactions(clock: "real" | "simulated" = "real"): Posting[][] {
@@ -78,12 +72,7 @@ export function archiveInput(
   transactions: Posting[][] = marshTransactions(),
   signer: NoteSigner = fixedSigner("house.example", 1),
 ): ArchiveInput & SyntheticLedger {
-  const ledger = appendTransactions("steaming-marsh", LEDGER_ID, transactions, signer);
-  const document = foldRecords(ledger.records);
-  const { size, root } = parseTreeHead(ledger.heads.at(-1) as string);
-  const scored = scoreCampaign(document, { asOf: { size, treeHead: base64(root) } });
-  if (!scored.ok) throw new Error(JSON.stringify(scored.problems));
-  return { ...ledger, document, standings: scored.value, engine: ENGINE_VERSION, signer };
+  return archiveInputOf("steaming-marsh", transactions, signer);
 }
 
 function observable(key: string, fields: object): Posting {

@@ -1,6 +1,7 @@
 import { nodeHasher } from "@weighhouse/ledger/node-hasher";
 import { sealDigest } from "@weighhouse/ledger/seal";
-import { LEDGER_ID, marshTransactions } from "./marsh-campaign";
+import { LEDGER_ID } from "./archive-input";
+import { marshTransactions } from "./marsh-campaign";
 import type { Posting } from "./synthetic-ledger";
 
 export const NONCE = "5a".repeat(32);

@@ -7,7 +7,7 @@ import { formatTreeHead, signTreeHead } from "@weighhouse/ledger/tree-head";
 import type { CheckName, VerifyReport } from "../checks/line";
 import { verifyArchive } from "../verify";
 import type { VerifyOptions } from "../verify";
-import { LEDGER_ID } from "./marsh-campaign";
+import { LEDGER_ID } from "./archive-input";
 import { fixedSigner } from "./synthetic-ledger";
 
 /** Who keeps the marsh's ledger, and who would like to have kept another. */

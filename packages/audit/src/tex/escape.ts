@@ -13,6 +13,10 @@ const COMMANDS: Record<string, string> = {
   "<": "\\ensuremath{<}",
   ">": "\\ensuremath{>}",
   "|": "\\ensuremath{|}",
+  // After a line's end these would be its arguments.
+  "[": "{[}",
+  "]": "{]}",
+  "*": "{*}",
   '"': "{''}",
   "-": "{-}",
   "'": "{'}",
@@ -115,7 +119,7 @@ function texCharacter(character: string): string {
   if (/\s/.test(character)) return " ";
   if (character >= "!" && character <= "~") return character;
   const code = (character.codePointAt(0) as number).toString(16).toUpperCase().padStart(4, "0");
-  return `[U+${code}]`;
+  return `{[}U+${code}{]}`;
 }
 
 function greek(): Record<string, string> {

@@ -1,7 +1,8 @@
 import type { CheckName } from "../../checks/line";
 import { writeArchive } from "../../write";
 import { forgeLedger } from "../forge";
-import { archiveInput, LEDGER_ID } from "../marsh-campaign";
+import { LEDGER_ID } from "../archive-input";
+import { archiveInput } from "../marsh-campaign";
 import { opening, sealedTransactions, sealing } from "../sealed-marsh";
 import { appendTransactions } from "../synthetic-ledger";
 import type { Posting } from "../synthetic-ledger";
