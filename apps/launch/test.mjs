@@ -38,6 +38,9 @@ await step("unit, property and database tests", () =>
 await step("store's tests on Debian's PostgreSQL 15", () =>
   run(process.execPath, ["test/debian-postgres.mjs", path.join(reports, "postgres15.json")]),
 );
+await step("archives checked with Debian's python3, jq, openssl and LaTeX", () =>
+  run(process.execPath, ["test/debian-tools.mjs", path.join(reports, "archive.json")]),
+);
 await step("browser tests", async () => {
   const chromium = (await findChromium()) ?? (await installChromium());
   if (chromium === null) {
@@ -67,14 +70,14 @@ process.stdout.write(`${counts.passed} passed, ${counts.failed} failed\n`);
 const good = counts.failed === 0 && counts.passed > 0 && steps.every(isGood);
 process.exit(good ? 0 : 1);
 
-/** The older PostgreSQL is an extra where it can be had; CI must have it. */
+/** Debian's PostgreSQL and tools are an extra where they can be had; CI must have them. */
 function isGood({ code }) {
   return code === 0 || (code === NOT_RUN && !process.env.CI);
 }
 
 function countTests() {
   const total = { passed: 0, failed: 0 };
-  for (const name of ["vitest.json", "postgres15.json"]) {
+  for (const name of ["vitest.json", "postgres15.json", "archive.json"]) {
     const report = read(name);
     total.passed += report?.numPassedTests ?? 0;
     total.failed += report?.numFailedTests ?? 0;
