@@ -7,6 +7,7 @@ import { scoreCampaign } from "./score";
 import { addMeasurements, createState, restoreState, serialiseState, standingsOf } from "./state";
 import { documentFrom, standingsFrom } from "./testing/documents";
 import { campaigns } from "./testing/random-campaigns";
+import { expectSame } from "./testing/same-numbers";
 
 const spread = { level: 2_460_000, unit: 1e-4, flats: 1, measurements: { least: 2, most: 12 } };
 
@@ -30,19 +31,6 @@ function grownIn(document: CampaignDocument, order: readonly number[], cut: numb
     state = restoreState(serialiseState(added.value))!;
   }
   return state;
-}
-
-/** All numbers of two standings alike to 1e-9; texts and words the same. */
-function expectSame(found: unknown, expected: unknown, path = ""): void {
-  if (typeof found === "number" && typeof expected === "number") {
-    const allowed = 1e-9 * Math.max(1, Math.abs(expected));
-    expect(Math.abs(found - expected), path).toBeLessThanOrEqual(allowed);
-  } else if (found !== null && typeof found === "object") {
-    expect(Object.keys(found), path).toEqual(Object.keys(expected as object));
-    for (const [key, value] of Object.entries(found)) {
-      expectSame(value, (expected as Record<string, unknown>)[key], `${path}/${key}`);
-    }
-  } else expect(found, path).toBe(expected);
 }
 
 describe("a state", () => {

@@ -3,11 +3,10 @@ import type { Problem, Result } from "@weighhouse/campaign/problem";
 import type { Standings } from "@weighhouse/campaign/standings";
 import { compileFrame } from "./compile-frame";
 import type { EngineState } from "./engine-state";
-import type { Frame } from "./frame";
 import { openWorkspace } from "./open-workspace";
-import { readMeasurement } from "./read-measurement";
 import { unscorableParts } from "./model/unscorable";
-import { isSummed, type Reading } from "./readings";
+import { mayAddUnknowns, readCounted } from "./read-counted";
+import type { Reading } from "./readings";
 import type { ScoreOptions } from "./score-options";
 import { standings } from "./standings";
 import { restoreState, serialiseState } from "./state-text";
@@ -35,7 +34,8 @@ export function createState(document: CampaignDocument): Result<EngineState> {
 /**
  * Takes further measurements in, O(k^2) each. The state given is used up: go on with the one returned.
  * When a measurement is refused nothing has changed, and the state given is still good.
- * Anything but new measurements (a set-aside, a new hypothesis, ...) needs `createState` again.
+ * What becomes of those already in is for `reviseMeasurements`; anything else (a new hypothesis, ...)
+ * needs `createState` again.
  * Problems' pointers count on from the measurements already in: `/measurements/{size + i}`.
  */
 export function addMeasurements(
@@ -58,11 +58,6 @@ export function addMeasurements(
   return { ok: true, value: state };
 }
 
-/** A reading that is kept as it is and loads shared errors may need them integrated numerically. */
-function mayAddUnknowns(frame: Frame, reading: Reading | null): boolean {
-  return reading !== null && reading.loadings.length > 0 && !isSummed(frame, reading);
-}
-
 /** Tried on a copy: the state given must stay good. */
 function unscorableWith(
   state: EngineState,
@@ -83,30 +78,11 @@ function take(
   if (reading !== null) addReading(sums, reading, frame);
 }
 
-/** Null for a measurement that is listed and not counted, whatever its form. */
-function readCounted(
-  frame: Frame,
-  measurement: Measurement,
-  place: number,
-): Result<Reading | null> {
-  const pointer = `/measurements/${place}`;
-  const measurand = frame.measurandIndex.get(measurement.measurand);
-  if (measurand === undefined) {
-    const found = `"${measurement.measurand}"`;
-    const allowed = "a measurand of the campaign";
-    const at = `${pointer}/measurand`;
-    return { ok: false, problems: [{ pointer: at, code: "unknown-key", found, allowed }] };
-  }
-  if (measurement.setAside !== null || frame.measurands[measurand]!.closed) {
-    return { ok: true, value: null };
-  }
-  return readMeasurement(frame, measurement, pointer);
-}
-
 /** The standings document of a state. */
 export function standingsOf(state: EngineState, options: ScoreOptions = {}): Standings {
   return standings(openWorkspace(state), state.tally, options);
 }
 
 export type { EngineState } from "./engine-state";
+export { remakeMeasurands, reviseMeasurements, type Revision } from "./revisions";
 export { restoreState, serialiseState } from "./state-text";

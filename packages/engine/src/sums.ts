@@ -39,6 +39,8 @@ export interface MeasurandSums {
   /** The pattern of each group, and how many measurements are in it. */
   patterns: number[];
   counts: number[];
+  /** Per group, how often its rounding errors may have grown by what was taken out of it; 0: nothing was. */
+  wear: number[];
   /**
    * Per group, per noise class, of y minus the centre: sum of 1/v, weighted mean, weighted squares
    * about it, sum of ln v. Longer than its groups need.
@@ -78,6 +80,7 @@ export function createSums(measurands: readonly MeasurandFrame[]): Sums {
       noises: noises.length,
       patterns: [],
       counts: [],
+      wear: [],
       sums: new Float64Array(noises.length * PER_CLASS),
       kept: [],
     })),
@@ -106,8 +109,17 @@ export function placeOf({ noises }: MeasurandSums, group: number, noise: number)
   return (group * noises + noise) * PER_CLASS;
 }
 
-/** Adds one reading. */
-export function addReading(sums: Sums, reading: Reading, frame: Frame): void {
+/**
+ * Adds one reading.
+ *
+ * @param keptAt its place among those that are kept, if it is; the last if not given
+ */
+export function addReading(
+  sums: Sums,
+  reading: Reading,
+  frame: Frame,
+  keptAt: number | null = null,
+): void {
   const own = sums.measurands[reading.measurand]!;
   const { told } = reading;
   if (own.counted === 0) own.centre = centreOf(told);
@@ -117,14 +129,17 @@ export function addReading(sums: Sums, reading: Reading, frame: Frame): void {
   if (told.form === "value" && isSummed(frame, reading)) {
     const group = groupOf(sums, reading);
     own.counts[group] = (own.counts[group] ?? 0) + 1;
+    own.wear[group] ??= 0;
     addValue(own, { ...told, group }, frame.measurands[reading.measurand]!);
     return;
   }
-  own.kept.push(reading);
+  if (keptAt === null) own.kept.push(reading);
+  else own.kept.splice(keptAt, 0, reading);
   for (const { error, batch } of reading.loadings) drawIndex(sums, { error, batch });
 }
 
-function centreOf(told: Told): number {
+/** What a reading's measurand is centred on where it is the first. */
+export function centreOf(told: Told): number {
   if ("y" in told) return told.y;
   return told.form === "linear-noise" ? Math.log10(Math.max(told.value, told.sd)) : 0;
 }
@@ -152,7 +167,8 @@ function addValue(
   }
 }
 
-function groupOf(sums: Sums, { measurand, loadings }: Reading): number {
+/** The group of a reading's loadings, added if new. */
+export function groupOf(sums: Sums, { measurand, loadings }: Reading): number {
   const groups = sums.index.groups[measurand]!;
   const pattern = patternOf(sums, loadings);
   const there = groups.get(pattern);

@@ -2,4 +2,4 @@
 export const ENGINE_VERSION = "0.2.0";
 
 /** Any change of what a serialised state holds changes this: an older one is thrown away and rebuilt. */
-export const STATE_VERSION = 2;
+export const STATE_VERSION = 3;

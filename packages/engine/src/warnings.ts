@@ -72,10 +72,11 @@ function disagreeingMeasurements({ workspace }: WarningContext): Warning[] {
 
 function sameDataTwice({ tally }: WarningContext): Warning[] {
   const warnings: Warning[] = [];
-  for (const [key, { id, others }] of tally.sameData) {
-    if (others === null) continue;
-    const text = `${countOf(others.count + 1, "counted measurements")} share the data ${key}, first ${id}: the same data must not vote twice.`;
-    warnings.push({ code: "same-data-twice", at: `/measurements/${others.first}`, text });
+  for (const [key, some] of tally.sameData) {
+    const [first, second] = some;
+    if (first === undefined || second === undefined) continue;
+    const text = `${countOf(some.length, "counted measurements")} share the data ${key}, first ${first.id}: the same data must not vote twice.`;
+    warnings.push({ code: "same-data-twice", at: `/measurements/${second.place}`, text });
   }
   return warnings;
 }
@@ -125,10 +126,10 @@ function outside({ workspace }: WarningContext, prediction: PredictionFrame): st
 
 function outsideReference({ workspace, tally }: WarningContext): Warning[] {
   return tally.outside.flatMap((places, m) => {
-    if (places === null) return [];
+    if (places.length === 0) return [];
     const { key } = workspace.frame.measurands[m]!;
-    const text = `${countOf(places.count, "measurements")} of ${key} outside its reference.`;
-    return [{ code: "outside-reference" as const, at: `/measurements/${places.first}`, text }];
+    const text = `${countOf(places.length, "measurements")} of ${key} outside its reference.`;
+    return [{ code: "outside-reference" as const, at: `/measurements/${places[0]}`, text }];
   });
 }
 
@@ -230,10 +231,10 @@ function byOrder(
 }
 
 function unknownUnits({ workspace, tally }: WarningContext): Warning[] {
-  return [...tally.unknownUnits.values()].map((places) => {
-    const { key, unit } = workspace.frame.measurands[places.measurand]!;
-    const text = `${countOf(places.count, "measurements")} of ${key} in ${places.unit}, of which no conversion to ${unit} is known: taken as they stand.`;
-    return { code: "unknown-unit", at: `/measurements/${places.first}/unit`, text };
+  return [...tally.unknownUnits.values()].map(({ places, measurand, unit: found }) => {
+    const { key, unit } = workspace.frame.measurands[measurand]!;
+    const text = `${countOf(places.length, "measurements")} of ${key} in ${found}, of which no conversion to ${unit} is known: taken as they stand.`;
+    return { code: "unknown-unit", at: `/measurements/${places[0]}/unit`, text };
   });
 }
 

@@ -1,0 +1,30 @@
+import type { Measurement } from "@weighhouse/campaign/document";
+import type { Result } from "@weighhouse/campaign/problem";
+import type { Frame } from "./frame";
+import { readMeasurement } from "./read-measurement";
+import { isSummed, type Reading } from "./readings";
+
+/** Null for a measurement that is listed and not counted, whatever its form. */
+export function readCounted(
+  frame: Frame,
+  measurement: Measurement,
+  place: number,
+): Result<Reading | null> {
+  const pointer = `/measurements/${place}`;
+  const measurand = frame.measurandIndex.get(measurement.measurand);
+  if (measurand === undefined) {
+    const found = `"${measurement.measurand}"`;
+    const allowed = "a measurand of the campaign";
+    const at = `${pointer}/measurand`;
+    return { ok: false, problems: [{ pointer: at, code: "unknown-key", found, allowed }] };
+  }
+  if (measurement.setAside !== null || frame.measurands[measurand]!.closed) {
+    return { ok: true, value: null };
+  }
+  return readMeasurement(frame, measurement, pointer);
+}
+
+/** A reading that is kept as it is and loads shared errors may need them integrated numerically. */
+export function mayAddUnknowns(frame: Frame, reading: Reading | null): boolean {
+  return reading !== null && reading.loadings.length > 0 && !isSummed(frame, reading);
+}
