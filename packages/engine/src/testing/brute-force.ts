@@ -35,7 +35,7 @@ export function lnIntegral(
   f: (x: number) => number,
   lower: number,
   upper: number,
-  panels = 400,
+  panels = 120,
 ): number {
   const logs: number[] = [];
   const width = (upper - lower) / panels;
