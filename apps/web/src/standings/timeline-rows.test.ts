@@ -29,6 +29,9 @@ test("a step says what moved it", () => {
   const { movedBy } = step(2, -1);
   expect(movedByText(movedBy)).toBe("2 measurements from pier");
   expect(movedByText({ ...movedBy, measurements: 1, facilities: [] })).toBe("1 measurement");
+  expect(movedByText({ ...movedBy, kind: "measurements.withdrawn" })).toBe(
+    "2 measurements withdrawn",
+  );
   expect(movedByText({ ...movedBy, kind: "hypothesis.registered" })).toBe(
     "a hypothesis registered",
   );

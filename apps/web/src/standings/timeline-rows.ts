@@ -36,10 +36,17 @@ export function movedByText(movedBy: TimelineStep["movedBy"]): string {
     const count = `${measurements} measurement${measurements === 1 ? "" : "s"}`;
     return facilities.length > 0 ? `${count} from ${facilities.join(", ")}` : count;
   }
+  const many = measurements === 1 ? "a measurement" : `${measurements} measurements`;
   const words: Record<string, string> = {
     "hypothesis.registered": "a hypothesis registered",
     "hypothesis.amended": "a hypothesis amended",
+    "prediction.sealed": "a prediction sealed",
+    "prediction.revealed": "a sealed prediction opened",
     "measurement.set-aside": "a measurement set aside",
+    "measurement.corrected": "a measurement corrected",
+    "measurements.withdrawn": `${many} withdrawn`,
+    "measurement.revealed": "a sealed measurement opened",
+    "measurand.closed": "a quantity closed",
     "registration.closed": "registration closed",
   };
   return words[kind] ?? kind;
