@@ -1,9 +1,10 @@
 import { linearParameters } from "@weighhouse/campaign/expression-linearity";
 import { gammaFromMoments } from "@weighhouse/numerics/gamma-distribution";
-import type { Distribution } from "./distribution/distribution";
+import { meanOf, sdOf, type Distribution } from "./distribution/distribution";
 import { drawsOf } from "./distribution/draws";
 import type { Expectation, Frame, HypothesisFrame, PredictionFrame, ToleranceFrame } from "./frame";
 import { freeSlots, middleOf, pointsOf } from "./prior-points";
+import { imageOf, quadraturePoints } from "./prior-quadrature";
 import { toScoringSpace, wrapped } from "./scoring-space";
 
 /** Of a smooth mixture, and of draws whose own order is the answer. */
@@ -16,11 +17,12 @@ const DRAWS = 2 ** 17;
  * ensemble.
  *
  * Closed form where a number is expected, or what is linear in normal parameters with a normal
- * tolerance; else a mixture over Sobol points of the priors, or the expected values themselves
- * where the tolerance is zero.
+ * tolerance; else a mixture over the priors, by quadrature for one or two parameters and over Sobol
+ * points for more, or where the tolerance is zero the expected values themselves.
  *
  * @returns null for events, on curves, and where the expression has no value over most of the priors
- * Accuracy: closed forms 1e-12 of sd; mixtures 1e-4 of sd in their 95 % quantiles, draws 1e-3.
+ * Accuracy of the central 95 %: closed forms 1e-12 of sd; smooth expressions of one or two parameters
+ *   1e-8; of more 1e-4; with zero tolerance 1e-8 of one parameter, 1e-4 of more.
  */
 export function predictiveOf(frame: Frame, prediction: PredictionFrame): Distribution | null {
   const there = known.get(prediction);
@@ -111,16 +113,57 @@ function linearNormal(
   return { kind: "normal", mean, sd: Math.sqrt(variance) };
 }
 
-function overPriors(
-  frame: Frame,
-  { prediction: { tolerance, measurand }, expectation, hypothesis }: Spoken,
-): Distribution | null {
-  const { scale, period } = frame.measurands[measurand]!;
-  const exact = tolerance.family === "exact";
+function overPriors(frame: Frame, spoken: Spoken): Distribution | null {
+  const { prediction, expectation, hypothesis } = spoken;
+  const { tolerance } = prediction;
   const free = freeSlots(hypothesis, expectation);
-  const points = pointsOf(hypothesis, expectation, exact ? DRAWS : PARTS);
+  const inRows = expectation.uses.some((slot) => slot >= hypothesis.parameters.length);
+  const few = free.length > 0 && free.length < 3 && !inRows;
+  // Rows of an ensemble are steps, and stay so: only points of priors stand for what is between them.
+  const drawn = tolerance.family === "exact" && free.length > 0;
+  const averaged = few
+    ? mixtureOver(frame, spoken, quadraturePoints(hypothesis, expectation, free))
+    : null;
+  if (!drawn) {
+    return averaged ?? mixtureOver(frame, spoken, pointsOf(hypothesis, expectation, PARTS));
+  }
+  const image = free.length === 1 && few ? imageUnder(frame, spoken, free[0]!) : null;
+  if (image !== null && averaged !== null) {
+    return { kind: "image", ...image, mean: meanOf(averaged), sd: sdOf(averaged) };
+  }
+  const modes = expectedOver(frame, spoken, pointsOf(hypothesis, expectation, DRAWS));
+  const draws = drawsOf(
+    Float64Array.from(modes, ({ mode }) => mode),
+    "middles",
+  );
+  if (draws === null || averaged === null) return draws;
+  return { ...draws, mean: meanOf(averaged), sd: sdOf(averaged) };
+}
+
+function imageUnder(
+  frame: Frame,
+  { prediction: { measurand }, expectation, hypothesis }: Spoken,
+  slot: number,
+) {
+  const { scale, period } = frame.measurands[measurand]!;
+  // On a circle a level is crossed more than once.
+  if (period > 0) return null;
+  const slots = middleOf(hypothesis);
+  return imageOf(slot, hypothesis.parameters[slot]!.prior, (parameter) => {
+    slots[slot] = parameter;
+    return toScoringSpace(expectation.evaluate(slots), scale);
+  });
+}
+
+type Points = Iterable<{ slots: Float64Array; weight: number }>;
+
+function expectedOver(
+  frame: Frame,
+  { prediction: { measurand }, expectation }: Spoken,
+  points: Points,
+): { mode: number; natural: number; weight: number }[] {
+  const { scale, period } = frame.measurands[measurand]!;
   const expected: { mode: number; natural: number; weight: number }[] = [];
-  let whole = 0;
   for (const { slots, weight } of points) {
     const natural = expectation.evaluate(slots);
     let mode = toScoringSpace(natural, scale);
@@ -128,13 +171,17 @@ function overPriors(
     // On a circle counted from the first, so that what lies about the period's end stays together.
     if (expected.length > 0) mode = expected[0]!.mode + wrapped(mode - expected[0]!.mode, period);
     expected.push({ mode, natural, weight });
-    whole += weight;
   }
+  return expected;
+}
+
+/** The tolerance about what is expected at each point; where there is no value it is left out. */
+function mixtureOver(frame: Frame, spoken: Spoken, points: Points): Distribution | null {
+  const expected = expectedOver(frame, spoken, points);
+  let whole = 0;
+  for (const { weight } of expected) whole += weight;
   if (!(whole > 0)) return null;
-  // Rows of an ensemble are steps, and stay so: only points of priors stand for what is between them.
-  if (exact && free.length > 0) {
-    return drawsOf(Float64Array.from(expected, ({ mode }) => mode));
-  }
+  const { tolerance } = spoken.prediction;
   return {
     kind: "mixture",
     parts: expected.map(({ mode, natural, weight }) => ({

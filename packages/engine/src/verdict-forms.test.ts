@@ -154,15 +154,31 @@ describe("what hangs on parameters or an ensemble is looked at beforehand", () =
       }
       return sum / Math.sqrt(2 * Math.PI);
     };
-    expect(below(row.lower!)).toBeCloseTo(normalCdf(-2), 5);
-    expect(below(row.upper!)).toBeCloseTo(normalCdf(2), 5);
+    expect(below(row.lower!)).toBeCloseTo(normalCdf(-2), 9);
+    expect(below(row.upper!)).toBeCloseTo(normalCdf(2), 9);
   });
 
-  test("exactly a uniform one: its own central interval, to its draws", () => {
+  test("what turns, and has no value for some: of the rest, where it crosses a level", () => {
+    const parameters = [{ key: "p", prior: { family: "normal", mean: 1, sd: 1 } }];
+    const prediction = { measurand: "x", expected: "sqrt(p) - p" };
+    const { lower, upper } = rowOf(prediction, value(0), { parameters });
+    // sqrt p - p > x between the squares of the two roots of r^2 - r + x; p > 0 only.
+    const all = normalCdf(1);
+    const below = (x: number) => {
+      const root = Math.sqrt(Math.max(0, 1 - 4 * x));
+      const [r, s] = [(1 - root) / 2, (1 + root) / 2];
+      const first = r > 0 ? normalCdf(r * r - 1) - normalCdf(-1) : 0;
+      return (first + normalCdf(1 - s * s)) / all;
+    };
+    expect(below(lower!)).toBeCloseTo(normalCdf(-2), 9);
+    expect(below(upper!)).toBeCloseTo(normalCdf(2), 6);
+  });
+
+  test("exactly a uniform one: its own central interval", () => {
     const parameters = [{ key: "p", prior: { family: "uniform", lower: 0, upper: 10 } }];
     const row = rowOf({ measurand: "x", expected: "p" }, value(4), { parameters });
-    expect(row.lower).toBeCloseTo(10 * normalCdf(-2), 4);
-    expect(row.upper).toBeCloseTo(10 * normalCdf(2), 4);
+    expect(row.lower).toBeCloseTo(10 * normalCdf(-2), 9);
+    expect(row.upper).toBeCloseTo(10 * normalCdf(2), 9);
     expect(row.verdict).toBe("pass");
     expect(row.conformance).toBeGreaterThan(0.99);
   });

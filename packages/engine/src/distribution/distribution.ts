@@ -22,7 +22,18 @@ export type Distribution =
   | { kind: "uniform"; lower: number; upper: number }
   | Density
   | Draws
-  | Mixture;
+  | Mixture
+  | Image;
+
+/** Known by its distribution function alone, which is 0 below `lower` and 1 from `upper` on. */
+export interface Image {
+  kind: "image";
+  cdf(x: number): number;
+  lower: number;
+  upper: number;
+  mean: number;
+  sd: number;
+}
 
 /** Distributions with weights that add up to 1. */
 export interface Mixture {
@@ -45,6 +56,8 @@ export function cdf(of: Distribution, x: number): number {
       return densityTail(of, x, "lower");
     case "draws":
       return drawsBelow(of, x) / of.sorted.length;
+    case "image":
+      return of.cdf(x);
     case "mixture":
       return summed(of, (part) => cdf(part, x));
   }
@@ -65,6 +78,8 @@ export function upperTail(of: Distribution, x: number): number {
       return densityTail(of, x, "upper");
     case "draws":
       return 1 - drawsBelow(of, x) / of.sorted.length;
+    case "image":
+      return 1 - of.cdf(x);
     case "mixture":
       return summed(of, (part) => upperTail(part, x));
   }
@@ -99,6 +114,8 @@ export function quantile(of: Distribution, p: number): number {
       return densityQuantile(of, p);
     case "draws":
       return drawsQuantile(of, p);
+    case "image":
+      return quantileBetween(of, p, of);
     case "mixture":
       return mixtureQuantile(of, p);
   }
@@ -150,15 +167,25 @@ function clampShare(share: number): number {
   return Math.min(Math.max(share, 0), 1);
 }
 
-/** Between the parts' own quantiles, which it can't be outside of: by chords, and halves where slow. */
+/** Between the parts' own quantiles, which it can't be outside of. */
 function mixtureQuantile(of: Mixture, p: number): number {
-  let [a, b] = [Infinity, -Infinity];
+  let [lower, upper] = [Infinity, -Infinity];
   for (const part of of.parts) {
     if (part.weight === 0) continue;
     const own = quantile(part.of, p);
-    a = Math.min(a, own);
-    b = Math.max(b, own);
+    lower = Math.min(lower, own);
+    upper = Math.max(upper, own);
   }
+  return quantileBetween(of, p, { lower, upper });
+}
+
+/** By chords of the distribution function, and halves where those are slow. */
+function quantileBetween(
+  of: Distribution,
+  p: number,
+  { lower, upper }: { lower: number; upper: number },
+): number {
+  let [a, b] = [lower, upper];
   let [atA, atB] = [cdf(of, a) - p, cdf(of, b) - p];
   for (let step = 0; step < 300 && b - a > 1e-15 * Math.max(Math.abs(a), Math.abs(b)); step += 1) {
     const chord = a - (atA * (b - a)) / (atB - atA);

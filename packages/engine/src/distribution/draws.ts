@@ -2,6 +2,8 @@
 export interface Draws {
   kind: "draws";
   sorted: Float64Array;
+  /** Of n, the k-th is the k / (n + 1) quantile (`between`), or the (k - 1/2) / n one (`middles`). */
+  places: "between" | "middles";
   mean: number;
   sd: number;
 }
@@ -12,7 +14,7 @@ export interface Draws {
  * @param values NaN where there is no value: those are left out
  * @returns null where half of the draws or more have no value
  */
-export function drawsOf(values: Float64Array): Draws | null {
+export function drawsOf(values: Float64Array, places: Draws["places"] = "between"): Draws | null {
   const sorted = values.filter((value) => !Number.isNaN(value)).sort();
   const { length } = sorted;
   if (2 * length <= values.length) return null;
@@ -21,7 +23,7 @@ export function drawsOf(values: Float64Array): Draws | null {
   const mean = sum / length;
   let squares = 0;
   for (const value of sorted) squares += (value - mean) ** 2;
-  return { kind: "draws", sorted, mean, sd: Math.sqrt(squares / length) };
+  return { kind: "draws", sorted, places, mean, sd: Math.sqrt(squares / length) };
 }
 
 /** How many draws are at most x. */
@@ -35,11 +37,12 @@ export function drawsBelow({ sorted }: Draws, x: number): number {
   return low;
 }
 
-/** The k-th of n draws is the k / (n + 1) quantile, and between two of them it is interpolated. */
-export function drawsQuantile({ sorted }: Draws, p: number): number {
-  const place = p * (sorted.length + 1) - 1;
-  const low = Math.min(Math.max(Math.floor(place), 0), sorted.length - 1);
-  const high = Math.min(low + 1, sorted.length - 1);
+/** Between two draws it is interpolated. */
+export function drawsQuantile({ sorted, places }: Draws, p: number): number {
+  const { length } = sorted;
+  const place = places === "between" ? p * (length + 1) - 1 : p * length - 0.5;
+  const low = Math.min(Math.max(Math.floor(place), 0), length - 1);
+  const high = Math.min(low + 1, length - 1);
   const [a, b] = [sorted[low]!, sorted[high]!];
   const share = Math.min(Math.max(place - low, 0), 1);
   return share === 0 || a === b ? a : a + share * (b - a);
