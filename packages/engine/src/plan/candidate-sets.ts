@@ -4,8 +4,8 @@ import type { Plan } from "@weighhouse/campaign/plan";
 import { toNatural } from "../scoring-space";
 import { evidenceWith } from "./evidence-with";
 import { jointGain, type Joint } from "./joint-gain";
-import type { Today, Weighed } from "./plan";
 import { relevantPart } from "./relevant-part";
+import type { Today, Weighed } from "./weighed";
 
 const LARGEST_SET = 5;
 

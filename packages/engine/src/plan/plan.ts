@@ -19,29 +19,13 @@ import {
 } from "./information-gain";
 import { outcomeDecisiveProbability, outcomeInformationGain } from "./outcome-gain";
 import { outcomesOf } from "./outcomes";
-import { predictivesOf, type LogPredictive, type Predictive, type Range } from "./predictive";
+import { predictivesOf, type LogPredictive, type Range } from "./predictive";
 import { relevantPart } from "./relevant-part";
+import type { Today, Weighed } from "./weighed";
 
 export interface PlanOptions {
   /** Called before each candidate, and at last before the sets. */
   progress?: (done: number, total: number) => void;
-}
-
-/** A candidate as it was weighed: what the sets go on from. */
-export interface Weighed {
-  candidate: Candidate;
-  gain: number;
-  /** Of a reading with a value: each hypothesis's predictive. */
-  predictives: Map<string, Predictive> | null;
-  /** Of an event's report or a count: the probability of each outcome. */
-  outcomes: Map<string, number[]> | null;
-}
-
-/** Today's hypotheses with a chance, in rank order. */
-export interface Today {
-  posteriors: Map<string, number>;
-  /** The two that lead; null with fewer. */
-  top: { first: string; second: string; log10B: number } | null;
 }
 
 /**
