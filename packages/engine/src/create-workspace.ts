@@ -14,7 +14,6 @@ export function createWorkspace(frame: Frame, sums: Sums): Workspace {
     marginals: createMarginals(sums),
     coupling: couplingDraws(sums),
     evidences: new Map(),
-    combinations: new Map(),
     derived: {
       measurands: [],
       values: new Float64Array(),

@@ -6,18 +6,6 @@ import type { Level } from "./solve";
 import type { GeneralEvidence } from "./model/block-parts";
 import type { Sums } from "./sums";
 
-/** A measurand's measurements taken together, in scoring space. */
-export interface Combination {
-  value: number;
-  sd: number;
-  chiSquare: number;
-  degreesOfFreedom: number;
-  /** sqrt(chi2 / dof); null without degrees of freedom. */
-  birgeRatio: number | null;
-  /** Of the measurements agreeing with one another; null without degrees of freedom. */
-  pValue: number | null;
-}
-
 /**
  * The derived values that can be computed, as one vector in scoring space: every one whose inputs
  * all have a combined value.
@@ -45,7 +33,6 @@ export interface Workspace {
   marginals: Marginals;
   coupling: Map<number, number[]>;
   evidences: Map<string, LogIntegral>;
-  combinations: Map<number, Combination | null>;
   derived: DerivedVector;
   /** Of measurements that are correlated with one another, the group by id. */
   correlationGroups: Map<string, number>;
