@@ -16,6 +16,8 @@ interface Axis {
   slot: number;
   lower: number;
   upper: number;
+  /** It ends with the prior itself, and not where that counts for nothing. */
+  bounded: boolean;
   value(c: number): number;
   density(c: number): number;
   /** Of the prior between two places. */
@@ -42,7 +44,10 @@ export function* quadraturePoints(
     return Number.isFinite(expectation.evaluate(slots));
   };
   const edges = evenEdges(first, second === undefined ? ALONE : OF_TWO);
-  if (second === undefined) addEnds(edges, has);
+  if (second === undefined) {
+    const ends = [first.lower, first.upper, ...addEnds(edges, has)];
+    if (first.bounded || ends.length > 2) addGraded(edges, ends);
+  }
   for (const one of pointsBetween(edges, first)) {
     slots[first.slot] = first.value(one.c);
     if (second === undefined) yield { slots, weight: one.weight };
@@ -120,7 +125,7 @@ function evenEdges({ lower, upper }: Axis, panels: number): number[] {
 }
 
 /** Adds the places at which there begins, or ceases, to be a value. */
-function addEnds(edges: number[], has: (c: number) => boolean): void {
+function addEnds(edges: number[], has: (c: number) => boolean): number[] {
   const found: number[] = [];
   for (let i = 0; i + 1 < edges.length; i += 1) {
     let [a, b] = [edges[i]!, edges[i + 1]!];
@@ -136,6 +141,18 @@ function addEnds(edges: number[], has: (c: number) => boolean): void {
   }
   edges.push(...found);
   edges.sort((a, b) => a - b);
+  return found;
+}
+
+/** Steps that halve towards where values end: a logarithm or a root may be steep there. */
+function addGraded(edges: number[], ends: readonly number[]): void {
+  const [lower, upper] = [edges[0]!, edges.at(-1)!];
+  const width = (upper - lower) / ALONE;
+  for (const end of ends) {
+    for (let step = width / 2; step > 1e-9 * width; step /= 4) edges.push(end - step, end + step);
+  }
+  const inside = edges.filter((edge) => edge >= lower && edge <= upper).sort((a, b) => a - b);
+  edges.splice(0, edges.length, ...inside);
 }
 
 function* pointsBetween(
@@ -156,6 +173,7 @@ function axisOf(slot: number, prior: Prior): Axis {
     slot,
     lower,
     upper: REACH,
+    bounded: lower > -REACH,
     value,
     density: (z) => Math.exp(logNormalPdf(z)),
     mass: normalInterval,
@@ -164,6 +182,7 @@ function axisOf(slot: number, prior: Prior): Axis {
     slot,
     lower: 0,
     upper: 1,
+    bounded: true,
     value,
     density: () => 1,
     mass: (from, to) => to - from,

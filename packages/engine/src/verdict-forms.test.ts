@@ -174,6 +174,17 @@ describe("what hangs on parameters or an ensemble is looked at beforehand", () =
     expect(below(upper!)).toBeCloseTo(normalCdf(2), 6);
   });
 
+  test("steep at the end of its prior: the logarithm of a half-normal", () => {
+    const parameters = [{ key: "p", prior: { family: "halfnormal", sd: 2 } }];
+    const row = rowOf({ measurand: "y", expected: "p" }, [{ value: 1, sdDex: 1e-3 }], {
+      parameters,
+    });
+    // E ln |z| = -(gamma + ln 2) / 2 and var ln |z| = pi^2 / 8, of a standard normal z.
+    const mean = Math.log10(2) - (0.5772156649015329 + Math.LN2) / 2 / Math.LN10;
+    const sd = Math.PI / Math.sqrt(8) / Math.LN10;
+    expect(row.tension).toBeCloseTo(-mean / Math.hypot(sd, 1e-3), 6);
+  });
+
   test("exactly a uniform one: its own central interval", () => {
     const parameters = [{ key: "p", prior: { family: "uniform", lower: 0, upper: 10 } }];
     const row = rowOf({ measurand: "x", expected: "p" }, value(4), { parameters });
