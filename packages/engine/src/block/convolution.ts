@@ -26,7 +26,7 @@ export function convolved(factor: Factor, extra: number): Factor {
     ...factor,
     ln: tabulated((mu) => logConvolution(factor, sd, mu), { origin: factor.centre, step }),
     scale: Math.hypot(factor.scale, sd),
-    residual: factor.residual === null ? null : profiled(factor.residual, sd),
+    residual: factor.residual === null ? null : profiled(factor, factor.residual, sd),
     box: null,
   };
 }
@@ -118,15 +118,21 @@ function widthAt(g: (s: number) => number, peak: number, height: number): number
   return step;
 }
 
-/** The signed root of min over s of residual(mu + s)^2 + (s / sd)^2. */
-function profiled(residual: (mu: number) => number, sd: number): (mu: number) => number {
-  return (mu) => {
+/** The signed root of min over s of residual(mu + s)^2 + (s / sd)^2, kinks parting the search. */
+function profiled({ breaks }: Factor, residual: (mu: number) => number, sd: number) {
+  return (mu: number): number => {
     const at = residual(mu);
     const square = (s: number) => residual(mu + sd * s) ** 2 + s * s;
     // The best s costs no more than s = 0 does.
     const reach = Math.abs(at);
     if (reach === 0) return 0;
-    const least = minimiseScalar(square, -reach, reach);
-    return Math.sign(at) * Math.sqrt(Math.min(least.value, at * at));
+    const kinks = breaks.map((place) => (place - mu) / sd).filter((s) => Math.abs(s) < reach);
+    const edges = [-reach, ...kinks.sort((a, b) => a - b), reach];
+    let least = at * at;
+    for (let e = 1; e < edges.length; e += 1) {
+      const found = minimiseScalar(square, edges[e - 1]!, edges[e]!);
+      least = Math.min(least, found.value, square(edges[e]!));
+    }
+    return Math.sign(at) * Math.sqrt(least);
   };
 }

@@ -218,3 +218,32 @@ export function varianceGivenTail({ pivots }: Eliminated, a: Float64Array): numb
   }
   return sum;
 }
+
+/** g <- (R'R)^-1 g, over all positions. */
+export function solveNormal({ pivots, tail }: Eliminated, g: Float64Array): void {
+  const inner = pivots.length;
+  for (let p = 0; p < inner; p += 1) {
+    const { position, value } = pivots[p]!;
+    const v = g[p]! / value[0]!;
+    g[p] = v;
+    for (let e = 1; e < position.length; e += 1) g[position[e]!]! -= value[e]! * v;
+  }
+  const width = tail.size + 1;
+  for (let i = 0; i < tail.size; i += 1) {
+    g[inner + i] = g[inner + i]! / tail.data[i * width + i]!;
+    for (let k = i + 1; k < tail.size; k += 1) {
+      g[inner + k]! -= tail.data[i * width + k]! * g[inner + i]!;
+    }
+  }
+  for (let i = tail.size - 1; i >= 0; i -= 1) {
+    for (let k = i + 1; k < tail.size; k += 1) {
+      g[inner + i]! -= tail.data[i * width + k]! * g[inner + k]!;
+    }
+    g[inner + i] = g[inner + i]! / tail.data[i * width + i]!;
+  }
+  for (let p = inner - 1; p >= 0; p -= 1) {
+    const { position, value } = pivots[p]!;
+    for (let e = 1; e < position.length; e += 1) g[p]! -= value[e]! * g[position[e]!]!;
+    g[p] = g[p]! / value[0]!;
+  }
+}

@@ -11,6 +11,8 @@ import {
   type BlockProblem,
   type OuterUnknown,
 } from "./problem";
+import { residualsAtValues, sumOfSquares } from "./residuals";
+import { rowSum } from "./row-sum";
 import { workbenchOf, type Workbench } from "./workbench";
 
 /** A flat unknown's minimum within this share of its width of a bound is at the bound. */
@@ -133,19 +135,7 @@ function residualsAt(
   }
   const fit = linearFitAt(bench, valuesAt(outer, c), scenario);
   if (fit === null || "singular" in fit) return fit;
-  const { white, values } = fit;
-  for (let n = 0; n < white.count; n += 1) {
-    let rest = white.right[n]!;
-    for (let e = white.start[n]!; e < white.start[n + 1]!; e += 1) {
-      rest -= white.value[e]! * values[white.position[e]!]!;
-    }
-    residuals[n] = rest;
-  }
-  prior.rows.forEach(({ position, value }, n) => {
-    let rest = 0;
-    for (let e = 0; e < position.length; e += 1) rest += value[e]! * values[position[e]!]!;
-    residuals[white.count + n] = rest;
-  });
+  residuals.set(residualsAtValues(bench, fit.white, fit.values));
   return residuals;
 }
 
@@ -153,13 +143,8 @@ function linearFitAt(bench: Workbench, outer: Float64Array, scenario: number) {
   if (!evaluateRows(bench, outer, scenario)) return null;
   const settled = settle(bench);
   if ("singular" in settled) return settled;
-  return { white: settled.white, values: bestFit(bench.layout, settled.eliminated) };
-}
-
-function sumOfSquares(values: Float64Array): number {
-  let sum = 0;
-  for (const value of values) sum += value * value;
-  return sum;
+  const values = settled.values ?? bestFit(bench.layout, settled.eliminated);
+  return { white: settled.white, values };
 }
 
 function described(bench: Workbench, best: Minimum & { scenario: number }): Omit<BlockFit, "ok"> {
@@ -173,7 +158,7 @@ function described(bench: Workbench, best: Minimum & { scenario: number }): Omit
     flatInside:
       outer.filter((one, j) => !one.penalised && one.counted && isInside(one, values[j]!)).length +
       flatsInside(bench, positions) +
-      eachInside(bench),
+      eachInside(bench, positions),
     scenario: best.scenario,
     outer: values,
     linear: Float64Array.from(linear, (_, k) => positions[layout.place[k]!]!),
@@ -204,16 +189,22 @@ function flatsInside({ layout }: Workbench, positions: Float64Array): number {
   return inside;
 }
 
-function eachInside({ layout, tangents }: Workbench): number {
+function eachInside(bench: Workbench, positions: Float64Array): number {
+  const { layout, plan, evaluated, bent } = bench;
   const { rows } = layout.problem;
   if (rows.eachFlat === null) return 0;
+  const own = new Set(plan.singles);
   let inside = 0;
   for (const { row } of layout.bent) {
     if (rows.kind[row] !== EACH_FLAT) continue;
     const lower = rows.eachFlat.lower[row]!;
     const upper = rows.eachFlat.upper[row]!;
     const margin = AT_BOUND * (upper - lower);
-    const t = rows.observed[row]! - tangents[row]!;
+    // On a smooth process, what the last tangent was taken at: the process's value is in that.
+    const mu = own.has(row)
+      ? evaluated.base[row]! + rowSum(bench, row, positions)
+      : bent.get(row)!.mu;
+    const t = rows.observed[row]! - mu;
     if (t - lower > margin && upper - t > margin) inside += 1;
   }
   return inside;

@@ -6,7 +6,7 @@ import {
 } from "@weighhouse/numerics/symmetric-cholesky";
 import type { TriangularSystem } from "@weighhouse/numerics/triangular-system";
 import { covarianceOf, type NoisePart } from "./covariance";
-import { eliminate, type Eliminated } from "./elimination";
+import { eliminate, solveNormal, type Eliminated } from "./elimination";
 import { smoothNoiseOf, whitenRows, type WhiteRows } from "./whitening";
 import type { Workbench } from "./workbench";
 
@@ -128,35 +128,6 @@ function solveBy(
   for (let n = 0; n < count; n += 1) rss += rows[n]! * rows[n]!;
   for (const rest of priors) rss += rest * rest;
   return { values, rows, priors, rss };
-}
-
-/** g <- (R'R)^-1 g. */
-function solveNormal({ pivots, tail }: Eliminated, g: Float64Array): void {
-  const inner = pivots.length;
-  for (let p = 0; p < inner; p += 1) {
-    const { position, value } = pivots[p]!;
-    const v = g[p]! / value[0]!;
-    g[p] = v;
-    for (let e = 1; e < position.length; e += 1) g[position[e]!]! -= value[e]! * v;
-  }
-  const width = tail.size + 1;
-  for (let i = 0; i < tail.size; i += 1) {
-    g[inner + i] = g[inner + i]! / tail.data[i * width + i]!;
-    for (let k = i + 1; k < tail.size; k += 1) {
-      g[inner + k]! -= tail.data[i * width + k]! * g[inner + i]!;
-    }
-  }
-  for (let i = tail.size - 1; i >= 0; i -= 1) {
-    for (let k = i + 1; k < tail.size; k += 1) {
-      g[inner + i]! -= tail.data[i * width + k]! * g[inner + k]!;
-    }
-    g[inner + i] = g[inner + i]! / tail.data[i * width + i]!;
-  }
-  for (let p = inner - 1; p >= 0; p -= 1) {
-    const { position, value } = pivots[p]!;
-    for (let e = 1; e < position.length; e += 1) g[p]! -= value[e]! * g[position[e]!]!;
-    g[p] = g[p]! / value[0]!;
-  }
 }
 
 /** The tail with the right side that has its minimum at a solution, and its rss. */

@@ -151,6 +151,46 @@ describe("the least chi-square of rows that aren't linear in mu", () => {
     expect(Math.abs(chiSquare / expected - 1)).toBeLessThan(1e-9);
   });
 
+  test("minima on the clamp's edge, and the lower of two minima, are found", () => {
+    for (let seed = 1; seed <= 25; seed += 1) {
+      const random = randomNumbers(seed);
+      const count = 1 + Math.floor(3 * random());
+      const observed = Array.from({ length: count }, () => 4 * random());
+      const plus = observed.map(() => 10 ** (1.5 * random() - 1));
+      const minus = observed.map(() => 10 ** (1.5 * random() - 1));
+      const design = observed.map(() => [2 * random() - 0.5]);
+      const start = 4 * random();
+      const { chiSquare } = fitted({
+        observed,
+        variance: observed.map(() => 0),
+        kind: observed.map(() => ASYMMETRIC),
+        rows: { asymmetric: { plus: Float64Array.from(plus), minus: Float64Array.from(minus) } },
+        linear: [Z],
+        design,
+        evaluate: (_outer, _scenario, { base }) => {
+          base.fill(start);
+          return true;
+        },
+      });
+      const square = (z: number) =>
+        observed.reduce((sum, y, i) => {
+          const d = start + design[i]![0]! * z - y;
+          return sum + (d * d) / variance(d, plus[i]!, minus[i]!);
+        }, z * z);
+      let best = 0;
+      for (let n = -12_000; n <= 12_000; n += 1) {
+        if (square(n / 1000) < square(best)) best = n / 1000;
+      }
+      for (let step = 1e-4; step > 1e-13; step /= 8) {
+        const from = best;
+        for (let n = -40; n <= 40; n += 1) {
+          if (square(from + n * step) < square(best)) best = from + n * step;
+        }
+      }
+      expect(Math.abs(chiSquare / square(best) - 1)).toBeLessThan(1e-10);
+    }
+  });
+
   test("flat tolerances of each one's own: within them nothing is charged, and each costs one", () => {
     const observed = [0.1, -0.9, 1.8];
     const { chiSquare, flatInside } = fitted({

@@ -3,6 +3,15 @@ import type { Layout } from "./layout";
 import { priorRowsOf, type PriorRows } from "./prior-rows";
 import type { BlockRefusal } from "./problem";
 
+/** Where a row that isn't linear in mu stands. */
+export interface BentState {
+  mu: number;
+  /** The kink that it is held at, or NaN. */
+  pin: number;
+  /** How far beyond the kink it has to be drawn to stay there. */
+  lead: number;
+}
+
 /** What is worked out once for a block, and the room to work in. */
 export interface Workbench {
   layout: Layout;
@@ -10,8 +19,8 @@ export interface Workbench {
   prior: PriorRows;
   evaluated: { base: Float64Array; columns: Float64Array[] };
   state: { residual: Float64Array; variance: Float64Array; columns: Float64Array[] };
-  /** Where rows that aren't linear in mu were replaced by their tangents. */
-  tangents: Float64Array;
+  /** Where rows that aren't linear in mu are replaced by their tangents, by row. */
+  bent: Map<number, BentState>;
 }
 
 export function workbenchOf(
@@ -33,7 +42,7 @@ export function workbenchOf(
       variance: rows.variance.slice(),
       columns: [...moving, ...atFit.map(columnOf)],
     },
-    tangents: columnOf(),
+    bent: new Map(),
   };
   return { ok: true, bench };
 }
