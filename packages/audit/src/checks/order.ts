@@ -49,20 +49,24 @@ export function checkOrder(
   return judged("before and after data", faults, detail);
 }
 
+/** A measurement that a correction moves here was on record since it was posted elsewhere. */
 function postingsOf(records: readonly LedgerRecord[]): Map<string, Posted> {
   const postings = new Map<string, Posted>();
+  const firstOf = new Map<string, Filed>();
   for (const record of records) {
-    for (const { measurand, observedAt } of measurementsIn(record)) {
-      const first = { seq: record.seq, at: record.at };
+    for (const { id, measurand, observedAt } of measurementsIn(record)) {
+      const first = firstOf.get(id) ?? { seq: record.seq, at: record.at };
+      firstOf.set(id, first);
       const posted = postings.get(measurand) ?? { measurand, first, observedAt: [] };
       posted.observedAt.push(observedAt);
+      if (first.seq < posted.first.seq) posted.first = first;
       postings.set(measurand, posted);
     }
   }
   return postings;
 }
 
-type Dated = { measurand: string; observedAt: string | null };
+type Dated = { id: string; measurand: string; observedAt: string | null };
 
 /** A sealed measurement counts as posted when it is revealed; a correction may change its time. */
 function measurementsIn({ kind, payload }: LedgerRecord): Dated[] {
@@ -73,8 +77,8 @@ function measurementsIn({ kind, payload }: LedgerRecord): Dated[] {
       return [(payload as Payload<"measurement.corrected">).measurement];
     case "measurement.revealed": {
       const { content } = payload as Payload<"measurement.revealed">;
-      const { measurand, observedAt = null } = content as Partial<MeasurementContent>;
-      return measurand === undefined ? [] : [{ measurand, observedAt }];
+      const { id, measurand, observedAt = null } = content as Partial<MeasurementContent>;
+      return id === undefined || measurand === undefined ? [] : [{ id, measurand, observedAt }];
     }
     default:
       return [];
