@@ -22,6 +22,7 @@ const meanings: Record<StoreErrorCode, DeskErrorCode | null> = {
   "owner-runs": null,
   "not-migrated": null,
   "ledger-broken": null,
+  restored: null,
   "no-such-member": "not-found",
   "embedded-failed": null,
 };

@@ -28,7 +28,10 @@ export type AuditTrailSummary = {
   /** The newest signed head: whoever keeps its note can prove that nothing before was changed. */
   head: StoredHead;
   keys: { verifierKey: string; fingerprint: string }[];
-  /** Paths in the archive, but for the heads and keys, which are as many as said above. */
+  /**
+   * Paths in the archive, but for the heads and keys, which are as many as said above, and the
+   * quantities' figures; of a large campaign the sensitivity is left out, which the archive says.
+   */
   files: string[];
 };
 
@@ -67,7 +70,13 @@ export async function summariseAuditTrail(
       layout.PAYLOADS,
       layout.DOCUMENT,
       layout.STANDINGS,
+      layout.SENSITIVITY,
+      layout.CRATE,
+      layout.METHODS,
+      layout.CHECK_PROGRAM,
       ...layout.TABLE_NAMES.map(layout.tablePath),
+      ...layout.TEX_NAMES.map(layout.texPath),
+      ...layout.FIGURE_NAMES.map(layout.figurePath),
     ],
   };
 }
