@@ -34,7 +34,10 @@ it("what readers read is written by this version of the writer: another word is 
     return `${path}\n${path === "ro-crate-metadata.json" ? said.replaceAll(/"(sha256|contentSize)":"\w+"/g, "") : said}`;
   });
   const digest = hex(nodeHasher(new TextEncoder().encode(words.join("\n"))));
-  expect([WRITER_VERSION, digest]).toEqual(["1", "45b33cc6ceb60a205ef02a4369610548feb795e41d1cc32036e3fb4efd194d0d"]);
+  expect([WRITER_VERSION, digest]).toEqual([
+    "1",
+    "45b33cc6ceb60a205ef02a4369610548feb795e41d1cc32036e3fb4efd194d0d",
+  ]);
 });
 
 describe("methods.md counts in the entries", () => {
