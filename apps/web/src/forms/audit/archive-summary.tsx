@@ -14,8 +14,9 @@ export function ArchiveSummary(props: { campaign: string; summary: AuditTrailSum
         ledger’s {formatCount(summary.size)} entries with their payloads,{" "}
         {formatCount(summary.heads)} signed heads, the campaign document with{" "}
         {formatCount(summary.hypotheses)} hypotheses and {formatCount(summary.measurements)}{" "}
-        measurements, the standings by engine {summary.engine}, tables as CSV, and a README that
-        says how to check it by hand.
+        measurements, the standings by engine {summary.engine} and what they hang on, tables as CSV
+        and for LaTeX, figures as SVG, the counts for a methods section, and a README that says how
+        to check it by hand; <code>check.py</code> checks it without this software.
       </p>
       {summary.clock === "simulated" ? (
         <Notice label="Simulated clock.">The archive says so, and so does its check.</Notice>
@@ -46,7 +47,9 @@ export function ArchiveSummary(props: { campaign: string; summary: AuditTrailSum
               <code>{file}</code>
             </li>
           ))}
-          <li className="text-quiet">and each head and key as a file of its own</li>
+          <li className="text-quiet">
+            and heads, keys and each quantity’s figure as files of their own
+          </li>
         </ul>
       </details>
       <ButtonLink
