@@ -22,33 +22,50 @@ export interface Revision {
  * Takes measurements out, and puts what they became in their places, O(k^2) each. The state given is
  * used up, but where it is refused, and where the answer is null: then it is still good.
  *
- * The measurands in `worn` have to be made anew by `remakeMeasurands` before the state is used: what
- * is left weighs so little against what was taken out that too many digits would be lost (take-out.ts).
+ * The measurands in `worn` have to be made anew by `remakeMeasurands` before the state is used.
  *
- * @returns null where only `createState` will do: a correlated measurement is withdrawn, or one that
- *   was known before all others changes
+ * @param keep `accuracy`: a reading is taken out of the sums, and only those are worn that too many
+ *   digits would be lost of (take-out.ts). `bytes`: all are worn that anything is taken out of, so that
+ *   the state is the one that the document gives, to the last bit, whatever its history.
+ * @returns null where only `createState` will do: a correlated measurement is withdrawn, one that was
+ *   known before all others changes, or (for `bytes`) one that the order of unknowns hangs on
  */
 export function reviseMeasurements(
   state: EngineState,
   revisions: readonly Revision[],
+  keep: "accuracy" | "bytes" = "accuracy",
 ): Result<{ state: EngineState; worn: string[] }> | null {
-  const { frame, sums, tally } = state;
   if (revisions.some((one) => !isRevisable(state, one))) return null;
   const before = readAll(state, revisions, (one) => one.before);
   const after = readAll(state, revisions, (one) => one.after);
   if (!before.ok || !after.ok) {
     return { ok: false, problems: [before, after].flatMap((one) => (one.ok ? [] : one.problems)) };
   }
-  if (after.value.some((one) => mayAddUnknowns(frame, one))) {
+  const pairs = revisions.map((revision, i): Pair => {
+    return { ...revision, old: before.value[i]!, now: after.value[i]! };
+  });
+  if (keep === "bytes" && pairs.some((pair) => movesOrder(state, pair))) return null;
+  if (pairs.some(({ now }) => mayAddUnknowns(state.frame, now))) {
     const copy = restoreState(serialiseState(state))!;
-    const tried = applied(copy, revisions, { before: before.value, after: after.value });
-    const problems = tried.worn.length > 0 ? [] : unscorableParts(copy);
+    const { worn } = applied(copy, pairs, keep);
+    const problems = worn.length > 0 ? [] : unscorableParts(copy);
     if (problems.length > 0) return { ok: false, problems };
+    if (worn.length > 0) return null;
   }
-  return {
-    ok: true,
-    value: applied({ frame, sums, tally }, revisions, { before: before.value, after: after.value }),
-  };
+  return { ok: true, value: applied(state, pairs, keep) };
+}
+
+/** A revision as read. */
+interface Pair extends Revision {
+  old: Reading | null;
+  now: Reading | null;
+}
+
+/** Whether draws or patterns would come up in another order in the document as it is then. */
+function movesOrder({ sums }: EngineState, { before, old, now }: Pair): boolean {
+  if (sums.firsts.has(before.id)) return true;
+  if (now === null || now.loadings.length === 0) return false;
+  return JSON.stringify(now.loadings) !== JSON.stringify(old?.loadings);
 }
 
 function isRevisable({ frame, tally }: EngineState, { before, after }: Revision): boolean {
@@ -75,28 +92,27 @@ function readAll(
 
 function applied(
   state: EngineState,
-  revisions: readonly Revision[],
-  { before, after }: { before: readonly (Reading | null)[]; after: readonly (Reading | null)[] },
+  pairs: readonly Pair[],
+  keep: "accuracy" | "bytes",
 ): { state: EngineState; worn: string[] } {
   const { frame, sums, tally } = state;
   const worn = new Set<number>();
   const touched = new Set<number>();
-  revisions.forEach((revision, i) => {
-    const [old, now] = [before[i]!, after[i]!];
-    const { place } = revision;
-    forgetMeasurement(tally, frame, { measurement: revision.before, reading: old, place });
-    if (revision.after !== null) {
-      noteAt(tally, frame, { measurement: revision.after, reading: now, place });
-    }
+  for (const { place, before, after, old, now } of pairs) {
+    forgetMeasurement(tally, frame, { measurement: before, reading: old, place });
+    if (after !== null) noteAt(tally, frame, { measurement: after, reading: now, place });
     for (const reading of [old, now]) if (reading !== null) touched.add(reading.measurand);
     if (exchange(sums, frame, { old, now })) worn.add(old!.measurand);
-  });
-  const left = revisions.flatMap(({ place, after: stays }) => (stays === null ? [place] : []));
+  }
+  const left = pairs.flatMap(({ place, after }) => (after === null ? [place] : []));
   closeUp(
     tally,
     left.toSorted((a, b) => a - b),
   );
-  for (const measurand of touched) centreAnew(sums, measurand);
+  for (const measurand of touched) {
+    centreAnew(sums, measurand);
+    if (keep === "bytes") worn.add(measurand);
+  }
   const keys = [...worn].sort((a, b) => a - b).map((m) => frame.measurands[m]!.key);
   return { state, worn: keys };
 }

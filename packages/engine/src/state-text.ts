@@ -13,6 +13,7 @@ interface StateText {
   document: CampaignDocument;
   draws: Draw[];
   patterns: Pattern[];
+  firsts: string[];
   measurands: (Omit<MeasurandSums, "sums" | "kept"> & { sums: number[]; kept: KeptText[] })[];
   tally: Omit<Tally, "sameData" | "unknownUnits"> & {
     sameData: [string, Tally["sameData"] extends Map<string, infer V> ? V : never][];
@@ -31,6 +32,7 @@ export function serialiseState({ frame, sums, tally }: EngineState): string {
     document: frame.document,
     draws: sums.draws,
     patterns: sums.patterns,
+    firsts: [...sums.firsts],
     measurands: sums.measurands.map((one) => ({
       ...one,
       sums: [...one.sums.subarray(0, placeOf(one, one.patterns.length, 0))],
@@ -49,7 +51,7 @@ export function serialiseState({ frame, sums, tally }: EngineState): string {
  * @returns null when it was written by another engine or state version
  */
 export function restoreState(text: string): EngineState | null {
-  const { engine, state, document, draws, patterns, measurands, tally } = JSON.parse(
+  const { engine, state, document, draws, patterns, firsts, measurands, tally } = JSON.parse(
     text,
   ) as StateText;
   if (engine !== ENGINE_VERSION || state !== STATE_VERSION) return null;
@@ -58,6 +60,7 @@ export function restoreState(text: string): EngineState | null {
   const sums = indexSums({
     draws,
     patterns,
+    firsts: new Set(firsts),
     measurands: measurands.map((one) => ({
       ...one,
       sums: Float64Array.from(one.sums),

@@ -55,6 +55,8 @@ export interface Sums {
   draws: Draw[];
   patterns: Pattern[];
   measurands: MeasurandSums[];
+  /** Ids of the readings that were the first to load a draw or to have a pattern: order hangs on them. */
+  firsts: Set<string>;
   /** Places by description; rebuilt when a state is restored. */
   index: SumsIndex;
 }
@@ -72,6 +74,7 @@ export function createSums(measurands: readonly MeasurandFrame[]): Sums {
   return indexSums({
     draws: [],
     patterns: [],
+    firsts: new Set(),
     measurands: measurands.map(({ noises }) => ({
       centre: 0,
       counted: 0,
@@ -88,11 +91,10 @@ export function createSums(measurands: readonly MeasurandFrame[]): Sums {
 }
 
 /** The index of sums that came from elsewhere. */
-export function indexSums({ draws, patterns, measurands }: Omit<Sums, "index">): Sums {
+export function indexSums(parts: Omit<Sums, "index">): Sums {
+  const { draws, patterns, measurands } = parts;
   return {
-    draws,
-    patterns,
-    measurands,
+    ...parts,
     index: {
       draws: new Map(draws.map((draw, i) => [drawKey(draw), i])),
       patterns: new Map(patterns.map((pattern, i) => [patternKey(pattern), i])),
@@ -122,6 +124,7 @@ export function addReading(
 ): void {
   const own = sums.measurands[reading.measurand]!;
   const { told } = reading;
+  const before = sums.draws.length + sums.patterns.length;
   if (own.counted === 0) own.centre = centreOf(told);
   own.counted += 1;
   if (reading.provisional) own.provisional += 1;
@@ -131,11 +134,12 @@ export function addReading(
     own.counts[group] = (own.counts[group] ?? 0) + 1;
     own.wear[group] ??= 0;
     addValue(own, { ...told, group }, frame.measurands[reading.measurand]!);
-    return;
+  } else {
+    if (keptAt === null) own.kept.push(reading);
+    else own.kept.splice(keptAt, 0, reading);
+    for (const { error, batch } of reading.loadings) drawIndex(sums, { error, batch });
   }
-  if (keptAt === null) own.kept.push(reading);
-  else own.kept.splice(keptAt, 0, reading);
-  for (const { error, batch } of reading.loadings) drawIndex(sums, { error, batch });
+  if (sums.draws.length + sums.patterns.length > before) sums.firsts.add(reading.id);
 }
 
 /** What a reading's measurand is centred on where it is the first. */
