@@ -1,10 +1,15 @@
 import type { Problem } from "@weighhouse/campaign/problem";
 import { evidencesOf } from "@weighhouse/engine/evidences";
-import { addMeasurements, createState } from "@weighhouse/engine/state";
+import {
+  addMeasurements,
+  createState,
+  remakeMeasurands,
+  reviseMeasurements,
+} from "@weighhouse/engine/state";
 import type { EngineState } from "@weighhouse/engine/state";
 import { readDocument } from "@weighhouse/store/read-document";
 import type { Store } from "@weighhouse/store/open-store";
-import { readPosted } from "@weighhouse/store/scoring-input";
+import { readMeasurementsOf, readPosted, readRevised } from "@weighhouse/store/scoring-input";
 import type { Transaction } from "@weighhouse/store/scoring-input";
 import type { TimelineStep } from "@weighhouse/store/standings";
 
@@ -15,8 +20,9 @@ export type Advanced = { steps: TimelineStep[] } & (
 /**
  * Brings the engine's state through transactions, noting where each left the hypotheses.
  *
- * Measurements are added to the state; after anything else, and where adding is refused, the state
- * is made anew from the document, but not before somebody needs it.
+ * Measurements are added to the state, corrected, set aside and withdrawn in it; after anything else
+ * that is scored, and where that is refused, the state is made anew from the document, but not before
+ * somebody needs it.
  */
 export async function advance(
   store: Store,
@@ -28,7 +34,7 @@ export async function advance(
   let problems: Problem[] = [];
   const steps: TimelineStep[] = [];
   for (const [index, transaction] of transactions.entries()) {
-    state = transaction.onlyMeasurements ? await added(store, campaign, state, transaction) : null;
+    state = state === null ? null : await stateAfter(store, campaign, { state, transaction });
     const last = index === transactions.length - 1;
     if (state === null && (last || transaction.movedBy !== null)) {
       const { document } = await readDocument(store, campaign, transaction.size);
@@ -44,13 +50,25 @@ export async function advance(
   return state === null ? { steps, state, problems } : { steps, state, problems: null };
 }
 
-async function added(
+/** Null where it has to be made anew. */
+async function stateAfter(
   store: Store,
   campaign: string,
-  state: EngineState | null,
-  { begin, size }: Transaction,
+  { state, transaction }: { state: EngineState; transaction: Transaction },
 ): Promise<EngineState | null> {
-  if (state === null) return null;
-  const result = addMeasurements(state, await readPosted(store, { campaign, begin, size }));
-  return result.ok ? result.value : null;
+  const { change, begin, size } = transaction;
+  if (change === "none") return state;
+  if (change === "posted") {
+    const added = addMeasurements(state, await readPosted(store, { campaign, begin, size }));
+    return added.ok ? added.value : null;
+  }
+  if (change === "document") return null;
+  // To the last bit as from the document: standings mustn't hang on where a scorer went on from.
+  const revisions = await readRevised(store, { campaign, begin, size });
+  const revised = reviseMeasurements(state, revisions, "bytes");
+  if (revised === null || !revised.ok) return null;
+  const { worn } = revised.value;
+  if (worn.length === 0) return revised.value.state;
+  const left = await readMeasurementsOf(store, { campaign, measurands: worn, size });
+  return remakeMeasurands(revised.value.state, worn, left);
 }

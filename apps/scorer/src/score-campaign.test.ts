@@ -53,6 +53,14 @@ const transactions: ((campaign: string) => Promise<unknown>)[] = [
   post(hum("c", 94, { facility: null })),
   append({ kind: "team.joined", payload: { key: "wind" } }),
   append({ kind: "measurement.set-aside", payload: { id: "b", reason: "a lorry passed" } }),
+  append({
+    kind: "measurement.corrected",
+    payload: { measurement: hum("c", 95), reason: "read off again" },
+  }),
+  append({
+    kind: "measurements.withdrawn",
+    payload: { selection: { by: "ids", ids: ["a"] }, reason: "of another dune" },
+  }),
   post(hum("d", 97, { observedAt: "2044-05-02T10:00:00Z" })),
   append({
     kind: "hypothesis.registered",
@@ -112,6 +120,8 @@ describe("scoring a campaign", () => {
       "measurements.posted",
       "measurements.posted",
       "measurement.set-aside",
+      "measurement.corrected",
+      "measurements.withdrawn",
       "measurements.posted",
       "hypothesis.registered",
       "measurements.posted",

@@ -87,13 +87,13 @@ describe("the scorer's input", () => {
       null,
       { seq: 10, kind: "measurements.posted", facilities: ["east-mast"], measurements: 2 },
     ]);
-    // The last brought a correlation as well.
-    expect(transactions.map(({ onlyMeasurements }) => onlyMeasurements)).toEqual([
-      false,
-      true,
-      false,
-      false,
-      false,
+    // The third did something else beside setting aside, the last brought a correlation as well.
+    expect(transactions.map(({ change }) => change)).toEqual([
+      "document",
+      "posted",
+      "document",
+      "document",
+      "document",
     ]);
     const { treeHead } = await readDocument(store, campaign, 7);
     expect(transactions[1]?.treeHead).toBe(treeHead);
