@@ -12,9 +12,9 @@ import type { Workbench } from "./workbench";
 
 /** Variances and loadings have settled when none moves by more than this share. */
 const SETTLED = 1e-12;
-const MOST_ROUNDS = 300;
-/** After so many rounds each step is halved: what swings then comes to rest. */
-const PATIENCE = 40;
+const MOST_ROUNDS = 200;
+/** Steps are halved each time that so many rounds are over: what swings then comes to rest. */
+const PATIENCE = 20;
 /** Of rows that aren't linear in mu, from so many on fewer starts are tried. */
 const MANY = 200;
 
@@ -73,7 +73,7 @@ function iterate(bench: Workbench): Settled | { singular: number[] } {
     const settled = { eliminated, white: white.rows };
     if (!moves(bench) || round >= MOST_ROUNDS) return settled;
     const values = bestFit(layout, eliminated);
-    const share = round < PATIENCE ? 1 : 0.5;
+    const share = 0.5 ** Math.floor(round / PATIENCE);
     if (moveTo(bench, values, share) <= SETTLED) return settled;
   }
 }
@@ -131,7 +131,7 @@ function moveTo(bench: Workbench, values: Float64Array, share: number): number {
       if (coefficient[i] === 0) continue;
       const target = coefficient[i]! * (level[i]! + rowSum(bench, i, values, wanted));
       const next = column[i]! + share * (target - column[i]!);
-      change = Math.max(change, Math.abs(next - column[i]!));
+      change = Math.max(change, Math.abs(target - column[i]!));
       largest = Math.max(largest, Math.abs(next));
       column[i] = next;
     }
@@ -165,7 +165,7 @@ function moveVariances(bench: Workbench, values: Float64Array, share: number): n
     const read = (distance[i]! * (before - extra)) / before;
     const target = asymmetricVariance(read, plus[i]!, minus[i]!) + extra;
     const next = before + share * (target - before);
-    moved = Math.max(moved, Math.abs(next - before) / before);
+    moved = Math.max(moved, Math.abs(target - before) / before);
     state.variance[i] = next;
   }
   return moved;
