@@ -400,6 +400,23 @@ describe("counts", () => {
     },
   );
 
+  test("under a gamma reference that peaks at zero", () => {
+    // Shape 1/4, rate 1/16: over t = rate^(1/4) the reference is level at 0.
+    const { combined, thresholds } = combinedOf("count", [{ count: 0, background: 2 }], {
+      reference: { family: "gamma", mean: 4, sd: 8 },
+      more: { measurand: { thresholds: [{ key: "t", value: 0.5 }] } },
+    });
+    // The background changes nothing where nothing was counted: a gamma of 1/4 and 1 + 1/16.
+    expect(combined!.value).toBeCloseTo(0.25 / 1.0625, 9);
+    expect(combined!.sd).toBeCloseTo(0.5 / 1.0625, 9);
+    const clean = combinedOf("count", [{ count: 0 }], {
+      reference: { family: "gamma", mean: 4, sd: 8 },
+      more: { measurand: { thresholds: [{ key: "t", value: 0.5 }] } },
+    });
+    const [above] = clean.thresholds;
+    expect(thresholds[0]!.probabilityAbove).toBeCloseTo(above!.probabilityAbove!, 10);
+  });
+
   test("without background under a gamma reference it is a gamma", () => {
     const { combined } = combinedOf("count", [{ count: 7, exposure: 3 }], {
       reference: { family: "gamma", mean: 4, sd: 2 },

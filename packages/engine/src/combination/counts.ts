@@ -1,6 +1,6 @@
-import { gammaFromMoments } from "@weighhouse/numerics/gamma-distribution";
+import { gammaFromMoments, type GammaDistribution } from "@weighhouse/numerics/gamma-distribution";
 import { poissonCdf, poissonUpperTail } from "@weighhouse/numerics/poisson-distribution";
-import { densityOf } from "../distribution/density";
+import { averageOver, densityOf, densityTail } from "../distribution/density";
 import type { Distribution } from "../distribution/distribution";
 import type { RateRole } from "../frame";
 
@@ -33,14 +33,56 @@ export function rateDensity(
     const { shape, scale } = gammaFromMoments(reference.mean, reference.sd);
     return { kind: "gamma", shape: shape + counted, scale: scale / (1 + exposure * scale) };
   }
-  const prior = priorOf(reference);
-  const ln = (rate: number) => prior.ln(rate) + lnLikelihood(readings, rate);
   // About as far from the plain estimate as anything may count.
   const guess = Math.max(counted - backgroundOf(readings), 0) / exposure;
   const spread = Math.sqrt(counted + 1) / exposure;
   const breaks: number[] = [];
   for (const k of [0, 1, 2, 4, 8, 16, 32]) breaks.push(guess - k * spread, guess + k * spread);
-  return densityOf(ln, { ...prior, breaks: [...breaks, ...prior.breaks], scale: spread });
+  const ln = (rate: number) => lnLikelihood(readings, rate);
+  if (reference.family === "uniform") {
+    const { lower, upper } = reference;
+    return densityOf(ln, { lower, upper, breaks, scale: spread });
+  }
+  if (reference.family === "exact") {
+    throw new TypeError("a reference is spread: gamma or uniform");
+  }
+  const { mean, sd } = reference;
+  for (const rate of [mean / 8, mean / 2, mean, mean + sd, mean + 4 * sd]) breaks.push(rate);
+  return underGamma(gammaFromMoments(mean, sd), { ln, breaks });
+}
+
+/**
+ * Over t = rate^shape, in which the gamma's own peak at 0, if it has one, is level:
+ * rate^(shape - 1) d rate = d t / shape.
+ */
+function underGamma(
+  { shape, scale }: GammaDistribution,
+  { ln, breaks }: { ln: (rate: number) => number; breaks: readonly number[] },
+): Distribution | null {
+  if (shape >= 1) {
+    const whole = (rate: number) =>
+      (shape === 1 ? 0 : (shape - 1) * Math.log(rate)) - rate / scale + ln(rate);
+    return densityOf(whole, { lower: 0, upper: Infinity, breaks, scale });
+  }
+  const rateOf = (t: number) => t ** (1 / shape);
+  const places = breaks.filter((rate) => rate > 0).map((rate) => rate ** shape);
+  const density = densityOf((t) => ln(rateOf(t)) - rateOf(t) / scale, {
+    lower: 0,
+    upper: Infinity,
+    breaks: places,
+    scale: scale ** shape,
+  });
+  if (density === null) return null;
+  const mean = averageOver(density, rateOf);
+  const variance = averageOver(density, (t) => (rateOf(t) - mean) ** 2);
+  return {
+    kind: "image",
+    cdf: (rate) => (rate <= 0 ? 0 : densityTail(density, rate ** shape, "lower")),
+    lower: 0,
+    upper: rateOf(density.edges.at(-1)!),
+    mean,
+    sd: Math.sqrt(variance),
+  };
 }
 
 /**
@@ -72,27 +114,4 @@ function backgroundOf(readings: readonly CountReading[]): number {
   let sum = 0;
   for (const { background } of readings) sum += background;
   return sum;
-}
-
-function priorOf(reference: RateRole): {
-  ln: (rate: number) => number;
-  lower: number;
-  upper: number;
-  breaks: number[];
-} {
-  if (reference.family === "uniform") {
-    const { lower, upper } = reference;
-    return { ln: () => 0, lower, upper, breaks: [] };
-  }
-  if (reference.family === "exact") {
-    throw new TypeError("a reference is spread: gamma or uniform");
-  }
-  const { shape, scale } = gammaFromMoments(reference.mean, reference.sd);
-  const { mean, sd } = reference;
-  return {
-    ln: (rate) => (shape === 1 ? 0 : (shape - 1) * Math.log(rate)) - rate / scale,
-    lower: 0,
-    upper: Infinity,
-    breaks: [mean, mean + sd, mean + 4 * sd, mean / 2, mean / 8],
-  };
 }

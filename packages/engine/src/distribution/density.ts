@@ -111,6 +111,15 @@ export function densityQuantile(density: Density, p: number): number {
   return (a + b) / 2;
 }
 
+/** The mean of a function of x. */
+export function averageOver({ ln, edges }: Density, f: (x: number) => number): number {
+  let sum = 0;
+  for (let i = 0; i + 1 < edges.length; i += 1) {
+    sum += gaussLegendre((x) => f(x) * Math.exp(ln(x)), edges[i]!, edges[i + 1]!);
+  }
+  return sum;
+}
+
 function panelOf(edges: Float64Array, x: number): number {
   let [low, high] = [0, edges.length - 1];
   while (high - low > 1) {

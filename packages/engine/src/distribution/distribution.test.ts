@@ -54,10 +54,11 @@ describe("a density known by its log", () => {
 describe("draws", () => {
   test("equally spaced in probability, they are the quantiles that they are made of", () => {
     const n = 2 ** 12;
-    const values = Float64Array.from({ length: n - 1 }, (_, k) => normalQuantile((k + 1) / n));
-    const draws = drawsOf(values.reverse())!;
-    expect(quantile(draws, 0.25)).toBe(normalQuantile(0.25));
-    expect(cdf(draws, 0)).toBeCloseTo(0.5, 3);
+    const values = Float64Array.from({ length: n }, (_, k) => normalQuantile((k + 0.5) / n));
+    const draws = drawsOf(values.reverse(), "middles")!;
+    expect(quantile(draws, 0.25)).toBeCloseTo(normalQuantile(0.25), 6);
+    expect(cdf(draws, 0)).toBe(0.5);
+    expect(quantile(drawsOf(Float64Array.of(4, 1, 2))!, 0.75)).toBe(3);
   });
 
   test("without a value are left out, and mean nothing where they are half", () => {

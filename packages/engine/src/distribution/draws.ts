@@ -2,8 +2,8 @@
 export interface Draws {
   kind: "draws";
   sorted: Float64Array;
-  /** Of n, the k-th is the k / (n + 1) quantile (`between`), or the (k - 1/2) / n one (`middles`). */
-  places: "between" | "middles";
+  /** Of n, the k-th is the (k - 1) / (n - 1) quantile (`ends`), or the (k - 1/2) / n one (`middles`). */
+  places: "ends" | "middles";
   mean: number;
   sd: number;
 }
@@ -14,7 +14,7 @@ export interface Draws {
  * @param values NaN where there is no value: those are left out
  * @returns null where half of the draws or more have no value
  */
-export function drawsOf(values: Float64Array, places: Draws["places"] = "between"): Draws | null {
+export function drawsOf(values: Float64Array, places: Draws["places"] = "ends"): Draws | null {
   const sorted = values.filter((value) => !Number.isNaN(value)).sort();
   const { length } = sorted;
   if (2 * length <= values.length) return null;
@@ -40,7 +40,7 @@ export function drawsBelow({ sorted }: Draws, x: number): number {
 /** Between two draws it is interpolated. */
 export function drawsQuantile({ sorted, places }: Draws, p: number): number {
   const { length } = sorted;
-  const place = places === "between" ? p * (length + 1) - 1 : p * length - 0.5;
+  const place = places === "ends" ? p * (length - 1) : p * length - 0.5;
   const low = Math.min(Math.max(Math.floor(place), 0), length - 1);
   const high = Math.min(low + 1, length - 1);
   const [a, b] = [sorted[low]!, sorted[high]!];
