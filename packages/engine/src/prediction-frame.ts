@@ -10,7 +10,7 @@ import {
   type ToleranceFrame,
 } from "./frame";
 import { toScoringSpace } from "./scoring-space";
-import { MOST_SD } from "./sizes";
+import { gammaProblem, MOST_SD } from "./sizes";
 import { toleranceFrame } from "./tolerance-frame";
 
 export interface PredictionContext {
@@ -45,6 +45,9 @@ export function predictionFrame(
     const allowed = `a tolerance of at most ${MOST_SD}`;
     return refused(`${pointer}/tolerance/sd`, String(tolerance.sd), allowed);
   }
+  const gamma =
+    tolerance.family === "gamma" ? gammaProblem(tolerance, `${pointer}/tolerance`) : null;
+  if (gamma !== null) return { ok: false, problems: [gamma] };
   const value: PredictionFrame = {
     pointer,
     hypothesis: context.hypothesis,

@@ -126,3 +126,45 @@ test("an interval's end beyond all doubles is unbounded", () => {
   );
   expect([verdicts[0]!.lower, verdicts[0]!.upper]).toEqual([0, null]);
 });
+
+test.each([
+  ["a gamma too narrow to be told from a number", { family: "gamma", mean: 3, sd: 1e-9 }],
+  ["a gamma that is nearly all at 0", { family: "gamma", mean: 3, sd: 1e9 }],
+])("%s is refused at its sd", (_, tolerance) => {
+  const document = documentFrom({
+    observables: [{ key: "o", title: "O", unit: "1", scale: "count" }],
+    measurands: [{ key: "x", observable: "o", reference: { ...tolerance, sd: 3 } }],
+    hypotheses: [{ key: "h", title: "H", predictions: [{ measurand: "x", tolerance }] }],
+  });
+  const refused = scoreCampaign(document);
+  expect(refused.ok ? [] : refused.problems.map(({ pointer }) => pointer)).toEqual([
+    "/hypotheses/0/predictions/0/tolerance/sd",
+  ]);
+});
+
+test.each([
+  ["sd", { family: "normal", mean: 0, sd: 1e150 }],
+  ["sd", { family: "halfnormal", sd: 1e150 }],
+  ["sdLog10", { family: "lognormal", median: 1, sdLog10: 9 }],
+  ["upper", { family: "uniform", lower: 0, upper: 1e150 }],
+  ["lower", { family: "loguniform", lower: 1e-150, upper: 1 }],
+])("a prior beyond ordinary numbers is refused at its %s", (field, prior) => {
+  const document = documentFrom({
+    observables: [{ key: "o", title: "O", unit: "m", scale: "linear" }],
+    measurands: [
+      { key: "x", observable: "o", reference: { family: "uniform", lower: 0, upper: 9 } },
+    ],
+    hypotheses: [
+      {
+        key: "h",
+        title: "H",
+        parameters: [{ key: "q", prior }],
+        predictions: [{ measurand: "x", expected: "q" }],
+      },
+    ],
+  });
+  const refused = scoreCampaign(document);
+  expect(refused.ok ? [] : refused.problems.map(({ pointer }) => pointer)).toEqual([
+    `/hypotheses/0/parameters/0/prior/${field}`,
+  ]);
+});
