@@ -1,4 +1,5 @@
 /** The scorer's process: takes scoring jobs until SIGTERM or SIGINT, then ends cleanly. */
+import { KeptHeads } from "@weighhouse/store/kept-heads";
 import { openKeys, openSealKey } from "@weighhouse/store/keys";
 import { isWriteAfterClose } from "@weighhouse/store/lost-connection";
 import { openStore } from "@weighhouse/store/open-store";
@@ -37,11 +38,12 @@ async function main(): Promise<number> {
 
 /** With keys it does what dates ask for, too; without, it scores and signs nothing. */
 async function keysOf({ WEIGHHOUSE_KEYS: folder, WEIGHHOUSE_ORIGIN: origin, PORT }: Settings) {
-  if (folder === undefined) return { signer: null, sealKey: null };
+  if (folder === undefined) return { signer: null, sealKey: null, keptHeads: null };
   const name = new URL(origin ?? `http://localhost:${PORT}`).hostname;
   return {
     signer: await openKeys({ folder, name, make: false }),
     sealKey: openSealKey({ folder, make: false }),
+    keptHeads: new KeptHeads(folder),
   };
 }
 

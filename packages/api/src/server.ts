@@ -1,4 +1,5 @@
 import type { Desk } from "@weighhouse/desk/desk";
+import { KeptHeads } from "@weighhouse/store/kept-heads";
 import { openKeys, openSealKey } from "@weighhouse/store/keys";
 import { openStore } from "@weighhouse/store/open-store";
 import type { Log } from "@weighhouse/store/open-store";
@@ -40,6 +41,7 @@ async function openServer(environment: NodeJS.ProcessEnv, log: Log): Promise<Ser
     readUrl: settings.DATABASE_READ_URL,
     signer: await openKeys({ folder: WEIGHHOUSE_KEYS, name, make: false }),
     sealKey: openSealKey({ folder: WEIGHHOUSE_KEYS, make: false }),
+    keptHeads: new KeptHeads(WEIGHHOUSE_KEYS),
     log,
   });
   const desk: Desk = { store };

@@ -135,6 +135,9 @@ const changesByKind: Changes = {
   "standings.cited": ({ payload: { code, by, note }, seq, at }) => [
     { part: "citation", key: code, content: { code, by, note, seq, at } },
   ],
+  "ledger.restored": ({ payload, seq, at }) => [
+    { part: "restore", key: String(seq), content: { ...payload, seq, at } },
+  ],
 };
 
 function keyed(part: PartName, content: PartContent & { key: string }): Part {

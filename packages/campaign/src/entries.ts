@@ -45,6 +45,7 @@ export const entryKinds = [
   "measurement.revealed",
   "remark.made",
   "standings.cited",
+  "ledger.restored",
 ] as const;
 export type EntryKind = (typeof entryKinds)[number];
 
@@ -110,6 +111,12 @@ export const callers = ["clock", "coordinator"] as const;
 /** Eight digits and small letters without i, l, o and u, which are misread. */
 export const CODE_PATTERN = /^[0-9a-hjkmnp-tv-z]{8}$/;
 
+/** A root of a tree, base64 as in the third line of a signed head. */
+const root = z
+  .string()
+  .regex(/^[A-Za-z0-9+/]{43}=$/)
+  .describe("32 bytes in base64");
+
 const words = prose.min(1);
 const entrySeq = z.int().nonnegative();
 
@@ -154,6 +161,16 @@ export const payloadSchemas = {
     by: z.enum(["hand", "clock"]),
     note: optional(line),
     standings: z.record(z.string(), z.unknown()),
+  }),
+  /**
+   * The database was put back to an earlier state: `before` and `root` are the last head known of
+   * the ledger as it had been, `after` is the size that it came back with.
+   */
+  "ledger.restored": z.strictObject({
+    before: z.int().positive(),
+    root,
+    after: z.int().positive(),
+    reason: line,
   }),
 } as const satisfies Record<EntryKind, z.ZodType>;
 

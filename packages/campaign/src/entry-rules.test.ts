@@ -15,6 +15,7 @@ import {
   sealOf,
 } from "./testing/ledger";
 
+const ROOT = `${"A".repeat(43)}=`;
 const until = "2031-01-20T00:00:00Z";
 const prediction = { measurand: "foot", expected: 60, tolerance: { family: "normal", sd: 5 } };
 const bound = { team: "grain", hypothesis: "slip", measurand: "foot" };
@@ -79,7 +80,8 @@ function everyKind(): Ledger {
     .add("remark.made", { on: 3, kind: "question", text: "Which crest?" })
     .add("standings.cited", citationOf(26))
     .bySystem()
-    .add("registration.closed", { by: "clock" });
+    .add("registration.closed", { by: "clock" })
+    .add("ledger.restored", { before: 31, root: ROOT, after: 28, reason: "a disk failed" });
 }
 
 describe("a ledger with every kind of entry", () => {
@@ -481,6 +483,26 @@ const broken: Broken[] = [
     "a citation's code is made of the standings",
     add(openedDune, "standings.cited", { ...citationOf(8), code: "00000000" }),
     "/code: found 00000000",
+  ],
+  [
+    "a restored ledger goes on from the size that it came back with",
+    add(() => openedDune().bySystem(), "ledger.restored", {
+      before: 31,
+      root: ROOT,
+      after: 9,
+      reason: "a disk failed",
+    }),
+    "/after: found 9; allowed 8, the size before this entry",
+  ],
+  [
+    "a restore is declared by who runs the installation",
+    add(openedDune, "ledger.restored", {
+      before: 31,
+      root: ROOT,
+      after: 8,
+      reason: "a disk failed",
+    }),
+    "found a member's entry",
   ],
 ];
 

@@ -1,5 +1,10 @@
 import type { EntryKind } from "./entries";
-import { amendedCampaign, citedStandings, closedRegistration } from "./entry-rules/campaign";
+import {
+  amendedCampaign,
+  citedStandings,
+  closedRegistration,
+  restoredLedger,
+} from "./entry-rules/campaign";
 import {
   closedMeasurand,
   declaredAgain,
@@ -77,4 +82,5 @@ const rules: { [K in EntryKind]: Rule<K> } = {
   "remark.made": (_before, { seq, payload: { on } }) =>
     on < seq ? null : fault("/on", "out-of-range", String(on), `an earlier entry, below ${seq}`),
   "standings.cited": citedStandings,
+  "ledger.restored": restoredLedger,
 };

@@ -14,7 +14,14 @@ export const documentParts = [
 export type DocumentPart = (typeof documentParts)[number];
 
 /** What a ledger holds beside its document: shown with it, and never scored. */
-export const recordParts = ["proposal", "objection", "seal", "remark", "citation"] as const;
+export const recordParts = [
+  "proposal",
+  "objection",
+  "seal",
+  "remark",
+  "citation",
+  "restore",
+] as const;
 
 export const partNames = [...documentParts, ...recordParts] as const;
 export type PartName = (typeof partNames)[number];

@@ -94,4 +94,5 @@ const readsByKind: { [K in EntryKind]: (payload: RecordOf<K>["payload"]) => Want
   }),
   "remark.made": ({ on }) => ({ keys: [["remark", String(on)]] }),
   "standings.cited": ({ code }) => ({ keys: [["citation", code]] }),
+  "ledger.restored": () => ({}),
 };

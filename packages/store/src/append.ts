@@ -9,12 +9,14 @@ import { extendLedger } from "./extend-ledger";
 import type { WriteInput } from "./extend-ledger";
 import { queueDates } from "./dates-queue";
 import { lockTip } from "./lock-tip";
+import type { Tip } from "./lock-tip";
 import type { Store } from "./open-store";
 import { preparePayload } from "./prepare-payload";
 import type { PreparedPayload } from "./prepare-payload";
 import { currentRows, writeRows } from "./projection-rows";
 import { Projector } from "./projector";
 import { queueScoring } from "./scoring-queue";
+import { restored } from "./restored";
 import { StoreError } from "./store-error";
 
 export type { Clock } from "./clock";
@@ -29,6 +31,8 @@ export type Appended = {
   at: string[];
   /** Root of the tree of size `to`, base64, as in the third line of the signed head. */
   treeHead: string;
+  /** The signed head of the tree of size `to`. */
+  note: string;
 };
 
 export type AppendInput = {
@@ -52,11 +56,11 @@ export const CHANNEL = "weighhouse";
  * lock, tree, signed head, projections, the scoring job and the notice. All of it or nothing.
  *
  * @throws {StoreError} `no-such-campaign`, `invalid-payload`, `payload-too-large`, `moved-on`,
- * `rule-broken`, `clock-not-simulated`, `no-signer`
+ * `rule-broken`, `clock-not-simulated`, `no-signer`, `restored`
  */
 export async function appendEntries(store: Store, input: AppendInput): Promise<Appended> {
   const payloads = input.entries.map(preparePayload);
-  return store.sql.begin(async (tx) => {
+  const appended = (await store.sql.begin(async (tx) => {
     const tip = await lockTip(tx, input.campaign);
     if (input.expectedSize !== undefined && input.expectedSize !== tip.size) {
       throw new StoreError(
@@ -66,7 +70,21 @@ export async function appendEntries(store: Store, input: AppendInput): Promise<A
     }
     await input.alongside?.(tx, tip.campaignId);
     return writeEntries(store, tx, { tip, by: input.by, payloads, clock: input.clock });
-  }) as Promise<Appended>;
+  })) as Appended;
+  await keepHead(store, appended.note);
+  return appended;
+}
+
+/**
+ * Keeps a committed head outside the database. The entries are on record by now, whatever becomes of
+ * this, so that a full disk is logged and the append not called failed.
+ */
+export async function keepHead(store: Store, note: string): Promise<void> {
+  try {
+    await store.keptHeads?.keep(note);
+  } catch (error) {
+    store.log.error({ error }, "could not keep the last signed head outside the database");
+  }
 }
 
 /** The rest of an append, once the tip is locked. Statements that need no answer go out together. */
@@ -76,6 +94,7 @@ export async function writeEntries(
   input: WriteInput,
 ): Promise<Appended> {
   const { tip, payloads } = input;
+  requireGoingOn(store, tip);
   const extended = extendLedger(store, input);
   const reads = readsOfAll(payloads);
   const projector = new Projector({ rows: await currentRows(tx, tip.campaignId, reads), reads });
@@ -97,7 +116,14 @@ export async function writeEntries(
     to: extended.size,
     at: extended.entries.map((entry) => entry.at),
     treeHead: extended.treeHead,
+    note: extended.note,
   };
+}
+
+/** A database put back to a backup while this process runs is found before anything is added to it. */
+function requireGoingOn(store: Store, { ledger, campaign, size }: Tip): void {
+  const kept = store.keptHeads?.last(ledger) ?? null;
+  if (kept !== null && kept.size > size) throw restored([{ campaign, kept, size }]);
 }
 
 function readsOfAll(payloads: PreparedPayload[]): Reads {

@@ -25,6 +25,7 @@ export type Extended = {
   size: number;
   /** Base64. */
   treeHead: string;
+  note: string;
   /** Sends the statements that write it; each must succeed. */
   write(tx: Queries): Promise<unknown>[];
 };
@@ -55,6 +56,7 @@ export function extendLedger(store: Store, input: WriteInput): Extended {
     entries,
     size: edge.size,
     treeHead: base64(root),
+    note,
     write: (tx) => [
       insertEntries(tx, tip, entries, payloads),
       insertNodes(tx, tip, nodes),

@@ -1,5 +1,15 @@
 import { randomBytes } from "node:crypto";
-import { chmodSync, existsSync, mkdirSync, readFileSync, statSync, writeFileSync } from "node:fs";
+import {
+  chmodSync,
+  constants,
+  copyFileSync,
+  existsSync,
+  mkdirSync,
+  readFileSync,
+  renameSync,
+  statSync,
+  writeFileSync,
+} from "node:fs";
 import path from "node:path";
 import { createPrivateKeyPem, signerFromPem } from "@weighhouse/ledger/node-keys";
 import type { TreeHeadSigner } from "@weighhouse/ledger/tree-head";
@@ -36,6 +46,32 @@ export async function openKeys({ folder, name, make }: KeysOptions): Promise<Tre
     throw refusal(`${PUBLIC} of another key than ${PRIVATE}`, "the two halves of one key");
   }
   return signer;
+}
+
+/**
+ * Puts a new signing key in the place of a folder's, under the same name. The old one stays beside
+ * it as `tree-heads-<first 16 digits of its fingerprint>`: heads signed by it stay good, and a process
+ * that holds it still goes on until its next start.
+ *
+ * @param enrol lists the new key in the database, which must be done before anything is signed by it
+ */
+export async function rotateKey(
+  folder: string,
+  enrol: (old: TreeHeadSigner, next: TreeHeadSigner) => Promise<void>,
+): Promise<TreeHeadSigner> {
+  const old = await openKeys({ folder, name: "", make: false });
+  const pem = createPrivateKeyPem();
+  const next = signerFromPem(pem, old.name);
+  const draft = (file: string) => path.join(folder, `next-${file}`);
+  writeFileSync(draft(PUBLIC), `${encodeVerifierKey(next)}\n`, { mode: 0o600 });
+  writeFileSync(draft(PRIVATE), pem, { mode: 0o600 });
+  await enrol(old, next);
+  for (const file of [PUBLIC, PRIVATE]) {
+    const retired = file.replace(".", `-${fingerprint(old.publicKey).slice(0, 16)}.`);
+    copyFileSync(path.join(folder, file), path.join(folder, retired), constants.COPYFILE_EXCL);
+    renameSync(draft(file), path.join(folder, file));
+  }
+  return next;
 }
 
 /**

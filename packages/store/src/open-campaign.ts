@@ -1,5 +1,5 @@
 import { randomUUID } from "node:crypto";
-import { writeEntries } from "./append";
+import { keepHead, writeEntries } from "./append";
 import type { Appended, Clock, NewEntry } from "./append";
 import { lockTip } from "./lock-tip";
 import type { Store } from "./open-store";
@@ -41,7 +41,7 @@ export async function openCampaign(
   });
   const payloads = [opening, ...(input.entries ?? []).map(preparePayload)];
   const { key, visibility } = opening.value as { key: string; visibility: string };
-  return store.sql.begin(async (tx) => {
+  const opened = (await store.sql.begin(async (tx) => {
     const [row] = await tx<{ id: number }[]>`
       insert into campaigns (key, ledger, clock, visibility, opened_at)
       values (${key}, ${ledger}, ${clock === undefined ? "real" : "simulated"}, ${visibility},
@@ -64,5 +64,7 @@ export async function openCampaign(
     const tip = await lockTip(tx, key);
     const appended = await writeEntries(store, tx, { tip, by, payloads, clock });
     return { ...appended, campaignId: row.id, ledger, member };
-  }) as Promise<OpenedCampaign>;
+  })) as OpenedCampaign;
+  await keepHead(store, opened.note);
+  return opened;
 }

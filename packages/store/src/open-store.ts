@@ -5,8 +5,10 @@ import postgres from "postgres";
 import type { Sql } from "postgres";
 import { ledgerTables } from "./grants";
 import { instantFromPostgres } from "./instant";
+import type { KeptHeads } from "./kept-heads";
 import { silentLog } from "./log";
 import type { Log } from "./log";
+import { requireNotBehind } from "./restored";
 import type { SealKey } from "./seal-key";
 import * as schema from "./schema/tables";
 import { requireListedKey } from "./signing-keys";
@@ -27,6 +29,8 @@ export type Store = {
   readonly signer: TreeHeadSigner | null;
   /** null: this process holds no seals' contents. */
   readonly sealKey: SealKey | null;
+  /** Where the last signed heads are kept outside the database; null: nowhere (tests). */
+  readonly keptHeads: KeptHeads | null;
   readonly log: Log;
   close(): Promise<void>;
 };
@@ -37,6 +41,7 @@ export type StoreOptions = {
   /** null: this process appends nothing (a scorer). */
   signer: TreeHeadSigner | null;
   sealKey?: SealKey | null;
+  keptHeads?: KeptHeads | null;
   log?: Log;
   /** Connections for each of the two clients; 8 unless given. */
   connections?: number;
@@ -44,7 +49,8 @@ export type StoreOptions = {
 
 /**
  * Opens the store: refuses a running role that owns the entries, a database that isn't migrated, and
- * a signing key that the database doesn't list (the first key ever is enrolled).
+ * a signing key that the database doesn't list (the first key ever is enrolled), and a database that
+ * is behind the last heads kept outside it.
  */
 export async function openStore(options: StoreOptions): Promise<Store> {
   const max = options.connections ?? 8;
@@ -58,6 +64,7 @@ export async function openStore(options: StoreOptions): Promise<Store> {
   try {
     await requireRunningRole(sql);
     if (options.signer !== null) await requireListedKey(sql, options.signer);
+    if (options.keptHeads) await requireNotBehind(sql, options.keptHeads);
   } catch (error) {
     await close();
     throw error;
@@ -69,6 +76,7 @@ export async function openStore(options: StoreOptions): Promise<Store> {
     url: options.url,
     signer: options.signer,
     sealKey: options.sealKey ?? null,
+    keptHeads: options.keptHeads ?? null,
     log: options.log ?? silentLog,
     close,
   };

@@ -3,7 +3,7 @@ import { canonicalBytes, canonicalJson } from "@weighhouse/ledger/canonical";
 import { hex } from "@weighhouse/ledger/bytes";
 import type { Entry } from "@weighhouse/ledger/entry";
 import { nodeHasher } from "@weighhouse/ledger/node-hasher";
-import { writeEntries } from "./append";
+import { keepHead, writeEntries } from "./append";
 import type { Appended, Clock } from "./append";
 import { findCampaign } from "./campaigns";
 import { lockTip } from "./lock-tip";
@@ -50,7 +50,7 @@ export async function postMeasurements(
   const payloads = splitPosting(given, input.correlations ?? []);
   const contents = payloads.flatMap(({ value }) => value.measurements);
   const correlations = payloads.flatMap(({ value }) => value.correlations);
-  return store.sql.begin(async (tx) => {
+  const outcome = (await store.sql.begin(async (tx) => {
     const tip = await lockTip(tx, input.campaign);
     const sorted = sortOut(
       [...contents.map(asItem), ...correlations.map(asPairItem)],
@@ -69,7 +69,9 @@ export async function postMeasurements(
       clock: input.clock,
     });
     return { ...outcome, posted: fresh.map(({ id }) => id), appended };
-  }) as Promise<Posted>;
+  })) as Posted;
+  if (outcome.appended !== null) await keepHead(store, outcome.appended.note);
+  return outcome;
 }
 
 /**

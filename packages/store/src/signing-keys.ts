@@ -25,3 +25,14 @@ export async function requireListedKey(sql: Sql, signer: TreeHeadSigner): Promis
       values (${encodeVerifierKey(signer)}, ${print}) on conflict do nothing`;
   });
 }
+
+/** Lists a further key, which who holds a listed one vouches for. */
+export async function enrolKey(
+  sql: Sql,
+  { listed, next }: { listed: TreeHeadSigner; next: TreeHeadSigner },
+): Promise<void> {
+  await requireListedKey(sql, listed);
+  await sql`
+    insert into signing_keys (verifier_key, fingerprint)
+    values (${encodeVerifierKey(next)}, ${fingerprint(next.publicKey)})`;
+}

@@ -18,6 +18,7 @@ export type StoreErrorCode =
   | "owner-runs"
   | "not-migrated"
   | "ledger-broken"
+  | "restored"
   | "no-such-member"
   | "embedded-failed";
 

@@ -14,6 +14,7 @@ import { openCampaign } from "@weighhouse/desk/open-campaign";
 import { postMeasurements } from "@weighhouse/desk/post-measurements";
 import { registerHypothesis } from "@weighhouse/desk/register-hypothesis";
 import { findCampaign } from "@weighhouse/store/campaigns";
+import { KeptHeads } from "@weighhouse/store/kept-heads";
 import { openKeys } from "@weighhouse/store/keys";
 import { openStore } from "@weighhouse/store/open-store";
 import type { Store } from "@weighhouse/store/open-store";
@@ -47,7 +48,8 @@ export async function makeDemo(place: DemoPlace): Promise<void> {
     name: new URL(place.origin).hostname,
     make: false,
   });
-  const store = await openStore({ url: place.url, signer });
+  const keptHeads = new KeptHeads(place.keys);
+  const store = await openStore({ url: place.url, signer, keptHeads });
   try {
     const from = await entriesMade(store);
     // Only until it is whole: then it is the users' campaign, whatever they make of it.

@@ -24,6 +24,7 @@ const kindWords: Record<EntryKind, string> = {
   "measurement.revealed": "sealed measurement opened",
   "remark.made": "remark",
   "standings.cited": "standings cited",
+  "ledger.restored": "database restored from a backup",
   "registration.closed": "registration closed",
   "measurements.posted": "measurements posted",
   "measurement.set-aside": "measurement set aside",

@@ -64,3 +64,15 @@ export function citedStandings(
   const made = citationCode(standings);
   return code === made ? null : fault("/code", "contradiction", code, `${made}, of the standings`);
 }
+
+/** Who runs the installation declares it, not who takes part in the campaign. */
+export function restoredLedger(
+  _before: PartsBefore,
+  { seq, by, payload: { after } }: RecordOf<"ledger.restored">,
+): Problem | null {
+  if (!("system" in by)) {
+    return fault("", "not-applicable", "a member's entry", "one by the system");
+  }
+  if (after === seq) return null;
+  return fault("/after", "contradiction", String(after), `${seq}, the size before this entry`);
+}
