@@ -1,4 +1,9 @@
-import { LN_SQRT_2PI, logNormalCdf, logNormalInterval } from "@weighhouse/numerics/normal";
+import {
+  LN_SQRT_2PI,
+  logNormalCdf,
+  logNormalInterval,
+  logNormalPdf,
+} from "@weighhouse/numerics/normal";
 import { convolved } from "./convolution";
 import type { BlockRows, Factor } from "./problem";
 
@@ -119,7 +124,10 @@ export function eachFlatFactor(rows: BlockRows, i: number): Factor {
   return {
     ln: (mu) => {
       const d = y - mu;
-      return logNormalInterval((d - upper) / sd, (d - lower) / sd, width / sd) + lnScale;
+      const [from, to] = [(d - upper) / sd, (d - lower) / sd];
+      // So far away that the two bounds are one number.
+      if (!(from < to)) return logNormalPdf(from) - Math.log(sd);
+      return logNormalInterval(from, to, width / sd) + lnScale;
     },
     centre: y - (lower + upper) / 2,
     scale: sd + width / 2,

@@ -32,11 +32,12 @@ const FEW = 3;
  * (0, 1) by a normal distribution wide enough for the peaks, whatever their priors.
  *
  * @param starts coordinates; those where the density is 0 lead nowhere
+ * @param kinks how many the density may have that no `breaks` tell of
  */
 export function integrate(
   lnDensity: (c: Float64Array) => number,
   coordinates: readonly Coordinate[],
-  { starts, seed }: { starts: readonly Float64Array[]; seed: number },
+  { starts, seed, kinks = 0 }: { starts: readonly Float64Array[]; seed: number; kinks?: number },
 ): Integral {
   const size = coordinates.length;
   const modes = peaksOf(lnDensity, coordinates, starts);
@@ -59,7 +60,14 @@ export function integrate(
     return [...new Set(places)].sort((a, b) => a - b);
   });
   const cubeModes = modes.map((mode) => cubeMode(mode, axes));
-  const found = overCube(lnDensity, map, { size, seed, modes: cubeModes, breaks });
+  const found = overCube(lnDensity, map, {
+    size,
+    seed,
+    modes: cubeModes,
+    breaks,
+    // Thousands of small kinks can't each be found, nor do they have to be.
+    ...(size === 1 ? { relative: Math.min(Math.max(1e-11, kinks * 1e-13), 1e-9) } : {}),
+  });
   const { cdf } = found;
   return {
     ...found,

@@ -66,6 +66,9 @@ export function mixtureQuantiles(mixture: Mixture, ps: readonly number[]): numbe
       }
       return sum;
     };
+    // Far from 0 all of it may be one number.
+    if (!(above(lower) < 0)) return lower;
+    if (!(above(upper) > 0)) return upper;
     return findRoot(above, lower, upper, 1e-12 * (upper - lower));
   });
 }

@@ -28,8 +28,10 @@ export function integralOf(
     integral = { ln, error, points: [point], weights: Float64Array.of(1), cdf: null };
   } else {
     const { seed } = bench.layout.problem;
+    let kinks = 0;
+    for (const { breaks } of bench.layout.factors) kinks += breaks.length;
     const starts = startsOf(bench, integrand);
-    integral = integrate((c) => integrand.lnWithError(c).ln, coordinates, { starts, seed });
+    integral = integrate((c) => integrand.lnWithError(c).ln, coordinates, { starts, seed, kinks });
   }
   const singular = integrand.singular();
   return singular === null ? integral : { refusal: { kind: "singular", rows: singular } };
