@@ -2,7 +2,7 @@ import { chiSquareUpperTail } from "@weighhouse/numerics/chi-square";
 import { lastUnknown } from "../chi-square-fit";
 import { asymmetricRows } from "./asymmetric-rows";
 import { mostLikely } from "./greatest-likelihood";
-import { rateDensity, type CountReading } from "./counts";
+import { countedRate, countsOf } from "./counts";
 import { cyclicLeastSquares, onCircle } from "./cyclic";
 import { normalCombination, spreadCombination, type Combination } from "./combination";
 import { generalisedLeastSquares, type GlsFit } from "./least-squares";
@@ -13,7 +13,6 @@ import { levelRows } from "./level-rows";
 import { meanOf, sdOf } from "../distribution/distribution";
 import { marginalOf } from "../marginal";
 import { solve } from "../solve";
-import type { Reading } from "../readings";
 import type { Workspace } from "../workspace";
 
 /**
@@ -79,18 +78,11 @@ function plainLeastSquares({ sums, marginals }: Workspace, measurand: number): C
 
 function combineCounts({ frame, sums }: Workspace, measurand: number): Combination | null {
   const reference = frame.measurands[measurand]!.roles[0]!;
-  if (reference.kind !== "rate") return null;
+  if (reference.kind !== "rate" || reference.family === "exact") return null;
   const readings = countsOf(sums.measurands[measurand]!.kept);
-  const density = rateDensity(reference, readings);
+  const density = countedRate(reference, readings)?.distribution ?? null;
   if (density === null) return null;
   return spreadCombination({ value: meanOf(density), sd: sdOf(density) }, density, false);
-}
-
-/** The counts among readings. */
-export function countsOf(kept: readonly Reading[]): CountReading[] {
-  const counts: CountReading[] = [];
-  for (const { told } of kept) if (told.form === "count") counts.push(told);
-  return counts;
 }
 
 type Fitted = Pick<GlsFit, "value" | "sd" | "chiSquare">;

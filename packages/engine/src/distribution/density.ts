@@ -5,6 +5,8 @@ export interface Density {
   kind: "density";
   /** ln of the density, normalised. */
   ln(x: number): number;
+  /** ln of the integral of what it was made from. */
+  lnWhole: number;
   /** Panels [edges[i], edges[i + 1]]; the density is smooth within each. */
   edges: Float64Array;
   /** Mass below each edge, and above it: each right to its own size. */
@@ -63,7 +65,7 @@ export function densityOf(ln: (x: number) => number, range: DensityRange): Densi
   for (let i = panels - 1; i >= 0; i -= 1) above[i] = above[i + 1]! + masses[i]! / total;
   const norm = height + Math.log(total);
   const sd = Math.sqrt(variance);
-  return { kind: "density", ln: (x) => ln(x) - norm, edges, below, above, mean, sd };
+  return { kind: "density", ln: (x) => ln(x) - norm, lnWhole: norm, edges, below, above, mean, sd };
 }
 
 /** Mass between two bounds, without the cancellation of two distribution functions. */

@@ -1,11 +1,8 @@
-import { logPoissonPmf } from "@weighhouse/numerics/poisson-distribution";
-import type { Told } from "../readings";
+import { countsOf, lnCounts } from "../combination/counts";
 import type { Workspace } from "../workspace";
 import type { Assembly } from "./assembly";
 import type { Part } from "./block-parts";
 import { addOuterParameters } from "./expected-values";
-
-type Count = Extract<Told, { form: "count" }>;
 
 /**
  * ln of the probability of counts whose rate hangs on parameters or the ensemble,
@@ -26,7 +23,7 @@ export function countFactor(
     addOuterParameters(assembly, prediction, linear);
     const scope = assembly.scopeOf(prediction.hypothesis);
     const values = new Float64Array(slots.length);
-    const counts = countsOf(workspace, measurand);
+    const counts = countsOf(workspace.sums.measurands[measurand]!.kept);
     return [
       () => {
         values.set(scope);
@@ -41,21 +38,4 @@ export function countFactor(
     for (const term of terms) ln += term();
     return ln;
   };
-}
-
-/** A measurand's counts. */
-export function countsOf({ sums }: Workspace, measurand: number): Count[] {
-  return sums.measurands[measurand]!.kept.flatMap(({ told }) =>
-    told.form === "count" ? [told] : [],
-  );
-}
-
-export function lnCounts(counts: readonly Count[], rate: number): number {
-  if (!(rate >= 0 && rate < Infinity)) return -Infinity;
-  let ln = 0;
-  for (const { count, exposure, background } of counts) {
-    const mean = exposure * rate + background;
-    ln += mean < Infinity ? logPoissonPmf(count, mean) : -Infinity;
-  }
-  return ln;
 }

@@ -1,12 +1,10 @@
 import { blockEvidence } from "../block/evidence";
-import { rateProblem } from "../rates";
-import { seedOf } from "../seed";
+import { countedRate, countsOf, lnCounts } from "../combination/counts";
 import { blockKey } from "../evidence-key";
 import type { Roles, Workspace } from "../workspace";
 import type { GeneralEvidence, Part } from "./block-parts";
 import { buildBlock } from "./block-problem";
 import { componentsOf } from "./components";
-import { countsOf, lnCounts } from "./count-factor";
 import { refuse } from "./refusals";
 
 /**
@@ -42,11 +40,12 @@ function ofRate(
 ): GeneralEvidence | null {
   const [{ measurand, role } = { measurand: -1, role: null }] = partsOf(workspace, block, roles);
   if (role?.kind !== "rate") return null;
-  const counts = countsOf(workspace, measurand);
-  const seed = seedOf(workspace.frame.document.campaign.key);
-  const outcome = blockEvidence(rateProblem(role, (rate) => lnCounts(counts, rate), seed));
-  if (!outcome.ok) return refuse(workspace, { refusal: outcome.refusal, rows: [], parts: [] });
-  return { ln: outcome.ln, error: outcome.error, scored: [] };
+  const counts = countsOf(workspace.sums.measurands[measurand]!.kept);
+  const ln =
+    role.family === "exact"
+      ? lnCounts(counts, role.rate)
+      : (countedRate(role, counts)?.lnEvidence ?? -Infinity);
+  return { ln, error: 0, scored: [] };
 }
 
 function ofComponents(
