@@ -92,7 +92,9 @@ function scoreRoles(workspace: Workspace, said: Roles) {
   const { ln, error } = evidence(workspace, charged);
   const lnEvidence = Number.isFinite(ln) ? ln : -Infinity;
   const own = fit(workspace, spoken);
-  return { spoken, charged, compared, silent, fit: own, lnEvidence, lnEvidenceError: error };
+  // An integral that no rule could bound is as uncertain as a number can say.
+  const lnEvidenceError = Number.isFinite(error) ? error : Number.MAX_VALUE;
+  return { spoken, charged, compared, silent, fit: own, lnEvidence, lnEvidenceError };
 }
 
 function listPredictions(

@@ -34,6 +34,11 @@ export function oversizedParts(document: CampaignDocument): Problem[] {
     const allowed = `at most ${MOST_SD}`;
     problems.push({ pointer, code: "out-of-range", found: String(size), allowed });
   };
+  const checkWidth = ({ lower, upper }: { lower: number; upper: number }, at: string) => {
+    if (Math.abs(upper - lower) >= LEAST_SD) return;
+    const allowed = `an end at least ${LEAST_SD} from ${lower}`;
+    problems.push({ pointer: `${at}/upper`, code: "out-of-range", found: String(upper), allowed });
+  };
   const checkReference = (reference: Reference | null, at: string) => {
     if (reference === null) return;
     check(`${at}/scatter`, reference.scatter);
@@ -53,10 +58,14 @@ export function oversizedParts(document: CampaignDocument): Problem[] {
     parameters.forEach(({ prior }, p) => {
       const problem = priorProblem(prior, `/hypotheses/${i}/parameters/${p}/prior`);
       if (problem !== null) problems.push(problem);
+      else if (prior.family === "uniform") {
+        checkWidth(prior, `/hypotheses/${i}/parameters/${p}/prior`);
+      }
     });
     predictions.forEach(({ tolerance }, j) => {
+      const at = `/hypotheses/${i}/predictions/${j}/tolerance`;
       for (const [field, size] of sidesOf(tolerance)) {
-        check(`/hypotheses/${i}/predictions/${j}/tolerance/${field}`, size);
+        check(`${at}/${field}`, size);
       }
     });
   });

@@ -1,5 +1,6 @@
 import { normalUnknown, uniformUnknown } from "../block/outer-unknowns";
 import type { NormalRole, PolynomialRole, UniformRole } from "../frame";
+import { LEAST_SD } from "../sizes";
 import { fixedValue, loadsRelative, type Expected, type Section } from "./section";
 import { levelKey } from "./shared-unknowns";
 
@@ -26,6 +27,11 @@ export function expectNormal(section: Section, role: NormalRole): Expected {
 export function expectUniform(section: Section, role: UniformRole): Expected {
   const { assembly, part, rows, begin, centre, frame } = section;
   const { lower, upper, width } = role;
+  // Bounds that are one number as good as: a known level.
+  if (width < LEAST_SD) {
+    assembly.base.fill(lower - centre, begin, begin + rows.length);
+    return fixedValue(rows.length, lower);
+  }
   if (frame.period > 0 || loadsRelative(rows)) {
     const breaks = cutsOf(section, role);
     return expectOuter(section, () => uniformUnknown(role, { counted: true, breaks }));

@@ -31,8 +31,12 @@ export function parameterStandings(
     const own = parameterKey(place, p);
     const found = scored.find(({ built }) => built.placeOf(own) !== undefined);
     const summary = found === undefined ? null : posteriorOf(found, own, prior);
-    return { key, ...(summary ?? priorSummary(prior)) };
+    return { key, ...(summary !== null && isFinite(summary) ? summary : priorSummary(prior)) };
   });
+}
+
+function isFinite({ mean, sd, quantiles }: ParameterSummary): boolean {
+  return [mean, sd, ...quantiles].every(Number.isFinite);
 }
 
 /** Effective number of the ensemble's rows, 1 / sum w^2; null where no measurement hangs on them. */
