@@ -10,6 +10,7 @@ import type { StoreEvent } from "@weighhouse/store/listen";
 import { openCampaign } from "@weighhouse/store/open-campaign";
 import type { Store } from "@weighhouse/store/open-store";
 import { postMeasurements } from "@weighhouse/store/post-measurements";
+import { SCORE_TASK } from "@weighhouse/store/scoring-queue";
 import { readStandings } from "@weighhouse/store/standings";
 import {
   declarations,
@@ -105,7 +106,7 @@ describe("scorers", () => {
     const scorer = await runScorer(store, { everyMs: 200 });
     await until(async () => {
       const [row] = await store.sql<{ n: number }[]>`
-        select count(*)::int as n from graphile_worker.jobs`;
+        select count(*)::int as n from graphile_worker.jobs where task_identifier = ${SCORE_TASK}`;
       return row?.n === 0;
     }, "the job to be done");
     expect(await scoredToTheEnd("two")).toBe(true);
