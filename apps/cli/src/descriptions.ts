@@ -9,5 +9,6 @@ export const descriptions = {
   verify: "Recompute everything in an audit trail, a line per check",
   seal: "Seal a prediction or a measurement: the digest to file, and the file to keep",
   reveal: "Open a seal on a server with the file that was kept",
+  watch: "Watch a campaign's ledger on a server: was anything before rewritten?",
   export: "Save a campaign's audit trail from a server",
 } as const;

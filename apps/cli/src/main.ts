@@ -13,5 +13,6 @@ process.exitCode = await run(process.argv.slice(2), {
   verify: () => import("./commands/verify").then((module) => module.verify as CommandDef),
   seal: () => import("./commands/seal").then((module) => module.seal as CommandDef),
   reveal: () => import("./commands/reveal").then((module) => module.reveal as CommandDef),
+  watch: () => import("./commands/watch").then((module) => module.watch as CommandDef),
   export: () => import("./commands/export").then((module) => module.exportTrail as CommandDef),
 });
