@@ -14,7 +14,16 @@ const here = fileURLToPath(new URL(".", import.meta.url));
 export const bundle = join(here, "dist/weighhouse.mjs");
 
 /** What the bundle is made from: another package in it is another name here. */
-const packages = ["audit", "campaign", "engine", "figures", "ledger", "numerics", "tables", "timestamps"];
+const packages = [
+  "audit",
+  "campaign",
+  "engine",
+  "figures",
+  "ledger",
+  "numerics",
+  "tables",
+  "timestamps",
+];
 
 /** Whether a source, or a folder that lost or gained one, is newer than the bundle. */
 export function isStale() {
