@@ -79,9 +79,11 @@ function bounded(): CampaignDocument {
       },
       { id: "c", measurand: "mass", value: 24, sdDex: 0.1 },
       { id: "d", measurand: "mass", value: 31, sd: 4 },
+      { id: "mm", measurand: "width", value: 3450, sd: 600, unit: "mm" },
+      { id: "g", measurand: "mass", value: 28_000, sd: 5000, unit: "g" },
       { id: "e", measurand: "glow", value: 11.2, sd: 0.2 },
       { id: "f", measurand: "depth", value: -40, sd: 0.7 },
-      { id: "g", measurand: "depth", value: 1.5, sd: 0.7, setAside: { reason: "for the test" } },
+      { id: "h", measurand: "depth", value: 1.5, sd: 0.7, setAside: { reason: "for the test" } },
     ],
   });
 }

@@ -285,14 +285,17 @@ class Campaign:
         if not plain or measurement["value"] is None or measurement["plus"] is not None:
             raise NotCovered(f"the form of measurement {measurement['id']}")
         unit = self.observables[part["observable"]]["unit"]
-        if measurement["unit"] not in (None, unit):
+        factor = factor_between(measurement["unit"] or unit, unit)
+        if factor is None:
             raise NotCovered(f"the unit of measurement {measurement['id']}")
         if measurement["id"] in self.correlated:
             raise NotCovered(f"the correlation of measurement {measurement['id']}")
-        value, sd = measurement["value"], measurement["sd"]
+        value, sd = measurement["value"] * factor, measurement["sd"]
         if scale == "log10":
-            sd = measurement["sdDex"] or sd / (value * LN10)
+            sd = measurement["sdDex"] or sd * factor / (value * LN10)
             value = math.log10(value)
+        else:
+            sd *= factor
         loads = {}
         for shared in measurement["shared"]:
             error = self.errors[shared["error"]]
@@ -384,6 +387,29 @@ class Campaign:
             row.flat = (name, low, high)
         else:
             raise NotCovered(f"the {reference['family']} reference of {key}")
+
+
+PREFIXES = {"n": -9, "u": -6, "µ": -6, "m": -3, "c": -2, "k": 3, "M": 6, "G": 9, "T": 12}
+PREFIXED = "S|V|A|W|J|Pa|Hz|K|m|g|s|N|eV|Jy|Bq|rad|pc"
+
+
+def factor_between(unit, base):
+    """The size of one unit in the other, where only their first prefixes differ; else None."""
+    if unit == base:
+        return 1.0
+    form = re.compile(f"([numµckMGT]?)({PREFIXED})((?:[^A-Za-z^0-9].*)?)")
+    # A unit is read without a prefix where it can be: "m" is a metre, "Pa" a pascal.
+    parts = []
+    for text in (unit, base):
+        plain = re.fullmatch(f"()({PREFIXED})((?:[^A-Za-z^0-9].*)?)", text or "")
+        match = plain or form.fullmatch(text or "")
+        if match is None:
+            return None
+        parts.append(match.groups())
+    (prefix, symbol, rest), (prefix_of_base, *same) = parts
+    if [symbol, rest] != same:
+        return None
+    return 10.0 ** (PREFIXES.get(prefix, 0) - PREFIXES.get(prefix_of_base, 0))
 
 
 def dates(*texts):

@@ -22,7 +22,7 @@ export class OneByte {
       const report: VerifyReport = verify(changed);
       return { field, fate: report.ok ? "missed" : "found" };
     }
-    // The same files by name and byte, and a field that says nothing of them.
+    // The same files by name and byte; and a field that could be changed without changing them.
     return { field, fate: WITHOUT_CONTENT.has(field) ? "harmless" : "missed" };
   }
 

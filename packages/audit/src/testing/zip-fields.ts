@@ -67,7 +67,8 @@ export function fieldsOf(archive: Uint8Array): string[] {
 /**
  * The only bytes that may change unnoticed. Each says something about a file that is not the file:
  * when it was packed and by what, how hard the packer tried, what it would like its permissions to be.
- * The last byte of a packed stream ends in up to seven bits that no decoder reads.
+ * A packed stream has other packings of the same bytes (of a run of dashes, a copy from one or from two
+ * back), and its last byte ends in up to seven bits that no decoder reads.
  */
 export const WITHOUT_CONTENT = new Set([
   "header: version needed",
@@ -81,5 +82,6 @@ export const WITHOUT_CONTENT = new Set([
   "directory: disk",
   "directory: internal attributes",
   "directory: external attributes",
+  "content",
   "content: last byte",
 ]);
