@@ -51,6 +51,19 @@ export function plainDenseEvidence(document: CampaignDocument, hypothesis: numbe
   );
 }
 
+/** One Cholesky of an N x N matrix: that of a smooth process with noise, at N places. */
+export function choleskyMs(n: number): number {
+  const factor = new Float64Array(n * n);
+  for (let i = 0; i < n; i += 1) {
+    for (let j = 0; j <= i; j += 1) {
+      factor[i * n + j] = 0.01 * Math.exp(-Math.abs(i - j) / (0.1 * n)) + (i === j ? 0.01 : 0);
+    }
+  }
+  const start = performance.now();
+  logDensity(factor, new Float64Array(n));
+  return performance.now() - start;
+}
+
 function logDensity(factor: Float64Array, z: Float64Array): number {
   const n = z.length;
   let ln = (-n * Math.log(2 * Math.PI)) / 2;
