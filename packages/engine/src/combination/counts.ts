@@ -64,6 +64,11 @@ export function countedRate(
   const gamma = gammaFromMoments(mean, sd);
   if (background === 0) return conjugate(gamma, { ln, counted, exposure });
   for (const rate of [mean / 8, mean / 2, mean, mean + sd, mean + 4 * sd]) breaks.push(rate);
+  // Where the prior draws the counts' own peak far away.
+  const known = exposure + 1 / gamma.scale;
+  const drawn = Math.max(gamma.shape + counted - background, 0) / known;
+  const width = Math.sqrt(gamma.shape + counted) / known;
+  for (const k of [0, 1, 2, 4, 8, 16, 32]) breaks.push(drawn - k * width, drawn + k * width);
   return underGamma(gamma, { ln, breaks });
 }
 
