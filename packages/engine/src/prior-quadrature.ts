@@ -1,15 +1,15 @@
 import type { Prior } from "@weighhouse/campaign/document";
 import { legendreRule } from "@weighhouse/numerics/legendre-rule";
 import { logNormalPdf, normalInterval } from "@weighhouse/numerics/normal";
-import type { Expectation, HypothesisFrame } from "./frame";
+import type { HypothesisFrame } from "./frame";
 import { middleOf } from "./prior-points";
 
 const RULE = legendreRule(20);
 /** Beyond so many sd a normal has less than 1e-18. */
 const REACH = 9;
-/** Panels along the coordinate, where there is one parameter and where there are two. */
-const ALONE = 64;
-const OF_TWO = 3;
+/** Along the coordinate, where there is one parameter and where there are two. */
+const ALONE: Fineness = { panels: 64, least: 1e-9, ratio: 4 };
+const OF_TWO: Fineness = { panels: 3, least: 1e-9, ratio: 24 };
 
 /** A prior along a coordinate of bounded range. */
 interface Axis {
@@ -26,38 +26,67 @@ interface Axis {
 
 /**
  * Points of one or two parameters' priors with the weights of composite 20-point Gauss-Legendre
- * rules: what is smooth over the priors is averaged to 1e-9. With one parameter the panels end where
- * the expression's values do.
+ * rules: what is smooth over the priors is averaged to 1e-9, or with two parameters to 1e-7. Panels
+ * end where the expression's values do.
  *
  * The slots are one array, filled anew for each point.
+ *
+ * @param scored the expression in scoring space, not finite where it has no value
+ * @param finer how many times as many panels
  */
 export function* quadraturePoints(
   hypothesis: Pick<HypothesisFrame, "parameters" | "ensemble">,
-  expectation: Expectation,
-  free: readonly number[],
-): Generator<{ slots: Float64Array; weight: number }> {
+  scored: (slots: Float64Array) => number,
+  { free, finer }: { free: readonly number[]; finer: number },
+): Generator<QuadraturePoint> {
   const slots = middleOf(hypothesis);
   const [first, second] = free.map((slot) => axisOf(slot, hypothesis.parameters[slot]!.prior));
   if (first === undefined) return;
-  const has = (c: number) => {
-    slots[first.slot] = first.value(c);
-    return Number.isFinite(expectation.evaluate(slots));
+  const has = (axis: Axis) => (c: number) => {
+    slots[axis.slot] = axis.value(c);
+    return Number.isFinite(scored(slots));
   };
-  const edges = evenEdges(first, second === undefined ? ALONE : OF_TWO);
-  if (second === undefined) {
-    const ends = [first.lower, first.upper, ...addEnds(edges, has)];
-    if (first.bounded || ends.length > 2) addGraded(edges, ends);
-  }
-  for (const one of pointsBetween(edges, first)) {
+  const fineness = second === undefined ? ALONE : OF_TWO;
+  const panels = { ...fineness, panels: fineness.panels * finer };
+  let fresh = true;
+  for (const one of pointsBetween(panelsOf(first, has(first), panels), first)) {
     slots[first.slot] = first.value(one.c);
-    if (second === undefined) yield { slots, weight: one.weight };
-    else {
-      for (const other of pointsBetween(evenEdges(second, OF_TWO), second)) {
-        slots[second.slot] = second.value(other.c);
-        yield { slots, weight: one.weight * other.weight };
-      }
+    if (second === undefined) {
+      yield { slots, weight: one.weight, fresh };
+      fresh = false;
+      continue;
     }
+    fresh = true;
+    for (const other of pointsBetween(panelsOf(second, has(second), panels), second)) {
+      slots[second.slot] = second.value(other.c);
+      yield { slots, weight: one.weight * other.weight, fresh };
+      fresh = false;
+    }
+    slots[second.slot] = second.value((second.lower + second.upper) / 2);
   }
+}
+
+export interface QuadraturePoint {
+  slots: Float64Array;
+  weight: number;
+  /** It doesn't lie beside the point before it. */
+  fresh: boolean;
+}
+
+/** Panels and how fine they get at ends of what has a value. */
+interface Fineness {
+  panels: number;
+  /** Of the panels' width, the narrowest beside such an end, and how much narrower each next one is. */
+  least: number;
+  ratio: number;
+}
+
+function panelsOf(axis: Axis, has: (c: number) => boolean, fineness: Fineness): number[] {
+  const edges = evenEdges(axis, fineness.panels);
+  const ends = addEnds(edges, has);
+  if (axis.bounded) ends.push(...[axis.lower, axis.upper].filter((end) => !has(end)));
+  addGraded(edges, ends, fineness);
+  return edges;
 }
 
 /** Of an expression of one parameter: looked at in so many stretches, in each of which it only rises or falls. */
@@ -144,12 +173,18 @@ function addEnds(edges: number[], has: (c: number) => boolean): number[] {
   return found;
 }
 
-/** Steps that halve towards where values end: a logarithm or a root may be steep there. */
-function addGraded(edges: number[], ends: readonly number[]): void {
+/** Ever smaller steps towards where values end: a logarithm or a root may be steep there. */
+function addGraded(
+  edges: number[],
+  ends: readonly number[],
+  { panels, least, ratio }: Fineness,
+): void {
   const [lower, upper] = [edges[0]!, edges.at(-1)!];
-  const width = (upper - lower) / ALONE;
+  const width = (upper - lower) / panels;
   for (const end of ends) {
-    for (let step = width / 2; step > 1e-9 * width; step /= 4) edges.push(end - step, end + step);
+    for (let step = width / 2; step > least * width; step /= ratio) {
+      edges.push(end - step, end + step);
+    }
   }
   const inside = edges.filter((edge) => edge >= lower && edge <= upper).sort((a, b) => a - b);
   edges.splice(0, edges.length, ...inside);

@@ -185,6 +185,30 @@ describe("what hangs on parameters or an ensemble is looked at beforehand", () =
     expect(row.tension).toBeCloseTo(-mean / Math.hypot(sd, 1e-3), 6);
   });
 
+  test("two parameters of which one has a value for a part of its prior only", () => {
+    const parameters = [
+      { key: "p", prior: { family: "halfnormal", sd: 1 } },
+      normalPrior("q", 0, 0.25),
+    ];
+    const tolerance = { family: "normal", sd: 0.05 };
+    const prediction = { measurand: "y", expected: "10 ^ q * (p - 1)", tolerance };
+    const row = rowOf(prediction, [{ value: 1, sdDex: 0.1 }], { parameters });
+    // q and the tolerance are one normal in dex; p - 1 = e^t over t, p a half-normal above 1.
+    const sd = Math.hypot(0.25, 0.05);
+    const below = (x: number) => {
+      let [sum, whole] = [0, 0];
+      for (let t = -25; t < 2.2; t += 1e-3) {
+        const p = 1 + Math.exp(t);
+        const mass = Math.exp(-(p * p) / 2 + t);
+        whole += mass;
+        sum += mass * normalCdf((Math.log10(x) - t / Math.LN10) / sd);
+      }
+      return sum / whole;
+    };
+    expect(below(row.lower!)).toBeCloseTo(normalCdf(-2), 6);
+    expect(below(row.upper!)).toBeCloseTo(normalCdf(2), 6);
+  });
+
   test("exactly a uniform one: its own central interval", () => {
     const parameters = [{ key: "p", prior: { family: "uniform", lower: 0, upper: 10 } }];
     const row = rowOf({ measurand: "x", expected: "p" }, value(4), { parameters });
