@@ -66,7 +66,9 @@ function logConvolution(factor: Factor, sd: number, mu: number): number {
     const [from, to] = [sorted[i - 1]!, sorted[i]!];
     if (to > from && !isNothing(f, from, to)) sum += gaussLegendre(f, from, to);
   }
-  return height + Math.log(sum) - LN_SQRT_2PI;
+  const ln = height + Math.log(sum) - LN_SQRT_2PI;
+  // Where the factor falls off faster than numbers can tell, there is nothing.
+  return ln < Infinity ? ln : -Infinity;
 }
 
 /** In order, between the ends, those left out that lie next to the one before. */

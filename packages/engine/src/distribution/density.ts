@@ -57,8 +57,9 @@ export function densityOf(ln: (x: number) => number, range: DensityRange): Densi
     masses[i] = gaussLegendre(f, edges[i]!, edges[i + 1]!);
     total += masses[i]!;
   }
-  if (!(total > 0)) return null;
+  if (!(total > 0 && total < Infinity)) return null;
   const { mean, variance } = moments(f, edges, total);
+  if (!(Number.isFinite(mean) && variance > 0 && variance < Infinity)) return null;
   const below = new Float64Array(panels + 1);
   const above = new Float64Array(panels + 1);
   for (let i = 0; i < panels; i += 1) below[i + 1] = below[i]! + masses[i]! / total;
