@@ -13,11 +13,11 @@ export function transactionsOf(document: CampaignDocument, perPosting = 100): Po
   const measurands = document.measurands.map(
     ({ closed: _closed, firstPostedAt: _posted, firstObservedAt: _observed, ...one }) => one,
   );
-  const hypotheses = document.hypotheses.map(({ registeredAt: _, predictions, ...one }) => ({
+  const hypotheses = document.hypotheses.map(({ registeredAt: _filed, predictions, ...one }) => ({
     ...one,
     predictions: predictions.map(({ registeredAt: _at, ...prediction }) => prediction),
   }));
-  const measurements = document.measurements.map(({ postedAt: _, ...one }) => one);
+  const measurements = document.measurements.map(({ postedAt: _posted, ...one }) => one);
   return [
     [
       { kind: "campaign.opened", payload: opened },

@@ -38,7 +38,7 @@ const CENTRAL: Field[] = [
 /** What each byte of an archive is, as written by `packFiles`: no descriptors, extras, comments. */
 export function fieldsOf(archive: Uint8Array): string[] {
   const view = new DataView(archive.buffer, archive.byteOffset, archive.byteLength);
-  const names = new Array<string>(archive.length).fill("end of the directory");
+  const names = Array.from({ length: archive.length }, () => "end of the directory");
   const name = (from: number, bytes: number, what: string) => {
     for (let at = from; at < from + bytes; at += 1) names[at] = what;
   };

@@ -1,5 +1,5 @@
 /**
- * Times and sizes of large archives, by hand: `npm run measure-large --workspace packages/audit`.
+ * Times and sizes of large archives, by hand: `npm run large-archive --workspace test`.
  *
  * On a machine of two cores that others kept busy (load 19, so about eight times the time it takes
  * alone): 10,000 measurements in 104 transactions written in 17 s and verified in 19 s, 0.8 MB
@@ -9,10 +9,10 @@
 import { nodeHasher } from "@weighhouse/ledger/node-hasher";
 import { nodeVerifySignature } from "@weighhouse/ledger/node-keys";
 import { scoreCampaign } from "@weighhouse/engine/score";
-import { verifyArchive } from "../verify";
-import { writeArchive } from "../write";
-import { unpackFiles } from "../zip/read";
-import { largeInput } from "./large-campaign";
+import { verifyArchive } from "@weighhouse/audit/verify";
+import { writeArchive } from "@weighhouse/audit/write";
+import { unpackFiles } from "@weighhouse/audit/zip/read";
+import { largeInput } from "@weighhouse/audit/testing/large-campaign";
 
 const SIZES = [
   [10_000, 100],

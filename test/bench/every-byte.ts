@@ -1,12 +1,12 @@
 /**
  * Changes every byte of an archive in turn, two ways each, and says what became of it: run by hand,
- * `npm run every-byte --workspace packages/audit`.
+ * `npm run every-byte --workspace test`.
  *
  * Of 31,672 bytes, two changes each: 62,062 found; 1,276 harmless, in the fields of the container that
  * say nothing of a file (time, date, versions, attributes and disk, in its two headers); 6 harmless in
  * packed content that unpacks to the very same bytes. 2 minutes of CPU.
  */
-import { OneByte } from "./one-byte";
+import { OneByte } from "@weighhouse/audit/testing/one-byte";
 
 const WAYS = [0x01, 0xff];
 
