@@ -28,7 +28,8 @@ export function readMeasurement(
   const value: Reading = {
     id: measurement.id,
     measurand,
-    ...read,
+    told: read.told,
+    unknownUnit: read.unknownUnit,
     conditions: own.curve ? own.conditions.map((key) => conditions[key] ?? Number.NaN) : [],
     loadings,
     provisional: measurement.status === "provisional",

@@ -99,8 +99,8 @@ function applied(
   const worn = new Set<number>();
   const touched = new Set<number>();
   for (const { place, before, after, old, now } of pairs) {
-    forgetMeasurement(tally, frame, { measurement: before, reading: old, place });
-    if (after !== null) noteAt(tally, frame, { measurement: after, reading: now, place });
+    forgetMeasurement(tally, frame, before, old, place);
+    if (after !== null) noteAt(tally, frame, after, now, place);
     for (const reading of [old, now]) if (reading !== null) touched.add(reading.measurand);
     if (exchange(sums, frame, { old, now })) worn.add(old!.measurand);
   }

@@ -74,7 +74,7 @@ function take(
   measurement: Measurement,
   reading: Reading | null,
 ): void {
-  noteMeasurement(tally, frame, { measurement, reading });
+  noteMeasurement(tally, frame, measurement, reading);
   if (reading !== null) addReading(sums, reading, frame);
 }
 

@@ -64,8 +64,9 @@ export interface Sums {
 interface SumsIndex {
   draws: Map<string, number>;
   patterns: Map<string, number>;
-  /** Patterns by their loadings as a measurement gives them. */
+  /** Patterns by their loadings as a measurement gives them; those of one open draw by error and value. */
   given: Map<string, number>;
+  single: Map<number, Map<number, number>>;
   /** Per measurand, groups by pattern. */
   groups: Map<number, number>[];
 }
@@ -99,6 +100,7 @@ export function indexSums(parts: Omit<Sums, "index">): Sums {
       draws: new Map(draws.map((draw, i) => [drawKey(draw), i])),
       patterns: new Map(patterns.map((pattern, i) => [patternKey(pattern), i])),
       given: new Map(),
+      single: new Map(),
       groups: measurands.map(
         (measurand) => new Map(measurand.patterns.map((pattern, group) => [pattern, group])),
       ),
@@ -133,7 +135,7 @@ export function addReading(
     const group = groupOf(sums, reading);
     own.counts[group] = (own.counts[group] ?? 0) + 1;
     own.wear[group] ??= 0;
-    addValue(own, { ...told, group }, frame.measurands[reading.measurand]!);
+    addValue(own, told, group, frame.measurands[reading.measurand]!);
   } else {
     if (keptAt === null) own.kept.push(reading);
     else own.kept.splice(keptAt, 0, reading);
@@ -151,7 +153,8 @@ export function centreOf(told: Told): number {
 /** West's weighted form of Welford's update, once per noise class. */
 function addValue(
   own: MeasurandSums,
-  { y: value, variance: ownVariance, group }: { y: number; variance: number; group: number },
+  { y: value, variance: ownVariance }: { y: number; variance: number },
+  group: number,
   { scatterVariance, noises }: MeasurandFrame,
 ): void {
   const y = value - own.centre;
@@ -190,6 +193,25 @@ export function groupOf(sums: Sums, { measurand, loadings }: Reading): number {
 }
 
 function patternOf(sums: Sums, loadings: readonly Loading[]): number {
+  const [only, more] = loadings;
+  if (only === undefined || more !== undefined || only.batch !== null || only.relative) {
+    return patternNamed(sums, loadings);
+  }
+  const { single } = sums.index;
+  let byValue = single.get(only.error);
+  if (byValue === undefined) {
+    byValue = new Map();
+    single.set(only.error, byValue);
+  }
+  let place = byValue.get(only.value);
+  if (place === undefined) {
+    place = patternNamed(sums, loadings);
+    byValue.set(only.value, place);
+  }
+  return place;
+}
+
+function patternNamed(sums: Sums, loadings: readonly Loading[]): number {
   let given = "";
   for (const { error, batch, value, relative } of loadings) {
     given += `${error} ${value} ${relative ? "*" : ""} ${batch ?? ""};`;

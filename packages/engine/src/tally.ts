@@ -37,22 +37,24 @@ export function createTally(frame: Frame): Tally {
   };
 }
 
-export interface Noted {
-  measurement: Measurement;
-  /** Null for one that is set aside, or whose measurand is closed. */
-  reading: Reading | null;
-}
-
-export function noteMeasurement(tally: Tally, frame: Frame, noted: Noted): void {
+/** @param reading null for one that is set aside, or whose measurand is closed */
+export function noteMeasurement(
+  tally: Tally,
+  frame: Frame,
+  measurement: Measurement,
+  reading: Reading | null,
+): void {
   tally.size += 1;
-  noteAt(tally, frame, { ...noted, place: tally.size - 1 });
+  noteAt(tally, frame, measurement, reading, tally.size - 1);
 }
 
 /** Notes a measurement that takes a place which another has left. */
 export function noteAt(
   tally: Tally,
   frame: Frame,
-  { measurement, reading, place }: Noted & { place: number },
+  measurement: Measurement,
+  reading: Reading | null,
+  place: number,
 ): void {
   const measurand = frame.measurandIndex.get(measurement.measurand)!;
   noteDates(tally.dates[measurand]!, measurement);
@@ -84,7 +86,9 @@ export function noteAt(
 export function forgetMeasurement(
   tally: Tally,
   frame: Frame,
-  { measurement, reading, place }: Noted & { place: number },
+  measurement: Measurement,
+  reading: Reading | null,
+  place: number,
 ): void {
   const measurand = frame.measurandIndex.get(measurement.measurand)!;
   if (measurement.setAside !== null) tally.setAside -= 1;
