@@ -15,6 +15,8 @@ const COARSEST = 1e-6;
 /** Where most steps are done, one that leaves more than this of the error leads nowhere. */
 const CONVERGING = 0.3;
 const MOST_CALLS = 2_000_000;
+/** So many roundings of the log density itself are allowed for. */
+const ROUNDINGS = 16;
 /** Nodes of less than e^-40 of the mass are left out of the posterior's points. */
 const NEGLIGIBLE = 40;
 
@@ -119,9 +121,15 @@ function converged(
   for (;;) {
     const { top, value, error, worst } = totalOf(pieces);
     if (value === 0) return nothing();
-    if (error <= Math.min(relative, COARSEST) * value) {
+    // A log density of many digits before its point has few after it: no order gets below that.
+    const noise = ROUNDINGS * Number.EPSILON * Math.abs(top);
+    if (error <= Math.max(Math.min(relative, COARSEST), noise) * value) {
       const ln = top + Math.log(value);
-      return { ...posterior(pieces, ln), ln, error: error / value };
+      return {
+        ...posterior(pieces, ln),
+        ln,
+        error: Math.max(error / value, noise > relative ? noise : 0),
+      };
     }
     if (!improve(pieces[worst]!, orders)) return null;
   }
