@@ -10,6 +10,7 @@ const mayImport = {
   ledger: [],
   campaign: ["ledger", "numerics"],
   engine: ["campaign", "numerics"],
+  timestamps: [],
   tables: ["campaign"],
   figures: ["campaign"],
   audit: ["campaign", "engine", "ledger", "tables", "figures"],
@@ -18,7 +19,16 @@ const mayImport = {
   api: ["campaign", "desk", "store", "tables"],
 };
 
-const pure = ["numerics", "campaign", "engine", "ledger", "tables", "figures", "audit"];
+const pure = [
+  "numerics",
+  "campaign",
+  "engine",
+  "ledger",
+  "tables",
+  "figures",
+  "audit",
+  "timestamps",
+];
 
 module.exports = {
   forbidden: [

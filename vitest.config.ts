@@ -15,7 +15,7 @@ export default defineConfig({
         test: {
           name: "pure",
           include: [
-            "packages/{numerics,campaign,engine,ledger,tables,figures,audit}/**/*.test.ts",
+            "packages/{numerics,campaign,engine,ledger,tables,figures,audit,timestamps}/**/*.test.ts",
             "apps/{cli,web}/src/**/*.test.ts",
             "test/{reference,house}/**/*.test.ts",
           ],

@@ -4,11 +4,14 @@ import type { Store } from "@weighhouse/store/open-store";
 import { DATES_TASK, queueOverdue } from "@weighhouse/store/dates-queue";
 import { queueScoring, queueUnscored, SCORE_TASK } from "@weighhouse/store/scoring-queue";
 import { StoreError } from "@weighhouse/store/store-error";
+import { queueTimeStamps, TIME_STAMP_TASK } from "@weighhouse/store/time-stamps";
 import { workerLogger } from "@weighhouse/store/worker-logger";
 import { run } from "graphile-worker";
 import type { WorkerEvents } from "graphile-worker";
 import { datesTask } from "./dates-task";
 import { watchScorers } from "./living-scorers";
+import { timeStampTask } from "./time-stamp-task";
+import type { TimeStampAuthority } from "./time-stamp-task";
 import { scoreCampaign } from "./score-campaign";
 
 export type RunningScorer = { stop(): Promise<void>; ended: Promise<void> };
@@ -18,11 +21,13 @@ export type ScorerOptions = {
   concurrency?: number;
   /** How often lost scorers are looked for; unscored and overdue campaigns are every sixth time. */
   everyMs?: number;
+  /** Stamps heads; a scorer without one leaves that to others. */
+  authority?: TimeStampAuthority | null;
 };
 
 /** Starts a scorer on a store. Any number of them, on any machines, share the campaigns. */
 export async function runScorer(store: Store, options: ScorerOptions = {}): Promise<RunningScorer> {
-  const { concurrency = 1, everyMs = 10_000 } = options;
+  const { concurrency = 1, everyMs = 10_000, authority = null } = options;
   const watch = await watchScorers(store, { everyMs });
   let stopping = false;
   const events = new EventEmitter() as WorkerEvents;
@@ -42,11 +47,14 @@ export async function runScorer(store: Store, options: ScorerOptions = {}): Prom
       [SCORE_TASK]: (payload) => scoreTask(store, payload, () => stopping),
       // What dates ask for is appended, so only who holds the signing key takes such jobs.
       ...(store.signer === null ? {} : { [DATES_TASK]: (payload) => datesTask(store, payload) }),
+      ...(authority === null
+        ? {}
+        : { [TIME_STAMP_TASK]: (payload) => timeStampTask(store, authority, payload) }),
     },
   });
-  await lookForLost(store);
+  await lookForLost(store, authority !== null);
   const timer = setInterval(() => {
-    lookForLost(store).catch((error: unknown) =>
+    lookForLost(store, authority !== null).catch((error: unknown) =>
       store.log.warn({ error }, "could not look for unscored and overdue campaigns"),
     );
   }, 6 * everyMs);
@@ -61,9 +69,10 @@ export async function runScorer(store: Store, options: ScorerOptions = {}): Prom
   };
 }
 
-async function lookForLost(store: Store): Promise<void> {
+async function lookForLost(store: Store, stamps: boolean): Promise<void> {
   await queueUnscored(store, ENGINE_VERSION);
   if (store.signer !== null) await queueOverdue(store);
+  if (stamps) await queueTimeStamps(store);
 }
 
 async function scoreTask(store: Store, payload: unknown, stopping: () => boolean): Promise<void> {

@@ -1,4 +1,5 @@
 /** The scorer's process: takes scoring jobs until SIGTERM or SIGINT, then ends cleanly. */
+import { readFileSync } from "node:fs";
 import { KeptHeads } from "@weighhouse/store/kept-heads";
 import { openKeys, openSealKey } from "@weighhouse/store/keys";
 import { isWriteAfterClose } from "@weighhouse/store/lost-connection";
@@ -6,6 +7,7 @@ import { openStore } from "@weighhouse/store/open-store";
 import { readSettings } from "@weighhouse/store/settings";
 import type { Settings } from "@weighhouse/store/settings";
 import { StoreError } from "@weighhouse/store/store-error";
+import { certificatesOf } from "@weighhouse/timestamps/verify-token";
 import { pino } from "pino";
 import { runScorer } from "./run-scorer";
 
@@ -28,7 +30,7 @@ async function main(): Promise<number> {
     log,
     connections: 3,
   });
-  const scorer = await runScorer(store);
+  const scorer = await runScorer(store, { authority: authorityOf(settings) });
   log.info({}, "scoring");
   await Promise.race([scorer.ended, signalled()]);
   await scorer.stop();
@@ -45,6 +47,23 @@ async function keysOf({ WEIGHHOUSE_KEYS: folder, WEIGHHOUSE_ORIGIN: origin, PORT
     sealKey: openSealKey({ folder, make: false }),
     keptHeads: new KeptHeads(folder),
   };
+}
+
+/** Read now: a wrong file is found at the start, not at the first time-stamp. */
+function authorityOf({ WEIGHHOUSE_TSA_URL: url, WEIGHHOUSE_TSA_CA: file }: Settings) {
+  if (url === undefined) return null;
+  if (file === undefined) return { url, trusted: undefined };
+  try {
+    const trusted = readFileSync(file, "utf8");
+    certificatesOf(trusted);
+    return { url, trusted };
+  } catch (cause) {
+    throw new StoreError(
+      "bad-settings",
+      `WEIGHHOUSE_TSA_CA: found no certificates in ${file}; allowed is a file of PEM certificates`,
+      { cause },
+    );
+  }
 }
 
 async function signalled(): Promise<void> {

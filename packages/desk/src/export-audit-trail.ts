@@ -5,6 +5,7 @@ import { nodeHasher } from "@weighhouse/ledger/node-hasher";
 import { readDocument } from "@weighhouse/store/read-document";
 import { readHeads, readSigningKeys, streamEntries } from "@weighhouse/store/read-ledger";
 import type { StoredHead } from "@weighhouse/store/read-ledger";
+import { readTimeStamps } from "@weighhouse/store/time-stamps";
 import { enter } from "./access";
 import type { Actor, Desk } from "./desk";
 import { DeskError } from "./desk-error";
@@ -45,6 +46,7 @@ export async function exportAuditTrail(
   const bytes = writeArchive({
     ...(await wholeLedger(desk, key, size)),
     heads: heads.map(({ note }) => note),
+    timeStamps: await readTimeStamps(desk.store, { campaign: key, size }),
     keys: await readSigningKeys(desk.store),
     document,
     standings,

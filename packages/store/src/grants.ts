@@ -13,6 +13,7 @@ export const grants: Record<string, string> = {
   tips: "select, insert, update",
   parts: change,
   measurements: change,
+  time_stamps: append,
   held_seals: "select, insert, delete",
   standings: change,
   timeline_steps: change,

@@ -21,6 +21,13 @@ export const settingsSchema = z.object({
       "an address without path is allowed, such as http://localhost:3000",
     )
     .optional(),
+  /** A time-stamp authority (RFC 3161 over HTTP); without, heads aren't time-stamped. */
+  WEIGHHOUSE_TSA_URL: z
+    .string()
+    .regex(/^https?:\/\/[^/\s]+(\/\S*)?$/, "an http or https address is allowed")
+    .optional(),
+  /** File of PEM certificates to one of which the authority's must lead. */
+  WEIGHHOUSE_TSA_CA: z.string().min(1).optional(),
   /** Signs sessions; the launcher with the embedded database makes one by itself. */
   WEIGHHOUSE_SECRET: z.string().min(32, "32 characters or more are allowed").optional(),
   PORT: z.coerce

@@ -1,10 +1,11 @@
+import { stampedHeads } from "@weighhouse/audit/stamped-heads";
 import { verifyArchive } from "@weighhouse/audit/verify";
 import { scoreCampaign } from "@weighhouse/engine/score";
 import { nodeHasher } from "@weighhouse/ledger/node-hasher";
 import { defineCommand } from "citty";
 import { descriptions } from "../descriptions";
 import { readBytes } from "../document-file";
-import { Refusal } from "../refusal";
+import { Refusal, wrongUsage } from "../refusal";
 import { harmless, terminalOf, wrap, type Terminal } from "../terminal";
 
 type VerifyReport = ReturnType<typeof verifyArchive>;
@@ -24,11 +25,19 @@ export const verify = defineCommand({
       description: "File with a signed tree head that you kept",
       valueHint: "NOTE",
     },
+    "tsa-ca": {
+      type: "string",
+      description: "File with certificates (PEM) of time-stamp authorities that you trust",
+      valueHint: "FILE",
+    },
     json: { type: "boolean", description: "Write the report as JSON" },
   },
   async run({ args }) {
     const archive = await readBytes(args.archive);
+    const authorities = args["tsa-ca"];
+    const trusted = authorities === undefined ? undefined : await readText(authorities);
     const report = verifyArchive(archive, {
+      ...(await tokenVerifier(archive, trusted)),
       hasher: nodeHasher,
       score: scoreCampaign,
       trustedKeys: args.key === undefined ? [] : linesOf(await readText(args.key)),
@@ -40,6 +49,20 @@ export const verify = defineCommand({
     if (!report.ok) throw new Refusal(1, failures(report));
   },
 });
+
+/** What verifies certificates is loaded only where there are any. */
+async function tokenVerifier(archive: Uint8Array, trusted: string | undefined) {
+  const stamped = stampedHeads(archive);
+  if (stamped.length === 0 && trusted === undefined) return {};
+  const { certificatesOf } = await import("@weighhouse/timestamps/verify-token");
+  const { verifyTokens } = await import("@weighhouse/timestamps/verify-tokens");
+  try {
+    if (trusted !== undefined) certificatesOf(trusted);
+  } catch (error) {
+    throw wrongUsage(`--tsa-ca: ${error instanceof Error ? error.message : String(error)}`);
+  }
+  return { verifyToken: await verifyTokens(stamped, { sha256: nodeHasher, trusted }) };
+}
 
 function failures(report: VerifyReport): string[] {
   return report.lines

@@ -6,3 +6,4 @@ export { memberships } from "./memberships";
 export { measurements, parts } from "./projections";
 export { heldSeals } from "./seals";
 export { scorerStates, standings, timelinePoints, timelineSteps } from "./standings";
+export { timeStamps } from "./time-stamps";
