@@ -1,7 +1,7 @@
 import { createSystem, type TriangularSystem } from "@weighhouse/numerics/triangular-system";
 import type { Layout } from "./layout";
 import type { PivotRow, PriorRows } from "./prior-rows";
-import { flushRows, nextRow, rowBlock, ROWS_APART, type RowBlock } from "./row-block";
+import { flushRows, nextRow, rowBlock, type RowBlock } from "./row-block";
 import type { WhiteRows } from "./whitening";
 
 /**
@@ -28,10 +28,11 @@ export interface Eliminated {
  */
 export function eliminate(layout: Layout, white: WhiteRows, prior: PriorRows): Eliminated {
   const { inner, size } = layout;
-  const tail = rowBlock(createSystem(size - inner));
+  const byFirst = rowsByFirst(white, inner);
+  const expected = size === inner ? 1 : byFirst.rest.length + 2 * size;
+  const tail = rowBlock(createSystem(size - inner), expected);
   const waiting: PivotRow[][] = Array.from({ length: inner }, () => []);
   for (const row of prior.rows) passOn(row, { inner, tail, waiting });
-  const byFirst = rowsByFirst(white, inner);
   passTail(white, byFirst.rest, { inner, tail });
   const pivots: PivotRow[] = [];
   let logPivots = 0;
@@ -62,11 +63,11 @@ function passOn(row: PivotRow, { inner, tail, waiting }: Target): void {
     return;
   }
   const at = nextRow(tail);
-  const { data, system } = tail;
+  const { data, system, apart } = tail;
   for (let e = 0; e < row.position.length; e += 1) {
-    data[at + ROWS_APART * (row.position[e]! - inner)]! += row.value[e]!;
+    data[at + apart * (row.position[e]! - inner)]! += row.value[e]!;
   }
-  data[at + ROWS_APART * system.size] = row.value[row.position.length]!;
+  data[at + apart * system.size] = row.value[row.position.length]!;
 }
 
 /** White rows by the position that they begin with; those beyond `inner`, or of none, in `rest`. */
@@ -93,7 +94,7 @@ function passTail(
   rows: Int32Array,
   { inner, tail }: { inner: number; tail: RowBlock },
 ): void {
-  const { data, system } = tail;
+  const { data, system, apart } = tail;
   for (let n = 0; n < rows.length; n += 1) {
     const row = rows[n]!;
     const begin = start[row]!;
@@ -104,9 +105,9 @@ function passTail(
     }
     const at = nextRow(tail);
     for (let e = begin; e < end; e += 1) {
-      data[at + ROWS_APART * (position[e]! - inner)]! += value[e]!;
+      data[at + apart * (position[e]! - inner)]! += value[e]!;
     }
-    data[at + ROWS_APART * system.size] = right[row]!;
+    data[at + apart * system.size] = right[row]!;
   }
 }
 
@@ -127,22 +128,22 @@ function frontOf({
   const positions = unionOf({ white, rows, waiting, place });
   positions.forEach((p, c) => (place[p] = c));
   const size = positions.length;
-  const block = rowBlock(createSystem(size));
-  const { data } = block;
+  const block = rowBlock(createSystem(size), rows.length + waiting.length);
+  const { data, apart } = block;
   for (const row of waiting) {
     const at = nextRow(block);
     for (let e = 0; e < row.position.length; e += 1) {
-      data[at + ROWS_APART * place[row.position[e]!]!]! += row.value[e]!;
+      data[at + apart * place[row.position[e]!]!]! += row.value[e]!;
     }
-    data[at + ROWS_APART * size] = row.value[row.position.length]!;
+    data[at + apart * size] = row.value[row.position.length]!;
   }
   for (let n = 0; n < rows.length; n += 1) {
     const row = rows[n]!;
     const at = nextRow(block);
     for (let e = start[row]!; e < start[row + 1]!; e += 1) {
-      data[at + ROWS_APART * place[position[e]!]!]! += value[e]!;
+      data[at + apart * place[position[e]!]!]! += value[e]!;
     }
-    data[at + ROWS_APART * size] = right[row]!;
+    data[at + apart * size] = right[row]!;
   }
   flushRows(block);
   for (const p of positions) place[p] = -1;

@@ -15,6 +15,21 @@ export interface Integral {
   cdf: ((axis: number, c: number) => number) | null;
 }
 
+export interface IntegralOptions {
+  /** Coordinates; those where the density is 0 lead nowhere. */
+  starts: readonly Float64Array[];
+  seed: number;
+  /** How many kinks the density may have that no `breaks` tell of. */
+  kinks?: number;
+  /** Whether its kinks lie across the axes. */
+  rough?: boolean;
+}
+
+/** Thousands of small kinks can't each be found, nor do they have to be. */
+function relativeOnLine(kinks: number, rough: boolean): number {
+  return rough ? 1e-9 : Math.min(Math.max(1e-11, kinks * 1e-13), 1e-9);
+}
+
 /** So many widths about every peak have to be well inside of an axis. */
 const MARGIN = 9;
 /**
@@ -31,13 +46,11 @@ const FEW = 3;
  * Peaks are climbed to from the starts and handed to the integrator. Infinite axes are laid onto
  * (0, 1) by a normal distribution wide enough for the peaks, whatever their priors.
  *
- * @param starts coordinates; those where the density is 0 lead nowhere
- * @param kinks how many the density may have that no `breaks` tell of
  */
 export function integrate(
   lnDensity: (c: Float64Array) => number,
   coordinates: readonly Coordinate[],
-  { starts, seed, kinks = 0 }: { starts: readonly Float64Array[]; seed: number; kinks?: number },
+  { starts, seed, kinks = 0, rough = false }: IntegralOptions,
 ): Integral {
   const size = coordinates.length;
   const modes = peaksOf(lnDensity, coordinates, starts);
@@ -65,8 +78,8 @@ export function integrate(
     seed,
     modes: cubeModes,
     breaks,
-    // Thousands of small kinks can't each be found, nor do they have to be.
-    ...(size === 1 ? { relative: Math.min(Math.max(1e-11, kinks * 1e-13), 1e-9) } : {}),
+    ...(size === 1 ? { relative: relativeOnLine(kinks, rough) } : {}),
+    ...(size > 1 && rough ? { relative: 1e-6 } : {}),
   });
   const { cdf } = found;
   return {

@@ -31,7 +31,10 @@ export function integralOf(
     let kinks = 0;
     for (const { breaks } of bench.layout.factors) kinks += breaks.length;
     const starts = startsOf(bench, integrand);
-    integral = integrate((c) => integrand.lnWithError(c).ln, coordinates, { starts, seed, kinks });
+    // A variance taken at the best fit has kinks wherever it meets its clamps.
+    const rough = bench.layout.moving;
+    const options = { starts, seed, kinks, rough };
+    integral = integrate((c) => integrand.lnWithError(c).ln, coordinates, options);
   }
   const singular = integrand.singular();
   return singular === null ? integral : { refusal: { kind: "singular", rows: singular } };
