@@ -9,6 +9,7 @@ import { readConsistency } from "@weighhouse/desk/read-consistency";
 import { readEntry } from "@weighhouse/desk/read-entry";
 import { readLedgerLines } from "@weighhouse/desk/read-ledger-lines";
 import { readStandings } from "@weighhouse/desk/read-standings";
+import { readTimeStamps } from "@weighhouse/desk/read-time-stamps";
 import { readTreeHead } from "@weighhouse/desk/read-tree-head";
 import { sealMeasurement } from "@weighhouse/desk/seal-measurement";
 import { sealPrediction } from "@weighhouse/desk/seal-prediction";
@@ -76,6 +77,13 @@ export const ledgerConsistency: Answer = async ({ desk, actor, request, key, num
   const { from = 1, to } = numbers;
   const proved = await readConsistency(desk, actor, { key, from, to });
   return json(request, proved, `consistency-${proved.from}-${proved.to}`);
+};
+
+export const ledgerTimeStamps: Answer = async ({ desk, actor, request, key }) => {
+  const stamps = await readTimeStamps(desk, actor, { key });
+  const { stamped, missing } = stamps;
+  const tag = [stamped.length, ...missing.map(({ size }) => size)].join("-");
+  return json(request, stamps, `time-stamps-${tag}`);
 };
 
 /** Files a kept seal: a prediction's where the body names a hypothesis, else a measurement's. */

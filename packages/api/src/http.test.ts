@@ -39,6 +39,7 @@ const paths = [
   "ledger/entries",
   "ledger/entries/0",
   "ledger/consistency?from=3",
+  "ledger/time-stamps",
 ];
 
 describe("a public campaign", () => {
@@ -65,6 +66,11 @@ describe("a public campaign", () => {
     const lines = (await response.text()).split("\n");
     expect(lines[1]).toMatch(/^\d+$/);
     expect(lines[4]).toMatch(/^— house\.example /);
+  });
+
+  it("names the heads that no authority has time-stamped", async () => {
+    const stamps = await (await get(`${open.key}/ledger/time-stamps`)).json();
+    expect(stamps).toEqual({ stamped: [], missing: [{ size: 10, because: "daily" }] });
   });
 
   it("gives its entries a line each, with a link to the rest", async () => {

@@ -25,6 +25,7 @@ const routes: Route[] = [
     takes: ["from", "to"],
     answer: answers.ledgerConsistency,
   },
+  { method: "GET", path: /^ledger\/time-stamps$/, takes: [], answer: answers.ledgerTimeStamps },
   { method: "POST", path: /^seals$/, takes: [], answer: answers.sealedDigest },
   { method: "POST", path: /^seals\/openings$/, takes: [], answer: answers.openedSeal },
 ];
