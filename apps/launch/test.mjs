@@ -6,6 +6,7 @@ import { chmodSync, existsSync, mkdtempSync, readFileSync, rmSync } from "node:f
 import { tmpdir } from "node:os";
 import path from "node:path";
 import { bin, build, install, requireNode, root, run, say } from "./scripts/steps.mjs";
+import { findOpenssl } from "./scripts/openssl.mjs";
 import { findChromium, installChromium } from "./scripts/chromium.mjs";
 
 const started = Date.now();
@@ -27,6 +28,7 @@ const step = async (name, work) => {
 
 await step("checks", () => run(process.execPath, ["apps/launch/check.mjs"]));
 await step("build", async () => (await build(), 0));
+await step("openssl for the tests' time-stamp authority", async () => findOpenssl());
 await step("unit, property and database tests", () =>
   run(bin("vitest"), [
     "run",
