@@ -31,8 +31,7 @@ export function boundedCoordinate(
 
 /** How an axis is laid onto (0, 1). */
 export interface Axis {
-  toCoordinate(u: number): number;
+  /** Writes c to into[j]. @returns ln dc/du */
+  place(u: number, into: Float64Array, j: number): number;
   toUnit(c: number): number;
-  /** ln dc/du. */
-  lnJacobian(u: number): number;
 }

@@ -1,5 +1,4 @@
 import type { LogIntegral } from "@weighhouse/numerics/box";
-import { LN_SQRT_2PI } from "@weighhouse/numerics/normal";
 import { lnBoxes } from "./boxes";
 import { conditionalAt, conditionalBy, type Conditional } from "./conditional";
 import { boundedCoordinate, normalCoordinate, type Coordinate } from "./coordinates";
@@ -83,9 +82,7 @@ export function integrandOf(
     const one = outer.length > 0 ? near(c) : null;
     const part = one === null ? fixed : openPartOf(bench, one, shape);
     if (part === null) return NOTHING;
-    const at = c.subarray(outer.length);
-    for (let r = 0; r < rank; r += 1) ln -= (at[r]! * at[r]!) / 2 + LN_SQRT_2PI;
-    ln += lnOpen(bench, part, at);
+    ln += lnOpen(bench, part, { at: c, from: outer.length });
     return Number.isNaN(ln) ? NOTHING : { ln, error: 0 };
   };
   const breaks = fixed !== null && rank + flats === 1 ? kinksOf(bench, fixed) : [];

@@ -61,10 +61,7 @@ export function integrate(
   const map: CubeMap = {
     place: (u, c) => {
       let ln = 0;
-      for (let j = 0; j < size; j += 1) {
-        c[j] = axes[j]!.toCoordinate(u[j]!);
-        ln += axes[j]!.lnJacobian(u[j]!);
-      }
+      for (let j = 0; j < size; j += 1) ln += axes[j]!.place(u[j]!, c, j);
       return ln;
     },
   };
@@ -152,9 +149,11 @@ function axisOf({ lower, upper }: Coordinate, modes: readonly Mode[], j: number)
     const width = upper - lower;
     const ln = Math.log(width);
     return {
-      toCoordinate: (u) => lower + u * width,
+      place: (u, into, at) => {
+        into[at] = lower + u * width;
+        return ln;
+      },
       toUnit: (c) => (c - lower) / width,
-      lnJacobian: () => ln,
     };
   }
   const half = lower > -Infinity;
@@ -166,14 +165,16 @@ function axisOf({ lower, upper }: Coordinate, modes: readonly Mode[], j: number)
   }
   // The share of the normal that the bounds keep: all, or the upper half from 0 on.
   const lnScale = Math.log(spread) + LN_SQRT_2PI - (half ? Math.LN2 : 0);
-  const normal = (u: number) => truncatedNormalQuantile(half ? 0 : -Infinity, Infinity, u);
   return {
-    toCoordinate: (u) => origin + spread * normal(u),
+    place: (u, into, at) => {
+      const z = truncatedNormalQuantile(half ? 0 : -Infinity, Infinity, u);
+      into[at] = origin + spread * z;
+      return (z * z) / 2 + lnScale;
+    },
     toUnit: (c) => {
       const p = normalCdf((c - origin) / spread);
       return half ? 2 * p - 1 : p;
     },
-    lnJacobian: (u) => normal(u) ** 2 / 2 + lnScale,
   };
 }
 
@@ -186,9 +187,11 @@ function widthOf({ scale, centre }: Mode, j: number): number {
 function cubeMode({ centre, scale }: Mode, axes: readonly Axis[]): CubeMode {
   const size = centre.length;
   const units = Float64Array.from(axes, (axis, j) => axis.toUnit(centre[j]!));
+  const placed = new Float64Array(size);
   const shrunk = Float64Array.from(scale, (value, n) => {
     const i = Math.floor(n / size);
-    return value * Math.exp(-axes[i]!.lnJacobian(Math.min(Math.max(units[i]!, 1e-300), 1 - 1e-16)));
+    const u = Math.min(Math.max(units[i]!, 1e-300), 1 - 1e-16);
+    return value * Math.exp(-axes[i]!.place(u, placed, i));
   });
   return { centre: units, scale: shrunk };
 }

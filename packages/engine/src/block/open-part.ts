@@ -1,3 +1,4 @@
+import { LN_SQRT_2PI } from "@weighhouse/numerics/normal";
 import { logDiagonal } from "@weighhouse/numerics/triangular-system";
 import type { Conditional } from "./conditional";
 import type { Layout } from "./layout";
@@ -82,19 +83,26 @@ export function openPartOf(
   };
 }
 
-/** ln of the integrand at w and then f in `at`, without the normal density of w. */
-export function lnOpen({ layout }: Workbench, part: OpenPart, at: Float64Array): number {
+/** ln of the integrand at w and then f in `at` from `from` on. */
+export function lnOpen(
+  { layout }: Workbench,
+  part: OpenPart,
+  { at, from }: { at: Float64Array; from: number },
+): number {
   const { rank, flats, flatSystem, centre, normalLoadings, flatLoadings } = part;
+  const flatsFrom = from + rank;
   let ln = part.ln;
+  for (let r = from; r < flatsFrom; r += 1) ln -= (at[r]! * at[r]!) / 2 + LN_SQRT_2PI;
   for (let i = 0; i < flats; i += 1) {
     let residual = -flatSystem[i * (flats + 1) + flats]!;
-    for (let k = i; k < flats; k += 1) residual += flatSystem[i * (flats + 1) + k]! * at[rank + k]!;
+    for (let k = i; k < flats; k += 1)
+      residual += flatSystem[i * (flats + 1) + k]! * at[flatsFrom + k]!;
     ln -= (residual * residual) / 2;
   }
   for (let o = 0; o < centre.length; o += 1) {
     let mu = centre[o]!;
-    for (let r = 0; r < rank; r += 1) mu += normalLoadings[o * rank + r]! * at[r]!;
-    for (let f = 0; f < flats; f += 1) mu += flatLoadings[o * flats + f]! * at[rank + f]!;
+    for (let r = 0; r < rank; r += 1) mu += normalLoadings[o * rank + r]! * at[from + r]!;
+    for (let f = 0; f < flats; f += 1) mu += flatLoadings[o * flats + f]! * at[flatsFrom + f]!;
     ln += layout.factors[o]!.ln(mu);
   }
   return ln;

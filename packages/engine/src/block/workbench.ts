@@ -21,6 +21,8 @@ export interface Workbench {
   state: { residual: Float64Array; variance: Float64Array; columns: Float64Array[] };
   /** Where rows that aren't linear in mu are replaced by their tangents, by row. */
   bent: Map<number, BentState>;
+  /** Whether variances and loadings are those of a fit before. */
+  settled: boolean;
 }
 
 export function workbenchOf(
@@ -43,6 +45,7 @@ export function workbenchOf(
       columns: [...moving, ...atFit.map(columnOf)],
     },
     bent: new Map(),
+    settled: false,
   };
   return { ok: true, bench };
 }
