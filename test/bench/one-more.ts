@@ -62,7 +62,7 @@ function measured(source: Source, n: number) {
   evidencesOf(state);
   const rest = part(n, n + MANY);
   const added = medianMs(1, () => rest.forEach((one) => add(state, [one]))) / MANY;
-  const point = medianMs(9, () => evidencesOf(state));
+  const point = medianMs(25, () => evidencesOf(state));
   // The last ones go again, one at a time.
   const removed =
     medianMs(1, () => {
@@ -78,7 +78,8 @@ function measured(source: Source, n: number) {
 }
 
 function table(title: string, source: Source, sizes: readonly number[]): void {
-  measured(source, 1000);
+  // Compiled before anything is counted.
+  for (let warm = 0; warm < 4; warm += 1) measured(source, 1000);
   console.log(`\nOne measurement more and one fewer, ${title}; ratios to the first row`);
   console.log(
     "        N   add (us)  ratio  remove (us)  ratio  all evidences (ms)  ratio  whole again / one more",

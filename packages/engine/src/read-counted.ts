@@ -1,5 +1,6 @@
 import type { Measurement } from "@weighhouse/campaign/document";
 import type { Result } from "@weighhouse/campaign/problem";
+import type { EngineState } from "./engine-state";
 import type { Frame } from "./frame";
 import { readMeasurement } from "./read-measurement";
 import { isSummed, type Reading } from "./readings";
@@ -24,7 +25,21 @@ export function readCounted(
   return readMeasurement(frame, measurement, pointer);
 }
 
-/** A reading that is kept as it is and loads shared errors may need them integrated numerically. */
-export function mayAddUnknowns(frame: Frame, reading: Reading | null): boolean {
-  return reading !== null && reading.loadings.length > 0 && !isSummed(frame, reading);
+/**
+ * A reading that is kept as it is and loads shared errors may need them integrated numerically; one
+ * like the last of its measurand needs none that aren't there.
+ */
+export function mayAddUnknowns(
+  { frame, sums }: Pick<EngineState, "frame" | "sums">,
+  reading: Reading | null,
+): boolean {
+  if (reading === null || reading.loadings.length === 0 || isSummed(frame, reading)) return false;
+  const last = sums.measurands[reading.measurand]!.kept.at(-1);
+  return (
+    last === undefined ||
+    frame.correlated.has(reading.id) ||
+    reading.told.form !== "value" ||
+    last.told.form !== "value" ||
+    JSON.stringify(last.loadings) !== JSON.stringify(reading.loadings)
+  );
 }

@@ -45,7 +45,7 @@ export function reviseMeasurements(
     return { ...revision, old: before.value[i]!, now: after.value[i]! };
   });
   if (keep === "bytes" && pairs.some((pair) => movesOrder(state, pair))) return null;
-  if (pairs.some(({ now }) => mayAddUnknowns(state.frame, now))) {
+  if (pairs.some(({ now }) => mayAddUnknowns(state, now))) {
     const copy = restoreState(serialiseState(state))!;
     const { worn } = applied(copy, pairs, keep);
     const problems = worn.length > 0 ? [] : unscorableParts(copy);

@@ -50,7 +50,7 @@ export function addMeasurements(
     if (read.ok) readings.push(read.value);
     else problems.push(...read.problems);
   });
-  if (problems.length === 0 && readings.some((one) => mayAddUnknowns(frame, one))) {
+  if (problems.length === 0 && readings.some((one) => mayAddUnknowns(state, one))) {
     problems.push(...unscorableWith(state, measurements, readings));
   }
   if (problems.length > 0) return { ok: false, problems };
