@@ -23,6 +23,8 @@ export interface IntegralOptions {
   kinks?: number;
   /** Whether its kinks lie across the axes. */
   rough?: boolean;
+  /** Where two or three dimensions take more evaluations than this they are sampled instead. */
+  calls?: number;
 }
 
 /** Thousands of small kinks can't each be found, nor do they have to be. */
@@ -50,13 +52,11 @@ const FEW = 3;
 export function integrate(
   lnDensity: (c: Float64Array) => number,
   coordinates: readonly Coordinate[],
-  { starts, seed, kinks = 0, rough = false }: IntegralOptions,
+  { starts, seed, kinks = 0, rough = false, calls = Infinity }: IntegralOptions,
 ): Integral {
   const size = coordinates.length;
   const modes = peaksOf(lnDensity, coordinates, starts);
-  const about =
-    size > FEW && modes.length === 1 ? mapAboutPeak(lnDensity, coordinates, modes[0]!) : null;
-  if (about !== null) return overCube(lnDensity, about, { size, seed });
+  const about = () => (modes.length === 1 ? mapAboutPeak(lnDensity, coordinates, modes[0]!) : null);
   const axes = coordinates.map((one, j) => axisOf(one, modes, j));
   const map: CubeMap = {
     place: (u, c) => {
@@ -69,39 +69,61 @@ export function integrate(
     const places = one.breaks.map((at) => axes[j]!.toUnit(at)).filter((u) => u > 0 && u < 1);
     return [...new Set(places)].sort((a, b) => a - b);
   });
+  if (size > FEW) return overCube(lnDensity, about() ?? map, { size, seed });
+  const relative = size === 1 ? relativeOnLine(kinks, rough) : rough ? 1e-6 : undefined;
   const cubeModes = modes.map((mode) => cubeMode(mode, axes));
-  const found = overCube(lnDensity, map, {
+  const options = {
     size,
     seed,
     modes: cubeModes,
     breaks,
-    ...(size === 1 ? { relative: relativeOnLine(kinks, rough) } : {}),
-    ...(size > 1 && rough ? { relative: 1e-6 } : {}),
-  });
-  const { cdf } = found;
-  return {
-    ...found,
-    cdf: cdf === null ? null : (axis, at) => cdf(axis, axes[axis]!.toUnit(at)),
+    relative,
+    calls: size > 1 ? calls : Infinity,
   };
+  try {
+    const found = overCube(lnDensity, map, options);
+    const { cdf } = found;
+    return { ...found, cdf: cdf && ((axis, at) => cdf(axis, axes[axis]!.toUnit(at))) };
+  } catch (error) {
+    if (!(error instanceof CallsSpent)) throw error;
+    // Sampling begins at four dimensions: those that are over change nothing.
+    return overCube(lnDensity, about() ?? map, { size, seed, spare: FEW + 1 - size });
+  }
 }
+
+/** Thrown through the integrator when a rule that doesn't converge has had its calls. */
+class CallsSpent extends Error {}
 
 function overCube(
   lnDensity: (c: Float64Array) => number,
   map: CubeMap,
-  { size, ...options }: CubeOptions & { size: number },
+  {
+    size,
+    spare = 0,
+    calls = Infinity,
+    ...options
+  }: CubeOptions & {
+    size: number;
+    spare?: number;
+    calls?: number;
+  },
 ): Integral {
   const c = new Float64Array(size);
+  let spent = 0;
   const onCube = (u: Float64Array) => {
+    spent += 1;
+    if (spent > calls) throw new CallsSpent();
     const ln = map.place(u, c);
     return ln > -Infinity ? ln + lnDensity(c) : -Infinity;
   };
-  const { ln, error, nodes, cdf } = integrateUnitCube(onCube, size, options);
+  const { ln, error, nodes, cdf } = integrateUnitCube(onCube, size + spare, options);
+  const whole = size + spare;
   return {
     ln,
     error,
     points: Array.from(nodes.lnWeights, (_, n) => {
       const point = new Float64Array(size);
-      map.place(nodes.points.subarray(n * size, (n + 1) * size), point);
+      map.place(nodes.points.subarray(n * whole, n * whole + size), point);
       return point;
     }),
     weights: Float64Array.from(nodes.lnWeights, Math.exp),

@@ -5,6 +5,7 @@ import { startsOf } from "./starts";
 import type { Workbench } from "./workbench";
 
 const MOST_DIMENSIONS = 30;
+const CHEAP_CALLS = 1_000_000;
 
 export interface ScenarioEvidence {
   integrand: Integrand;
@@ -33,9 +34,18 @@ export function integralOf(
     const starts = startsOf(bench, integrand);
     // A variance taken at the best fit has kinks wherever it meets its clamps.
     const rough = bench.layout.moving;
-    const options = { starts, seed, kinks, rough };
+    const calls = callsFor(bench);
+    const options = { starts, seed, kinks, rough, calls };
     integral = integrate((c) => integrand.lnWithError(c).ln, coordinates, options);
   }
   const singular = integrand.singular();
   return singular === null ? integral : { refusal: { kind: "singular", rows: singular } };
+}
+
+/** As many evaluations as take some seconds, by what one of them has to do. */
+function callsFor({ layout }: Workbench): number {
+  const { outer, varying, atFit } = layout.problem;
+  if (outer.length === 0) return CHEAP_CALLS;
+  const moves = layout.moving || varying.length + atFit.length > 0;
+  return moves ? CHEAP_CALLS / 20 : CHEAP_CALLS / 4;
 }
