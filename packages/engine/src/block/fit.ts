@@ -18,6 +18,8 @@ import { workbenchOf, type Workbench } from "./workbench";
 /** A flat unknown's minimum within this share of its width of a bound is at the bound. */
 const AT_BOUND = 1e-6;
 const STARTS = 8;
+/** Data that pull an unknown away from its prior may have their minimum so many times as far out. */
+const STRETCH = 4;
 const MOST_STARTS = 512;
 
 /**
@@ -38,7 +40,9 @@ export function blockFit(problem: BlockProblem): BlockOutcome<BlockFit | null> {
   const { bench } = made;
   let best: (Minimum & { scenario: number }) | null = null;
   for (let scenario = 0; scenario < problem.scenarios.length; scenario += 1) {
-    let found = outerMinima(bench, scenario, startsFor(problem.outer, STARTS));
+    const near = startsFor(problem.outer, STARTS);
+    const far = near.map((start) => stretched(problem.outer, start));
+    let found = outerMinima(bench, scenario, problem.outer.length === 0 ? near : [...near, ...far]);
     // Where expressions have a value in a corner of the priors only.
     for (let more = 8 * STARTS; isNone(found) && more <= MOST_STARTS; more *= 8) {
       found = outerMinima(bench, scenario, startsFor(problem.outer, more));
@@ -72,6 +76,14 @@ export function startsFor(outer: readonly OuterUnknown[], count: number): Float6
   return Array.from({ length: count }, (_, n) =>
     Float64Array.from(outer, (one, j) => one.quantile(points[n * size + j]!)),
   );
+}
+
+/** A start further out than the prior's own points, where the prior is a normal's. */
+function stretched(outer: readonly OuterUnknown[], start: Float64Array): Float64Array {
+  return start.map((c, j) => {
+    const { penalised, lower, upper } = outer[j]!;
+    return penalised ? Math.min(Math.max(STRETCH * c, lower), upper) : c;
+  });
 }
 
 /** Minima of chi-square reached from the starts, the lowest first, each once. */
