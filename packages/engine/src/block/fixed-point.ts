@@ -12,8 +12,6 @@ import type { Workbench } from "./workbench";
 
 /** Variances and loadings have settled when none moves by more than this share. */
 const SETTLED = 1e-12;
-/** Under a quadrature that promises 1e-9. */
-const NEARLY = 1e-11;
 const MOST_ROUNDS = 200;
 /** Steps are halved each time that so many rounds are over: what swings then comes to rest. */
 const PATIENCE = 20;
@@ -71,7 +69,7 @@ function moves({ layout }: Workbench): boolean {
 
 function iterate(bench: Workbench): Settled | { singular: number[] } {
   const { layout, plan, prior, state } = bench;
-  const enough = layout.problem.outer.length > 0 && layout.moving ? NEARLY : SETTLED;
+  const enough = bench.settledTo ?? SETTLED;
   for (let round = 0; ; round += 1) {
     const white = whitenRows(layout, plan, state);
     if (!white.ok) return { singular: white.singular };

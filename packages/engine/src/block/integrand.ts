@@ -85,6 +85,9 @@ export function integrandOf(
     ln += lnOpen(bench, part, { at: c, from: outer.length });
     return Number.isNaN(ln) ? NOTHING : { ln, error: 0 };
   };
+  // Under a quadrature that promises 1e-9, or a sampling that promises tenths.
+  const sampled = outer.length + rank + flats > 3;
+  if (outer.length > 0) bench.settledTo = sampled ? 1e-6 : 1e-11;
   const breaks = fixed !== null && rank + flats === 1 ? kinksOf(bench, fixed) : [];
   return {
     scenario,

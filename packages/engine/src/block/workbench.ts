@@ -23,6 +23,8 @@ export interface Workbench {
   bent: Map<number, BentState>;
   /** Whether variances and loadings are those of a fit before. */
   settled: boolean;
+  /** To what share fixed points have to settle; as far as they can where it isn't given. */
+  settledTo?: number;
 }
 
 export function workbenchOf(
