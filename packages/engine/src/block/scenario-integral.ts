@@ -5,7 +5,8 @@ import { startsOf } from "./starts";
 import type { Workbench } from "./workbench";
 
 const MOST_DIMENSIONS = 30;
-const CHEAP_CALLS = 1_000_000;
+const MOST_CALLS = 2_000_000;
+const FEWEST_CALLS = 50_000;
 
 export interface ScenarioEvidence {
   integrand: Integrand;
@@ -44,8 +45,11 @@ export function integralOf(
 
 /** As many evaluations as take some seconds, by what one of them has to do. */
 function callsFor({ layout }: Workbench): number {
-  const { outer, varying, atFit } = layout.problem;
-  if (outer.length === 0) return CHEAP_CALLS;
+  const { rows, linear, outer, varying, atFit } = layout.problem;
   const moves = layout.moving || varying.length + atFit.length > 0;
-  return moves ? CHEAP_CALLS / 20 : CHEAP_CALLS / 4;
+  let cost = 1 + rows.count / 20;
+  if (layout.others.length > 0) cost *= 2;
+  if (outer.length > 0 && moves) cost *= 20;
+  else if (outer.length > 0 && linear.length > 0) cost *= 4;
+  return Math.max(MOST_CALLS / cost, FEWEST_CALLS);
 }
