@@ -3,7 +3,13 @@ import type { Log } from "@weighhouse/store/open-store";
 import type { Auth } from "./auth";
 
 /** What a procedure works with. */
-export type Context = { desk: Desk; actor: Actor; log: Log };
+export type Context = {
+  desk: Desk;
+  actor: Actor;
+  log: Log;
+  /** Where people reach this server, such as `http://localhost:3000`. */
+  origin: string;
+};
 
 /** The context of one request: who asks is told by its session's cookie. */
 export async function createContext(request: {
@@ -13,7 +19,8 @@ export async function createContext(request: {
   headers: Headers;
 }): Promise<Context> {
   const { desk, auth, log, headers } = request;
-  return { desk, log, actor: await readActor(auth, headers) };
+  const origin = auth.options.baseURL;
+  return { desk, log, origin, actor: await readActor(auth, headers) };
 }
 
 /** Who asks, by the session's cookie; null without one, or with one that holds no more. */
