@@ -15,6 +15,7 @@ export const grants: Record<string, string> = {
   measurements: change,
   time_stamps: append,
   held_seals: "select, insert, delete",
+  remembered_matches: change,
   standings: change,
   timeline_steps: change,
   timeline_points: change,

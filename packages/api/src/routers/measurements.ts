@@ -4,10 +4,17 @@ import {
   previewMeasurements,
   previewMeasurementsInput,
 } from "@weighhouse/desk/preview-measurements";
+import { readMatches, readMatchesInput } from "@weighhouse/desk/read-match";
 import {
   readMeasurementHistory,
   readMeasurementHistoryInput,
 } from "@weighhouse/desk/read-measurement-history";
+import {
+  forgetMatch,
+  forgetMatchInput,
+  rememberMatch,
+  rememberMatchInput,
+} from "@weighhouse/desk/remember-match";
 import {
   setAsideMeasurement,
   setAsideMeasurementInput,
@@ -28,6 +35,16 @@ export const measurementsRouter = router({
   post: procedure
     .input(takes(postMeasurementsInput))
     .mutation(({ ctx, input }) => postMeasurements(ctx.desk, ctx.actor, input)),
+  // A mutation for its size alone: two hundred columns don't fit into an address.
+  matches: procedure
+    .input(takes(readMatchesInput))
+    .mutation(({ ctx, input }) => readMatches(ctx.desk, ctx.actor, input)),
+  rememberMatch: procedure
+    .input(takes(rememberMatchInput))
+    .mutation(({ ctx, input }) => rememberMatch(ctx.desk, ctx.actor, input)),
+  forgetMatch: procedure
+    .input(takes(forgetMatchInput))
+    .mutation(({ ctx, input }) => forgetMatch(ctx.desk, ctx.actor, input)),
   setAside: procedure
     .input(takes(setAsideMeasurementInput))
     .mutation(({ ctx, input }) => setAsideMeasurement(ctx.desk, ctx.actor, input)),

@@ -4,6 +4,7 @@ export { campaigns } from "./campaigns";
 export { entries, heads, nodes, signingKeys, tips } from "./ledger";
 export { memberships } from "./memberships";
 export { measurements, parts } from "./projections";
+export { rememberedMatches } from "./remembered-matches";
 export { heldSeals } from "./seals";
 export { scorerStates, standings, timelinePoints, timelineSteps } from "./standings";
 export { timeStamps } from "./time-stamps";
