@@ -1,9 +1,9 @@
+import { kindInWords } from "@weighhouse/campaign/kind-words";
 import type { ListedEntry } from "@weighhouse/desk/read-entries";
 import { formatCount } from "@weighhouse/figures/numbers";
 import Link from "next/link";
 import { Table } from "@/look/table";
 import { Time } from "@/look/time";
-import { kindInWords } from "./kind-words";
 
 /** Entries of the ledger as a table. */
 export function EntryRows({ entries, path }: { entries: readonly ListedEntry[]; path: string }) {

@@ -1,8 +1,8 @@
+import { kindInWords } from "@weighhouse/campaign/kind-words";
 import type { Measurement, Observable } from "@weighhouse/campaign/document";
 import type { MeasurementVersion } from "@weighhouse/desk/read-measurement-history";
 import Link from "next/link";
 import { resultInWords } from "@/campaign/plain-words";
-import { kindInWords } from "@/ledger/kind-words";
 import { Table } from "@/look/table";
 import { Time } from "@/look/time";
 

@@ -1,10 +1,10 @@
+import { kindInWords } from "@weighhouse/campaign/kind-words";
 import type { Metadata } from "next";
 import Link from "next/link";
 import { notFound } from "next/navigation";
 import { CampaignFrame } from "@/campaign/campaign-frame";
 import { RemarkForm } from "@/forms/records/remark-form";
 import { EntryCheck } from "@/ledger/entry-check";
-import { kindInWords } from "@/ledger/kind-words";
 import { RemarkRows } from "@/ledger/remark-rows";
 import { Section } from "@/look/section";
 import { Time } from "@/look/time";

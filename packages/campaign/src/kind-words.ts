@@ -1,4 +1,4 @@
-import type { EntryKind } from "@weighhouse/campaign/entries";
+import type { EntryKind } from "./entries";
 
 /** What each kind of entry did, in plain words; the kind itself stands beside it. */
 const kindWords: Record<EntryKind, string> = {
