@@ -45,18 +45,23 @@ function wholeParts(sql: Queries, campaignId: number, whole: Reads["whole"]) {
     where campaign_id = ${campaignId} and to_size is null and part = any(${whole}::text[])`;
 }
 
+/** Two looks, each by its index: over "one or the other" a large campaign would be read whole. */
 function measurementRows(
   sql: Queries,
   campaignId: number,
   wanted: { ids: string[]; facilities: string[] },
 ) {
-  return sql<StoredRow[]>`
+  const columns = sql`
     select 'measurement' as part, id as key, from_size as "fromSize", to_size as "toSize",
       first_seq as "firstSeq", first_place as "firstPlace", content
     from measurements
-    where campaign_id = ${campaignId} and to_size is null
-      and (id = any(${wanted.ids}::text[]) or facility = any(${wanted.facilities}::text[]))
-    order by first_seq, first_place`;
+    where campaign_id = ${campaignId} and to_size is null`;
+  return sql<StoredRow[]>`
+    ${columns} and id = any(${wanted.ids}::text[])
+    union all
+    ${columns} and facility = any(${wanted.facilities}::text[])
+      and not id = any(${wanted.ids}::text[])
+    order by "firstSeq", "firstPlace"`;
 }
 
 export function readRow(row: StoredRow): ProjectedRow {
