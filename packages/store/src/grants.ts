@@ -20,6 +20,8 @@ export const grants: Record<string, string> = {
   timeline_steps: change,
   timeline_points: change,
   scorer_states: change,
+  webhooks: change,
+  webhook_deliveries: change,
   memberships: change,
   user: change,
   session: change,

@@ -8,3 +8,4 @@ export { rememberedMatches } from "./remembered-matches";
 export { heldSeals } from "./seals";
 export { scorerStates, standings, timelinePoints, timelineSteps } from "./standings";
 export { timeStamps } from "./time-stamps";
+export { webhookDeliveries, webhooks } from "./webhooks";
