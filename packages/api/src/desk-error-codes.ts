@@ -10,6 +10,7 @@ type Answer = { status: number; title: string; trpc: TRPCError["code"] };
 export const answers: Record<DeskErrorCode, Answer> = {
   "not-signed-in": { status: 401, title: "Unauthorized", trpc: "UNAUTHORIZED" },
   "not-allowed": { status: 403, title: "Forbidden", trpc: "FORBIDDEN" },
+  "insufficient-scope": { status: 403, title: "Forbidden", trpc: "FORBIDDEN" },
   "not-found": { status: 404, title: "Not Found", trpc: "NOT_FOUND" },
   invalid: { status: 422, title: "Unprocessable Content", trpc: "UNPROCESSABLE_CONTENT" },
   conflict: { status: 409, title: "Conflict", trpc: "CONFLICT" },

@@ -1,34 +1,17 @@
-import { DeskError } from "@weighhouse/desk/desk-error";
 import type { Context } from "./context";
-import * as answers from "./http-answers";
-import type { Answer } from "./http-answers";
-import { details, problemResponse } from "./problem-details";
+import { campaignRoutes } from "./http/campaign";
+import { readQuery, routeFinder } from "./http/find-route";
+import { ledgerRoutes } from "./http/ledger";
+import { chooseType } from "./http/media-types";
+import { bodyTypeOf, limitBody } from "./http/read-body";
+import type { Question, Route } from "./http/route";
+import { sealRoutes } from "./http/seals";
+import { problemResponse } from "./problem-details";
 
-type Route = { method: "GET" | "POST"; path: RegExp; takes: string[]; answer: Answer };
+/** All that stands below `/api/v1/campaigns/{key}/`, in the order in which it is described. */
+export const routes: Route[] = [...campaignRoutes, ...ledgerRoutes, ...sealRoutes];
 
-/** What stands below `/api/v1/campaigns/{key}/`, with the numbers that its query may hold. */
-const routes: Route[] = [
-  { method: "GET", path: /^audit\.zip$/, takes: ["size"], answer: answers.auditZip },
-  { method: "GET", path: /^document\.json$/, takes: ["size"], answer: answers.documentJson },
-  { method: "GET", path: /^standings\.json$/, takes: ["size"], answer: answers.standingsJson },
-  { method: "GET", path: /^ledger\/head$/, takes: [], answer: answers.ledgerHead },
-  {
-    method: "GET",
-    path: /^ledger\/entries$/,
-    takes: ["from", "to"],
-    answer: answers.ledgerEntries,
-  },
-  { method: "GET", path: /^ledger\/entries\/(\d{1,15})$/, takes: [], answer: answers.ledgerEntry },
-  {
-    method: "GET",
-    path: /^ledger\/consistency$/,
-    takes: ["from", "to"],
-    answer: answers.ledgerConsistency,
-  },
-  { method: "GET", path: /^ledger\/time-stamps$/, takes: [], answer: answers.ledgerTimeStamps },
-  { method: "POST", path: /^seals$/, takes: [], answer: answers.sealedDigest },
-  { method: "POST", path: /^seals\/openings$/, takes: [], answer: answers.openedSeal },
-];
+const find = routeFinder(routes);
 
 /**
  * Answers what is asked below `/api/v1/campaigns/{key}/`: of public campaigns everyone reads, of
@@ -37,29 +20,28 @@ const routes: Route[] = [
  */
 export async function answerHttp(ctx: Context, request: Request): Promise<Response> {
   try {
-    return await route(ctx, request);
+    const answer = await answerRoute(ctx, request);
+    return request.method === "HEAD" ? withoutBody(answer) : answer;
   } catch (error) {
     return problemResponse(error, ctx.log);
   }
 }
 
-async function route(ctx: Context, request: Request): Promise<Response> {
+async function answerRoute(ctx: Context, request: Request): Promise<Response> {
   const url = new URL(request.url);
-  const [, key, below = ""] = /^\/api\/v1\/campaigns\/([^/]+)\/(.+)$/.exec(url.pathname) ?? [];
-  const method = request.method === "HEAD" ? "GET" : request.method;
-  const there = routes.filter(({ path }) => path.test(below));
-  const found = there.find((one) => one.method === method);
-  if (!key || there.length === 0) {
-    throw new DeskError("not-found", `found nothing at ${url.pathname}`);
-  }
-  if (found === undefined) {
-    const allow = there.map((one) => (one.method === "GET" ? "GET, HEAD" : one.method)).join(", ");
-    return details({ status: 405, title: "Method Not Allowed" }, { allow });
-  }
-  const numbers = readQuery(url.searchParams, found.takes);
-  const seq = Number(found.path.exec(below)?.[1] ?? 0);
-  const context = method === "GET" ? ctx : onPrimary(ctx);
-  return found.answer({ ...context, request, key, numbers, seq });
+  const { route, key, parameters } = find(request.method, url.pathname);
+  const bodyType = bodyTypeOf(request, route);
+  const answerType = chooseType(request.headers.get("accept"), Object.keys(route.gives.types));
+  const question: Question = {
+    ...(route.method === "GET" ? ctx : onPrimary(ctx)),
+    request: limitBody(request, route.takes[bodyType]?.maxBytes ?? null),
+    key,
+    parameters,
+    query: readQuery(route, url.searchParams),
+    bodyType,
+    answerType,
+  };
+  return route.answer(question as Question<never, never>);
 }
 
 /** A replica lags, and who decides on it decides on yesterday. */
@@ -68,15 +50,7 @@ function onPrimary(ctx: Context): Context {
   return { ...ctx, desk: { ...ctx.desk, store: { ...store, readDb: store.db } } };
 }
 
-/** Whole numbers of the query; anything else in it is refused, as it would be overlooked else. */
-function readQuery(query: URLSearchParams, takes: string[]): Record<string, number | undefined> {
-  const read: Record<string, number | undefined> = {};
-  for (const [name, text] of query) {
-    if (!takes.includes(name) || !/^\d{1,15}$/.test(text)) {
-      const allowed = takes.length > 0 ? `${takes.join(", ")} as whole numbers` : "no query";
-      throw new DeskError("invalid", `found ${name}=${text} in the query; allowed ${allowed}`);
-    }
-    read[name] = Number(text);
-  }
-  return read;
+function withoutBody(answer: Response): Response {
+  void answer.body?.cancel();
+  return new Response(null, { status: answer.status, headers: answer.headers });
 }

@@ -1,26 +1,47 @@
 import { DeskError } from "@weighhouse/desk/desk-error";
 import type { Log } from "@weighhouse/store/open-store";
 import { answers } from "./desk-error-codes";
+import { ApiError, apiAnswers } from "./http/api-error";
 
-const INTERNAL = { status: 500, title: "Internal Server Error" };
+/** RFC 9457, of a type that says no more than the status; the code and the fields at fault beside. */
+export type ProblemDetails = { type: "about:blank"; status: number; title: string } & Partial<{
+  code: string;
+  detail: string;
+  problems: DeskError["problems"];
+}>;
 
-/** A refusal as problem details (RFC 9457), the desk's code and the fields at fault beside them. */
-export function problemResponse(error: unknown, log: Log): Response {
+/** A refusal as problem details, also for a line of an answer that has begun already. */
+export function problemDetails(error: unknown, log: Log): ProblemDetails {
   if (error instanceof DeskError) {
     const { status, title } = answers[error.code];
     const { code, message: detail, problems } = error;
-    return details({ status, title, detail, code, ...(problems.length > 0 ? { problems } : {}) });
+    const faults = problems.length > 0 ? { problems } : {};
+    return { type: "about:blank", status, title, code, detail, ...faults };
   }
+  if (error instanceof ApiError) {
+    const { code, message: detail } = error;
+    return { type: "about:blank", ...apiAnswers[code], code, detail };
+  }
+  // What nobody foresaw is told in no words of its own: they may hold what is nobody's business.
   log.error({ error: String(error), stack: error instanceof Error ? error.stack : null }, "HTTP");
-  return details(INTERNAL);
+  return { type: "about:blank", status: 500, title: "Internal Server Error" };
 }
 
-/** Problem details of a type that says no more than the status itself. */
-export function details(
-  problem: { status: number; title: string } & Record<string, unknown>,
-  headers: Record<string, string> = {},
-): Response {
-  const body = JSON.stringify({ type: "about:blank", ...problem });
-  const fixed = { "content-type": "application/problem+json", "cache-control": "no-store" };
-  return new Response(body, { status: problem.status, headers: { ...fixed, ...headers } });
+export function problemResponse(error: unknown, log: Log): Response {
+  const problem = problemDetails(error, log);
+  const headers = {
+    "content-type": "application/problem+json",
+    "cache-control": "no-store",
+    ...challenge(error),
+    ...(error instanceof ApiError ? error.headers : {}),
+  };
+  return new Response(JSON.stringify(problem), { status: problem.status, headers });
+}
+
+/** What RFC 6750 asks of a refusal that another key would not have met. */
+function challenge(error: unknown): Record<string, string> {
+  if (!(error instanceof DeskError)) return {};
+  if (error.code === "not-signed-in") return { "www-authenticate": "Bearer" };
+  if (error.code !== "insufficient-scope") return {};
+  return { "www-authenticate": 'Bearer error="insufficient_scope"' };
 }

@@ -4,10 +4,11 @@ import type { CampaignRow, Visibility } from "@weighhouse/store/campaigns";
 import { findMembership } from "@weighhouse/store/members";
 import type { Membership } from "@weighhouse/store/members";
 import { StoreError } from "@weighhouse/store/store-error";
-import type { Actor, Desk } from "./desk";
+import type { Actor, ApiKeyUse, Desk } from "./desk";
 import { DeskError } from "./desk-error";
 import { may, permission } from "./roles";
 import type { Action, Role } from "./roles";
+import { scopesFor } from "./scopes";
 
 /** An actor's place in one campaign. */
 export type Access = {
@@ -38,7 +39,16 @@ export async function enter(
   const role = roleOf(actor, campaign.visibility, place);
   if (permission(role, "read-campaign") === "no") throw noSuchCampaign(campaignKey);
   if (permission(role, action) === "no") throw notAllowed(actor, role, action);
+  requireScope(actor, campaignKey, action);
   return { campaign, actor, role, team: place?.team ?? null, member: place?.member ?? null };
+}
+
+/** Refuses what a key's scopes don't open, and everything outside the campaign that it is of. */
+function requireScope(actor: Actor, campaign: string, action: Action): void {
+  const key = actor?.through;
+  if (key === undefined) return;
+  const scopes = key.campaign === campaign ? key.scopes : [];
+  if (!scopesFor(action).some((scope) => scopes.includes(scope))) throw beyondScopes(key, action);
 }
 
 /** Refuses what the table allows only on one's own team's things, where `of` is another team. */
@@ -60,6 +70,7 @@ export function requireTeam(access: Access, action: Action): string {
 
 /** The actor, where an account is needed and no campaign is concerned yet. */
 export function requireAccount(actor: Actor, action: Action): NonNullable<Actor> {
+  if (actor?.through) throw beyondScopes(actor.through, action);
   if (actor && permission("account", action) === "yes") return actor;
   throw notAllowed(actor, actor ? "account" : "visitor", action);
 }
@@ -92,4 +103,11 @@ function notAllowed(actor: Actor, role: Role, action: Action): DeskError {
     "not-allowed",
     `found ${action} by a ${role}; the campaign's rules allow it to others`,
   );
+}
+
+function beyondScopes({ campaign, scopes }: ApiKeyUse, action: Action): DeskError {
+  const found = `a key of ${campaign} with the scopes ${scopes.join(", ") || "(none)"}`;
+  const opening = scopesFor(action).join(" or ");
+  const allowed = opening === "" ? "signed in, without a key" : `with the scope ${opening}`;
+  return new DeskError("insufficient-scope", `found ${action} by ${found}; allowed ${allowed}`);
 }

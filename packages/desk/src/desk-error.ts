@@ -3,7 +3,14 @@ import type { Problem } from "@weighhouse/campaign/problem";
 
 /** Every way in which the desk refuses. A new code must be given its HTTP status to compile. */
 export type DeskErrorCode =
-  "not-signed-in" | "not-allowed" | "not-found" | "invalid" | "conflict" | "closed" | "busy";
+  | "not-signed-in"
+  | "not-allowed"
+  | "insufficient-scope"
+  | "not-found"
+  | "invalid"
+  | "conflict"
+  | "closed"
+  | "busy";
 
 /** A refusal: what was found and what is allowed, with the fields at fault where there are any. */
 export class DeskError extends Error {

@@ -1,5 +1,6 @@
 import type { Clock } from "@weighhouse/store/append";
 import type { Store } from "@weighhouse/store/open-store";
+import type { Scope } from "./scopes";
 
 /**
  * What every use-case works with. `clock` is passed by tests and by the demo's seeding alone: with
@@ -8,4 +9,11 @@ import type { Store } from "@weighhouse/store/open-store";
 export type Desk = { store: Store; clock?: Clock };
 
 /** Who asks. Null: a reader without an account. */
-export type Actor = { userId: string; name: string } | null;
+export type Actor = {
+  userId: string;
+  name: string;
+  /** The key that the request came with: it opens no more than its scopes, in its campaign. */
+  through?: ApiKeyUse;
+} | null;
+
+export type ApiKeyUse = { campaign: string; id: string; scopes: readonly Scope[] };
