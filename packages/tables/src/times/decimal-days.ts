@@ -32,8 +32,7 @@ export function dayTimeOf(
   const length = BigInt(seconds) * SECOND;
   const ns = ((days - whole * unit) * length * 2n + unit) / (2n * unit);
   // A digit behind the fourth of a day is one of a second: 1e-5 d is 0.864 s. Of a long day each is.
-  const lost = seconds === 86_400 ? 4 : 0;
-  const digits = Math.min(9, Math.max(0, given.places - lost));
+  const digits = Math.min(9, seconds === 86_400 ? Math.max(0, given.places - 4) : places);
   return { ...(ns === length ? { day: day + 1, ns: 0 } : { day, ns: Number(ns) }), digits };
 }
 
