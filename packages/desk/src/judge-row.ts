@@ -1,0 +1,125 @@
+import type { MeasurementContent } from "@weighhouse/campaign/entries";
+import { measurementContentSchema } from "@weighhouse/campaign/entries";
+import { readForm } from "@weighhouse/campaign/form";
+import type { measurandFinder } from "@weighhouse/campaign/measurand-of";
+import type { Problem } from "@weighhouse/campaign/problem";
+import { quickContent } from "@weighhouse/campaign/quick-measurement";
+import { LedgerError } from "@weighhouse/ledger/ledger-error";
+import { contentText, defaultId } from "@weighhouse/store/content-text";
+import type { ContentText } from "@weighhouse/store/content-text";
+import type { Conflict } from "@weighhouse/store/post-measurements";
+import type { Access } from "./access";
+import type { ReadRow, RowProblem } from "./read-rows";
+
+/** What would become of one row, were it posted now. */
+export type JudgedRow = {
+  /** The line in the text, from 1; for drafts their number, from 1. */
+  line: number;
+  id: string | null;
+  fate: "new" | "alreadyThere" | "conflict" | "refused";
+  /** Why it is refused, by field; empty otherwise. */
+  problems: RowProblem[];
+  /** The first field that differs from what is there under that id. */
+  conflict: Conflict | null;
+  /** As it would be entered; null for a row that doesn't read. */
+  measurement: MeasurementContent | null;
+  /** What was converted, or filled in for it. */
+  notes: string[];
+};
+
+/** A row by itself: as it would be entered, with its canonical text, or refused. */
+export type RowByItself = { row: JudgedRow; text: ContentText | null };
+
+/** Stands for an id that is made from the content once that reads. */
+const PLACEHOLDER = "-";
+
+/** A row's content with its id, its measurand and its team filled in, or why it can't be read. */
+export function judgeRow(
+  given: ReadRow & { notes?: string[] },
+  { access, find }: { access: Access; find: ReturnType<typeof measurandFinder> },
+): RowByItself {
+  const { line, draft, problems } = given;
+  const notes = [...(given.notes ?? [])];
+  const refused = (id: unknown, faults: RowProblem[]): RowByItself => ({
+    row: {
+      line,
+      id: typeof id === "string" ? id : null,
+      fate: "refused",
+      problems: faults,
+      conflict: null,
+      measurement: null,
+      notes,
+    },
+    text: null,
+  });
+  if (draft === null || problems.length > 0) return refused(draft?.["id"], problems);
+  const id = draft["id"] ?? null;
+  const team = draft["team"] ?? access.team;
+  const filled: Record<string, unknown> = { ...draft, team, id: id ?? PLACEHOLDER };
+  const faults = fillMeasurand(filled, find, notes);
+  const read = readContent(filled);
+  faults.push(...read.problems.map(rowProblem));
+  if (access.role === "member" && team !== access.team) faults.push(otherTeam(team, access));
+  if (read.value === null || faults.length > 0) return refused(id, faults);
+  try {
+    const measurement =
+      id === null
+        ? { ...read.value, id: defaultId(read.value) }
+        : (read.value as MeasurementContent);
+    const text = contentText(measurement);
+    const row = { line, id: measurement.id, problems: [], conflict: null, measurement, notes };
+    return { row: { ...row, fate: "new" }, text };
+  } catch (error) {
+    if (!(error instanceof LedgerError)) throw error;
+    return refused(id, [unwritable(error)]);
+  }
+}
+
+/** `observable` is no field of a measurement: it only says in which measurand the row may fall. */
+function fillMeasurand(
+  draft: Record<string, unknown>,
+  find: ReturnType<typeof measurandFinder>,
+  notes: string[],
+): RowProblem[] {
+  if ((draft["measurand"] ?? null) !== null) return [];
+  const falling = find(draft);
+  delete draft["observable"];
+  if (!("measurand" in falling)) {
+    // The other fields are read all the same: everything that is wrong is told at once.
+    draft["measurand"] = "none";
+    return [{ column: "measurand", ...falling }];
+  }
+  draft["measurand"] = falling.measurand;
+  notes.push(`falls in the measurand ${falling.measurand}`);
+  return [];
+}
+
+function otherTeam(team: unknown, access: Access): RowProblem {
+  const own = access.team === null ? "no team: you are of none" : `${access.team}: your own team`;
+  return { column: "team", found: JSON.stringify(team), allowed: own };
+}
+
+/** Most rows are good, and the quick reading tells; only what fails it is read for its words. */
+function readContent(content: unknown): { value: MeasurementContent | null; problems: Problem[] } {
+  const quick = quickContent(content);
+  if (quick !== null) return { value: quick, problems: [] };
+  const read = measurementContentSchema.safeParse(content);
+  if (read.success) return { value: read.data, problems: [] };
+  return { value: null, problems: readForm(measurementContentSchema, content, "").problems };
+}
+
+/** What no payload can hold: U+0000, half a surrogate pair, more than a payload's size. */
+function unwritable({ message }: LedgerError): RowProblem {
+  const [, field, found, allowed] =
+    /^\/([^/:]+)[^:]*: found (.*); allowed is (.*)$/s.exec(message) ?? [];
+  return field !== undefined && found !== undefined && allowed !== undefined
+    ? { column: field, found, allowed }
+    : { column: null, found: message, allowed: "what a ledger's entry can hold" };
+}
+
+/** `/sd` is the field sd; `/conditions/depth` is conditions.depth, as in a table's columns. */
+export function rowProblem({ pointer, found, allowed }: Problem): RowProblem {
+  const [, field, within] = pointer.split("/");
+  const column = field === "conditions" && within ? `conditions.${within}` : (field ?? null);
+  return { column, found, allowed };
+}
