@@ -1,5 +1,6 @@
 import type { Context } from "./context";
 import { campaignRoutes } from "./http/campaign";
+import { feedRoutes } from "./http/feed";
 import { readQuery, routeFinder } from "./http/find-route";
 import { ledgerRoutes } from "./http/ledger";
 import { chooseType } from "./http/media-types";
@@ -9,7 +10,7 @@ import { sealRoutes } from "./http/seals";
 import { problemResponse } from "./problem-details";
 
 /** All that stands below `/api/v1/campaigns/{key}/`, in the order in which it is described. */
-export const routes: Route[] = [...campaignRoutes, ...ledgerRoutes, ...sealRoutes];
+export const routes: Route[] = [...campaignRoutes, ...ledgerRoutes, ...feedRoutes, ...sealRoutes];
 
 const find = routeFinder(routes);
 

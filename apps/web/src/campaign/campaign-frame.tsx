@@ -25,6 +25,13 @@ export async function CampaignFrame(props: {
   const base = `/campaigns/${campaign.key}`;
   return (
     <>
+      {/* React puts it into the page's head. */}
+      <link
+        rel="alternate"
+        type="application/atom+xml"
+        title={`${campaign.title}: ledger`}
+        href={`/api/v1/campaigns/${campaign.key}/feed.atom`}
+      />
       <nav aria-label="Where you are" className="text-[14px] text-quiet">
         <Link href="/campaigns" className="no-underline hover:underline">
           Campaigns

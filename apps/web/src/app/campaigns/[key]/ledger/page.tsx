@@ -33,9 +33,14 @@ export default async function LedgerPage(props: {
         title="Ledger"
         gloss="every entry, in the order of a signed Merkle tree (RFC 6962)"
         actions={
-          <a className="link text-[14px]" href={`/api/v1/campaigns/${key}/ledger/head`}>
-            signed tree head
-          </a>
+          <span className="flex gap-4 text-[14px]">
+            <a className="link" href={`/api/v1/campaigns/${key}/feed.atom`}>
+              feed
+            </a>
+            <a className="link" href={`/api/v1/campaigns/${key}/ledger/head`}>
+              signed tree head
+            </a>
+          </span>
         }
       >
         <p className="mb-3 text-quiet">
