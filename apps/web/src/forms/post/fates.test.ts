@@ -16,6 +16,7 @@ function row(line: number, fate: PreviewedRow["fate"], more: object = {}): Previ
     problems: [],
     conflict: null,
     measurement: null,
+    notes: [],
     ...more,
   };
 }

@@ -53,6 +53,7 @@ test("a refused row's problems go to their fields, the others stay in the previe
     fate: "refused" as const,
     conflict: null,
     measurement: null,
+    notes: [],
     problems: [
       { column: "observedAt", found: "2031", allowed: "a time inside the window" },
       { column: "team", found: "a", allowed: "your own" },
