@@ -1,6 +1,12 @@
 import { execFileSync } from "node:child_process";
+import { createHash, randomBytes } from "node:crypto";
 import { readFileSync, writeFileSync } from "node:fs";
 import path from "node:path";
+import { archiveInput } from "@weighhouse/audit/testing/marsh-campaign";
+import { writeArchive } from "@weighhouse/audit/write";
+import { parseTreeHead } from "@weighhouse/ledger/tree-head";
+import { timeStampRequest } from "@weighhouse/timestamps/request";
+import { TestAuthority } from "@weighhouse/timestamps/testing/authority";
 import { afterAll, describe, expect, it } from "vitest";
 import { marshArchives } from "./campaigns";
 import { removeUnpacked, unpacked } from "./unpacked";
@@ -32,6 +38,33 @@ describe("the README's commands hold with sha256sum, openssl and jq", () => {
       "the signatures are good",
     ]);
     expect(said[5]).toMatch(/^[0-9a-f]{64}$/);
+  });
+
+  describe("with time-stamps", () => {
+    const authority = new TestAuthority();
+    afterAll(() => authority.remove());
+
+    /** The marsh, its last head stamped: over a text that should be the head's note. */
+    function stamped(over: (note: string) => string): string {
+      const input = archiveInput();
+      const note = input.heads.at(-1)!;
+      const digest = createHash("sha256").update(over(note)).digest();
+      const request = timeStampRequest(new Uint8Array(digest), new Uint8Array(randomBytes(16)));
+      const { size } = parseTreeHead(note);
+      const timeStamps = [{ size, token: authority.answer(request) }];
+      const folder = unpacked(writeArchive({ ...input, timeStamps }));
+      writeFileSync(path.join(folder, "AUTHORITY.pem"), authority.root);
+      return folder;
+    }
+
+    it("they are checked against the authority's certificate, and their time is told", () => {
+      const said = run(stamped((note) => note))[5]!;
+      expect(said).toMatch(/^Time stamp: .* GMT\nthe time-stamps are good\n$/m);
+    });
+
+    it("one over other bytes is found", () => {
+      expect(() => run(stamped((note) => `${note}\n`))).toThrow("message imprint mismatch");
+    });
   });
 
   it("and stop at a changed payload", () => {

@@ -5,7 +5,7 @@ export const ARCHIVE_FORMAT = "weighhouse-audit/1";
  * Any change of the words, drawings or layout of the files for readers (README, methods, TeX, figures,
  * RO-Crate, check.py) changes this: what another writer wrote is not compared word by word.
  */
-export const WRITER_VERSION = "1";
+export const WRITER_VERSION = "2";
 
 export const README = "README.md";
 export const MANIFEST = "manifest.json";

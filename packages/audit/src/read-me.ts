@@ -9,6 +9,8 @@ export type ReadmeFacts = Omit<Manifest, "files"> & {
   lastHeadPath: string;
   /** The key that signed the last head: another one after the keys were changed. */
   headKeyPath: string;
+  /** How many heads have a time-stamp. */
+  stamped: number;
 };
 
 const SIMULATED = `
@@ -16,6 +18,21 @@ const SIMULATED = `
 the program that filled it (a demonstration or a test), not read from a clock. Before and after data
 mean nothing more here than the order of the entries.
 `;
+
+const STAMPED = `
+The time-stamps are an authority's word that the heads were there by then. The authority's root
+certificate is not in here, since whoever forges the one forges the other: get it from the authority,
+as \`AUTHORITY.pem\`. The last line of each is the time:
+
+\`\`\`bash
+for stamp in heads/*.tsr; do
+  openssl ts -verify -in "$stamp" -data "\${stamp%.tsr}.note" -CAfile AUTHORITY.pem
+  openssl ts -reply -in "$stamp" -text | grep "Time stamp:"
+done
+echo "the time-stamps are good"
+\`\`\`
+
+`.trimStart();
 
 /** The README of an archive: what it is, what to run, how to check it by hand. */
 export function readmeText(facts: ReadmeFacts): string {
@@ -148,7 +165,7 @@ rm text.txt signature.bin
 echo "the signatures are good"
 \`\`\`
 
-Whose key that is, in the form in which fingerprints are compared:
+${facts.stamped > 0 ? STAMPED : ""}Whose key that is, in the form in which fingerprints are compared:
 
 \`\`\`bash
 tail -c 32 key.der | sha256sum | cut -c 1-64

@@ -136,7 +136,10 @@ function ledgerOf(input: ArchiveInput, signed: readonly SignedHead[]): Ledger {
     heads,
     keys,
     sensitivity,
-    signing: signingOf(input.signer, head.size, signers.signedBy[0] as VerifierKey),
+    signing: signingOf(input.signer, signers.signedBy[0] as VerifierKey, {
+      size: head.size,
+      stamped: input.timeStamps?.length ?? 0,
+    }),
     manifest: {
       format: layout.ARCHIVE_FORMAT,
       writer: layout.WRITER_VERSION,

@@ -6,7 +6,7 @@ import type { Signers } from "./trust";
 import { checkWritten } from "./written";
 import { crateFile, proseFiles } from "../content";
 import type { Substance } from "../content";
-import { CRATE } from "../layout";
+import { CRATE, sizeOfTokenPath } from "../layout";
 import type { Manifest } from "../manifest";
 import { signingOf } from "../signing";
 
@@ -17,11 +17,12 @@ export function checkTexts(
   { listed, signers }: { listed: Manifest["files"]; signers: Signers },
 ): CheckLine {
   const check = "texts";
+  const signing = signingOf(keyOf(signers.manifest), keyOf(signers.head), {
+    size: substance.manifest.size,
+    stamped: listed.filter(({ path }) => sizeOfTokenPath(path) !== null).length,
+  });
   const expected = [
-    ...proseFiles(
-      substance,
-      signingOf(keyOf(signers.manifest), substance.manifest.size, keyOf(signers.head)),
-    ),
+    ...proseFiles(substance, signing),
     crateFile(
       substance,
       listed.filter(({ path }) => path !== CRATE),
