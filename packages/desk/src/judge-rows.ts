@@ -8,6 +8,7 @@ import type { Desk } from "./desk";
 import { judgeRow } from "./judge-row";
 import type { JudgedRow } from "./judge-row";
 import type { ReadRows } from "./read-rows";
+import { inColumns } from "./row-source";
 
 export type { JudgedRow } from "./judge-row";
 
@@ -63,14 +64,4 @@ async function compareWithThere(desk: Desk, access: Access, rows: JudgedRow[]): 
     row.fate = "conflict";
     row.conflict ??= conflict;
   }
-}
-
-/** Problems by the columns' own names, where a field was read from a column. */
-function inColumns(row: JudgedRow, columns: ReadRows["columns"]): JudgedRow {
-  const names = new Map(columns.map(({ column, field }) => [field, column]));
-  const named = row.problems.map((problem) => ({
-    ...problem,
-    column: names.get(problem.column) ?? problem.column,
-  }));
-  return { ...row, problems: named };
 }
