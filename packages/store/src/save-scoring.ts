@@ -1,4 +1,5 @@
 import { CHANNEL } from "./append";
+import type { Alongside } from "./append";
 import { findCampaign } from "./campaigns";
 import type { Store } from "./open-store";
 import type { Queries } from "./queries";
@@ -22,8 +23,14 @@ export type Scoring = {
 /**
  * Keeps all that one scoring made, in one transaction, and tells it. Two scorers at one campaign do
  * no harm: the same size gives the same rows, and an older state never replaces a newer one.
+ *
+ * @param alongside what else the transaction writes: what webhooks are told of these standings
  */
-export async function saveScoring(store: Store, scoring: Scoring): Promise<void> {
+export async function saveScoring(
+  store: Store,
+  scoring: Scoring,
+  alongside: Alongside | null = null,
+): Promise<void> {
   const { id: campaignId } = await findCampaign(store, scoring.campaign, store.db);
   const { size, engine, stateVersion, state } = scoring;
   const event = JSON.stringify({ campaign: scoring.campaign, size, what: "scored" });
@@ -38,6 +45,7 @@ export async function saveScoring(store: Store, scoring: Scoring): Promise<void>
     await tx`
       delete from scorer_states where campaign_id = ${campaignId}
         and (engine <> ${engine} or state_version < ${stateVersion})`;
+    await alongside?.(tx, campaignId);
     await tx`select pg_notify(${CHANNEL}, ${event})`;
   });
 }
