@@ -9,13 +9,16 @@ import type { Actor, Desk } from "./desk";
 import { DeskError } from "./desk-error";
 import { exportAuditTrail } from "./export-audit-trail";
 import { importCampaign } from "./import-campaign";
+import { listApiKeys } from "./list-api-keys";
 import { listCampaigns } from "./list-campaigns";
 import { listMembers } from "./list-members";
+import { makeApiKey } from "./make-api-key";
 import { openCampaign } from "./open-campaign";
 import { postMeasurements } from "./post-measurements";
 import { previewMeasurements } from "./preview-measurements";
 import { readCampaign } from "./read-campaign";
 import { registerHypothesis } from "./register-hypothesis";
+import { revokeApiKey } from "./revoke-api-key";
 import { actions, may, permission, roles } from "./roles";
 import type { Action, Permission, Role } from "./roles";
 import { setAsideMeasurement } from "./set-aside-measurement";
@@ -60,6 +63,9 @@ const stated: Record<Action, [visitor: Permission, account: Permission, reader: 
   "open-seal": [n, n, n, y, y],
   "make-remark": [n, n, n, y, y],
   "cite-standings": [n, n, n, y, y],
+  "make-api-key": [n, n, n, y, y],
+  "list-api-keys": [n, n, n, y, y],
+  "revoke-api-key": [n, n, n, y, y],
   "amend-campaign": [n, n, n, n, y],
   declare: [n, n, n, n, y],
   "add-team": [n, n, n, n, y],
@@ -156,6 +162,10 @@ describe("every use-case asks the table", () => {
     "make-remark": (desk, actor, key) =>
       makeRemark(desk, actor, { key, on: 9_999, kind: "question", text: "?" }),
     "cite-standings": (desk, actor, key) => citeStandings(desk, actor, { key, note: "a paper" }),
+    "make-api-key": (desk, actor, key) =>
+      makeApiKey(desk, actor, { key, title: "a pipeline", scopes: ["read"] }),
+    "list-api-keys": (desk, actor, key) => listApiKeys(desk, actor, { key }),
+    "revoke-api-key": (desk, actor, key) => revokeApiKey(desk, actor, { key, id: "none" }),
     "amend-campaign": (desk, actor, key) =>
       amendCampaign(desk, actor, {
         key,

@@ -52,6 +52,10 @@ const permissions = {
   "correct-measurement":    row("no",    "no",    "no",   "own-team", "yes"),
   "withdraw-measurements":  row("no",    "no",    "no",   "own-team", "yes"),
 
+  "make-api-key":           row("no",    "no",    "no",   "yes",      "yes"),
+  "list-api-keys":          row("no",    "no",    "no",   "yes",      "yes"),
+  "revoke-api-key":         row("no",    "no",    "no",   "yes",      "yes"),
+
   "amend-campaign":         row("no",    "no",    "no",   "no",       "yes"),
   "declare":                row("no",    "no",    "no",   "no",       "yes"),
   "add-team":               row("no",    "no",    "no",   "no",       "yes"),
