@@ -66,7 +66,7 @@ export function createAuth({ store, origin, secret }: AuthOptions) {
  * local network): a request is of the same origin when it comes from the host that it goes to.
  * Behind HTTPS only the one stated origin is.
  */
-function trustedOrigins(origin: string, request: Request | undefined): string[] {
+export function trustedOrigins(origin: string, request: Request | undefined): string[] {
   const host = request?.headers.get("host");
   return host && origin.startsWith("http://") ? [origin, `http://${host}`] : [origin];
 }

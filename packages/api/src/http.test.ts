@@ -169,7 +169,7 @@ describe("seals sent by a program", () => {
 
   async function post(path: string, body: unknown, actor: Lagoon["member"] | null) {
     const context = { ...(await server.context()), actor };
-    const headers = { "content-type": "application/json" };
+    const headers = { "content-type": "application/json", origin: ORIGIN };
     const url = `${ORIGIN}/api/v1/campaigns/${open.key}/${path}`;
     const text = typeof body === "string" ? body : JSON.stringify(body);
     return answerHttp(context, new Request(url, { method: "POST", headers, body: text }));

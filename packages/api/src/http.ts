@@ -1,6 +1,9 @@
 import type { Context } from "./context";
+import { answerOnce } from "./http/answer-once";
+import { authenticate, requireScope } from "./http/authenticate";
 import { campaignRoutes } from "./http/campaign";
 import { feedRoutes } from "./http/feed";
+import { countRequest } from "./http/count-request";
 import { readQuery, routeFinder } from "./http/find-route";
 import { ledgerRoutes } from "./http/ledger";
 import { chooseType } from "./http/media-types";
@@ -20,29 +23,45 @@ const find = routeFinder(routes);
  * problem details (RFC 9457).
  */
 export async function answerHttp(ctx: Context, request: Request): Promise<Response> {
+  // How the client stands with its limits is told with refusals too.
+  const counted: Record<string, string> = {};
   try {
-    const answer = await answerRoute(ctx, request);
-    return request.method === "HEAD" ? withoutBody(answer) : answer;
+    const answer = await answerRoute(ctx, request, counted);
+    return told(request.method === "HEAD" ? withoutBody(answer) : answer, counted);
   } catch (error) {
-    return problemResponse(error, ctx.log);
+    return told(problemResponse(error, ctx.log), counted);
   }
 }
 
-async function answerRoute(ctx: Context, request: Request): Promise<Response> {
+async function answerRoute(
+  ctx: Context,
+  request: Request,
+  counted: Record<string, string>,
+): Promise<Response> {
   const url = new URL(request.url);
   const { route, key, parameters } = find(request.method, url.pathname);
+  const actor = await authenticate(ctx, request, key);
+  Object.assign(
+    counted,
+    await countRequest(ctx.desk.store, route.rate, { headers: request.headers, actor }),
+  );
+  requireScope(actor, route);
   const bodyType = bodyTypeOf(request, route);
   const answerType = chooseType(request.headers.get("accept"), Object.keys(route.gives.types));
-  const question: Question = {
+  const asked = {
     ...(route.method === "GET" ? ctx : onPrimary(ctx)),
-    request: limitBody(request, route.takes[bodyType]?.maxBytes ?? null),
+    actor,
     key,
     parameters,
     query: readQuery(route, url.searchParams),
     bodyType,
     answerType,
   };
-  return route.answer(question as Question<never, never>);
+  const answer = (request: Request) =>
+    route.answer({ ...asked, request } as Question<never, never>);
+  const limited = limitBody(request, route.takes[bodyType]?.maxBytes ?? null);
+  if (!route.once) return answer(limited);
+  return answerOnce(asked, { request: limited, campaign: key, actor }, answer);
 }
 
 /** A replica lags, and who decides on it decides on yesterday. */
@@ -54,4 +73,9 @@ function onPrimary(ctx: Context): Context {
 function withoutBody(answer: Response): Response {
   void answer.body?.cancel();
   return new Response(null, { status: answer.status, headers: answer.headers });
+}
+
+function told(answer: Response, counted: Record<string, string>): Response {
+  for (const [name, value] of Object.entries(counted)) answer.headers.set(name, value);
+  return answer;
 }
