@@ -1,5 +1,5 @@
 import { expect, it } from "vitest";
-import fc from "fast-check";
+import * as fc from "fast-check";
 import { LONGEST_LINE, linePieces } from "./stage-lines";
 import type { ReadRow } from "./read-rows";
 

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import fc from "fast-check";
+import * as fc from "fast-check";
 import { measurementContentSchema } from "@weighhouse/campaign/entries";
 import type { MeasurementContent } from "@weighhouse/campaign/entries";
 import { canonicalJson } from "@weighhouse/ledger/canonical";
