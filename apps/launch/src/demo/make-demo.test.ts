@@ -2,7 +2,7 @@ import { mkdtempSync, rmSync } from "node:fs";
 import { tmpdir } from "node:os";
 import path from "node:path";
 import { afterAll, beforeAll, expect, it } from "vitest";
-import { openKeys } from "@weighhouse/store/keys";
+import { openKeys, openSealKey } from "@weighhouse/store/keys";
 import { openStore } from "@weighhouse/store/open-store";
 import type { Store } from "@weighhouse/store/open-store";
 import { readDocument } from "@weighhouse/store/read-document";
@@ -25,6 +25,7 @@ async function openHome(): Promise<Home> {
   const home = mkdtempSync(path.join(tmpdir(), "demo-home-"));
   const keys = path.join(home, "keys");
   const signer = await openKeys({ folder: keys, name: "localhost", make: true });
+  openSealKey({ folder: keys, make: true });
   const store = await openStore({ url: database.url, signer, connections: 2 });
   const place = { home, url: database.url, keys, origin, secret: "s".repeat(32) };
   return { database, place, store };

@@ -1,27 +1,16 @@
-import type { PayloadInput } from "@weighhouse/campaign/entries";
 import { createAuth } from "@weighhouse/api/auth";
-import { addMember } from "@weighhouse/desk/add-member";
-import { addTeam } from "@weighhouse/desk/add-team";
-import { closeRegistration } from "@weighhouse/desk/close-registration";
-import {
-  declareFacility,
-  declareMeasurand,
-  declareObservable,
-  declareSharedError,
-} from "@weighhouse/desk/declare";
 import type { Actor, Desk } from "@weighhouse/desk/desk";
-import { openCampaign } from "@weighhouse/desk/open-campaign";
-import { postMeasurements } from "@weighhouse/desk/post-measurements";
-import { registerHypothesis } from "@weighhouse/desk/register-hypothesis";
 import { findCampaign } from "@weighhouse/store/campaigns";
 import { KeptHeads } from "@weighhouse/store/kept-heads";
-import { openKeys } from "@weighhouse/store/keys";
+import { openKeys, openSealKey } from "@weighhouse/store/keys";
 import { openStore } from "@weighhouse/store/open-store";
 import type { Store } from "@weighhouse/store/open-store";
 import { StoreError } from "@weighhouse/store/store-error";
 import { say } from "../say";
 import { demoPassword, demoPeople, isDemoMade, markDemoMade } from "./accounts";
-import { postings } from "./readings";
+import * as acts from "./acts";
+import type { Act } from "./acts";
+import * as readings from "./readings";
 import * as scenario from "./scenario";
 
 export type DemoPlace = {
@@ -33,7 +22,6 @@ export type DemoPlace = {
   /** Asked before each step; the next start goes on from there. */
   stopping: { readonly aborted: boolean };
 };
-type Act = (email: string) => { desk: Desk; actor: NonNullable<Actor> };
 /** One transaction of the demo, and whether it makes an entry: one then, always. */
 type Step = { at: string; makesEntry: boolean; act: () => Promise<unknown> };
 
@@ -49,7 +37,8 @@ export async function makeDemo(place: DemoPlace): Promise<void> {
     make: false,
   });
   const keptHeads = new KeptHeads(place.keys);
-  const store = await openStore({ url: place.url, signer, keptHeads });
+  const sealKey = openSealKey({ folder: place.keys, make: false });
+  const store = await openStore({ url: place.url, signer, sealKey, keptHeads });
   try {
     const from = await entriesMade(store);
     // Only until it is whole: then it is the users' campaign, whatever they make of it.
@@ -114,63 +103,24 @@ async function play(
 const startsAt = "2025-01-06T08:00:00Z";
 
 function steps(as: Act): Step[] {
+  const { hypotheses, lateHypothesis, keptSeal, heldSeal } = scenario;
+  const { postings, withdrawn, corrected } = readings;
   const later = [
-    ...scenario.hypotheses.map(({ at, content }) => ({ at, act: () => register(as, content) })),
-    { at: scenario.registrationClosedAt, act: () => close(as) },
-    ...postings.map(({ at, readings }) => ({ at, act: () => post(as, readings) })),
-    {
-      at: scenario.lateHypothesis.at,
-      act: () => register(as, scenario.lateHypothesis.content),
-    },
+    ...[...hypotheses, lateHypothesis].map(({ at, content }) => ({
+      at,
+      act: () => acts.register(as, content),
+    })),
+    { at: keptSeal.at, act: () => acts.sealKept(as, keptSeal) },
+    { at: heldSeal.at, act: () => acts.sealHeld(as, heldSeal) },
+    { at: scenario.registrationClosedAt, act: () => acts.close(as) },
+    ...postings.map(({ at, readings: drafts }) => ({ at, act: () => acts.post(as, drafts) })),
+    { at: withdrawn.at, act: () => acts.withdraw(as, withdrawn) },
+    { at: corrected.at, act: () => acts.correct(as, corrected) },
+    { at: keptSeal.until, act: () => acts.openKept(as, keptSeal) },
   ].sort((a, b) => a.at.localeCompare(b.at));
   return [
-    ...declarations(as).map((act) => ({ at: startsAt, makesEntry: true, act })),
-    { at: startsAt, makesEntry: false, act: () => addMembers(as) },
+    ...acts.declarations(as).map((act) => ({ at: startsAt, makesEntry: true, act })),
+    { at: startsAt, makesEntry: false, act: () => acts.addMembers(as) },
     ...later.map((step) => ({ ...step, makesEntry: true })),
   ];
-}
-
-function declarations(as: Act): Step["act"][] {
-  const { desk, actor } = as("coordinator@demo.example");
-  const key = scenario.demoKey;
-  return [
-    () => openCampaign(desk, actor, { campaign: scenario.campaign, visibility: "public" }),
-    ...scenario.observables.map(
-      (observable) => () => declareObservable(desk, actor, { key, observable }),
-    ),
-    ...scenario.measurands.map(
-      (measurand) => () => declareMeasurand(desk, actor, { key, measurand }),
-    ),
-    ...scenario.sharedErrors.map(
-      (sharedError) => () => declareSharedError(desk, actor, { key, sharedError }),
-    ),
-    ...scenario.facilities.map((facility) => () => declareFacility(desk, actor, { key, facility })),
-    ...scenario.teams.map((team) => () => addTeam(desk, actor, { key, team })),
-  ];
-}
-
-async function addMembers(as: Act): Promise<void> {
-  const { desk, actor } = as("coordinator@demo.example");
-  for (const { email, role, team } of demoPeople) {
-    if (role !== "member") continue;
-    await addMember(desk, actor, { key: scenario.demoKey, email, role, team });
-  }
-}
-
-function close(as: Act) {
-  const { desk, actor } = as("coordinator@demo.example");
-  return closeRegistration(desk, actor, { key: scenario.demoKey });
-}
-
-async function register(as: Act, hypothesis: PayloadInput<"hypothesis.registered">): Promise<void> {
-  const { desk, actor } = as(`${hypothesis.team}@demo.example`);
-  await registerHypothesis(desk, actor, { key: scenario.demoKey, hypothesis });
-}
-
-async function post(as: Act, drafts: Record<string, unknown>[]): Promise<void> {
-  const { desk, actor } = as("observer@demo.example");
-  await postMeasurements(desk, actor, {
-    key: scenario.demoKey,
-    source: { from: "drafts", drafts },
-  });
 }

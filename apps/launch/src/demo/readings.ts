@@ -1,5 +1,9 @@
 /** The demo's measurements: one posting a row of `postings`, at its time, by the facility's observers. */
-type Reading = Record<string, unknown> & { id: string; measurand: string; observedAt: string };
+export type Reading = Record<string, unknown> & {
+  id: string;
+  measurand: string;
+  observedAt: string;
+};
 
 const probe = [{ error: "probe-scale" }];
 const thermistor = [{ error: "thermistor-zero" }];
@@ -22,6 +26,15 @@ const reading = (
   ...(sd === null ? {} : { sd }),
   ...more,
 });
+
+/** A string of thermistors frozen into borehole A, read once: heights above the bed, and readings. */
+function profile(values: [height: number, value: number][]): Reading[] {
+  return values.map(([height, value]) =>
+    reading(`a-string-${height}`, "ice-profile-a", "borehole-a", "2025-03-18T12:00", value, 0.05, {
+      conditions: { height },
+    }),
+  );
+}
 
 export const postings: { at: string; readings: Reading[] }[] = [
   {
@@ -51,6 +64,17 @@ export const postings: { at: string; readings: Reading[] }[] = [
         batch: "descent-1",
       }),
     ],
+  },
+  {
+    at: "2025-03-19T11:15:00Z",
+    readings: profile([
+      [8, -0.28],
+      [25, -0.86],
+      [45, -1.52],
+      [70, -2.31],
+      [95, -3.2],
+      [118, -3.94],
+    ]),
   },
   {
     at: "2025-03-27T18:00:00Z",
@@ -142,6 +166,24 @@ export const postings: { at: string; readings: Reading[] }[] = [
         status: "provisional",
       }),
       reading("tilt-07", "uplift-summer", "tilt-array", "2025-07-19T00:00", 9, 3),
+      {
+        ...reading("b-tilt", "uplift-b", "tilt-array", "2025-07-19T06:00", 7, null),
+        limit: "upper",
+        confidence: 0.95,
+      },
+    ],
+  },
+  {
+    at: "2025-08-02T10:00:00Z",
+    readings: [
+      {
+        id: "quakes-07",
+        measurand: "icequakes-july",
+        facility: "tilt-array",
+        observedAt: "2025-07-31T23:00:00Z",
+        count: 45,
+        background: 4,
+      },
     ],
   },
   {
@@ -176,6 +218,20 @@ export const postings: { at: string; readings: Reading[] }[] = [
     ],
   },
 ];
+
+/** Filed wrongly, and taken back: its bottle was another's. */
+export const withdrawn = {
+  at: "2025-05-06T08:10:00Z",
+  ids: ["a-salt-2"],
+  reason: "the bottle held rinse water of the day before; its label was another's",
+};
+
+/** As it was read anew, once the drift of the array was known. */
+export const corrected = {
+  at: "2025-08-27T16:40:00Z",
+  measurement: reading("tilt-07", "uplift-summer", "tilt-array", "2025-07-19T00:00", 12.5, 3),
+  reason: "reduced anew with the drift of the array that the August survey showed",
+};
 
 /** What `npm run demo:stream` posts, one by one: the melt rate that the campaign still waits for. */
 export const streamed = [13.1, 12.4, 14.0, 12.9, 13.6, 12.2, 13.3, 13.9, 12.8, 13.2].map(

@@ -4,9 +4,10 @@ import type { PayloadInput } from "@weighhouse/campaign/entries";
  * The demo campaign: an invented ice rise, invented teams, invented numbers. Heat reaches the bed
  * of the ice and four teams disagree about where it comes from. The readings were written so that
  * each thing the program shows can be met here: a leader and a close second, failed predictions, a
- * failed decisive one, a hypothesis that is silent on much, one filed after data, a reading set
- * aside, disagreeing repeats, shared calibration errors that couple quantities, and a quantity
- * that nobody has measured yet (`npm run demo:stream` measures it).
+ * failed decisive one, a hypothesis that is silent on much, one filed after data, a limit, a count, a
+ * profile, a reading set aside, one corrected and one withdrawn, disagreeing repeats, shared
+ * calibration errors that couple quantities, a sealed prediction that was opened and one that is
+ * still sealed, and a quantity that nobody has measured yet (`npm run demo:stream` measures it).
  */
 export const demoKey = "aldmark-warm-bed";
 
@@ -41,6 +42,14 @@ export const observables: PayloadInput<"observable.declared">[] = [
   { key: "sliding-speed", title: "Sliding speed of the ice", unit: "m/yr", scale: "linear" },
   { key: "uplift", title: "Surface uplift", unit: "mm", scale: "linear" },
   { key: "melt-rate", title: "Basal melt rate", unit: "mm/yr", scale: "linear" },
+  {
+    key: "ice-temperature",
+    title: "Ice temperature below that of the bed",
+    unit: "K",
+    scale: "linear",
+    conditions: [{ key: "height", title: "Height above the bed", unit: "m" }],
+  },
+  { key: "icequakes", title: "Icequakes at the bed", unit: "1", scale: "count" },
 ];
 
 const within = (from: string, to: string | null) => ({
@@ -91,6 +100,30 @@ export const measurands: PayloadInput<"measurand.declared">[] = [
     title: "Helium ratio, borehole A",
     window: within("2025-04-01", "2025-09-01"),
     reference: { family: "uniform", lower: 0.02, upper: 20 },
+  },
+  {
+    key: "ice-profile-a",
+    observable: "ice-temperature",
+    title: "Ice temperature, borehole A",
+    window: within("2025-03-01", "2025-07-01"),
+    shape: "curve",
+    where: { height: [0, 120] },
+    scatter: 0.02,
+    reference: { family: "polynomial", in: "height", degree: 1, centre: -2, sd: 2 },
+  },
+  {
+    key: "icequakes-july",
+    observable: "icequakes",
+    title: "Icequakes, July",
+    window: within("2025-07-01", "2025-08-01"),
+    reference: { family: "gamma", mean: 20, sd: 20 },
+  },
+  {
+    key: "uplift-b",
+    observable: "uplift",
+    title: "Uplift at borehole B",
+    window: within("2025-05-01", "2025-09-01"),
+    reference: { family: "uniform", lower: -60, upper: 60 },
   },
   {
     key: "uplift-summer",
@@ -152,6 +185,14 @@ export const hypotheses: Registration[] = [
       team: "deep-heat",
       statement:
         "A shallow intrusion under the rise raises the heat flux threefold; the ice above merely melts at its foot. Gases from the mantle reach the bed with the heat.",
+      parameters: [
+        {
+          key: "conducted",
+          title: "Heat conducted into the ice",
+          unit: "mW/m^2",
+          prior: { family: "normal", mean: 75, sd: 8 },
+        },
+      ],
       predictions: [
         { measurand: "heat-flux-a", expected: 190, tolerance: dex(0.08) },
         { measurand: "heat-flux-b", expected: 120, tolerance: dex(0.1) },
@@ -160,6 +201,9 @@ export const hypotheses: Registration[] = [
         { measurand: "conductivity-a", expected: 0.06, tolerance: dex(0.3) },
         { measurand: "helium-a", expected: 3, tolerance: dex(0.2), decisive: true },
         { measurand: "uplift-summer", expected: 12, tolerance: { family: "normal", sd: 6 } },
+        { measurand: "uplift-b", expected: 5, tolerance: { family: "normal", sd: 4 } },
+        { measurand: "ice-profile-a", expected: "-conducted * height / 2100" },
+        { measurand: "icequakes-july", tolerance: { family: "gamma", mean: 10, sd: 5 } },
         { measurand: "sliding-autumn", expected: 9, tolerance: { family: "normal", sd: 2 } },
         { measurand: "melt-rate-a", expected: 14, tolerance: { family: "normal", sd: 2 } },
       ],
@@ -173,6 +217,14 @@ export const hypotheses: Registration[] = [
       team: "sliders",
       statement:
         "The ice slides on till in summer and rests in winter; friction makes the heat, so speed, uplift and heat flux go together, and no gas comes from below.",
+      parameters: [
+        {
+          key: "conducted",
+          title: "Heat conducted into the ice",
+          unit: "mW/m^2",
+          prior: { family: "uniform", lower: 40, upper: 90 },
+        },
+      ],
       predictions: [
         { measurand: "heat-flux-a", expected: 150, tolerance: dex(0.08) },
         { measurand: "heat-flux-b", expected: 150, tolerance: dex(0.08) },
@@ -180,6 +232,12 @@ export const hypotheses: Registration[] = [
         { measurand: "sliding-spring", expected: 12, tolerance: { family: "normal", sd: 1.5 } },
         { measurand: "helium-a", expected: 0.9, tolerance: dex(0.1), decisive: true },
         { measurand: "uplift-summer", expected: 15, tolerance: { family: "normal", sd: 5 } },
+        {
+          measurand: "uplift-b",
+          tolerance: { family: "interval", lower: -10, upper: 5 },
+        },
+        { measurand: "ice-profile-a", expected: "-conducted * height / 2100" },
+        { measurand: "icequakes-july", tolerance: { family: "gamma", mean: 45, sd: 15 } },
         { measurand: "sliding-autumn", expected: 14, tolerance: { family: "normal", sd: 1.5 } },
         { measurand: "melt-rate-a", expected: 11, tolerance: { family: "normal", sd: 1.5 } },
       ],
@@ -219,10 +277,43 @@ export const hypotheses: Registration[] = [
         { measurand: "sliding-spring", expected: 3, tolerance: { family: "normal", sd: 1 } },
         { measurand: "uplift-summer", expected: 25, tolerance: { family: "normal", sd: 5 } },
         { measurand: "melt-rate-a", expected: 0 },
+        { measurand: "icequakes-july", tolerance: { family: "gamma", mean: 3, sd: 3 } },
       ],
     },
   },
 ];
+
+export type Seal = {
+  hypothesis: string;
+  at: string;
+  /** When it is opened: by its team at that time, or by the clock. */
+  until: string;
+  prediction: PayloadInput<"hypothesis.registered">["predictions"][number];
+};
+
+/** Kept by its team, which opens it when the window has passed. */
+export const keptSeal: Seal = {
+  hypothesis: "relict-lake",
+  at: "2025-02-26T21:45:00Z",
+  until: "2025-09-01T00:00:00Z",
+  prediction: {
+    measurand: "uplift-b",
+    expected: 18,
+    tolerance: { family: "normal", sd: 6 },
+  },
+};
+
+/** Held by the server, and sealed for as long as the demo is about. */
+export const heldSeal: Seal = {
+  hypothesis: "brine-seep",
+  at: "2025-02-27T09:20:00Z",
+  until: "2034-12-01T00:00:00Z",
+  prediction: {
+    measurand: "melt-rate-a",
+    expected: 12,
+    tolerance: { family: "normal", sd: 3 },
+  },
+};
 
 /** Registered when half of the data were in: marked so, and left out of the standings. */
 export const lateHypothesis: Registration = {
