@@ -2,7 +2,7 @@
 
 import { useId, type ComponentProps, type ReactNode } from "react";
 import Link from "next/link";
-import { usePathname } from "next/navigation";
+import { usePathname, useSearchParams } from "next/navigation";
 import { Button } from "@/look/button";
 import { Notice } from "@/look/notice";
 import { Time } from "@/look/time";
@@ -34,7 +34,8 @@ export function DraftNote({ draft }: { draft: KeptDraft }) {
 
 /** Why sending failed, in words, with the way on. */
 export function FailureNote({ failure }: { failure: Failure | null }) {
-  const path = usePathname();
+  const search = useSearchParams().toString();
+  const path = usePathname() + (search === "" ? "" : `?${search}`);
   if (failure === null) return null;
   return (
     <Notice role="alert" tone="bad" label="Not sent.">

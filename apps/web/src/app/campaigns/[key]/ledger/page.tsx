@@ -2,6 +2,7 @@ import type { Metadata } from "next";
 import Link from "next/link";
 import { CampaignFrame } from "@/campaign/campaign-frame";
 import { EntryRows } from "@/ledger/entry-rows";
+import { TimeStampFacts } from "@/ledger/time-stamp-facts";
 import { Section } from "@/look/section";
 import { readCampaign, sizeFrom } from "@/server/campaign";
 import { readFor } from "@/server/reader";
@@ -21,8 +22,8 @@ export default async function LedgerPage(props: {
   const { size: end } = await readCampaign(key, size);
   const to = Math.min(end, sizeFrom({ size: search.to ?? [] }) ?? end);
   const from = Math.max(0, to - PER_PAGE);
-  const { entries } = await readFor(`/campaigns/${key}/ledger`, (caller) =>
-    caller.ledger.entries({ key, from, to }),
+  const [{ entries }, stamps] = await readFor(`/campaigns/${key}/ledger`, (caller) =>
+    Promise.all([caller.ledger.entries({ key, from, to }), caller.ledger.timeStamps({ key })]),
   );
   const path = `/campaigns/${key}/ledger`;
   const address = (next: number) =>
@@ -60,6 +61,17 @@ export default async function LedgerPage(props: {
             </Link>
           ) : null}
         </nav>
+      </Section>
+      <Section
+        title="Time-stamps"
+        gloss="an outside authority’s word on when a head was there (RFC 3161)"
+        actions={
+          <a className="link text-[14px]" href={`/api/v1/campaigns/${key}/ledger/time-stamps`}>
+            tokens
+          </a>
+        }
+      >
+        <TimeStampFacts path={path} stamps={stamps} />
       </Section>
     </CampaignFrame>
   );
