@@ -4,6 +4,8 @@ import { CampaignFrame } from "@/campaign/campaign-frame";
 import { MeasurementActions } from "@/forms/records/measurement-actions";
 import { Notice } from "@/look/notice";
 import { Section } from "@/look/section";
+import { sameDataAs } from "@/measurement/same-data";
+import { SameDataRows } from "@/measurement/same-data-rows";
 import { VersionRows } from "@/measurement/version-rows";
 import { readCampaign, sizeFrom } from "@/server/campaign";
 import { readFor } from "@/server/reader";
@@ -36,6 +38,7 @@ export default async function MeasurementPage(props: Props) {
       return kind === undefined ? [] : [[each.key, kind] as const];
     }),
   );
+  const sameData = sameDataAs(document, measurement);
   const own =
     role === "coordinator" || (role === "member" && team !== null && team === measurement.team);
   return (
@@ -56,6 +59,16 @@ export default async function MeasurementPage(props: Props) {
         ) : null}
         <VersionRows versions={versions} observables={observables} path={`${base}/ledger`} />
       </Section>
+      {sameData.some((one) => one.id !== id) ? (
+        <Section title="From the same data" gloss={measurement.sameData} id="same-data">
+          <SameDataRows
+            measurement={measurement}
+            all={sameData}
+            observables={observables}
+            path={`${base}/measurements`}
+          />
+        </Section>
+      ) : null}
       {own && size === null && !newest.withdrawn ? (
         <MeasurementActions document={document} measurement={measurement} />
       ) : null}
