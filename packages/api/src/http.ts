@@ -6,6 +6,7 @@ import { feedRoutes } from "./http/feed";
 import { countRequest } from "./http/count-request";
 import { readQuery, routeFinder } from "./http/find-route";
 import { ledgerRoutes } from "./http/ledger";
+import { measurementRoutes } from "./http/measurements";
 import { chooseType } from "./http/media-types";
 import { bodyTypeOf, limitBody } from "./http/read-body";
 import type { Question, Route } from "./http/route";
@@ -13,7 +14,13 @@ import { sealRoutes } from "./http/seals";
 import { problemResponse } from "./problem-details";
 
 /** All that stands below `/api/v1/campaigns/{key}/`, in the order in which it is described. */
-export const routes: Route[] = [...campaignRoutes, ...ledgerRoutes, ...feedRoutes, ...sealRoutes];
+export const routes: Route[] = [
+  ...campaignRoutes,
+  ...measurementRoutes,
+  ...ledgerRoutes,
+  ...feedRoutes,
+  ...sealRoutes,
+];
 
 const find = routeFinder(routes);
 

@@ -29,7 +29,7 @@ export async function previewMeasurements(
       const { rows, columns, problems } = readRows(source, document);
       return { pieces: piecesOf(rows, 0), columns, problems, place: inText("") };
     },
-    row: (row) => rows.push(row),
+    row: (row) => void rows.push(row),
   });
   return { ...previewed, rows };
 }

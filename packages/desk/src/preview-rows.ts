@@ -46,7 +46,7 @@ export async function previewRows(
     key: string;
     source: RowSource;
     correlations?: Correlations;
-    row: (row: JudgedRow) => void;
+    row: (row: JudgedRow) => void | Promise<void>;
     tell?: TellProgress;
   },
 ): Promise<PreviewedRows> {
@@ -62,7 +62,7 @@ export async function previewRows(
   const at = timeAt(desk);
   const table = { rows, columns, problems: noneRefused(rows, unreadable) };
   const judged = await judgeRows(desk, table, { document, access, at });
-  for (const row of judged.rows) told(row);
+  for (const row of judged.rows) await told(row);
   const problems = [...table.problems, ...judged.problems.map(wholeProblem)];
   const counts = countFates(judged.rows);
   const postable =

@@ -1,0 +1,103 @@
+import * as z from "zod";
+import { postRows } from "@weighhouse/desk/post-rows";
+import type { PostedRows } from "@weighhouse/desk/post-rows";
+import { previewRows } from "@weighhouse/desk/preview-rows";
+import type { JudgedRow } from "@weighhouse/desk/judge-rows";
+import { linesAnswer, someOf } from "./lines-answer";
+import { postedLineSchema, postedSchema, previewLineSchema } from "./measurement-answers";
+import { created } from "./respond";
+import { route } from "./route";
+import { rowBodies, rowDefaultsSchema, rowsOfBody } from "./row-body";
+
+const group = "Measurements";
+const scope = "measurements:post";
+const LINES = "application/x-ndjson";
+
+export const measurementRoutes = [
+  route({
+    method: "POST",
+    path: "measurements",
+    group,
+    summary: "Post measurements",
+    says: "Enters all of them or none. An id that is there with the same content changes nothing, so that what was broken off can be sent again; one with other content refuses the whole. With Accept: application/x-ndjson the answer tells how far it is, its last line being the answer or the problem.",
+    scope,
+    once: true,
+    query: rowDefaultsSchema,
+    takes: rowBodies,
+    gives: {
+      status: 201,
+      types: {
+        "application/json": { schema: postedSchema, says: "What was entered." },
+        [LINES]: { schema: postedLineSchema, says: "How far it is, then what was entered." },
+      },
+    },
+    async answer({ desk, actor, log, key, answerType, ...question }) {
+      const body = await rowsOfBody(question);
+      if (answerType !== LINES) {
+        return created(postedAnswer(await postRows(desk, actor, { key, ...body })));
+      }
+      return linesAnswer(log, async (write) => {
+        const tell = someOf(write, "progress");
+        const posted = await postRows(desk, actor, { key, ...body, tell });
+        await write({ done: postedAnswer(posted) });
+      });
+    },
+  }),
+  route({
+    method: "POST",
+    path: "measurements/preview",
+    group,
+    summary: "Try a posting",
+    says: "Takes what a posting takes, enters nothing, and tells each row's fate and which verdicts and standings would change.",
+    scope,
+    rate: "heavy",
+    query: rowDefaultsSchema.extend({
+      rows: z
+        .enum(["all", "faults"])
+        .optional()
+        .describe("faults leaves out the rows that are good; all unless given."),
+    }),
+    takes: rowBodies,
+    gives: {
+      status: 200,
+      types: {
+        [LINES]: { schema: previewLineSchema, says: "A line for each row, then the whole." },
+      },
+    },
+    async answer({ desk, actor, log, key, query: { rows, ...query }, request, bodyType }) {
+      const body = await rowsOfBody({ request, bodyType, query });
+      return linesAnswer(log, async (write) => {
+        const preview = await previewRows(desk, actor, {
+          key,
+          ...body,
+          tell: someOf(write, "progress"),
+          row: async (row) => {
+            if (rows === "faults" && !isAtFault(row)) return;
+            await write({ row: rowAnswer(row) });
+          },
+        });
+        await write({ preview });
+      });
+    },
+  }),
+];
+
+/** What a posting answers, in either form. */
+export function postedAnswer({ key, posted, alreadyThere, appended, ids }: PostedRows) {
+  return {
+    key,
+    posted,
+    alreadyThere,
+    entries: appended && { from: appended.from, to: appended.to },
+    treeHead: appended && appended.treeHead,
+    ids,
+  };
+}
+
+function isAtFault({ fate }: JudgedRow): boolean {
+  return fate === "refused" || fate === "conflict";
+}
+
+function rowAnswer({ measurement, ...row }: JudgedRow) {
+  return { ...row, measurand: measurement?.measurand ?? null };
+}
