@@ -13,9 +13,8 @@ export function selectedMeasurements(selection: Selection, before: PartsBefore):
       return isCurrent(content) ? [{ part: "measurement", key, content }] : [];
     });
   }
-  const { from, to } = selection;
-  return [...before.measurementsOf(selection.facility)].filter(
-    ({ content }) => isCurrent(content) && isWithin(content["observedAt"], from, to),
+  return [...before.measurementsOf(selection.facility)].filter(({ content }) =>
+    isWithin(content, selection),
   );
 }
 
@@ -24,7 +23,12 @@ export function isCurrent(content: PartContent | null): content is PartContent {
   return content !== null && (content["withdrawn"] ?? null) === null;
 }
 
-function isWithin(observedAt: unknown, from: string | null, to: string | null): boolean {
+type Range = { from: string | null; to: string | null };
+
+/** Whether a measurement that isn't withdrawn was observed within a range. */
+export function isWithin(content: PartContent, { from, to }: Range): boolean {
+  if (!isCurrent(content)) return false;
+  const { observedAt } = content;
   if (typeof observedAt !== "string") return from === null && to === null;
   return (
     (from === null || compareInstants(observedAt, from) >= 0) &&

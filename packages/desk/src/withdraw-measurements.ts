@@ -4,12 +4,12 @@ import {
   MEASUREMENTS_PER_ENTRY,
   selectionSchema,
 } from "@weighhouse/campaign/entries";
-import type { Selection } from "@weighhouse/campaign/entries";
 import { measurementId } from "@weighhouse/campaign/fields";
 import { Parts } from "@weighhouse/campaign/parts";
-import { selectedMeasurements } from "@weighhouse/campaign/selection";
+import type { Part } from "@weighhouse/campaign/parts";
+import { isWithin, selectedMeasurements } from "@weighhouse/campaign/selection";
 import { scoreCampaign } from "@weighhouse/engine/score";
-import { enter, requireOwnTeam } from "./access";
+import { enter } from "./access";
 import type { Access } from "./access";
 import { appended } from "./appended";
 import type { Appended } from "./appended";
@@ -17,6 +17,7 @@ import type { Actor, Desk } from "./desk";
 import { invalid } from "./desk-error";
 import { documentAfter } from "./document-after";
 import type { NewEntry } from "./document-after";
+import { requireOwnMeasurements } from "./own-measurements";
 import { parseInput } from "./parse-input";
 import { authorOf, readNow, recordEntries } from "./record-entries";
 import type { Now } from "./record-entries";
@@ -24,13 +25,19 @@ import { standingsChanges } from "./standings-changes";
 import type { StandingsChanges } from "./standings-changes";
 import { timeAt } from "./time";
 
+const action = "withdraw-measurements";
 const [, ofFacility] = selectionSchema.options;
 
-/** By ids, as many as one likes, or a facility's within a range of observation (ends included). */
+/**
+ * By ids, as many as one likes, or those observed within a range (ends included), a facility's or
+ * all.
+ */
 const selection = z.discriminatedUnion("by", [
   z.strictObject({ by: z.literal("ids"), ids: z.array(measurementId).min(1) }),
   ofFacility,
+  ofFacility.omit({ facility: true }).extend({ by: z.literal("range") }),
 ]);
+type Wanted = z.output<typeof selection>;
 
 export const withdrawMeasurementsInput = z.strictObject({
   key: z.string(),
@@ -54,10 +61,10 @@ export async function withdrawMeasurements(
   input: z.input<typeof withdrawMeasurementsInput>,
 ): Promise<Appended> {
   const { key, selection, reason } = parseInput(withdrawMeasurementsInput, input);
-  const access = await enter(desk, actor, key, "withdraw-measurements");
-  const stored = await recordEntries(desk, access, ({ parts }) => {
-    idsOf(parts, selection, access);
-    return { entries: withdrawalEntries(selection, reason), fields: [], pointer: "" };
+  const access = await enter(desk, actor, key, action);
+  const stored = await recordEntries(desk, access, async ({ parts }) => {
+    const ids = await idsOf(desk, access, { parts, selection });
+    return { entries: withdrawalEntries({ selection, ids, reason }), fields: [], pointer: "" };
   });
   return appended(key, stored);
 }
@@ -69,24 +76,24 @@ export async function previewWithdrawal(
   input: z.input<typeof previewWithdrawalInput>,
 ): Promise<WithdrawalPreview> {
   const { key, selection } = parseInput(previewWithdrawalInput, input);
-  const access = await enter(desk, actor, key, "withdraw-measurements");
-  const now = await readNow(desk, key);
-  const { parts, document, size } = now;
-  const ids = idsOf(parts, selection, access);
+  const access = await enter(desk, actor, key, action);
+  const { parts, document, size } = await readNow(desk, key);
+  const ids = await idsOf(desk, access, { parts, selection });
   const moment = { by: authorOf(access), at: timeAt(desk), size };
+  const entries = withdrawalEntries({ selection, ids, reason: "-" });
   const before = scoreCampaign(document);
-  const after = scoreCampaign(documentAfter(parts, withdrawalEntries(selection, "-"), moment));
+  const after = scoreCampaign(documentAfter(parts, entries, moment));
   const changes = before.ok && after.ok ? standingsChanges(before.value, after.value) : null;
   return { size, ids, changes };
 }
 
-/** Refuses a selection of nothing, of what isn't there, and of another team's. */
-function idsOf(
-  parts: Now["parts"],
-  selection: z.output<typeof withdrawMeasurementsInput>["selection"],
+/** Refuses a selection of nothing, of what isn't there, and of what is another's. */
+async function idsOf(
+  desk: Desk,
   access: Access,
-): string[] {
-  const selected = selectedMeasurements(selection, new Parts(parts));
+  { parts, selection }: { parts: Now["parts"]; selection: Wanted },
+): Promise<string[]> {
+  const selected = selectedParts(parts, selection);
   const found = new Set(selected.map(({ key }) => key));
   if (selection.by === "ids") {
     const unknown = selection.ids.flatMap((id, index) => (found.has(id) ? [] : [{ id, index }]));
@@ -101,22 +108,32 @@ function idsOf(
       );
     }
   } else if (found.size === 0) {
-    const allowed = "a facility and a range with a measurement or more";
+    const allowed = "a range with a measurement or more";
     throw invalid([
       { pointer: "/selection", code: "unknown-key", found: "no measurement", allowed },
     ]);
   }
-  for (const { content } of selected) {
-    requireOwnTeam(access, "withdraw-measurements", (content["team"] ?? null) as string | null);
-  }
+  const measurements = selected.map(({ key: id, content }) => ({
+    id,
+    team: (content["team"] ?? null) as string | null,
+  }));
+  await requireOwnMeasurements(desk, access, { action, measurements });
   return [...found];
 }
 
-function withdrawalEntries(selection: Selection, reason: string): NewEntry[] {
+function selectedParts(parts: Now["parts"], selection: Wanted): Part[] {
+  if (selection.by !== "range") return selectedMeasurements(selection, new Parts(parts));
+  return parts.filter(
+    ({ part, content }) => part === "measurement" && isWithin(content, selection),
+  );
+}
+
+/** A facility's are named by the facility and the range, all others by their ids. */
+function withdrawalEntries(of: { selection: Wanted; ids: string[]; reason: string }): NewEntry[] {
+  const { selection, ids, reason } = of;
   if (selection.by === "facility") {
     return [{ kind: "measurements.withdrawn", payload: { selection, reason } }];
   }
-  const ids = [...new Set(selection.ids)];
   const entries: NewEntry[] = [];
   for (let from = 0; from < ids.length; from += MEASUREMENTS_PER_ENTRY) {
     const some = { by: "ids" as const, ids: ids.slice(from, from + MEASUREMENTS_PER_ENTRY) };
