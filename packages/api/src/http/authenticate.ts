@@ -18,8 +18,10 @@ export async function authenticate(
   request: Request,
   campaign: string,
 ): Promise<Actor> {
-  const text = /^bearer +(.*)$/i.exec(request.headers.get("authorization") ?? "")?.[1];
-  if (text === undefined) {
+  const authorization = request.headers.get("authorization") ?? "";
+  const [, text = ""] = /^bearer\b *(.*)$/i.exec(authorization) ?? [];
+  // Another scheme is for a proxy before this server, not for it.
+  if (!/^bearer\b/i.test(authorization)) {
     if (ctx.actor !== null && !isSafe(request.method)) requireSameOrigin(ctx, request);
     return ctx.actor;
   }
