@@ -29,13 +29,8 @@ export type EcsvHeader = {
 export function readEcsvHeader(text: string): EcsvHeader | TableProblem {
   const { lines, body } = commentLines(text);
   const version = /^%ECSV (\d+)\.(\d+)(?:\.\d+)?$/.exec(lines[0]?.trim() ?? "");
-  if (version === null || version[1] !== "1") {
-    return at(
-      1,
-      version?.[0] ?? `${(lines[0] ?? "no comment").slice(0, 40)} in the first line`,
-      "# %ECSV 1.0",
-    );
-  }
+  if (version === null) return at(1, "a first line without # %ECSV", "# %ECSV 1.0");
+  if (version[1] !== "1") return at(1, version[0], "%ECSV 1.0");
   const header = readYaml(lines.slice(1).join("\n"), 2);
   if (!(header instanceof Map)) return header;
   const delimiter = header.get("delimiter") ?? " ";

@@ -62,7 +62,9 @@ class Reading {
   /** One for what is understood, several for the parts of what isn't. */
   sources(name: string, node: unknown, depth: number): EcsvSource[] {
     if (!(node instanceof Map) || depth > MAX_DEPTH) return [];
+    const known = this.problems.length;
     const source = this.#source(node, depth);
+    if (this.problems.length > known) return [];
     if (source !== null) {
       return [
         {
@@ -73,7 +75,7 @@ class Reading {
     }
     const className = textOf(node, "__class__");
     if (className !== null) {
-      this.notes.push(`${name} is a ${className}: its parts are taken as columns of their own`);
+      this.notes.push(`${name} is of the class ${className}: its parts are columns of their own`);
     }
     return [...(node as Node)].flatMap(([part, child]) =>
       child instanceof Map && (child.has("__class__") || child.has("name"))

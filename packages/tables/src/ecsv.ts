@@ -52,7 +52,10 @@ function readBody(text: string, header: EcsvHeader, types: readonly EcsvType[]):
       ...types.flatMap(({ note }) => note ?? []),
       ...notes,
       ...cells.notes(),
-      ...(comments > 0 ? [`${comments} comment lines among the rows left out`] : []),
+      ...(/[\r\n]$/.test(text) ? [] : ["the last line isn't ended: the file may be cut off"]),
+      ...(comments > 0
+        ? [`${comments} comment ${comments === 1 ? "line" : "lines"} among the rows left out`]
+        : []),
     ],
   };
 }
