@@ -10,6 +10,7 @@ import { measurementRoutes } from "./http/measurements";
 import { chooseType } from "./http/media-types";
 import { bodyTypeOf, limitBody } from "./http/read-body";
 import type { Question, Route } from "./http/route";
+import { recordRoutes } from "./http/records";
 import { sealRoutes } from "./http/seals";
 import { problemResponse } from "./problem-details";
 
@@ -17,6 +18,7 @@ import { problemResponse } from "./problem-details";
 export const routes: Route[] = [
   ...campaignRoutes,
   ...measurementRoutes,
+  ...recordRoutes,
   ...ledgerRoutes,
   ...feedRoutes,
   ...sealRoutes,
