@@ -11,4 +11,5 @@ export { requestRates } from "./request-rates";
 export { heldSeals } from "./seals";
 export { scorerStates, standings, timelinePoints, timelineSteps } from "./standings";
 export { timeStamps } from "./time-stamps";
+export { stagedEntries, stagedFates, stagedMeasurements, stagedParts, uploads } from "./uploads";
 export { webhookDeliveries, webhooks } from "./webhooks";
