@@ -8,11 +8,14 @@ import { queueTimeStamps, TIME_STAMP_TASK } from "@weighhouse/store/time-stamps"
 import { workerLogger } from "@weighhouse/store/worker-logger";
 import { run } from "graphile-worker";
 import type { WorkerEvents } from "graphile-worker";
+import type { WebhookSettings } from "@weighhouse/desk/webhook-settings";
 import { datesTask } from "./dates-task";
 import { watchScorers } from "./living-scorers";
 import { timeStampTask } from "./time-stamp-task";
 import type { TimeStampAuthority } from "./time-stamp-task";
 import { scoreCampaign } from "./score-campaign";
+import type { ScoreOptions } from "./score-campaign";
+import { runDeliveries } from "./webhook-runner";
 
 export type RunningScorer = { stop(): Promise<void>; ended: Promise<void> };
 
@@ -23,19 +26,25 @@ export type ScorerOptions = {
   everyMs?: number;
   /** Stamps heads; a scorer without one leaves that to others. */
   authority?: TimeStampAuthority | null;
+  /** Where webhooks may lead, and what they are told leads to. */
+  webhooks?: WebhookSettings;
 };
+
+const PUBLIC_ONLY: WebhookSettings = { reach: "public", origin: "http://localhost:3000" };
 
 /** Starts a scorer on a store. Any number of them, on any machines, share the campaigns. */
 export async function runScorer(store: Store, options: ScorerOptions = {}): Promise<RunningScorer> {
-  const { concurrency = 1, everyMs = 10_000, authority = null } = options;
+  const { concurrency = 1, everyMs = 10_000, authority = null, webhooks = PUBLIC_ONLY } = options;
+  const { origin, reach } = webhooks;
   const watch = await watchScorers(store, { everyMs });
   let stopping = false;
   const events = new EventEmitter() as WorkerEvents;
-  events.on("pool:create", ({ workerPool }) => {
+  const join = (poolId: string) => {
     watch
-      .join(workerPool.id)
+      .join(poolId)
       .catch((error: unknown) => store.log.warn({ error }, "could not mark this scorer as alive"));
-  });
+  };
+  events.on("pool:create", ({ workerPool }) => join(workerPool.id));
   const runner = await run({
     connectionString: store.url,
     concurrency,
@@ -44,7 +53,7 @@ export async function runScorer(store: Store, options: ScorerOptions = {}): Prom
     logger: workerLogger(store.log),
     events,
     taskList: {
-      [SCORE_TASK]: (payload) => scoreTask(store, payload, () => stopping),
+      [SCORE_TASK]: (payload) => scoreTask(store, payload, { stopping: () => stopping, origin }),
       // What dates ask for is appended, so only who holds the signing key takes such jobs.
       ...(store.signer === null ? {} : { [DATES_TASK]: (payload) => datesTask(store, payload) }),
       ...(authority === null
@@ -52,6 +61,8 @@ export async function runScorer(store: Store, options: ScorerOptions = {}): Prom
         : { [TIME_STAMP_TASK]: (payload) => timeStampTask(store, authority, payload) }),
     },
   });
+  // Secrets are encrypted: only who holds the key for them delivers.
+  const deliveries = store.sealKey === null ? null : await runDeliveries(store, { reach, join });
   await lookForLost(store, authority !== null);
   const timer = setInterval(() => {
     lookForLost(store, authority !== null).catch((error: unknown) =>
@@ -59,11 +70,11 @@ export async function runScorer(store: Store, options: ScorerOptions = {}): Prom
     );
   }, 6 * everyMs);
   return {
-    ended: runner.promise,
+    ended: Promise.race([runner.promise, ...(deliveries === null ? [] : [deliveries.promise])]),
     async stop() {
       stopping = true;
       clearInterval(timer);
-      await runner.stop();
+      await Promise.all([runner.stop(), deliveries?.stop()]);
       await watch.leave();
     },
   };
@@ -75,11 +86,11 @@ async function lookForLost(store: Store, stamps: boolean): Promise<void> {
   if (stamps) await queueTimeStamps(store);
 }
 
-async function scoreTask(store: Store, payload: unknown, stopping: () => boolean): Promise<void> {
+async function scoreTask(store: Store, payload: unknown, options: ScoreOptions): Promise<void> {
   const { campaign } = payload as { campaign: string };
   const from = performance.now();
   try {
-    const done = await scoreCampaign(store, campaign, stopping);
+    const done = await scoreCampaign(store, campaign, options);
     if (!done) await queueScoring(store.sql, campaign);
   } catch (error) {
     // A campaign that isn't there won't come: to try again would be for nothing.

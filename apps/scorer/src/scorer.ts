@@ -30,7 +30,10 @@ async function main(): Promise<number> {
     log,
     connections: 3,
   });
-  const scorer = await runScorer(store, { authority: authorityOf(settings) });
+  const scorer = await runScorer(store, {
+    authority: authorityOf(settings),
+    webhooks: { reach: settings.WEIGHHOUSE_WEBHOOKS, origin: originOf(settings) },
+  });
   log.info({}, "scoring");
   await Promise.race([scorer.ended, signalled()]);
   await scorer.stop();
@@ -38,15 +41,20 @@ async function main(): Promise<number> {
   return 0;
 }
 
-/** With keys it does what dates ask for, too; without, it scores and signs nothing. */
-async function keysOf({ WEIGHHOUSE_KEYS: folder, WEIGHHOUSE_ORIGIN: origin, PORT }: Settings) {
+/** With keys it does what dates ask for and sends deliveries, too; without, it scores and signs nothing. */
+async function keysOf(settings: Settings) {
+  const folder = settings.WEIGHHOUSE_KEYS;
   if (folder === undefined) return { signer: null, sealKey: null, keptHeads: null };
-  const name = new URL(origin ?? `http://localhost:${PORT}`).hostname;
+  const name = new URL(originOf(settings)).hostname;
   return {
     signer: await openKeys({ folder, name, make: false }),
     sealKey: openSealKey({ folder, make: false }),
     keptHeads: new KeptHeads(folder),
   };
+}
+
+function originOf({ WEIGHHOUSE_ORIGIN: origin, PORT }: Settings): string {
+  return origin ?? `http://localhost:${PORT}`;
 }
 
 /** Read now: a wrong file is found at the start, not at the first time-stamp. */

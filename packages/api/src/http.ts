@@ -12,6 +12,7 @@ import { bodyTypeOf, limitBody } from "./http/read-body";
 import type { Question, Route } from "./http/route";
 import { recordRoutes } from "./http/records";
 import { sealRoutes } from "./http/seals";
+import { webhookRoutes } from "./http/webhooks";
 import { problemResponse } from "./problem-details";
 
 /** All that stands below `/api/v1/campaigns/{key}/`, in the order in which it is described. */
@@ -22,6 +23,7 @@ export const routes: Route[] = [
   ...ledgerRoutes,
   ...feedRoutes,
   ...sealRoutes,
+  ...webhookRoutes,
 ];
 
 const find = routeFinder(routes);

@@ -8,6 +8,7 @@ import { measurementsRouter } from "./routers/measurements";
 import { membersRouter, teamsRouter } from "./routers/people";
 import { sealsRouter } from "./routers/seals";
 import { standingsRouter } from "./routers/standings";
+import { webhooksRouter } from "./routers/webhooks";
 
 import { router } from "./trpc";
 
@@ -22,6 +23,7 @@ export const appRouter = router({
   seals: sealsRouter,
   ledger: ledgerRouter,
   audit: auditRouter,
+  webhooks: webhooksRouter,
   events: eventsRouter,
 });
 

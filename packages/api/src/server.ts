@@ -44,7 +44,7 @@ async function openServer(environment: NodeJS.ProcessEnv, log: Log): Promise<Ser
     keptHeads: new KeptHeads(WEIGHHOUSE_KEYS),
     log,
   });
-  const desk: Desk = { store };
+  const desk: Desk = { store, webhooks: { reach: settings.WEIGHHOUSE_WEBHOOKS, origin } };
   const auth = createAuth({ store, origin, secret: WEIGHHOUSE_SECRET });
   return { desk, auth, log };
 }

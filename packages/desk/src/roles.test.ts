@@ -12,6 +12,7 @@ import { importCampaign } from "./import-campaign";
 import { listApiKeys } from "./list-api-keys";
 import { listCampaigns } from "./list-campaigns";
 import { listMembers } from "./list-members";
+import { listWebhooks } from "./list-webhooks";
 import { makeApiKey } from "./make-api-key";
 import { openCampaign } from "./open-campaign";
 import { postMeasurements } from "./post-measurements";
@@ -70,6 +71,7 @@ const stated: Record<Action, [visitor: Permission, account: Permission, reader: 
   declare: [n, n, n, n, y],
   "add-team": [n, n, n, n, y],
   "add-member": [n, n, n, n, y],
+  "manage-webhooks": [n, n, n, n, y],
   "close-registration": [n, n, n, n, y],
 };
 
@@ -175,6 +177,7 @@ describe("every use-case asks the table", () => {
     "add-team": (desk, actor, key) => addTeam(desk, actor, { key, team: { key: "algae" } }),
     "add-member": (desk, actor, key) =>
       addMember(desk, actor, { key, email: "nobody@people.example", role: "reader" }),
+    "manage-webhooks": (desk, actor, key) => listWebhooks(desk, actor, { key }),
     "close-registration": (desk, actor, key) => closeRegistration(desk, actor, { key }),
   };
 

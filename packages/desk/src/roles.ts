@@ -60,6 +60,7 @@ const permissions = {
   "declare":                row("no",    "no",    "no",   "no",       "yes"),
   "add-team":               row("no",    "no",    "no",   "no",       "yes"),
   "add-member":             row("no",    "no",    "no",   "no",       "yes"),
+  "manage-webhooks":        row("no",    "no",    "no",   "no",       "yes"),
   "close-registration":     row("no",    "no",    "no",   "no",       "yes"),
 } as const satisfies Record<string, Row>;
 

@@ -6,6 +6,7 @@ describe("settings", () => {
     expect(readSettings({ DATABASE_URL: "", HOME: "/nowhere" })).toEqual({
       PORT: 3000,
       LOG_LEVEL: "info",
+      WEIGHHOUSE_WEBHOOKS: "public",
     });
   });
 

@@ -28,6 +28,10 @@ export const settingsSchema = z.object({
     .optional(),
   /** File of PEM certificates to one of which the authority's must lead. */
   WEIGHHOUSE_TSA_CA: z.string().min(1).optional(),
+  /** Where webhooks may lead: `private` also to this machine and its networks, and by plain http. */
+  WEIGHHOUSE_WEBHOOKS: z
+    .enum(["public", "private"], "public or private is allowed")
+    .default("public"),
   /** Signs sessions; the launcher with the embedded database makes one by itself. */
   WEIGHHOUSE_SECRET: z.string().min(32, "32 characters or more are allowed").optional(),
   PORT: z.coerce
