@@ -25,6 +25,8 @@ export type MeasurementVersion = {
   /** Who made it, by name; null for the system and for a person who was forgotten. */
   name: string | null;
   team: string | null;
+  /** Whether who asks made it. */
+  own: boolean;
   /** Why it was corrected, withdrawn or set aside; null for its posting. */
   reason: string | null;
   withdrawn: boolean;
@@ -38,7 +40,7 @@ export async function readMeasurementHistory(
   input: z.input<typeof readMeasurementHistoryInput>,
 ): Promise<MeasurementVersion[]> {
   const { key, id, size } = parseInput(readMeasurementHistoryInput, input);
-  const { campaign } = await enter(desk, actor, key, "read-campaign");
+  const { campaign, member } = await enter(desk, actor, key, "read-campaign");
   const [versions, names] = await Promise.all([
     readMeasurementVersions(desk.store, { campaign: key, id, size: size ?? campaign.size }),
     memberNames(desk, key),
@@ -57,6 +59,7 @@ export async function readMeasurementHistory(
         kind: entry.kind as EntryKind,
         name: authorName(entry.by, names),
         team: "system" in entry.by ? null : entry.by.team,
+        own: member !== null && "member" in entry.by && entry.by.member === member,
         reason,
         withdrawn: withdrawn !== null,
         measurement: measurement as MeasurementVersion["measurement"],

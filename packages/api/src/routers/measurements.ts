@@ -1,4 +1,9 @@
 import { correctMeasurement, correctMeasurementInput } from "@weighhouse/desk/correct-measurement";
+import {
+  correctMeasurements,
+  correctMeasurementsInput,
+  previewCorrections,
+} from "@weighhouse/desk/correct-measurements";
 import { postMeasurements, postMeasurementsInput } from "@weighhouse/desk/post-measurements";
 import {
   previewMeasurements,
@@ -51,6 +56,12 @@ export const measurementsRouter = router({
   correct: procedure
     .input(takes(correctMeasurementInput))
     .mutation(({ ctx, input }) => correctMeasurement(ctx.desk, ctx.actor, input)),
+  correctMany: procedure
+    .input(takes(correctMeasurementsInput))
+    .mutation(({ ctx, input }) => correctMeasurements(ctx.desk, ctx.actor, input)),
+  previewCorrections: procedure
+    .input(takes(correctMeasurementsInput))
+    .mutation(({ ctx, input }) => previewCorrections(ctx.desk, ctx.actor, input)),
   previewWithdrawal: procedure
     .input(takes(previewWithdrawalInput))
     .mutation(({ ctx, input }) => previewWithdrawal(ctx.desk, ctx.actor, input)),

@@ -2,14 +2,15 @@
 
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { payloadSchemas } from "@weighhouse/campaign/entries";
-import { key as partKey, optional, time } from "@weighhouse/campaign/fields";
+import { key as partKey, measurementId, optional, time } from "@weighhouse/campaign/fields";
+import type { Problem } from "@weighhouse/campaign/problem";
 import type { WithdrawalPreview } from "@weighhouse/desk/withdraw-measurements";
 import { useRouter } from "next/navigation";
 import { useState } from "react";
 import { FormProvider, useFormContext } from "react-hook-form";
 import { z } from "zod";
 import { Button } from "@/look/button";
-import { Choice, Field } from "@/look/field";
+import { Choice, Field, TextArea } from "@/look/field";
 import { Notice } from "@/look/notice";
 import { useTRPCClient } from "@/trpc/client";
 import { timeFromText } from "../entered-text";
@@ -21,6 +22,7 @@ import { refusalOf } from "../refusal";
 import { useDraftForm } from "../use-draft-form";
 
 interface WithdrawalDraft {
+  ids: string;
   facility: string;
   from: string;
   to: string;
@@ -28,28 +30,43 @@ interface WithdrawalDraft {
 }
 
 const content = z.strictObject({
-  facility: partKey,
+  ids: z.array(measurementId),
+  facility: optional(partKey),
   from: optional(time),
   to: optional(time),
   reason: payloadSchemas["measurements.withdrawn"].shape.reason,
 });
 type Withdrawal = z.output<typeof content>;
 
-const empty: WithdrawalDraft = { facility: "", from: "", to: "", reason: "" };
+const empty: WithdrawalDraft = { ids: "", facility: "", from: "", to: "", reason: "" };
 const schema = formSchema<WithdrawalDraft, Withdrawal>({
   schema: content,
   content: (draft) => ({
-    facility: draft.facility,
+    ids: draft.ids.split(/[\s,;]+/).filter((id) => id !== ""),
+    facility: draft.facility === "" ? null : draft.facility,
     from: timeFromText(draft.from),
     to: timeFromText(draft.to),
     reason: draft.reason.trim(),
   }),
+  field: (_, [field]) => String(field),
+  further: async (read) => nothingChosen(read as Withdrawal),
 });
 
-const selectionOf = ({ facility, from, to }: Withdrawal) =>
-  ({ by: "facility", facility, from, to }) as const;
+/** A form sent too early must not mean everything. */
+function nothingChosen({ ids, facility, from, to }: Withdrawal): Problem[] {
+  if (ids.length > 0 || facility || from || to) return [];
+  const allowed = "ids here, or a facility or a time below";
+  return [{ pointer: "/ids", code: "missing", found: "nothing", allowed }];
+}
 
-/** Withdraws all that a facility observed within a time, once it was seen what that is. */
+/** Ids say all by themselves; a facility or a time is a range. */
+function selectionOf({ ids, facility, from, to }: Withdrawal) {
+  if (ids.length > 0) return { by: "ids" as const, ids };
+  if (facility === null) return { by: "range" as const, from, to };
+  return { by: "facility" as const, facility, from, to };
+}
+
+/** Withdraws a list, or all that was observed within a range, once it was seen what that is. */
 export function WithdrawForm({ document }: { document: CampaignDocument }) {
   const client = useTRPCClient();
   const router = useRouter();
@@ -136,9 +153,18 @@ function Fields({ document }: { document: CampaignDocument }) {
   const { errors } = formState;
   return (
     <>
+      <TextArea
+        label="Ids"
+        gloss="one a line, or between commas"
+        help="Empty: all that was observed within the range below."
+        autoComplete="off"
+        spellCheck={false}
+        error={errors.ids?.message}
+        {...register("ids")}
+      />
       <FieldRow>
         <Choice label="Facility" error={errors.facility?.message} {...register("facility")}>
-          <option value="">choose one</option>
+          <option value="">all of them</option>
           {document.facilities.map(({ key, title }) => (
             <option key={key} value={key}>
               {title}

@@ -12,7 +12,7 @@ export const metadata: Metadata = { title: "Withdraw measurements" };
 export default async function WithdrawPage(props: { params: Promise<{ key: string }> }) {
   const { key } = await props.params;
   const [view, actor] = await Promise.all([readCampaign(key, null), readActor()]);
-  const may = view.role === "coordinator" || (view.role === "member" && view.team !== null);
+  const may = view.role === "coordinator" || view.role === "member";
   return (
     <CampaignFrame campaignKey={key}>
       {may ? (
@@ -28,7 +28,7 @@ export default async function WithdrawPage(props: { params: Promise<{ key: strin
         </Section>
       ) : (
         <MembersOnly path={`/campaigns/${key}/withdraw`} signedIn={actor !== null}>
-          Teams withdraw what they posted, coordinators whatever was.
+          Teams and observers withdraw what they posted, coordinators whatever was.
         </MembersOnly>
       )}
     </CampaignFrame>

@@ -40,7 +40,8 @@ export default async function MeasurementPage(props: Props) {
   );
   const sameData = sameDataAs(document, measurement);
   const own =
-    role === "coordinator" || (role === "member" && team !== null && team === measurement.team);
+    role === "coordinator" ||
+    (role === "member" && team === measurement.team && (team !== null || versions[0]!.own));
   return (
     <CampaignFrame campaignKey={key} size={size}>
       <Section title={`Measurement ${id}`} gloss="all that it ever was" id="history">
