@@ -62,6 +62,11 @@ function PartLinks({ view, current }: { view: CampaignView; current: Part }) {
             People
           </Link>
         </li>
+        <li>
+          <Link className={link} href={`${base}/webhooks`}>
+            Webhooks
+          </Link>
+        </li>
       </ul>
     </nav>
   );

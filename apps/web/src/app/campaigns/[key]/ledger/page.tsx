@@ -19,7 +19,7 @@ export default async function LedgerPage(props: {
   const { key } = await props.params;
   const search = await props.searchParams;
   const size = sizeFrom(search);
-  const { size: end } = await readCampaign(key, size);
+  const { size: end, role } = await readCampaign(key, size);
   const to = Math.min(end, sizeFrom({ size: search.to ?? [] }) ?? end);
   const from = Math.max(0, to - PER_PAGE);
   const [{ entries }, stamps] = await readFor(`/campaigns/${key}/ledger`, (caller) =>
@@ -38,6 +38,11 @@ export default async function LedgerPage(props: {
             <a className="link" href={`/api/v1/campaigns/${key}/feed.atom`}>
               feed
             </a>
+            {role === "coordinator" ? (
+              <Link className="link" href={`/campaigns/${key}/webhooks`}>
+                webhooks
+              </Link>
+            ) : null}
             <a className="link" href={`/api/v1/campaigns/${key}/ledger/head`}>
               signed tree head
             </a>
