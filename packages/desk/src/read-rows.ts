@@ -1,6 +1,9 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
-import { readMeasurementTable } from "@weighhouse/tables/csv";
+import { draftsOf } from "@weighhouse/tables/drafts";
+import { matchColumns } from "@weighhouse/tables/match-columns";
+import { readTable, readText } from "@weighhouse/tables/read-table";
 import type { TableColumn, TableProblem } from "@weighhouse/tables/table";
+import type { TableContext } from "@weighhouse/tables/table-match";
 import type { MeasurementSource } from "./measurement-source";
 
 /** What is wrong in a row; `column` null where it is the row as a whole. */
@@ -11,6 +14,8 @@ export type ReadRow = {
   line: number;
   draft: Record<string, unknown> | null;
   problems: RowProblem[];
+  /** What was converted or filled in for it. */
+  notes?: string[];
 };
 
 export type ReadRows = {
@@ -19,19 +24,37 @@ export type ReadRows = {
   problems: TableProblem[];
 };
 
-/** The rows of a CSV text or of a form's drafts; none at all is a problem of the whole. */
-export function readRows(source: MeasurementSource, document: CampaignDocument): ReadRows {
-  const read = source.from === "csv" ? readText(source, document) : readDrafts(source.drafts);
+/** A source as it may be put together: a file's defaults where there are any. */
+type Source =
+  Extract<MeasurementSource, { from: "drafts" }> | FileSource<"csv"> | FileSource<"table">;
+type FileSource<F> = Omit<Extract<MeasurementSource, { from: F }>, "defaults"> & {
+  defaults?: TableContext["defaults"];
+};
+
+/** The rows of a table or of a form's drafts; none at all is a problem of the whole. */
+export function readRows(source: Source, document: CampaignDocument): ReadRows {
+  const read = source.from === "drafts" ? readDrafts(source.drafts) : readFile(source, document);
   if (read.rows.length > 0 || read.problems.length > 0) return read;
   const problem = { line: null, column: null, found: "no row", allowed: "one measurement or more" };
   return { ...read, problems: [problem] };
 }
 
-function readText(
-  { text, defaults }: Extract<MeasurementSource, { from: "csv" }>,
+function readFile(
+  source: FileSource<"csv"> | FileSource<"table">,
   document: CampaignDocument,
 ): ReadRows {
-  return readMeasurementTable(text, { document, defaults });
+  const { name, content, choices } =
+    source.from === "csv" ? { name: "table.csv", content: source.text, choices: null } : source;
+  const table = typeof content === "string" ? readText(name, content) : readTable(name, content);
+  const context: TableContext = { document, defaults: source.defaults ?? {} };
+  const matches = matchColumns(table, context, choices ?? {});
+  const { rows, problems } = draftsOf(table, matches, context, choices ?? {});
+  const columns = matches.map(({ column, field, unit }) => ({
+    column,
+    field: field === "extra" || field === "ignore" ? null : field,
+    unit,
+  }));
+  return { rows, columns, problems };
 }
 
 function readDrafts(drafts: Record<string, unknown>[]): ReadRows {

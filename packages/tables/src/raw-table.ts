@@ -26,6 +26,8 @@ export type RawRow = {
   /** The row's first line in the text, from 1; a binary table's row number, from 1. */
   line: number;
   cells: RawCell[];
+  /** What is wrong with the row itself, as too few cells: it makes no draft. */
+  problems?: RowProblem[];
 };
 
 /** A table as it was read, before its columns are matched to a measurement's fields. */

@@ -1,5 +1,5 @@
 import { CsvError, parse } from "csv-parse/sync";
-import { MAX_COLUMNS, MAX_ROWS } from "./limits";
+import { MAX_CELLS, MAX_COLUMNS, MAX_ROWS } from "./limits";
 import type { Separator, TableProblem } from "./table";
 import { refusedText } from "./text";
 
@@ -7,11 +7,16 @@ export type CsvRecord = { line: number; cells: string[] };
 
 export type CsvRecords = { separator: Separator; records: CsvRecord[]; problems: TableProblem[] };
 
-const NAMES: Record<Separator, string> = { ",": "commas", ";": "semicolons", "\t": "tabs" };
+const NAMES: Record<Separator, string> = {
+  ",": "commas",
+  ";": "semicolons",
+  "\t": "tabs",
+  "|": "vertical bars",
+};
 
 /**
- * The records of a CSV text (RFC 4180), the header's first. Also read: semicolons or tabs in place
- * of commas, a byte order mark, LF or CR line ends, blank lines, and lines that begin with `#`
+ * The records of a CSV text (RFC 4180), the header's first. Also read: semicolons, tabs or
+ * vertical bars in place of commas, a byte order mark, LF or CR line ends, blank lines, and lines that begin with `#`
  * (common practice).
  */
 export function readRecords(text: string): CsvRecords {
@@ -19,6 +24,8 @@ export function readRecords(text: string): CsvRecords {
   const refused = refusedText(text);
   if (refused !== null) return { ...none, problems: [refused] };
   const separator = detectSeparator(text);
+  const many = tooManyCells(text, separator);
+  if (many !== null) return { separator, records: [], problems: [many] };
   try {
     const records = parseRecords(text, separator);
     return { separator, records, problems: sizeProblems(records) };
@@ -36,7 +43,7 @@ export function detectSeparator(text: string): Separator {
       .split(/\r\n|\n|\r/, 1000)
       .find((line) => line.trim() !== "" && !line.startsWith("#")) ?? "";
   const bare = header.replaceAll(/"(?:[^"]|"")*"/g, "");
-  const counted = ([",", ";", "\t"] as const).map((separator) => ({
+  const counted = ([",", ";", "\t", "|"] as const).map((separator) => ({
     separator,
     count: bare.split(separator).length - 1,
   }));
@@ -69,6 +76,17 @@ function parseRecords(text: string, separator: Separator): CsvRecord[] {
     return { line: at, cells: record.map((cell) => cell.trim()) };
   });
   return records.filter(({ cells }) => cells.some((cell) => cell !== ""));
+}
+
+/** Counted before parsing: lines of a million separators would take more room than their text. */
+function tooManyCells(text: string, separator: Separator): TableProblem | null {
+  let count = 0;
+  for (let at = text.indexOf(separator); at !== -1; at = text.indexOf(separator, at + 1))
+    count += 1;
+  if (count <= MAX_CELLS) return null;
+  const found = `${count} ${NAMES[separator]}`;
+  const allowed = `at most ${MAX_CELLS} cells in one file; part it into several`;
+  return { line: null, column: null, found, allowed };
 }
 
 function countLines(text: string): number {

@@ -3,7 +3,8 @@ import type { CampaignDocument } from "@weighhouse/campaign/document";
 
 /** What a table is read against: the campaign's declarations, and what fills rows that lack it. */
 export type TableContext = {
-  document: Pick<CampaignDocument, "observables" | "measurands">;
+  document: Pick<CampaignDocument, "observables" | "measurands"> &
+    Partial<Pick<CampaignDocument, "facilities">>;
   defaults?: {
     measurand?: string | null;
     facility?: string | null;

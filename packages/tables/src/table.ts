@@ -1,7 +1,7 @@
 import type * as z from "zod";
 import type { measurementSchema } from "@weighhouse/campaign/measurement";
 
-export type Separator = "," | ";" | "\t";
+export type Separator = "," | ";" | "\t" | "|";
 
 /** A measurement as its row gives it, before defaults: fields that the row leaves empty are absent. */
 export type MeasurementDraft = Omit<z.input<typeof measurementSchema>, "id" | "postedAt"> & {

@@ -1,4 +1,4 @@
-import { MAX_CHARACTERS } from "./limits";
+import { MAX_CHARACTERS, MAX_LINE } from "./limits";
 import type { TableProblem } from "./table";
 
 /** What makes a text no table at all: too long, a NUL, or marks of a wrong decoding. */
@@ -17,7 +17,17 @@ export function refusedText(text: string): TableProblem | null {
       line: lineAt(text, nul),
       column: null,
       found: "a NUL character (U+0000)",
-      allowed: "text in UTF-8; UTF-16 files and binary tables are to be saved as UTF-8 first",
+      allowed:
+        "text in UTF-8, or in UTF-16 with a byte order mark; a binary table is to be saved as one first",
+    };
+  }
+  const long = longLine(text);
+  if (long !== null) {
+    return {
+      line: long,
+      column: null,
+      found: `a line of more than ${MAX_LINE} characters`,
+      allowed: `lines of at most ${MAX_LINE} characters`,
     };
   }
   const lost = text.indexOf("\ufffd");
@@ -30,6 +40,18 @@ export function refusedText(text: string): TableProblem | null {
     };
   }
   return null;
+}
+
+function longLine(text: string): number | null {
+  if (text.length <= MAX_LINE) return null;
+  const ends = /[\r\n]/g;
+  let start = 0;
+  for (;;) {
+    const end = ends.exec(text)?.index ?? text.length;
+    if (end - start > MAX_LINE) return lineAt(text, start);
+    if (end === text.length) return null;
+    start = end + 1;
+  }
 }
 
 function lineAt(text: string, index: number): number {
