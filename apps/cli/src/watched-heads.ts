@@ -45,6 +45,14 @@ export async function keepWatchedHead(folder: string, { note, head }: WatchedHea
   }
 }
 
+/** Puts the heads aside that a restore took away: they stay in the folder, and are compared no more. */
+export async function giveUpWatchedHeads(folder: string, after: number): Promise<void> {
+  for (const name of await noteFiles(folder)) {
+    const lost = Number.parseInt(name, 10) > after;
+    if (lost) await rename(join(folder, name), join(folder, `${name}.lost`));
+  }
+}
+
 async function noteFiles(folder: string): Promise<string[]> {
   try {
     return (await readdir(folder)).filter((name) => /^\d{16}\.note$/.test(name)).sort();

@@ -1,12 +1,16 @@
 import { spawn } from "node:child_process";
-import { mkdtempSync, readdirSync, rmSync } from "node:fs";
+import { mkdtempSync, readdirSync, rmSync, writeFileSync } from "node:fs";
 import { createServer } from "node:http";
 import type { AddressInfo } from "node:net";
 import { tmpdir } from "node:os";
 import path from "node:path";
 import { fileURLToPath } from "node:url";
 import { afterAll, beforeAll, expect, it } from "vitest";
+import { base64, utf8 } from "@weighhouse/ledger/bytes";
+import { nodeHasher } from "@weighhouse/ledger/node-hasher";
+import { formatTreeHead, signTreeHead } from "@weighhouse/ledger/tree-head";
 import { appendEntries } from "@weighhouse/store/append";
+import { findCampaign } from "@weighhouse/store/campaigns";
 import { readEntry } from "@weighhouse/store/read-ledger";
 import { openCampaign } from "@weighhouse/store/open-campaign";
 import { rewriteLedger } from "@weighhouse/store/testing/rewrite-ledger";
@@ -40,11 +44,14 @@ afterAll(async () => {
   rmSync(keep, { recursive: true, force: true });
 });
 
-/** Runs the command as its users do, in a process of its own. */
-async function watch(...more: string[]) {
+function watch(...more: string[]) {
   const { port } = http.address() as AddressInfo;
-  const page = `http://127.0.0.1:${port}/campaigns/dune`;
-  const child = spawn(process.execPath, [command, "watch", page, "--keep", keep, ...more]);
+  return run(`http://127.0.0.1:${port}/campaigns/dune`, "--keep", keep, ...more);
+}
+
+/** Runs the command as its users do, in a process of its own. */
+async function run(...words: string[]) {
+  const child = spawn(process.execPath, [command, "watch", ...words]);
   let [out, err] = ["", ""];
   child.stdout.setEncoding("utf8").on("data", (text: string) => (out += text));
   child.stderr.setEncoding("utf8").on("data", (text: string) => (err += text));
@@ -85,6 +92,60 @@ it("ends with 1 and says where, once the ledger is rewritten and signed anew by 
   expect(err).toContain("the first change is among the entries 6 to 7");
   // What was watched stays, to be compared with by others.
   expect(readdirSync(keep)).toEqual(["0000000000000006.note", "0000000000000008.note"]);
+});
+
+it("proves one entry up to a head that goes on from the one kept", async () => {
+  const { port } = http.address() as AddressInfo;
+  const page = `http://127.0.0.1:${port}/campaigns/dune`;
+  const folder = mkdtempSync(path.join(tmpdir(), "weighhouse-prove-"));
+  const prove = (entry: string) => run(page, "--keep", folder, "--entry", entry);
+  const { code, out } = await prove("3");
+  expect(code).toBe(0);
+  expect(out).toContain("dune: entry 3 is proved");
+  expect(out.match(/^ok {2}/gm)).toHaveLength(5);
+  expect(await prove("99")).toMatchObject({
+    code: 3,
+    err: expect.stringContaining("404") as string,
+  });
+  expect((await prove("last")).err).toContain("allowed an entry's number, from 0");
+  rmSync(folder, { recursive: true });
+});
+
+it("ends with 1 once where the ledger itself says that it was restored, and watches on", async () => {
+  const { store } = server.desk;
+  const campaign = { ...opening("erg"), title: "Another dune" };
+  await openCampaign(store, { coordinator: null, campaign, entries: declarations });
+  const folder = mkdtempSync(path.join(tmpdir(), "weighhouse-restored-"));
+  const { port } = http.address() as AddressInfo;
+  const page = `http://127.0.0.1:${port}/campaigns/erg`;
+  const once = () => run(page, "--keep", folder, "--once");
+  await once();
+  // What was signed of 8 entries, two of which the restore took away.
+  const { ledger } = await findCampaign(store, "erg");
+  const lost = { origin: ledger, size: 8, root: nodeHasher(utf8("8 entries")) };
+  const note = signTreeHead(formatTreeHead(lost), store.signer!);
+  writeFileSync(path.join(folder, "0000000000000008.note"), note);
+  expect((await once()).err).toContain("the ledger was rewritten: it has 6 entries");
+  const payload = { before: 8, root: base64(lost.root), after: 6, reason: "a disk failed" };
+  await appendEntries(store, {
+    campaign: "erg",
+    by: { system: true },
+    entries: [{ kind: "ledger.restored", payload }],
+  });
+  const { code, err } = await once();
+  expect(code).toBe(1);
+  expect(err).toContain("as its entry 6 says (a disk failed)");
+  expect(err).toContain("lost are the entries 6 to 7, or more");
+  expect(await once()).toMatchObject({
+    code: 0,
+    out: expect.stringContaining("7 entries") as string,
+  });
+  expect(readdirSync(folder).sort()).toEqual([
+    "0000000000000006.note",
+    "0000000000000007.note",
+    "0000000000000008.note.lost",
+  ]);
+  rmSync(folder, { recursive: true });
 });
 
 it("ends with 2 where two places are named, or no time to wait", async () => {

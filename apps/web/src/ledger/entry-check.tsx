@@ -1,8 +1,8 @@
 "use client";
 
 import { useMemo, useSyncExternalStore } from "react";
-import { checkEntry } from "./check-entry";
-import type { EntryEvidence } from "./check-entry";
+import { checkEntry } from "@weighhouse/ledger/check-entry";
+import type { EntryEvidence } from "@weighhouse/ledger/check-entry";
 
 const never = () => () => {};
 

@@ -1,10 +1,10 @@
-import { fromBase64, sameBytes } from "@weighhouse/ledger/bytes";
-import { leafHash, payloadDigest } from "@weighhouse/ledger/entry";
-import type { Entry } from "@weighhouse/ledger/entry";
-import { nobleHasher } from "@weighhouse/ledger/noble-hasher";
-import { verifyInclusion } from "@weighhouse/ledger/proof";
-import { verifyTreeHead } from "@weighhouse/ledger/tree-head";
-import { decodeVerifierKey, fingerprint } from "@weighhouse/ledger/verifier-key";
+import { fromBase64, sameBytes } from "./bytes";
+import { leafHash, payloadDigest } from "./entry";
+import type { Entry } from "./entry";
+import { nobleHasher } from "./noble-hasher";
+import { verifyInclusion } from "./proof";
+import { verifyTreeHead } from "./tree-head";
+import { decodeVerifierKey, fingerprint } from "./verifier-key";
 
 /** All that is needed to check one entry against a signed tree head. */
 export interface EntryEvidence {
