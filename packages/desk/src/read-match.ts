@@ -1,5 +1,6 @@
 import { createHash } from "node:crypto";
 import * as z from "zod";
+import { layoutText } from "@weighhouse/tables/layout";
 import { tableChoicesSchema } from "@weighhouse/tables/table-match";
 import type { TableChoices } from "@weighhouse/tables/table-match";
 import { MAX_COLUMNS } from "@weighhouse/tables/limits";
@@ -31,7 +32,7 @@ export async function readMatches(
 ): Promise<RememberedChoices[]> {
   const { key, columns } = parseInput(readMatchesInput, input);
   await enter(desk, actor, key, "preview-measurements");
-  return remembered(desk, key, columns);
+  return rememberedOf(desk, key, layoutDigest(columns));
 }
 
 /** What is remembered for a facility's tables with these columns; null where nothing is. */
@@ -39,19 +40,24 @@ export async function readMatch(
   desk: Desk,
   { key, facility, columns }: { key: string; facility: string; columns: Layout },
 ): Promise<TableChoices | null> {
-  const all = await remembered(desk, key, columns);
+  const all = await rememberedOf(desk, key, layoutDigest(columns));
   return all.find((match) => match.facility === facility)?.choices ?? null;
 }
 
-/** The columns' order makes no difference. */
 export function layoutDigest(columns: Layout): string {
-  const named = columns.map(({ name, unit }) => JSON.stringify([name, unit])).toSorted();
-  return createHash("sha256").update(named.join("\n")).digest("hex");
+  return createHash("sha256").update(layoutText(columns)).digest("hex");
 }
 
-/** What an older version kept in another form is as if it had never been remembered. */
-async function remembered(desk: Desk, key: string, columns: Layout): Promise<RememberedChoices[]> {
-  const found = await findMatches(desk.store, key, layoutDigest(columns));
+/**
+ * What is remembered of a layout, by its digest. What an older version kept in another form is as if
+ * it had never been remembered.
+ */
+export async function rememberedOf(
+  desk: Desk,
+  key: string,
+  layout: string,
+): Promise<RememberedChoices[]> {
+  const found = await findMatches(desk.store, key, layout);
   return found.flatMap(({ facility, choices, rememberedAt }) => {
     const read = tableChoicesSchema.safeParse(JSON.parse(choices));
     return read.success ? [{ facility, choices: read.data, rememberedAt }] : [];
