@@ -1,5 +1,7 @@
+import { createHash } from "node:crypto";
 import type { Context } from "./context";
 import { answerOnce } from "./http/answer-once";
+import { ApiError } from "./http/api-error";
 import { authenticate, requireScope } from "./http/authenticate";
 import { campaignRoutes } from "./http/campaign";
 import { feedRoutes } from "./http/feed";
@@ -12,13 +14,17 @@ import { bodyTypeOf, limitBody } from "./http/read-body";
 import type { Question, Route } from "./http/route";
 import { recordRoutes } from "./http/records";
 import { sealRoutes } from "./http/seals";
+import { tableContextRoutes } from "./http/table-context";
 import { webhookRoutes } from "./http/webhooks";
+import { respondJson } from "./http/respond";
+import { describeApi } from "./openapi/describe-api";
 import { problemResponse } from "./problem-details";
 
 /** All that stands below `/api/v1/campaigns/{key}/`, in the order in which it is described. */
 export const routes: Route[] = [
   ...campaignRoutes,
   ...measurementRoutes,
+  ...tableContextRoutes,
   ...recordRoutes,
   ...ledgerRoutes,
   ...feedRoutes,
@@ -50,6 +56,7 @@ async function answerRoute(
   counted: Record<string, string>,
 ): Promise<Response> {
   const url = new URL(request.url);
+  if (url.pathname === "/api/v1/openapi.json") return answerDescription(ctx, request, counted);
   const { route, key, parameters } = find(request.method, url.pathname);
   const actor = await authenticate(ctx, request, key);
   Object.assign(
@@ -73,6 +80,27 @@ async function answerRoute(
   const limited = limitBody(request, route.takes[bodyType]?.maxBytes ?? null);
   if (!route.once) return answer(limited);
   return answerOnce(asked, { request: limited, campaign: key, actor }, answer);
+}
+
+/** Made once an address: a process has one, or a few under tests. */
+const descriptions: Record<string, ReturnType<typeof describeApi>> = {};
+
+/** The description of all this (OpenAPI 3.1). */
+async function answerDescription(
+  { desk, actor, origin }: Context,
+  request: Request,
+  counted: Record<string, string>,
+): Promise<Response> {
+  if (request.method !== "GET" && request.method !== "HEAD") {
+    const headers = { allow: "GET, HEAD" };
+    throw new ApiError("method-not-allowed", `found ${request.method}; allowed GET, HEAD`, headers);
+  }
+  const { headers } = request;
+  Object.assign(counted, await countRequest(desk.store, "read", { headers, actor }));
+  chooseType(headers.get("accept"), ["application/json"]);
+  const description = (descriptions[origin] ??= describeApi(routes, origin));
+  const digest = createHash("sha256").update(JSON.stringify(description)).digest("base64url");
+  return respondJson(request, description, `openapi-${digest}`);
 }
 
 /** A replica lags, and who decides on it decides on yesterday. */

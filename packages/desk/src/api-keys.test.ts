@@ -1,10 +1,10 @@
 import { createHash } from "node:crypto";
-import postgres from "postgres";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
 import { actorOfApiKey } from "./api-key-actor";
 import { isApiKeyText, makeApiKeyText } from "./api-key-text";
 import { declareFacility } from "./declare";
 import type { Actor } from "./desk";
+import { connect } from "@weighhouse/store/open-store";
 import { addMember } from "./add-member";
 import { listApiKeys } from "./list-api-keys";
 import { makeApiKey } from "./make-api-key";
@@ -238,7 +238,7 @@ describe("the list of keys", () => {
 
 it("who reads the whole database finds no key in it, and nothing that is one", async () => {
   const { text } = await made(lagoon.member, ...scopes);
-  const admin = postgres(house.adminUrl, { max: 1 });
+  const admin = connect(house.adminUrl, 1);
   const tables = await admin<{ name: string }[]>`
     select quote_ident(schemaname) || '.' || quote_ident(tablename) as name from pg_tables
     where schemaname not in ('pg_catalog', 'information_schema')`;

@@ -24,3 +24,12 @@ const requests: Record<RateClass, Record<Counted, number>> = {
 export function rateLimit(rate: RateClass, counted: Counted): RateLimit {
   return { requests: requests[rate][counted], seconds: SECONDS };
 }
+
+/** The table in words, for the API's description. */
+export function rateTable(): string {
+  const rows = Object.entries(requests).map(
+    ([rate, { key, user, address }]) =>
+      `${rate}: ${key} by key, ${user} by account, ${address} by address`,
+  );
+  return `A minute allows, by class: ${rows.join("; ")}.`;
+}
