@@ -1,4 +1,5 @@
-import { MAX_CELL, MAX_ROWS } from "./limits";
+import { MAX_CELL } from "./limits";
+import { rowRefusal } from "./row-limit";
 import type { TableProblem } from "./table";
 
 export type EcsvRecord = {
@@ -23,17 +24,16 @@ const RETURN = 13;
 export function ecsvRecords(
   text: string,
   start: { at: number; line: number },
-  delimiter: " " | ",",
+  { delimiter, columns }: { delimiter: " " | ","; columns: number },
 ): { records: EcsvRecord[]; comments: number; problem: TableProblem | null } {
   const scan = new Scan(text, start, delimiter === "," ? COMMA : SPACE);
   const records: EcsvRecord[] = [];
   let problem: TableProblem | null = null;
   while (problem === null && scan.toRecord()) {
-    if (records.length > MAX_ROWS) {
-      problem = scan.problem(
-        `more than ${MAX_ROWS} rows`,
-        "fewer in one file; part it into several",
-      );
+    // The first record is the names'.
+    const refusal = rowRefusal(records.length - 1, columns);
+    if (refusal !== null) {
+      problem = scan.problem(refusal.found, refusal.allowed);
     } else {
       const { line } = scan;
       const cells: string[] = [];

@@ -2,14 +2,13 @@ import { ecsvType, type EcsvType } from "./ecsv-cells";
 import { readEcsvHeader, type EcsvColumn, type EcsvHeader } from "./ecsv-header";
 import { joinParts, type EcsvSource } from "./ecsv-parts";
 import { ecsvRecords, type EcsvRecord } from "./ecsv-records";
-import { ProblemList } from "./problem-list";
 import { plainColumn, type RawCell, type RawRow, type RawTable } from "./raw-table";
-import type { TableProblem } from "./table";
+import type { RowProblem, TableProblem } from "./table";
 import { refusedText } from "./text";
 
 /**
- * Reads ECSV 1.0, astropy's CSV with a YAML header. A cell is what its column's datatype says or a
- * problem with line and column; an empty one is missing, as is a NaN, said so.
+ * Reads ECSV 1.0, astropy's CSV with a YAML header. A cell is what its column's datatype says or its
+ * row's problem; an empty one is missing, as is a NaN, said so.
  *
  * Source: astropy's APE6, https://github.com/astropy/astropy-APEs/blob/main/APE6.rst
  */
@@ -38,7 +37,10 @@ function readBody(text: string, header: EcsvHeader, types: readonly EcsvType[]):
     kind: types[index]?.kind ?? null,
   }));
   const { sources, notes, problems } = joinParts(columns, header.serialized);
-  const { records, comments, problem } = ecsvRecords(text, header.body, header.delimiter);
+  const { records, comments, problem } = ecsvRecords(text, header.body, {
+    delimiter: header.delimiter,
+    columns: columns.length,
+  });
   const faults = [...problems, ...namesProblem(records[0], header), ...(problem ? [problem] : [])];
   if (faults.length > 0) return unread(faults);
   const cells = new CellReader(header.columns, types);
@@ -46,8 +48,8 @@ function readBody(text: string, header: EcsvHeader, types: readonly EcsvType[]):
   return {
     format: "ecsv",
     columns: sources.map(({ column }) => column),
-    rows: cells.problems.all.length > 0 ? [] : rows,
-    problems: cells.problems.all,
+    rows,
+    problems: [],
     notes: [
       ...types.flatMap(({ note }) => note ?? []),
       ...notes,
@@ -75,7 +77,6 @@ function namesProblem(names: EcsvRecord | undefined, header: EcsvHeader): TableP
 }
 
 class CellReader {
-  readonly problems = new ProblemList();
   readonly #columns: readonly EcsvColumn[];
   readonly #types: readonly EcsvType[];
   readonly #notNumbers: number[];
@@ -90,20 +91,22 @@ class CellReader {
     const expected = this.#columns.length;
     if (cells.length !== expected) {
       const found = `${cells.length} ${cells.length === 1 ? "cell" : "cells"}`;
-      this.problems.add({ line, column: null, found, allowed: `${expected}, as in the header` });
-      return { line, cells: [] };
+      const problem = { column: null, found, allowed: `${expected}, as in the header` };
+      return { line, cells: sources.map(() => null), problems: [problem] };
     }
-    const read = cells.map((text, index) => this.#cell(text, index, line));
-    return { line, cells: sources.map(({ cell }) => cell(read)) };
+    const problems: RowProblem[] = [];
+    const read = cells.map((text, index) => this.#cell(text, index, problems));
+    const row = { line, cells: sources.map(({ cell }) => cell(read)) };
+    return problems.length === 0 ? row : { ...row, problems };
   }
 
-  #cell(text: string, index: number, line: number): RawCell {
+  #cell(text: string, index: number, problems: RowProblem[]): RawCell {
     if (text === "") return null;
     const { kind, read, allowed } = this.#types[index] as EcsvType;
     const cell = read(kind === "text" ? text : text.trim());
     if (cell === undefined) {
       const column = this.#columns[index]?.name ?? null;
-      this.problems.add({ line, column, found: text.slice(0, 80), allowed });
+      problems.push({ column, found: text.slice(0, 80), allowed });
       return null;
     }
     if (!Number.isNaN(cell)) return cell;

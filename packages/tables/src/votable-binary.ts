@@ -1,7 +1,8 @@
-import { MAX_CELL, MAX_ROWS } from "./limits";
+import { MAX_CELL } from "./limits";
 import { infinity, integerCell } from "./number-text";
-import type { ProblemList } from "./problem-list";
 import type { RawCell, RawRow } from "./raw-table";
+import type { RowProblem, TableProblem } from "./table";
+import { rowRefusal } from "./row-limit";
 import { allowedCell, isNull } from "./votable-cells";
 import { datatypes, type VoDatatype, type VoField } from "./votable-fields";
 
@@ -12,28 +13,29 @@ import { datatypes, type VoDatatype, type VoField } from "./votable-fields";
 export function readBinary(
   bytes: Uint8Array<ArrayBuffer>,
   fields: readonly VoField[],
-  options: { masked: boolean; problems: ProblemList },
+  options: { masked: boolean; problems: TableProblem[] },
 ): RawRow[] {
   const reader = new BinaryReader(bytes, options.problems);
   const flagBytes = options.masked ? Math.ceil(fields.length / 8) : 0;
   const rows: RawRow[] = [];
   while (!reader.atEnd && !reader.isLost) {
-    if (rows.length === MAX_ROWS) {
-      reader.lose(null, `more than ${MAX_ROWS} rows`, "fewer in one file; part it into several");
-      break;
-    }
     reader.row = rows.length + 1;
+    const refusal = rowRefusal(rows.length, fields.length);
+    if (refusal !== null) reader.lose(null, refusal.found, refusal.allowed);
+    if (reader.isLost) return rows;
     const from = reader.at;
     const flags = reader.take(flagBytes, null);
     const cells: RawCell[] = [];
+    const problems: RowProblem[] = [];
     for (const [index, field] of fields.entries()) {
       const cell = reader.cell(field);
       if (reader.isLost) return rows;
       const missing = flags !== null && ((flags[index >> 3] ?? 0) & (0x80 >> (index & 7))) !== 0;
-      cells.push(missing ? null : reader.checked(field, cell));
+      cells.push(missing ? null : reader.checked(field, cell, problems));
     }
     if (reader.at === from) reader.lose(null, "rows of no bytes", "fields that hold something");
-    rows.push({ line: reader.row, cells });
+    const { row: line } = reader;
+    rows.push(problems.length === 0 ? { line, cells } : { line, cells, problems });
   }
   return rows;
 }
@@ -45,16 +47,16 @@ const UTF16 = new TextDecoder("utf-16be", { fatal: true, ignoreBOM: true });
 class BinaryReader {
   readonly #bytes: Uint8Array<ArrayBuffer>;
   readonly #view: DataView;
-  readonly #problems: ProblemList;
+  readonly #lost: TableProblem[];
   at = 0;
   row = 0;
   /** Where the next value begins isn't known any more. */
   isLost = false;
 
-  constructor(bytes: Uint8Array<ArrayBuffer>, problems: ProblemList) {
+  constructor(bytes: Uint8Array<ArrayBuffer>, lost: TableProblem[]) {
     this.#bytes = bytes;
     this.#view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
-    this.#problems = problems;
+    this.#lost = lost;
   }
 
   get atEnd(): boolean {
@@ -63,7 +65,7 @@ class BinaryReader {
 
   lose(column: string | null, found: string, allowed: string): void {
     this.isLost = true;
-    this.#problems.add({ line: this.row, column, found, allowed });
+    this.#lost.push({ line: this.row, column, found, allowed });
   }
 
   take(length: number, column: string | null): Uint8Array<ArrayBuffer> | null {
@@ -92,13 +94,13 @@ class BinaryReader {
   }
 
   /** A value that isn't of its type is a problem; one that is the field's null is missing. */
-  checked(field: VoField, cell: RawCell | undefined): RawCell {
+  checked(field: VoField, cell: RawCell | undefined, problems: RowProblem[]): RawCell {
     if (cell === undefined) {
       const found =
         field.form === "text" ? "bytes that aren't text" : "a byte that is no truth value";
       const allowed =
         field.form === "text" ? `${field.datatype} in UTF-8 or UTF-16` : allowedCell(field);
-      this.#problems.add({ line: this.row, column: field.name, found, allowed });
+      problems.push({ column: field.name, found, allowed });
       return null;
     }
     return Number.isNaN(cell) || cell === "" || isNull(field, cell) ? null : cell;
@@ -160,7 +162,8 @@ function finite(value: number): number | string {
  */
 function shortest(single: number): number {
   if (single === 0 || !Number.isFinite(single)) return single;
-  for (let digits = 6; digits < 9; digits += 1) {
+  // Subnormal numbers have fewer digits than the six that all others hold.
+  for (let digits = Math.abs(single) < 1.2e-38 ? 1 : 6; digits < 9; digits += 1) {
     const number = Number(single.toPrecision(digits));
     if (Math.fround(number) === single) return number;
   }

@@ -1,6 +1,7 @@
-import { MAX_CELL, MAX_COLUMNS, MAX_ROWS } from "./limits";
-import { ProblemList } from "./problem-list";
+import { MAX_CELL, MAX_COLUMNS } from "./limits";
 import type { RawCell, RawRow } from "./raw-table";
+import type { RowProblem, TableProblem } from "./table";
+import { rowRefusal } from "./row-limit";
 import { readBase64 } from "./votable-base64";
 import { readBinary } from "./votable-binary";
 import { allowedCell, textCell } from "./votable-cells";
@@ -21,7 +22,7 @@ const MAX_NOTED = 40;
 
 /** Follows a VOTable's elements and keeps the first table with rows, and what is to be said. */
 export class VotableDocument implements XmlListener {
-  readonly problems = new ProblemList();
+  readonly problems: TableProblem[] = [];
   readonly notes: string[] = [];
   readonly systems = new Map<string, TimeSystem>();
   readonly tables: VoTable[] = [];
@@ -34,7 +35,7 @@ export class VotableDocument implements XmlListener {
   #paramValue: string | null = null;
   #info: { name: string; value: string } | null = null;
   #binary: "BINARY" | "BINARY2" | null = null;
-  #row: { line: number; cells: RawCell[]; count: number } | null = null;
+  #row: { line: number; cells: RawCell[]; count: number; problems: RowProblem[] } | null = null;
   /** What the open element's text is gathered in; null where text means nothing. */
   #text: string | null = null;
 
@@ -171,13 +172,9 @@ export class VotableDocument implements XmlListener {
     const table = this.#table;
     if (table === null) return { found: "a TR outside a TABLE", allowed: "rows in tables" };
     this.chosen ??= table;
-    if (this.chosen === table && table.rows.length === MAX_ROWS) {
-      return {
-        found: `more than ${MAX_ROWS} rows`,
-        allowed: "fewer in one file; part it into several",
-      };
-    }
-    this.#row = { line, cells: [], count: 0 };
+    const refusal = rowRefusal(table.rows.length, table.fields.length);
+    if (refusal !== null) return refusal;
+    this.#row = { line, cells: [], count: 0, problems: [] };
     return null;
   }
 
@@ -200,7 +197,7 @@ export class VotableDocument implements XmlListener {
     row.cells.push(cell ?? null);
     if (cell !== undefined) return;
     const found = text.trim().slice(0, 80);
-    this.problems.add({ line: row.line, column: field.name, found, allowed: allowedCell(field) });
+    row.problems.push({ column: field.name, found, allowed: allowedCell(field) });
   }
 
   #closeRow(): void {
@@ -208,17 +205,14 @@ export class VotableDocument implements XmlListener {
     this.#row = null;
     const table = this.#table;
     if (row === null || table === null || table !== this.chosen) return;
+    const { line, cells, count, problems } = row;
     const expected = table.fields.length;
-    if (row.count !== expected) {
-      const found = `${row.count} ${row.count === 1 ? "cell" : "cells"}`;
-      this.problems.add({
-        line: row.line,
-        column: null,
-        found,
-        allowed: `${expected}, as there are fields`,
-      });
+    if (count !== expected) {
+      const found = `${count} ${count === 1 ? "cell" : "cells"}`;
+      problems.push({ column: null, found, allowed: `${expected}, as there are fields` });
     }
-    table.rows.push({ line: row.line, cells: row.cells });
+    while (cells.length < expected) cells.push(null);
+    table.rows.push(problems.length === 0 ? { line, cells } : { line, cells, problems });
   }
 
   #readStream(text: string): Refusal {
@@ -253,7 +247,7 @@ export class VotableDocument implements XmlListener {
     const status = info.value.toUpperCase();
     if (status === "ERROR") {
       const found = `an error of the service that made the file: ${text || "no reason given"}`;
-      this.problems.add({ line: null, column: null, found, allowed: "QUERY_STATUS OK" });
+      this.problems.push({ line: null, column: null, found, allowed: "QUERY_STATUS OK" });
     } else if (status === "OVERFLOW") {
       this.#note("the service that made the file left rows out (QUERY_STATUS OVERFLOW)");
     }

@@ -94,23 +94,39 @@ function feed(
   const decoder = new TextDecoder(label, { fatal: true });
   try {
     for (let at = 0; at < bytes.length; at += CHUNK) {
-      const stream = at + CHUNK < bytes.length;
-      parser.write(decoder.decode(bytes.subarray(at, at + CHUNK), { stream }));
+      const chunk = bytes.subarray(at, at + CHUNK);
+      const text = decoded(decoder, chunk, at + CHUNK < bytes.length);
+      if (text === null) {
+        const line = parser.line + lineEndsBeforeLoss(new TextDecoder(label).decode(chunk));
+        const found = `bytes that aren't ${encoding}`;
+        return { line, column: null, found, allowed: `text in ${encoding}, as the file says` };
+      }
+      parser.write(text);
     }
     parser.close();
     return null;
   } catch (error) {
     if (error instanceof Ended) return error.problem;
-    if (!(error instanceof TypeError)) throw error;
-    // The decoder's only way to say that bytes aren't of its encoding.
-    const found = `bytes that aren't ${encoding}, below this line`;
-    return {
-      line: parser.line,
-      column: null,
-      found,
-      allowed: `text in ${encoding}, as the file says`,
-    };
+    throw error;
   }
+}
+
+/** Null: not in the encoding, for which the decoder has only an exception. */
+function decoded(
+  decoder: InstanceType<typeof TextDecoder>,
+  chunk: Uint8Array,
+  stream: boolean,
+): string | null {
+  try {
+    return decoder.decode(chunk, { stream });
+  } catch {
+    return null;
+  }
+}
+
+function lineEndsBeforeLoss(text: string): number {
+  const lost = text.indexOf("\ufffd");
+  return text.slice(0, lost === -1 ? text.length : lost).split(/\r\n|\n|\r/).length - 1;
 }
 
 /** The encodings that files of the last twenty years come in; each decoder is every browser's. */
@@ -135,5 +151,6 @@ function encodingOf(bytes: Uint8Array): string {
     start,
   );
   const name = declared?.[1]?.toLowerCase() ?? "utf-8";
+  if (name.startsWith("utf-16")) return `${name} by its own word only`;
   return name === "utf8" ? "utf-8" : name === "latin1" ? "iso-8859-1" : name;
 }

@@ -14,7 +14,7 @@ export function readVotable(bytes: Uint8Array): RawTable {
   const document = new VotableDocument();
   const broken = readXml(bytes, document);
   const table = document.chosen ?? document.tables.find(({ fields }) => fields.length > 0) ?? null;
-  const problems = [...document.problems.all, ...(broken === null ? [] : [broken])];
+  const problems = [...document.problems, ...(broken === null ? [] : [broken])];
   if (table === null) {
     return unread(problems.length > 0 ? problems : [{ ...NO_TABLE }]);
   }
