@@ -149,10 +149,15 @@ function assignValues(at: Assignment): void {
   const rowsSay = single !== null || has(at, "measurand", "observable");
   for (const { index, target } of named) {
     const field = resultField(target.observable);
-    const isPlain = rowsSay && named.length === 1;
+    const isPlain = named.length === 1 && (rowsSay || isOnly(at.scope, target.key));
     assign(at, index, isPlain ? field : `${field}@${target.key}`, "name");
   }
   if (named.length === 0) assignByUcdOrUnit(at, rowsSay);
+}
+
+/** Where a campaign has one quantity, nothing has to say that a value is of it. */
+function isOnly({ observables }: MatchScope, key: string): boolean {
+  return observables.length === 1 && observables[0]!.key === key;
 }
 
 function assignByUcdOrUnit(at: Assignment, rowsSay: boolean): void {
@@ -182,7 +187,11 @@ function assignByUcdOrUnit(at: Assignment, rowsSay: boolean): void {
   const withErrors = candidates.filter(({ paired }) => paired);
   const values = withErrors.length > 0 ? withErrors : candidates;
   const [only] = values;
-  if (values.length === 1 && only !== undefined && (rowsSay || only.of.length > 1)) {
+  if (
+    values.length === 1 &&
+    only !== undefined &&
+    (rowsSay || at.scope.observables.length === 1 || only.of.length > 1)
+  ) {
     assign(at, only.index, resultField(only.of[0]!), only.why);
     return;
   }

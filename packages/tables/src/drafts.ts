@@ -33,7 +33,10 @@ export function draftsOf(
   }
   if (table.problems.length > 0) return { rows: [], problems: table.problems, notes: table.notes };
   const plan = planDrafts(table, matches, context, choices);
-  const problems = [...matchProblems(matches), ...plan.problems];
+  const unmatched = matchProblems(matches);
+  // What lacks its value may do so because of a column that can't be read: of cells all is told.
+  const others = plan.problems.filter(({ line }) => unmatched.length === 0 || line !== null);
+  const problems = [...unmatched, ...others];
   if (problems.length > 0) return { rows: [], problems, notes: table.notes };
   const rows: DraftRow[] = [];
   const empty: number[] = [];
@@ -71,6 +74,8 @@ function draftsOfRow(plan: DraftPlan, row: RawRow): DraftRow[] {
   return plan.parts.flatMap((part) => draftOfPart(plan, part, { row, common }));
 }
 
+const RESULTS = ["value", "count", "occurred"];
+
 function draftOfPart(
   plan: DraftPlan,
   part: Part,
@@ -90,12 +95,15 @@ function draftOfPart(
   if (part.target !== null && plan.parts.length > 1 && typeof draft["id"] === "string") {
     draft["id"] = `${draft["id"]}:${part.target.key}`;
   }
-  const placed = place(plan, part, { draft, observable: common.observable });
-  notes.push(...placed.notes);
   const refused = new Set(problems.map(({ column }) => column));
-  if (placed.problem !== null) {
-    const column = columnOf(plan, part, "measurand") ?? "measurand";
-    problems.push({ ...placed.problem, column });
+  const column = columnOf(plan, part, "measurand") ?? "measurand";
+  if (RESULTS.some((field) => draft[field] !== undefined)) {
+    const placed = place(plan, part, { draft, observable: common.observable });
+    notes.push(...placed.notes);
+    if (placed.problem !== null) problems.push({ ...placed.problem, column });
+    if (placed.problem !== null) refused.add(column);
+  } else {
+    // Without a result nothing is looked for that it could fall in.
     refused.add(column);
   }
   for (const problem of formProblems(draft, (field) => columnOf(plan, part, field))) {

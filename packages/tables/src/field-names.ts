@@ -101,9 +101,20 @@ const BY_SYNONYM = new Map(
   Object.entries(SYNONYMS).flatMap(([field, names]) => names.map((name) => [name, field])),
 );
 
-/** Upper and lower case, spaces, underscores, hyphens and dots make no difference. */
+/** Upper and lower case, spaces, underscores, hyphens and dots make no difference; a sign at an end does. */
 export function plainName(name: string): string {
-  return name.toLowerCase().replaceAll(/[\s_.-]/g, "");
+  return signsInWords(name)
+    .toLowerCase()
+    .replaceAll(/[\s_.-]/g, "");
+}
+
+/** `+err`, `err-`: a sign at an end of a name is a word. */
+export function signsInWords(name: string): string {
+  return name
+    .replace(/^\+\s*(?=.)/, "plus_")
+    .replace(/^[-\u2212–]\s*(?=.)/, "minus_")
+    .replace(/(?<=.)\s*\+$/, "_plus")
+    .replace(/(?<=.)\s*[-\u2212–]$/, "_minus");
 }
 
 /** A field by a column's name, times apart. */

@@ -1,3 +1,5 @@
+import { signsInWords } from "./field-names";
+
 /**
  * Columns named for another one: its uncertainty, its limit flag, and so on. `stem` is the other's
  * name ("" where none is said), to be compared without case and separators.
@@ -67,11 +69,7 @@ export function partNames(name: string): PartName[] {
 
 /** `fluxErr`, `flux err`, `flux.err` and `FLUX_ERR` as flux_err; a sign at an end is a word. */
 function inWords(name: string): string {
-  return name
-    .replace(/^\+\s*/, "plus_")
-    .replace(/^[-−–]\s*/, "minus_")
-    .replace(/\s*\+$/, "_plus")
-    .replace(/\s*[-−–]$/, "_minus")
+  return signsInWords(name)
     .replace(/^σ[\s_]*/, "sigma_")
     .replaceAll(/([a-z\d])([A-Z])/g, "$1_$2")
     .replaceAll(/[\s.\-/()[\]]+/g, "_")
