@@ -122,8 +122,13 @@ function timeOf(
     timeScale: system.scale?.toLowerCase() ?? null,
     timeFormat: format ?? said,
     timeOrigin: origin,
-    timeReference: system.reference?.toLowerCase() ?? null,
+    timeReference: placeOf(system.reference),
   };
+}
+
+function placeOf(reference: string | null): string | null {
+  const place = reference?.toLowerCase() ?? "";
+  return place === "" || place === "unknown" ? null : place;
 }
 
 /** Days since a Julian Date, two of which have names of their own. */
