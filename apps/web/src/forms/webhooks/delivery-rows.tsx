@@ -45,9 +45,9 @@ function Outcome({ delivery }: { delivery: Delivery }) {
   const { deliveredAt, givenUpAt, lastStatus, lastError, lastTryAt } = delivery;
   if (deliveredAt !== null) {
     return (
-      <>
+      <span>
         arrived <Time at={deliveredAt} />, answered {lastStatus}
-      </>
+      </span>
     );
   }
   if (givenUpAt !== null) {
