@@ -81,6 +81,7 @@ function assignByName(at: Assignment): void {
       (key) => key === bare || plainName(key) === plainName(bare),
     );
     const named = fieldOfName(name);
+    if (named?.field === "noise" && !holds(at.table, index, /^linear$/)) continue;
     if (named?.why === "name" && isForScale(named.field, scales)) {
       assign(at, index, named.field, "name");
     } else if (condition !== undefined) {
@@ -112,29 +113,38 @@ function assignTimes(at: Assignment): void {
       (ucdField(column.ucd)?.kind === "field" &&
         column.ucd?.toLowerCase().startsWith("time.epoch")),
   );
-  const holds = (index: number, form: RegExp) => {
-    const cells = table.rows.map(({ cells }) => cells[index]).filter((cell) => cell !== null);
-    return cells.length > 0 && cells.every((cell) => cell === "" || form.test(String(cell)));
-  };
-  const date = candidates.find(([, index]) => holds(index, /^\d{4}-\d{2}-\d{2}$/));
+  const date = candidates.find(([, index]) => holds(table, index, /^\d{4}-\d{2}-\d{2}$/));
   const clock = candidates.find(([, index]) =>
-    holds(index, /^\d{2}:\d{2}(?::\d{2}(?:\.\d+)?)?\s*(?:Z|UTC)?$/i),
+    holds(table, index, /^\d{2}:\d{2}(?::\d{2}(?:\.\d+)?)?\s*(?:Z|UTC)?$/i),
   );
   if (date !== undefined && clock !== undefined) {
     assign(at, date[1], "date", "synonym");
     assign(at, clock[1], "timeOfDay", "synonym");
     return;
   }
-  const best = candidates.find(([column]) => !isElsewhere(column)) ?? candidates[0];
+  const [best] = candidates.toSorted(([a], [b]) => remoteness(a) - remoteness(b));
   if (best === undefined) return;
   const [{ name, kind }, index] = best;
   const byName = isTimeName(name) || isFitsTime(name) || readTimeWords(name) !== null;
   assign(at, index, "observedAt", byName ? "synonym" : kind === "time" ? "unit" : "ucd");
 }
 
-function isElsewhere({ name, timeReference }: RawColumn): boolean {
-  const reference = timeReference ?? readTimeWords(name)?.reference ?? null;
-  return reference !== null && reference !== "topocenter" && reference !== "geocenter";
+/** Whether each cell is of a form, and one at least is there. */
+function holds({ rows }: Table, index: number, form: RegExp): boolean {
+  const there = rows
+    .map(({ cells }) => cells[index] ?? null)
+    .filter((cell) => cell !== null && cell !== "");
+  return there.length > 0 && there.every((cell) => form.test(String(cell)));
+}
+
+/** Times at the observer go before others, and among them UTC. */
+function remoteness({ name, timeReference, timeScale }: RawColumn): number {
+  const words = readTimeWords(name);
+  const reference = timeReference ?? words?.reference ?? "topocenter";
+  const scale = timeScale ?? words?.scale ?? "utc";
+  return (
+    (reference === "topocenter" || reference === "geocenter" ? 0 : 2) + (scale === "utc" ? 0 : 1)
+  );
 }
 
 /** The columns of results: by the names of what is measured, by UCD and unit, or by their errors. */

@@ -124,7 +124,7 @@ describe("limits", () => {
 
   test("what they are said at comes from the row, else from a choice, and is asked for otherwise", () => {
     expect(row("value,confidence", "<8.1,0.95", at5)?.draft).toMatchObject({ confidence: 0.95 });
-    expect(row("value,cl [%]", "<8.1,95", at5)?.draft).toMatchObject({ confidence: 0.95 });
+    expect(row("value,conf [%]", "<8.1,95", at5)?.draft).toMatchObject({ confidence: 0.95 });
     expect(row("value", "<8.1", at5)?.notes).toContain(
       "The limit is taken at sigmas 5, as chosen for the table.",
     );

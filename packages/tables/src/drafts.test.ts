@@ -138,8 +138,8 @@ describe("times", () => {
     expect(observed(header, cells)?.draft?.observedAt).toBe(time);
   });
 
-  test.each(["2031-05-04 11:20", "4 May 2031", "2031-02-30T00:00:00Z", "2031-05-04"])(
-    "%s is refused: no zone, no such day, or no time",
+  test.each(["4 May 2031", "2031-02-30T00:00:00Z", "2031-05-04"])(
+    "%s is refused: no such day, or no time",
     (time) => {
       expect(observed("date", time)?.problems).toEqual([
         {
@@ -148,6 +148,15 @@ describe("times", () => {
           allowed: expect.stringContaining("2031-03-01T00:00:00Z"),
         },
       ]);
+    },
+  );
+});
+
+test("times without a zone are refused once for all", () => {
+  expect(read("value,sd,date\n8.1,0.6,2031-05-04 11:20\n8.2,0.6,2031-05-04 11:30\n")).toMatchObject(
+    {
+      rows: [],
+      problems: [{ column: "date", found: '"2031-05-04 11:20", without a zone' }],
     },
   );
 });

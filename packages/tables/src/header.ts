@@ -1,4 +1,5 @@
 import { unitOf } from "@weighhouse/campaign/units";
+import { isTimeName } from "./field-names";
 import { readTimeWords } from "./time-words";
 import { plainColumn } from "./raw-table";
 import type { RawColumn } from "./raw-table";
@@ -23,7 +24,9 @@ export function headerColumns(cells: readonly string[]): RawColumn[] {
 /** A unit's text, or what stands in its place: a time scale or format. */
 export function withUnit(column: RawColumn, unit: string | null): RawColumn {
   if (unit === null) return column;
-  const words = unitOf(unit) === null ? readTimeWords(unit) : null;
+  const isTime = isTimeName(column.name) || readTimeWords(column.name) !== null;
+  // TT would be a teratesla.
+  const words = isTime || unitOf(unit) === null ? readTimeWords(unit) : null;
   if (words === null) return { ...column, unit };
   return {
     ...column,

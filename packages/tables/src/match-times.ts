@@ -24,6 +24,8 @@ const FORMATS: Record<string, TimeReading["format"]> = {
 };
 const NUMERIC = /^[+-]?\d*[.,]?\d+(?:[eE][+-]?\d+)?$/;
 
+const WITHOUT_ZONE = /^\d{4}-\d{2}-\d{2}[Tt\s]\d{2}:\d{2}(?::\d{2}(?:\.\d+)?)?$/;
+
 /** How a column's times are read: by what was chosen, what the file declares, what its name says. */
 export function timeMatch(
   match: ColumnMatch,
@@ -89,23 +91,29 @@ function isoMatch(
   { column, cells }: { column: RawColumn; cells: Iterable<RawCell> },
   scale: string | null,
 ): ColumnMatch {
-  for (const cell of cells) {
-    if (cell === null || cell === "") continue;
-    if (typeof cell !== "number" && !NUMERIC.test(String(cell))) break;
-    return {
-      ...match,
-      problem: {
-        found: `the number ${cell} where nothing says what it counts`,
-        allowed:
-          "JD or MJD in the column's name or unit, or chosen for it; ISO 8601; or ignore the column",
-      },
-    };
+  const first = firstOf(cells);
+  if (typeof first === "number" || NUMERIC.test(String(first))) {
+    const found = `the number ${first} where nothing says what it counts`;
+    const allowed =
+      "JD or MJD in the column's name or unit, or chosen for it; ISO 8601; or ignore the column";
+    return { ...match, problem: { found, allowed } };
   }
   const taken = SCALES[scale ?? (isFitsTime(column.name) ? "utc" : "")];
-  if (taken === undefined) return match;
+  if (taken === undefined) {
+    if (!WITHOUT_ZONE.test(String(first))) return match;
+    const found = `${JSON.stringify(first)}, without a zone`;
+    const allowed =
+      "a Z behind the times, UTC or another scale in the column's name or unit, or chosen for it";
+    return { ...match, problem: { found, allowed } };
+  }
   const time: TimeReading = { format: "iso", scale: taken, offset: 0 };
   const conversion = taken === "utc" ? null : inWords(time);
   return { ...match, time, unit: null, conversion };
+}
+
+function firstOf(cells: Iterable<RawCell>): RawCell {
+  for (const cell of cells) if (cell !== null && cell !== "") return cell;
+  return null;
 }
 
 function inWords({ format, scale, offset }: TimeReading): string {

@@ -64,7 +64,7 @@ export function readTimeWords(text: string): TimeWords | null {
     if (word === "" || PLAIN.has(word)) continue;
     if (!addWord(said, word)) return null;
   }
-  if (said.format === null && said.scale === null) return null;
+  if (said.format === null && said.scale === null && said.reference === null) return null;
   if (offset === "") return said;
   const zero = said.format === "mjd" ? MJD_ZERO : 0;
   return { ...said, origin: Number(offset) + zero };
