@@ -1,8 +1,9 @@
 /**
- * Checks audit trails with what a referee has at hand and this project doesn't bring: Debian's
- * python3 runs an archive's check.py, its jq, openssl and sha256sum the README's commands as printed,
- * its LaTeX the tables. Installs them with apt-get where one is missing and this is root (some 50 MB
- * of packages, two thirds of them TeX's).
+ * Checks audit trails and tables with what a referee or an observer has at hand and this project
+ * doesn't bring: Debian's python3 runs an archive's check.py, its jq, openssl and sha256sum the
+ * README's commands as printed, its LaTeX the tables; its astropy reads measurements in ECSV and
+ * VOTable. Installs them with apt-get where one is missing and this is root (some 65 MB of packages,
+ * half of them TeX's).
  *
  *   node test/debian-tools.mjs [REPORT.json]
  *
@@ -20,6 +21,7 @@ const NOT_RUN = 3;
 /** What each package is there for; texlive-latex-recommended holds booktabs. */
 const packages = {
   python3: "/usr/bin/python3",
+  "python3-astropy": "/usr/lib/python3/dist-packages/astropy/__init__.py",
   jq: "/usr/bin/jq",
   openssl: "/usr/bin/openssl",
   "texlive-latex-base": "/usr/bin/pdflatex",

@@ -1,4 +1,6 @@
 import type { CampaignDocument, Measurement } from "@weighhouse/campaign/document";
+import { isUnclaimed } from "./claimed-names";
+import { fieldOfName } from "./field-names";
 import type { WrittenCell, WrittenColumn, WrittenTable } from "./written-table";
 
 type Declarations = Pick<CampaignDocument, "observables" | "measurands">;
@@ -64,7 +66,7 @@ function fieldColumns(unit: string | null): Written[] {
     written("measurand", "text", ({ measurand }) => measurand, {
       description: "Key of the measurand in its campaign",
     }),
-    written("facility", "text", ({ facility }) => facility, { ucd: "instr.obsty" }),
+    written("facility", "text", ({ facility }) => facility, { ucd: "meta.id;instr.obsty" }),
     written("team", "text", ({ team }) => team),
     written("batch", "text", ({ batch }) => batch),
     written("observedAt", "time", ({ observedAt }) => observedAt, {
@@ -145,7 +147,8 @@ function conditionColumns(
       ),
     );
     const [unit = null] = units.size === 1 ? units : [];
-    return written(name, "number", ({ conditions }) => conditions[name] ?? null, { unit });
+    const column = fieldOfName(name) === null ? name : `conditions.${name}`;
+    return written(column, "number", ({ conditions }) => conditions[name] ?? null, { unit });
   });
 }
 
@@ -159,7 +162,8 @@ function extraColumns(measurements: readonly Measurement[], taken: ReadonlySet<s
       }),
     );
     if (types.size === 0) return [];
-    const column = taken.has(name.toLowerCase()) ? `extra.${name}` : name;
+    const isPlain = isUnclaimed(name) && !taken.has(name.toLowerCase());
+    const column = isPlain ? name : `extra.${name}`;
     const cellOf = ({ extra }: Measurement) => extra[name] ?? null;
     if (types.size > 1 || types.has("string")) {
       const text = (cell: WrittenCell) => (cell === null ? null : String(cell));
