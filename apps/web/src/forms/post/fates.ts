@@ -1,5 +1,6 @@
 import { unitOf } from "@/campaign/plain-words";
 import type { MeasurementsPreview } from "@weighhouse/desk/preview-measurements";
+import type { ShownRow } from "./table/protocol";
 import { formatCount } from "@weighhouse/figures/numbers";
 import { formatWithUncertainty } from "@weighhouse/figures/numbers";
 import { problemWords } from "../form-schema";
@@ -12,6 +13,13 @@ export const fateWords: Record<Fate, string> = {
   alreadyThere: "already there",
   conflict: "conflict",
   refused: "refused",
+};
+
+export const fateInk: Record<Fate, string> = {
+  new: "text-fir",
+  alreadyThere: "text-quiet",
+  conflict: "text-rust font-medium",
+  refused: "text-rust font-medium",
 };
 
 /** The rows to show: those that stop the posting first, then the first of the others, in order. */
@@ -27,7 +35,7 @@ export function rowsToShow(
 }
 
 /** "3 new, 1 already there, 2 refused". */
-export function countWords(counts: MeasurementsPreview["counts"]): string {
+export function countWords(counts: Record<Fate, number>): string {
   const fates: Fate[] = ["new", "alreadyThere", "conflict", "refused"];
   const said = fates.filter((fate) => counts[fate] > 0);
   if (said.length === 0) return "no rows";
@@ -40,7 +48,7 @@ export function countWords(counts: MeasurementsPreview["counts"]): string {
 }
 
 /** Why a row will not be entered as it stands; nothing for a new one. */
-export function reasonsOf(row: PreviewedRow): string[] {
+export function reasonsOf(row: Pick<ShownRow, "fate" | "conflict" | "problems">): string[] {
   if (row.fate === "alreadyThere") return ["The same measurement is on record; nothing to enter."];
   if (row.conflict !== null) {
     const { field, there, posted } = row.conflict;

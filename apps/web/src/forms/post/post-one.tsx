@@ -18,9 +18,9 @@ import {
 } from "./measurement-draft";
 import { MeasurementFields } from "./measurement-fields";
 import { problemFields } from "./problem-fields";
-import { PostedNote, PostingRefused } from "./posted-note";
+import { PostedNote, PostingRefused, type Entered } from "./posted-note";
 import { PreviewView } from "./preview-view";
-import { usePosting } from "./use-posting";
+import { usePosting, type Posted } from "./use-posting";
 
 const schema = formSchema<MeasurementDraft, MeasurementOfForm>({
   schema: measurementSchema,
@@ -57,7 +57,7 @@ export function PostOne({ document }: { document: CampaignDocument }) {
       >
         <FormBody busy={busy !== null}>
           <DraftNote draft={draft} />
-          <PostedNote campaign={key} posted={posting.posted} />
+          <PostedNote campaign={key} entered={enteredOf(posting.posted)} />
           <MeasurementFields document={document} />
           <Button kind={previewed ? "plain" : "main"} type="submit" disabled={busy !== null}>
             {busy === "previewing" ? "Looking…" : "Preview"}
@@ -81,4 +81,14 @@ export function PostOne({ document }: { document: CampaignDocument }) {
       </form>
     </FormProvider>
   );
+}
+
+function enteredOf(posted: Posted | null): Entered | null {
+  if (posted === null) return null;
+  return {
+    posted: posted.posted.length,
+    alreadyThere: posted.alreadyThere.length,
+    entries: posted.appended,
+    leftOut: 0,
+  };
 }

@@ -1,141 +1,182 @@
 "use client";
 
 import type { CampaignDocument } from "@weighhouse/campaign/document";
-import { useMemo } from "react";
-import { useWatch } from "react-hook-form";
-import { z } from "zod";
+import type { TableChoices } from "@weighhouse/tables/table-match";
+import { useEffect, useState } from "react";
+import { FormProvider, useWatch } from "react-hook-form";
 import { Button } from "@/look/button";
-import { Choice, TextArea } from "@/look/field";
 import { FormBody } from "../form-body";
-import { DraftNote, FieldRow } from "../form-frame";
-import { TextFileField } from "../text-file-field";
+import { DraftNote } from "../form-frame";
 import { useDraftForm } from "../use-draft-form";
 import { postLabel } from "./fates";
 import { PostedNote, PostingRefused } from "./posted-note";
-import { PreviewView } from "./preview-view";
-import { usePosting } from "./use-posting";
+import { noChoices } from "./table/choices";
+import { ChooseTable } from "./table/choose-table";
+import { ColumnRows } from "./table/column-rows";
+import { FateRows } from "./table/fate-rows";
+import { LeaveOut } from "./table/leave-out";
+import { ProgressNote } from "./table/progress-note";
+import { RememberedNote } from "./table/remembered-note";
+import {
+  choicesOf,
+  defaultsOf,
+  emptyTable,
+  tableSchema,
+  type TableDraft,
+} from "./table/table-draft";
+import { TableFacts, TableProblems } from "./table/table-facts";
+import { TablePreview } from "./table/table-preview";
+import { useKeptTable } from "./table/use-kept-table";
+import { useTable } from "./table/use-table";
+import { WholeTableFields } from "./table/whole-table-fields";
 
-const empty = { text: "", measurand: "", facility: "" };
-
-const tableSchema = z.object({
-  text: z.string().regex(/\S/, { error: "Empty: choose a file or paste rows with a header line." }),
-  measurand: z.string(),
-  facility: z.string(),
-});
-
-/** Many measurements from a CSV file or pasted rows. */
+/** Many measurements from a file or pasted rows: read here, matched, previewed, then entered. */
 export function PostTable({ document }: { document: CampaignDocument }) {
   const { key } = document.campaign;
-  const { form, draft } = useDraftForm({
+  const { form, draft: typed } = useDraftForm({
     name: `post-table:${key}`,
-    defaults: empty,
+    defaults: emptyTable,
     schema: tableSchema,
   });
-  const posting = usePosting(key);
-  const { register, formState, setValue, control } = form;
-  const text = useWatch({ control, name: "text" });
-  const lines = useMemo(
-    () => text.split(/\r?\n/).filter((line) => line.trim() !== "").length,
-    [text],
-  );
-  const submit = form.handleSubmit((values) =>
-    posting.preview({
-      from: "csv",
-      text: values.text,
-      defaults: { measurand: values.measurand || null, facility: values.facility || null },
-    }),
-  );
-  const changed = { onChange: posting.forget };
-  const { previewed, busy } = posting;
+  const table = useTable(document);
+  const { opened, matched, previewed, busy, open, match } = table;
+  const [columns, setColumns] = useState<TableChoices>(noChoices);
+  const [leaveOut, setLeaveOut] = useState(false);
+  const { bring, kept } = useKeptTable({ campaign: key, choices: columns, open, setColumns });
+  const values = useWatch({ control: form.control });
+  const settingsText = JSON.stringify({ ...values, text: "" });
+
+  // Whatever is chosen is read anew at once; what was previewed before is no longer so.
+  const remembered = table.remembered;
+  useEffect(() => {
+    if (opened === null) return;
+    let current = true;
+    const settle = async () => {
+      const read = await tableSchema.safeParseAsync(JSON.parse(settingsText) as TableDraft);
+      if (!current || !read.success) return;
+      const { data } = read;
+      setLeaveOut(false);
+      await match({ choices: choicesOf(columns, data), remembered, defaults: defaultsOf(data) });
+    };
+    const timer = setTimeout(() => void settle(), 150);
+    return () => {
+      current = false;
+      clearTimeout(timer);
+    };
+  }, [opened, columns, settingsText, remembered, match]);
+
+  const startAfresh = () => {
+    table.close();
+    kept.drop();
+    setColumns(noChoices);
+    typed.startAfresh();
+  };
+  const draft = {
+    restoredFrom: kept.restoredFrom ?? typed.restoredFrom,
+    notKept: kept.notKept || typed.notKept,
+    startAfresh,
+    sent: () => {
+      kept.drop();
+      setColumns(noChoices);
+      typed.sent();
+    },
+  };
+  const preview = form.handleSubmit(() => void table.preview(leaveOut));
+  const counts = previewed?.counts ?? matched?.counts ?? null;
+  const rows = counts === null ? null : Object.values(counts).reduce((sum, each) => sum + each, 0);
+  const usable =
+    matched !== null &&
+    matched.problems.length === 0 &&
+    matched.matches.every(({ problem }) => problem === null);
   return (
-    <form noValidate aria-label="Post a table" onSubmit={(event) => void submit(event)}>
-      <FormBody busy={busy !== null}>
-        <DraftNote draft={draft} />
-        <PostedNote campaign={key} posted={posting.posted} />
-        <ColumnHelp document={document} />
-        <TextFileField
-          // A file that was posted is done with.
-          key={posting.posted?.appended?.from ?? "next"}
-          label="CSV file"
-          accept=".csv,text/csv,text/plain"
-          help="Read here in the browser; its rows appear below."
-          onText={(read) => {
-            posting.forget();
-            setValue("text", read, { shouldDirty: true, shouldValidate: true });
-          }}
-        />
-        <TextArea
-          label="Rows"
-          gloss={lines > 1 ? `${lines - 1} below the header` : undefined}
-          help="Or paste them, with the header line first."
-          rows={8}
-          spellCheck={false}
-          wrap="off"
-          className="font-mono text-[13px]"
-          error={formState.errors.text?.message}
-          {...register("text", changed)}
-        />
-        <FieldRow>
-          <Choice label="Quantity of rows that name none" {...register("measurand", changed)}>
-            <option value="">every row names its own</option>
-            {document.measurands.map((measurand) => (
-              <option key={measurand.key} value={measurand.key}>
-                {measurand.title}
-              </option>
-            ))}
-          </Choice>
-          <Choice label="Facility of rows that name none" {...register("facility", changed)}>
-            <option value="">every row names its own</option>
-            {document.facilities.map((facility) => (
-              <option key={facility.key} value={facility.key}>
-                {facility.title}
-              </option>
-            ))}
-          </Choice>
-        </FieldRow>
-        <Button kind={previewed ? "plain" : "main"} type="submit" disabled={busy !== null}>
-          {busy === "previewing" ? "Reading the rows…" : "Preview rows"}
-        </Button>
-        {previewed === null ? null : (
-          <PreviewView document={document} preview={previewed.preview} />
-        )}
-        <div className="mt-3">
-          <PostingRefused refusal={posting.refusal} />
-          {previewed?.preview.postable ? (
+    <FormProvider {...form}>
+      <form noValidate aria-label="Post a table" onSubmit={(event) => void preview(event)}>
+        <FormBody busy={busy === "posting"}>
+          <DraftNote draft={draft} />
+          <PostedNote campaign={key} entered={table.posted} />
+          <ChooseTable
+            open={opened?.name ?? null}
+            text={form.register("text")}
+            pasted={() => form.getValues("text")}
+            onTable={bring}
+          />
+          {opened === null ? null : (
+            <section aria-label="What was read">
+              <TableFacts opened={opened} notes={matched?.notes ?? []} />
+              <TableProblems problems={[...opened.problems, ...(matched?.problems ?? [])]} />
+              {matched === null || matched.matches.length === 0 ? null : (
+                <>
+                  <h3 className="mt-4 mb-1.5">Columns</h3>
+                  <RememberedNote
+                    document={document}
+                    matched={matched}
+                    onForget={table.forgetRemembered}
+                  />
+                  <ColumnRows
+                    document={document}
+                    columns={opened.columns}
+                    matched={matched}
+                    choices={columns}
+                    onChoose={setColumns}
+                  />
+                </>
+              )}
+              <h3 className="mt-5 mb-2">
+                For all rows <span className="gloss">that don’t say it themselves</span>
+              </h3>
+              <WholeTableFields document={document} csv={opened.format === "csv"} />
+            </section>
+          )}
+        </FormBody>
+        <div className="flex min-h-9 flex-wrap items-center gap-x-5 gap-y-2">
+          {opened === null ? null : (
+            <Button
+              kind={previewed?.postable ? "plain" : "main"}
+              type="submit"
+              disabled={busy !== null || !usable || rows === 0}
+            >
+              {previewed === null ? "Preview" : "Preview again"}
+            </Button>
+          )}
+          <ProgressNote
+            busy={busy}
+            progress={table.progress}
+            rows={rows}
+            onStop={() => void table.stop()}
+          />
+        </div>
+        <FormBody busy={busy === "posting"}>
+          {previewed === null ? null : <TablePreview document={document} previewed={previewed} />}
+          {previewed === null ? null : (
+            <LeaveOut
+              previewed={previewed}
+              checked={leaveOut}
+              onChange={(out) => {
+                setLeaveOut(out);
+                void table.preview(out);
+              }}
+            />
+          )}
+          <PostingRefused refusal={table.refusal} />
+          {previewed?.postable ? (
             <Button
               kind="main"
               disabled={busy !== null}
-              onClick={() => void posting.post(draft.sent)}
+              onClick={() => void table.post(draft.sent)}
             >
-              {busy === "posting" ? "Posting…" : postLabel(previewed.preview.counts.new)}
+              {postLabel(previewed.counts.new)}
             </Button>
           ) : null}
-        </div>
-      </FormBody>
-    </form>
-  );
-}
-
-function ColumnHelp({ document }: { document: CampaignDocument }) {
-  const keys = (parts: readonly { key: string }[]) => parts.map(({ key }) => key).join(", ");
-  return (
-    <details className="mb-3 text-[14px]">
-      <summary className="cursor-pointer">Which columns, and which keys</summary>
-      <div className="mt-2 max-w-[90ch] text-quiet">
-        <p>
-          The first line names the columns. Needed: <code>value</code>, <code>sd</code>, and{" "}
-          <code>measurand</code> unless you choose one below. Also read: <code>id</code>,{" "}
-          <code>facility</code>, <code>batch</code>, <code>observedAt</code> (UTC),{" "}
-          <code>unit</code>, <code>status</code>, <code>source</code>, <code>sameData</code>,{" "}
-          <code>shared</code> (such as <code>zero-point:1; flux:0.5</code>). Other columns are kept
-          beside the measurement.
-        </p>
-        <p className="mt-1">Quantities: {keys(document.measurands) || "none declared yet"}.</p>
-        <p>Facilities: {keys(document.facilities) || "none declared yet"}.</p>
-        {document.sharedErrors.length > 0 ? (
-          <p>Shared errors: {keys(document.sharedErrors)}.</p>
-        ) : null}
-      </div>
-    </details>
+        </FormBody>
+        {counts === null || rows === 0 ? null : (
+          <FateRows
+            document={document}
+            counts={counts}
+            worker={table.worker}
+            version={table.version}
+          />
+        )}
+      </form>
+    </FormProvider>
   );
 }

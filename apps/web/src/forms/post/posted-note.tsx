@@ -4,24 +4,43 @@ import { formatCount } from "@weighhouse/figures/numbers";
 import Link from "next/link";
 import { Notice } from "@/look/notice";
 import type { Refusal } from "../refusal";
-import type { Posted } from "./use-posting";
 import { FailureNote } from "../form-frame";
 import { problemWords } from "../form-schema";
 
+/** What was entered, and where in the ledger. */
+export interface Entered {
+  posted: number;
+  alreadyThere: number;
+  entries: { from: number; to: number } | null;
+  /** Rows at fault that were left out, as was asked for. */
+  leftOut: number;
+}
+
 /** What came of posting. */
-export function PostedNote({ campaign, posted }: { campaign: string; posted: Posted | null }) {
+export function PostedNote({ campaign, entered }: { campaign: string; entered: Entered | null }) {
   return (
     <output className="block">
-      {posted === null ? null : (
+      {entered === null ? null : (
         <Notice tone="good" label="Entered.">
-          {posted.posted.length === 1
+          {entered.posted === 1
             ? "1 measurement is on record"
-            : `${formatCount(posted.posted.length)} measurements are on record`}
-          {posted.appended === null ? "" : ` as ${entriesWords(posted.appended)}`}
-          {posted.alreadyThere.length > 0
-            ? `; ${formatCount(posted.alreadyThere.length)} were there already`
+            : `${formatCount(entered.posted)} measurements are on record`}
+          {entered.entries === null ? null : (
+            <>
+              {" "}
+              as{" "}
+              <Link className="link" href={`/campaigns/${campaign}/ledger/${entered.entries.from}`}>
+                {entriesWords(entered.entries)}
+              </Link>
+            </>
+          )}
+          {entered.alreadyThere > 0
+            ? `; ${formatCount(entered.alreadyThere)} ${entered.alreadyThere === 1 ? "was" : "were"} there already`
             : ""}
-          .{" "}
+          .
+          {entered.leftOut > 0
+            ? ` ${formatCount(entered.leftOut)} ${entered.leftOut === 1 ? "row" : "rows"} at fault ${entered.leftOut === 1 ? "was" : "were"} left out, as you chose.`
+            : ""}{" "}
           <Link className="link" href={`/campaigns/${campaign}`}>
             See the standings
           </Link>

@@ -9,6 +9,7 @@ import { problemWords } from "../form-schema";
 import { ChangesView } from "./changes-view";
 import {
   countWords,
+  fateInk,
   fateWords,
   reasonsOf,
   rowsToShow,
@@ -17,13 +18,6 @@ import {
 } from "./fates";
 
 const mostRows = { stopping: 200, others: 20 };
-
-const inks: Record<PreviewedRow["fate"], string> = {
-  new: "text-fir",
-  alreadyThere: "text-quiet",
-  conflict: "text-rust font-medium",
-  refused: "text-rust font-medium",
-};
 
 /** Each row's fate and what posting would change, before anything is entered. */
 export function PreviewView(props: { document: CampaignDocument; preview: MeasurementsPreview }) {
@@ -97,7 +91,7 @@ function Row(props: { row: PreviewedRow; document: CampaignDocument; reasons: bo
         <span className="sm:hidden">Line </span>
         {row.line}
       </th>
-      <td data-label="Fate" className={`whitespace-nowrap ${inks[row.fate]}`}>
+      <td data-label="Fate" className={`whitespace-nowrap ${fateInk[row.fate]}`}>
         {fateWords[row.fate]}
       </td>
       <td data-label="Id">{row.id === null ? null : <code>{row.id}</code>}</td>
