@@ -10,7 +10,7 @@ import { manyQuantities } from "@weighhouse/tables/testing/harbour";
 import { hardTable } from "@weighhouse/tables/testing/written-tables";
 import { writeEcsv } from "@weighhouse/tables/write-ecsv";
 import { writeVotable } from "@weighhouse/tables/write-votable";
-import type { WrittenColumn, WrittenTable } from "@weighhouse/tables/written-table";
+import type { WrittenCell, WrittenColumn, WrittenTable } from "@weighhouse/tables/written-table";
 
 const folder = mkdtempSync(path.join(tmpdir(), "weighhouse-tables-"));
 afterAll(() => rmSync(folder, { recursive: true }));
@@ -55,6 +55,11 @@ const measured = measurementTable(
   manyQuantities,
 );
 
+const anyNumbers: fc.Arbitrary<WrittenCell[]> = fc.tuple(
+  fc.option(fc.double({ noNaN: true, noDefaultInfinity: true })),
+  fc.option(fc.maxSafeInteger()),
+  fc.option(fc.boolean()),
+);
 /** Doubles and integers of all sizes. */
 const numbers: WrittenTable = {
   columns: (["number", "integer", "boolean"] as const).map((kind) => ({
@@ -64,14 +69,7 @@ const numbers: WrittenTable = {
     ucd: null,
     description: null,
   })),
-  rows: fc.sample(
-    fc.tuple(
-      fc.option(fc.double({ noNaN: true, noDefaultInfinity: true })),
-      fc.option(fc.maxSafeInteger()),
-      fc.option(fc.boolean()),
-    ),
-    { numRuns: 500, seed: 1 },
-  ),
+  rows: fc.sample(anyNumbers, { numRuns: 500, seed: 1 }),
 };
 
 const tables: [name: string, table: WrittenTable][] = [
