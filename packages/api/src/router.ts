@@ -1,3 +1,4 @@
+import { apiKeysRouter } from "./routers/api-keys";
 import { auditRouter } from "./routers/audit";
 import { campaignsRouter } from "./routers/campaigns";
 import { declareRouter } from "./routers/declare";
@@ -23,6 +24,7 @@ export const appRouter = router({
   seals: sealsRouter,
   ledger: ledgerRouter,
   audit: auditRouter,
+  apiKeys: apiKeysRouter,
   webhooks: webhooksRouter,
   events: eventsRouter,
 });

@@ -25,6 +25,9 @@ export async function SiteHeader() {
         <nav aria-label="Site" className="flex-1">
           <Link href="/campaigns" className="text-quiet no-underline hover:text-ink">
             Campaigns
+          </Link>{" "}
+          <Link href="/programs" className="ml-4 text-quiet no-underline hover:text-ink">
+            For programs
           </Link>
         </nav>
         <div className="flex flex-wrap items-center gap-x-4 gap-y-1 text-[14px]">

@@ -121,7 +121,12 @@ function tabsOf(view: CampaignView, base: string) {
     { href: `${base}/hypotheses`, label: "Hypotheses" },
     { href: `${base}/ledger`, label: "Ledger" },
     { href: `${base}/audit`, label: "Audit trail" },
-    ...(member ? [{ href: `${base}/members`, label: "People" }] : []),
+    ...(member
+      ? [
+          { href: `${base}/members`, label: "People" },
+          { href: `${base}/keys`, label: "Keys" },
+        ]
+      : []),
   ];
 }
 

@@ -12,11 +12,17 @@ import { services } from "./services";
 const readApi = cache(async () => {
   const { desk, auth, log } = await services();
   const context = await createContext({ desk, auth, log, headers: await headers() });
-  return { caller: appRouter.createCaller(context), actor: context.actor };
+  const { actor, origin } = context;
+  return { caller: appRouter.createCaller(context), actor, origin };
 });
 
 export async function readActor(): Promise<Actor> {
   return (await readApi()).actor;
+}
+
+/** Where people reach this server, as it was set. */
+export async function readOrigin(): Promise<string> {
+  return (await readApi()).origin;
 }
 
 export type Caller = Awaited<ReturnType<typeof readApi>>["caller"];

@@ -25,11 +25,9 @@ export function rateLimit(rate: RateClass, counted: Counted): RateLimit {
   return { requests: requests[rate][counted], seconds: SECONDS };
 }
 
-/** The table in words, for the API's description. */
-export function rateTable(): string {
-  const rows = Object.entries(requests).map(
-    ([rate, { key, user, address }]) =>
-      `${rate}: ${key} by key, ${user} by account, ${address} by address`,
-  );
-  return `A minute allows, by class: ${rows.join("; ")}.`;
+const classes = Object.keys(requests) as RateClass[];
+
+/** The table, a row for each class. */
+export function rateRows(): ({ rate: RateClass } & Record<Counted, number>)[] {
+  return classes.map((rate) => ({ rate, ...requests[rate] }));
 }

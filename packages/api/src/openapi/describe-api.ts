@@ -1,4 +1,4 @@
-import { rateTable } from "../http/rate-classes";
+import { rateRows } from "../http/rate-classes";
 import type { Route } from "../http/route";
 import { describeOperation } from "./describe-operation";
 import type { Operation } from "./describe-operation";
@@ -49,10 +49,18 @@ const securitySchemes = {
   },
 };
 
+const rates = () =>
+  rateRows()
+    .map(
+      ({ rate, key, user, address }) =>
+        `${rate} ${key} by key, ${user} by account, ${address} by address`,
+    )
+    .join("; ");
+
 const ABOUT = [
   "What programs read from a campaign and send to it. Public campaigns are read without a key.",
   "A key acts as the member who made it, in its campaign alone, within its scopes: `Authorization: Bearer weighhouse_…`.",
   "Every GET has an ETag and heeds If-None-Match; HEAD works wherever GET does. What is posted is entered whole or not at all. Refusals are problem details (RFC 9457).",
   "A POST that enters something heeds Idempotency-Key: the same again is answered as the first time, for a day.",
-  `Requests are counted by key, else by account, else by address; RateLimit tells how many are left, and 429 comes with Retry-After. ${rateTable()}`,
+  `Requests are counted by key, else by account, else by address; RateLimit tells how many are left, and 429 comes with Retry-After. A minute allows: ${rates()}.`,
 ].join("\n\n");
