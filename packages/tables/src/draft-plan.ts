@@ -76,7 +76,8 @@ export function planDrafts(
     const match = matches[index];
     if (match === undefined || match.field === "ignore") return [];
     const [role = ""] = match.field.split("@");
-    const missing = missingCells(table, index, TEXTS.has(role) ? "texts" : "numbers");
+    const holds = role === "id" ? "ids" : TEXTS.has(role) ? "texts" : "numbers";
+    const missing = missingCells(table, index, holds);
     notes.push(...missing.notes);
     return [{ index, column, match, role, isMissing: missing.isMissing }];
   });

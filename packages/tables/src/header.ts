@@ -40,7 +40,8 @@ export function withUnit(column: RawColumn, unit: string | null): RawColumn {
 function partUnit(text: string): { name: string; unit: string | null } {
   const match = /^(.*?\S)\s*(?:\[([^\]]*)\]|\(([^)]*)\))$/.exec(text);
   const unit = (match?.[2] ?? match?.[3] ?? "").trim();
-  if (match === null || (match[3] !== undefined && NO_UNIT.test(unit))) {
+  const inParentheses = match?.[3] !== undefined;
+  if (match === null || text.startsWith("extra.") || (inParentheses && NO_UNIT.test(unit))) {
     return { name: text, unit: null };
   }
   return { name: match[1] ?? "", unit: unit === "" ? null : unit };

@@ -7,6 +7,7 @@ import { measurementTable } from "./measurement-table";
 import { readTable } from "./read-table";
 import { manyQuantities } from "./testing/harbour";
 import { writeEcsv } from "./write-ecsv";
+import { writeTableCsv } from "./write-table-csv";
 import { writeVotable } from "./write-votable";
 
 const one = (given: object): Measurement => measurementSchema.parse(given);
@@ -87,7 +88,28 @@ const otherResults = [
   one({ id: "l:1", measurand: "level-now", value: 3, sdDex: 0.1 }),
 ];
 
+/** Names that a reader would take for something else. */
+const claimed = one({
+  ...inMay,
+  id: "raft:8",
+  value: 1,
+  sd: 1,
+  extra: {
+    e_flux: 1,
+    error: 2,
+    JD: 3,
+    date: "4 May",
+    "seeing [arcsec]": 5,
+    "flux (B)": 6,
+    "extra.a": 7,
+    flux: 8,
+    glow: 9,
+    noise: "dark",
+  },
+});
+
 const ways: [way: string, write: (table: ReturnType<typeof measurementTable>) => string][] = [
+  ["CSV", writeTableCsv],
   ["ECSV", writeEcsv],
   ["TABLEDATA", (table) => writeVotable(table, { serialization: "TABLEDATA" })],
   ["BINARY2", (table) => writeVotable(table, { serialization: "BINARY2" })],
@@ -112,6 +134,10 @@ describe.each(ways)("what is measured, written as %s and read", (_, write) => {
         extra: withoutNull(measurement.extra),
       })),
     );
+  });
+
+  it("is the same again under whatever names its extras have", () => {
+    expect(readBack([claimed])).toEqual([{ ...claimed, unit: "Jy" }]);
   });
 
   it("in units of its own where there are several, events and counts among them", () => {

@@ -17,19 +17,21 @@ const IN_NUMBERS = new Set([
 ]);
 const IN_TEXTS = new Set(["nan", "null", "--", "---", "n/a", "…"]);
 
+const MARKS = { numbers: IN_NUMBERS, texts: IN_TEXTS, ids: new Set<string>() };
+
 /** What stands for a missing cell in one column, and how often. */
 export type MissingCells = { isMissing: (cell: RawCell) => boolean; notes: string[] };
 
 /**
  * Which cells of a column are missing: masked ones, empty ones, and those with a mark that says
- * so. Fewer marks are taken as such among texts, where `NA` may be a name.
+ * so. Fewer marks are taken as such among texts, where `NA` may be a name, and none among ids.
  */
 export function missingCells(
   table: Pick<RawTable, "columns" | "rows">,
   index: number,
-  holds: "numbers" | "texts",
+  holds: "numbers" | "texts" | "ids",
 ): MissingCells {
-  const marks = holds === "numbers" ? IN_NUMBERS : IN_TEXTS;
+  const marks = MARKS[holds];
   const found = new Map<string, { count: number; line: number }>();
   for (const { line, cells } of table.rows) {
     const cell = cells[index];

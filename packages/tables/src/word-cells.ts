@@ -56,9 +56,10 @@ export function sharedCell(cell: RawCell, number: (text: string) => unknown): un
     });
 }
 
-/** A cell that belongs to no field: a number where it reads back as the same text, else as it is. */
+/** A cell that belongs to no field: a number or a truth where it reads back as the same text, else as it is. */
 export function extraCell(cell: RawCell): RawCell {
   if (typeof cell !== "string" || cell === "") return cell;
+  if (cell === "true" || cell === "false") return cell === "true";
   const number = Number(cell);
   return Number.isFinite(number) && String(number) === cell ? number : cell;
 }
