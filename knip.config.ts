@@ -37,7 +37,7 @@ const config: KnipConfig = {
       entry: [
         "bench/*.ts",
         "debian-{postgres,tools}.mjs",
-        "archive/{vitest.config,*.outside}.ts",
+        "{archive,api}/{vitest.config,*.outside}.ts",
         "fault/*.ts",
         "**/*.{test,spec}.ts",
       ],

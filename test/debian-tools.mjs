@@ -2,8 +2,8 @@
  * Checks audit trails and tables with what a referee or an observer has at hand and this project
  * doesn't bring: Debian's python3 runs an archive's check.py, its jq, openssl and sha256sum the
  * README's commands as printed, its LaTeX the tables; its astropy reads measurements in ECSV and
- * VOTable. Installs them with apt-get where one is missing and this is root (some 65 MB of packages,
- * half of them TeX's).
+ * VOTable; its curl and python3 run the examples of the API's README against a server. Installs them
+ * with apt-get where one is missing and this is root (some 65 MB of packages, half of them TeX's).
  *
  *   node test/debian-tools.mjs [REPORT.json]
  *
@@ -22,6 +22,7 @@ const NOT_RUN = 3;
 const packages = {
   python3: "/usr/bin/python3",
   "python3-astropy": "/usr/lib/python3/dist-packages/astropy/__init__.py",
+  curl: "/usr/bin/curl",
   jq: "/usr/bin/jq",
   openssl: "/usr/bin/openssl",
   "texlive-latex-base": "/usr/bin/pdflatex",
@@ -31,7 +32,9 @@ const missing = () => Object.keys(packages).filter((name) => !existsSync(package
 
 if (missing().length > 0) install(missing());
 if (missing().length > 0) {
-  console.error(`archives' outside checks NOT RUN: without ${missing().join(", ")}`);
+  console.error(
+    `outside checks of archives and of the API's README NOT RUN: without ${missing().join(", ")}`,
+  );
   process.exit(NOT_RUN);
 }
 

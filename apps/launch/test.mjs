@@ -40,8 +40,9 @@ await step("unit, property and database tests", () =>
 await step("store's tests on Debian's PostgreSQL 15", () =>
   run(process.execPath, ["test/debian-postgres.mjs", path.join(reports, "postgres15.json")]),
 );
-await step("archives checked with Debian's python3, jq, openssl and LaTeX", () =>
-  run(process.execPath, ["test/debian-tools.mjs", path.join(reports, "archive.json")]),
+await step(
+  "archives and the API's README checked with Debian's python3, curl, jq, openssl and LaTeX",
+  () => run(process.execPath, ["test/debian-tools.mjs", path.join(reports, "archive.json")]),
 );
 await step("browser tests", async () => {
   const chromium = (await findChromium()) ?? (await installChromium());

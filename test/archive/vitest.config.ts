@@ -6,7 +6,10 @@ export default defineConfig({
   root: path.resolve(import.meta.dirname, "../.."),
   test: {
     name: "archive",
-    include: ["test/archive/**/*.outside.ts"],
+    include: ["test/{archive,api}/**/*.outside.ts"],
+    // A PostgreSQL, for what is asked of a server.
+    globalSetup: ["packages/store/src/testing/global-setup.ts"],
     testTimeout: 120_000,
+    hookTimeout: 120_000,
   },
 });
