@@ -189,6 +189,9 @@ export function flatQuantileOf(
       for (const { cdf, share, first } of counted!) sum += share * cdf!(first + flat, t);
       return sum;
     };
+    // Nearly all of it may lie closer to a bound than numbers can tell.
+    if (!(above(lower) < 0)) return lower;
+    if (!(above(upper) > 0)) return upper;
     return findRoot(above, lower, upper, 1e-12 * (upper - lower));
   };
 }
