@@ -1,4 +1,4 @@
-import type { CampaignDocument } from "@weighhouse/campaign/document";
+import type { CampaignDocument, Measurement } from "@weighhouse/campaign/document";
 import { readCampaign } from "@weighhouse/campaign/read";
 
 /** One curve of `count` measurements: a polynomial reference, a line expected, a smooth tolerance. */
@@ -46,15 +46,29 @@ export function curveCampaign(count: number, smooth = false): CampaignDocument {
         ],
       },
     ],
-    measurements: Array.from({ length: count }, (_, i) => ({
-      id: `x${i}`,
-      measurand: "m",
-      conditions: { x: (i * 0.6180339887498949) % 1 },
-      value: 0.9 * ((i * 0.6180339887498949) % 1) + 0.1 * Math.sin(i),
-      sd: 0.1,
-      shared: [{ error: "zero" }],
-    })),
+    measurements: Array.from({ length: count }, (_, i) => measurement(i)),
   });
   if (!read.ok) throw new Error(JSON.stringify(read.problems.slice(0, 3)));
   return read.value;
+}
+
+/** Measurements [begin, end) of it, as read. */
+export function curveMeasurements(begin: number, end: number): Measurement[] {
+  const template = curveCampaign(1).measurements[0]!;
+  return Array.from({ length: end - begin }, (_, i) => {
+    const { id, conditions, value } = measurement(begin + i);
+    return { ...template, id, conditions, value };
+  });
+}
+
+function measurement(i: number) {
+  const x = (i * 0.6180339887498949) % 1;
+  return {
+    id: `x${i}`,
+    measurand: "m",
+    conditions: { x },
+    value: 0.9 * x + 0.1 * Math.sin(i),
+    sd: 0.1,
+    shared: [{ error: "zero" }],
+  };
 }

@@ -16,6 +16,7 @@ export function couplingDraws(sums: Sums): Map<number, number[]> {
     for (const pattern of one.patterns) {
       for (const draw of sums.patterns[pattern]!.draws) touch(draw, measurand);
     }
+    for (const { draws } of one.curves) for (const draw of draws) touch(draw, measurand);
     for (const { loadings } of one.kept) {
       for (const { error, batch } of loadings) touch(drawIndex(sums, { error, batch }), measurand);
     }

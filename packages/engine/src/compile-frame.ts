@@ -13,6 +13,7 @@ import type {
   MeasurandFrame,
   PredictionFrame,
 } from "./frame";
+import { designsOf } from "./model/fixed-designs";
 import { predictionFrame } from "./prediction-frame";
 import { referenceRole } from "./reference-role";
 import { toScoringSpace } from "./scoring-space";
@@ -35,6 +36,7 @@ export function compileFrame(whole: CampaignDocument): Result<Frame> {
     else problems.push(...compiled.problems);
   }
   if (problems.length > 0) return { ok: false, problems };
+  measurands.forEach((one, m) => (one.designs = designsOf(one, m, hypotheses)));
   const errors = document.sharedErrors.map(({ key, sd, per, relative }) => ({
     key,
     sd,
@@ -114,6 +116,7 @@ function frameOf(key: string, pointer: string, observable: Observable): Measuran
     natural: null,
     noises: [0],
     apart: false,
+    designs: [],
     thresholds: [],
     firstPostedAt: null,
     firstObservedAt: null,

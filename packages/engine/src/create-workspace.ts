@@ -59,8 +59,10 @@ export function enterDerived(workspace: Workspace, derived: DerivedVector): void
 
 /** The measurands whose readings load a draw. */
 function measurandsOf(sums: Sums, draw: number): number[] {
-  return sums.measurands.flatMap(({ patterns, kept }, measurand) => {
-    const summed = patterns.some((pattern) => sums.patterns[pattern]!.draws.includes(draw));
+  return sums.measurands.flatMap(({ patterns, kept, curves }, measurand) => {
+    const summed =
+      patterns.some((pattern) => sums.patterns[pattern]!.draws.includes(draw)) ||
+      curves.some(({ draws }) => draws.includes(draw));
     const { error, batch } = sums.draws[draw]!;
     const loads = kept.some(({ loadings }) =>
       loadings.some((one) => one.error === error && one.batch === batch),

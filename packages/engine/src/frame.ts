@@ -1,5 +1,6 @@
 import type { CampaignDocument, Prior, Scale } from "@weighhouse/campaign/document";
 import type { Expression } from "@weighhouse/campaign/expression";
+import type { LinearUnknown } from "./block/problem";
 
 /**
  * What may be said of a measurand's true value, in scoring space. `noise` is an index of the
@@ -74,6 +75,8 @@ export interface MeasurandFrame {
   noises: number[];
   /** Its readings can't be summed up: something said of it tells each measurement apart. */
   apart: boolean;
+  /** Of a curve, per role: what an ordinary reading is there as an equation; null where none is. */
+  designs: readonly (FixedDesign | null)[];
   thresholds: { key: string; value: number }[];
   firstPostedAt: string | null;
   firstObservedAt: string | null;
@@ -82,6 +85,46 @@ export interface MeasurandFrame {
   /** Derived values that are computed from it. */
   usedBy: number[];
 }
+
+/**
+ * A role under which a reading is an equation with normal noise whose coefficients and variance hang
+ * on its conditions alone: many are then as good as the triangular factor of all.
+ *
+ *   y = base + sum of coefficient_c (unknown_c - origin_c) + noise
+ */
+export interface FixedDesign {
+  columns: readonly DesignColumn[];
+  /**
+   * @param conditions in the order of the observable's
+   * @param centre what readings are counted from
+   * @param into filled wholly
+   */
+  put(conditions: readonly number[], centre: number, into: DesignRow): void;
+}
+
+/** `base` isn't finite where an expression has no value; `variance` is what isn't the reading's own. */
+export interface DesignRow {
+  coefficients: Float64Array;
+  base: number;
+  variance: number;
+}
+
+/** What a coefficient multiplies, by its key among a block's unknowns; origins in the unknown's unit. */
+export type DesignColumn = { key: string } & (
+  | { kind: "normal"; origin: number; sd: number }
+  /** A level with bounds, from the centre of the sums. */
+  | { kind: "flat"; lower: number; upper: number; width: number }
+  | { kind: "split"; plus: number; minus: number }
+  /** From where a linear parameter counts, or its log10 where that is meant. */
+  | {
+      kind: "parameter";
+      slot: number;
+      unknown: LinearUnknown;
+      from: number;
+      step: number;
+      logged: boolean;
+    }
+);
 
 /** A value computed from others' combined values. */
 export interface DerivedFrame {

@@ -3,7 +3,8 @@ import type { Result } from "@weighhouse/campaign/problem";
 import type { EngineState } from "./engine-state";
 import type { Frame } from "./frame";
 import { readMeasurement } from "./read-measurement";
-import { isSummed, type Reading } from "./readings";
+import { isKept, isSummed, type Reading } from "./readings";
+import { drawKey, type Sums } from "./sums";
 
 /** Null for a measurement that is listed and not counted, whatever its form. */
 export function readCounted(
@@ -25,6 +26,16 @@ export function readCounted(
   return readMeasurement(frame, measurement, pointer);
 }
 
+/** Whether the readings of its curve's group have the same draws. */
+function isLoadedAlready(sums: Sums, { measurand, loadings }: Reading): boolean {
+  return sums.measurands[measurand]!.curves.some(({ draws }) =>
+    loadings.every(({ error, batch }) => {
+      const draw = sums.index.draws.get(drawKey({ error, batch }));
+      return draw !== undefined && draws.includes(draw);
+    }),
+  );
+}
+
 /**
  * A reading that is kept as it is and loads shared errors may need them integrated numerically; one
  * like the last of its measurand needs none that aren't there.
@@ -34,6 +45,7 @@ export function mayAddUnknowns(
   reading: Reading | null,
 ): boolean {
   if (reading === null || reading.loadings.length === 0 || isSummed(frame, reading)) return false;
+  if (!isKept(frame, reading)) return !isLoadedAlready(sums, reading);
   const last = sums.measurands[reading.measurand]!.kept.at(-1);
   return (
     last === undefined ||

@@ -40,10 +40,29 @@ export interface Reading {
 
 /**
  * Whether a reading goes into its measurand's sums: an ordinary value, not correlated with another,
- * of a constant measurand on a line. Any other is kept as it is.
+ * of a constant measurand on a line.
  */
 export function isSummed(frame: Frame, { id, measurand, told }: Reading): boolean {
   return told.form === "value" && !frame.measurands[measurand]!.apart && !frame.correlated.has(id);
+}
+
+/**
+ * Whether a reading of a curve goes into its triangular factors: an ordinary value, not correlated
+ * with another, whose shared errors load it by numbers.
+ */
+export function isFactored(frame: Frame, { id, measurand, told, loadings }: Reading): boolean {
+  return (
+    told.form === "value" &&
+    frame.measurands[measurand]!.designs.some((design) => design !== null) &&
+    !frame.correlated.has(id) &&
+    !loadings.some(({ relative }) => relative)
+  );
+}
+
+/** Whether a reading is kept as it is: nothing holds it, or a role of its measurand asks for each one. */
+export function isKept(frame: Frame, reading: Reading): boolean {
+  if (isSummed(frame, reading)) return false;
+  return !isFactored(frame, reading) || frame.measurands[reading.measurand]!.designs.includes(null);
 }
 
 /** A value that a residual can be taken of: it counts in chi-square. */

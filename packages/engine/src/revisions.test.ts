@@ -16,6 +16,7 @@ import {
   type Revision,
 } from "./state";
 import { documentFrom } from "./testing/documents";
+import { randomCurves } from "./testing/random-curves";
 import { expectSame } from "./testing/same-numbers";
 
 const POSTED = "2034-03-02T00:00:00Z";
@@ -168,6 +169,37 @@ describe.each(names)("a state of %s", (name) => {
       }
     },
   );
+});
+
+describe("a state of random curves", () => {
+  test.each([1, 2, 3, 4, 5, 6])(
+    "scores as the whole does, whatever comes and goes (%i)",
+    (seed) => {
+      const document = read(randomCurves(seed, { level: 30 }));
+      const course = courseOf(document, seed);
+      expectSame(standingsOf(course.state), standingsOf(stateOf(course.document)));
+    },
+  );
+
+  test.each([1, 2])("that keeps its bytes is the one that the document gives (%i)", (seed) => {
+    const course = courseOf(read(randomCurves(seed)), seed, "bytes");
+    expect(evidencesOf(course.state)).toEqual(evidencesOf(stateOf(course.document)));
+  });
+
+  test("loses no digits to downdates, and is made anew before it would", () => {
+    const document = read(randomCurves(7, { level: 2_460_000, unit: 1e-4, count: 300 }));
+    const course = new Course(document);
+    course.post(document.measurements);
+    for (let i = 0; i < 60; i += 1) course.withdraw(20 + 3 * (i % 40));
+    const { remade } = course;
+    expect(remade).toBeLessThan(6);
+    expectSame(evidencesOf(course.state), evidencesOf(stateOf(course.document)), 1e-11);
+    const [first] = course.document.measurements;
+    course.post([{ ...first!, id: "sharp", sd: 1e-9 }]);
+    course.withdraw(course.listed.length - 1);
+    expect(course.remade).toBe(remade + 1);
+    expectSame(evidencesOf(course.state), evidencesOf(stateOf(course.document)), 1e-11);
+  });
 });
 
 test.each(names.filter((name) => !slow.includes(name)))(

@@ -1,5 +1,6 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import { compileFrame } from "./compile-frame";
+import type { CurveGroup, RoleSystem } from "./curve-sums";
 import type { EngineState } from "./engine-state";
 import type { Reading } from "./readings";
 import { indexSums, placeOf, type Draw, type MeasurandSums, type Pattern } from "./sums";
@@ -14,12 +15,20 @@ interface StateText {
   draws: Draw[];
   patterns: Pattern[];
   firsts: string[];
-  measurands: (Omit<MeasurandSums, "sums" | "kept"> & { sums: number[]; kept: KeptText[] })[];
+  measurands: (Omit<MeasurandSums, "sums" | "kept" | "curves"> & {
+    sums: number[];
+    kept: KeptText[];
+    curves: CurveText[];
+  })[];
   tally: Omit<Tally, "sameData" | "unknownUnits"> & {
     sameData: [string, Tally["sameData"] extends Map<string, infer V> ? V : never][];
     unknownUnits: [string, Tally["unknownUnits"] extends Map<string, infer V> ? V : never][];
   };
 }
+
+type CurveText = Omit<CurveGroup, "systems"> & {
+  systems: ((Omit<RoleSystem, "data"> & { data: number[] }) | null)[];
+};
 
 /** A condition that wasn't given is NaN, which JSON has no number for. */
 type KeptText = Omit<Reading, "conditions"> & { conditions: (number | null)[] };
@@ -36,6 +45,10 @@ export function serialiseState({ frame, sums, tally }: EngineState): string {
     measurands: sums.measurands.map((one) => ({
       ...one,
       sums: [...one.sums.subarray(0, placeOf(one, one.patterns.length, 0))],
+      curves: one.curves.map((group) => ({
+        ...group,
+        systems: group.systems.map((system) => system && { ...system, data: [...system.data] }),
+      })),
     })),
     tally: {
       ...tally,
@@ -64,6 +77,12 @@ export function restoreState(text: string): EngineState | null {
     measurands: measurands.map((one) => ({
       ...one,
       sums: Float64Array.from(one.sums),
+      curves: one.curves.map((group) => ({
+        ...group,
+        systems: group.systems.map(
+          (system) => system && { ...system, data: Float64Array.from(system.data) },
+        ),
+      })),
       kept: one.kept.map((reading) => ({
         ...reading,
         conditions: reading.conditions.map((value) => value ?? Number.NaN),

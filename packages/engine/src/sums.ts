@@ -1,5 +1,14 @@
 import type { Frame, MeasurandFrame } from "./frame";
-import { isSummed, isValue, type Loading, type Reading, type Told } from "./readings";
+import { addToGroup, createCurveGroup, type CurveGroup, type CurveReading } from "./curve-sums";
+import {
+  isFactored,
+  isKept,
+  isSummed,
+  isValue,
+  type Loading,
+  type Reading,
+  type Told,
+} from "./readings";
 
 /** One independent draw of a shared error: the error's only one, or its draw for one batch. */
 export interface Draw {
@@ -46,8 +55,10 @@ export interface MeasurandSums {
    * about it, sum of ln v. Longer than its groups need.
    */
   sums: Float64Array;
-  /** Readings that no sums can hold. */
+  /** Readings that no sums can hold, or that a role asks for one by one. */
   kept: Reading[];
+  /** Of a curve: see CurveGroup. */
+  curves: CurveGroup[];
 }
 
 /** All that the measurements say, in a size that hangs on the patterns of loadings, not on their number. */
@@ -69,6 +80,8 @@ interface SumsIndex {
   single: Map<number, Map<number, number>>;
   /** Per measurand, groups by pattern. */
   groups: Map<number, number>[];
+  /** Per measurand, groups of a curve by batch. */
+  batches: Map<string | null, number>[];
 }
 
 export function createSums(measurands: readonly MeasurandFrame[]): Sums {
@@ -87,6 +100,7 @@ export function createSums(measurands: readonly MeasurandFrame[]): Sums {
       wear: [],
       sums: new Float64Array(noises.length * PER_CLASS),
       kept: [],
+      curves: [],
     })),
   });
 }
@@ -104,6 +118,7 @@ export function indexSums(parts: Omit<Sums, "index">): Sums {
       groups: measurands.map(
         (measurand) => new Map(measurand.patterns.map((pattern, group) => [pattern, group])),
       ),
+      batches: measurands.map(({ curves }) => new Map(curves.map(({ batch }, at) => [batch, at]))),
     },
   };
 }
@@ -137,9 +152,14 @@ export function addReading(
     own.wear[group] ??= 0;
     addValue(own, told, group, frame.measurands[reading.measurand]!);
   } else {
-    if (keptAt === null) own.kept.push(reading);
-    else own.kept.splice(keptAt, 0, reading);
-    for (const { error, batch } of reading.loadings) drawIndex(sums, { error, batch });
+    if (told.form === "value" && isFactored(frame, reading)) {
+      const { group, as } = curveGroupOf(sums, reading, { told, frame });
+      addToGroup(group, as, frame.measurands[reading.measurand]!);
+    } else for (const { error, batch } of reading.loadings) drawIndex(sums, { error, batch });
+    if (isKept(frame, reading)) {
+      if (keptAt === null) own.kept.push(reading);
+      else own.kept.splice(keptAt, 0, reading);
+    }
   }
   if (sums.draws.length + sums.patterns.length > before) sums.firsts.add(reading.id);
 }
@@ -172,6 +192,29 @@ function addValue(
     numbers[at + SQUARES] = numbers[at + SQUARES]! + weight * distance * (y - mean);
     numbers[at + LOG_VARIANCE] = numbers[at + LOG_VARIANCE]! + Math.log(v);
   }
+}
+
+/** The group of a curve that a reading is in, added if new, and the reading as the group takes it. */
+export function curveGroupOf(
+  sums: Sums,
+  reading: Reading,
+  { told, frame }: { told: Extract<Told, { form: "value" }>; frame: Frame },
+): { group: CurveGroup; as: CurveReading } {
+  const { measurand, conditions } = reading;
+  const own = sums.measurands[measurand]!;
+  const places = sums.index.batches[measurand]!;
+  const { batch, draws, loadings } = sortedPattern(sums, reading.loadings);
+  let place = places.get(batch);
+  if (place === undefined) {
+    place = own.curves.push(createCurveGroup(frame.measurands[measurand]!, batch)) - 1;
+    places.set(batch, place);
+  }
+  const { centre } = own;
+  const y = told.y - centre;
+  return {
+    group: own.curves[place]!,
+    as: { y, centre, variance: told.variance, conditions, draws, loadings },
+  };
 }
 
 /** The group of a reading's loadings, added if new. */
@@ -260,6 +303,6 @@ export function drawIndex(sums: Sums, draw: Draw): number {
   return sums.draws.push(draw) - 1;
 }
 
-function drawKey({ error, batch }: Draw): string {
+export function drawKey({ error, batch }: Draw): string {
   return batch === null ? `${error}` : `${error} ${batch}`;
 }

@@ -1,7 +1,9 @@
 import type { Frame } from "./frame";
-import { isSummed, isValue, type Reading } from "./readings";
+import { takeFromGroup, type CurveGroup } from "./curve-sums";
+import { isFactored, isKept, isSummed, isValue, type Reading } from "./readings";
 import {
   centreOf,
+  curveGroupOf,
   groupOf,
   LOG_VARIANCE,
   MEAN,
@@ -42,14 +44,23 @@ export function takeOut(sums: Sums, reading: Reading, frame: Frame): { worn: boo
     const group = groupOf(sums, reading);
     wear = subtract(own, { ...told, group }, frame.measurands[reading.measurand]!);
     if (own.counts[group] === 0) drop(sums, reading.measurand, group);
-  } else own.kept = own.kept.filter(({ id }) => id !== reading.id);
-  return { worn: (centred && own.patterns.length > 0) || wear > MOST_WEAR };
+  } else {
+    if (told.form === "value" && isFactored(frame, reading)) {
+      const { group, as } = curveGroupOf(sums, reading, { told, frame });
+      wear = takeFromGroup(group, as, frame.measurands[reading.measurand]!);
+      if (group.count === 0) wear = dropCurve(sums, reading.measurand, group);
+    }
+    if (isKept(frame, reading)) own.kept = own.kept.filter(({ id }) => id !== reading.id);
+  }
+  const summed = own.patterns.length > 0 || own.curves.length > 0;
+  return { worn: (centred && summed) || !(wear <= MOST_WEAR) };
 }
 
 /** Where no sums are, the centre is the first reading's, as it would be from the start. */
 export function centreAnew(sums: Sums, measurand: number): void {
   const own = sums.measurands[measurand]!;
-  if (own.patterns.length === 0) own.centre = own.kept[0] ? centreOf(own.kept[0].told) : 0;
+  if (own.patterns.length > 0 || own.curves.length > 0) return;
+  own.centre = own.kept[0] ? centreOf(own.kept[0].told) : 0;
 }
 
 /** The wear of the group after it. */
@@ -97,6 +108,14 @@ function drop(sums: Sums, measurand: number, group: number): void {
   sums.index.groups[measurand] = new Map(own.patterns.map((pattern, place) => [pattern, place]));
 }
 
+/** Nothing is left in it that could be worn: 0. */
+function dropCurve(sums: Sums, measurand: number, group: CurveGroup): number {
+  const own = sums.measurands[measurand]!;
+  own.curves = own.curves.filter((one) => one !== group);
+  sums.index.batches[measurand] = new Map(own.curves.map(({ batch }, at) => [batch, at]));
+  return 0;
+}
+
 /** Empties a measurand, to be filled again from what is left of it. */
 export function empty(sums: Sums, measurand: number): void {
   const own = sums.measurands[measurand]!;
@@ -109,5 +128,7 @@ export function empty(sums: Sums, measurand: number): void {
   own.wear = [];
   own.sums.fill(0);
   own.kept = [];
+  own.curves = [];
+  sums.index.batches[measurand]!.clear();
   sums.index.groups[measurand]!.clear();
 }

@@ -18,10 +18,19 @@ export interface Row {
   loadings: readonly number[];
   relative: readonly boolean[];
   conditions: readonly number[];
+  /** Of a row of its role's triangular factor; null where it has conditions of its own. */
+  factored: FactoredRow | null;
   /** Of a measurement that is correlated with others. */
   id: string | null;
   /** How many measurements it stands for. */
   count: number;
+}
+
+/** Coefficients of the columns of the role's fixed design. */
+export interface FactoredRow {
+  coefficients: Float64Array;
+  /** It stands for readings where what is expected has no value. */
+  impossible: boolean;
 }
 
 /** A measurand's rows under one role, with what no unknown moves. */
@@ -31,6 +40,8 @@ export interface RoleRows {
   ln: number;
   /** Its part of chi-square. */
   squares: number;
+  /** Measurements that no row's count has. */
+  counted: number;
 }
 
 /** A measurand with what is said of it. */
@@ -52,6 +63,7 @@ export interface Components {
   /** What no unknown moves: see RoleRows. */
   ln: number;
   squares: number;
+  counted: number;
 }
 
 /** A block as the kernel takes it, with where its unknowns are. */

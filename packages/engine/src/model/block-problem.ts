@@ -8,6 +8,7 @@ import { correlationGroupsOf } from "./correlated-noise";
 import { countFactor } from "./count-factor";
 import { drawsOnFits, loadDraws } from "./draws";
 import { expectNormal, expectPolynomial, expectUniform } from "./levels";
+import { addFactoredSection } from "./factored-rows";
 import { linearIn } from "./parameters";
 import { eachRelativeVariance, expectPrediction } from "./predictions";
 import { closedRows, openRows, setKind } from "./row-kinds";
@@ -25,26 +26,21 @@ export function buildBlock(workspace: Workspace, component: Component): BuiltBlo
   const sections: Section[] = [];
   const counts: Part[] = [];
   let begin = 0;
+  const addRows = (part: Part, own: Row[]) => {
+    const { measurand } = part;
+    const centre = centreOf(workspace, measurand);
+    const frameOf = frame.measurands[measurand]!;
+    sections.push({ assembly, open, part, begin, linear, centre, frame: frameOf, rows: own });
+    begin += own.length;
+  };
   for (const part of component.parts) {
     const own: Row[] = [];
     while (rows[begin + own.length]?.measurand === part.measurand)
       own.push(rows[begin + own.length]!);
     if (own.length === 0) counts.push(part);
-    else {
-      const { measurand } = part;
-      const centre = centreOf(workspace, measurand);
-      sections.push({
-        assembly,
-        open,
-        part,
-        begin,
-        linear,
-        centre,
-        frame: frame.measurands[measurand]!,
-        rows: own,
-      });
-    }
-    begin += own.length;
+    const factored = own.filter((row) => row.factored !== null);
+    if (factored.length > 0) addRows(part, factored);
+    if (factored.length < own.length) addRows(part, own.slice(factored.length));
   }
   const shared = drawsOnFits(
     sections.map(({ part, rows: own }) => ({
@@ -52,7 +48,9 @@ export function buildBlock(workspace: Workspace, component: Component): BuiltBlo
       rows: own,
     })),
   );
-  for (const section of sections) addSection(section, shared);
+  // What other rows make of an unknown holds for a factor's rows too.
+  for (const section of sections) if (!isFactored(section)) addSection(section, shared);
+  for (const section of sections) if (isFactored(section)) addFactoredSection(section, shared);
   correlateTolerances(assembly, component.parts);
   const outerFactor = countFactor(workspace, assembly, { parts: counts, linear });
   open.groups = correlationGroupsOf(workspace, rows, open);
@@ -122,6 +120,10 @@ function addSection(section: Section, shared: ReadonlySet<number>): void {
     });
   }
   loadDraws(section, expected, shared);
+}
+
+function isFactored({ rows }: Section): boolean {
+  return rows[0]!.factored !== null;
 }
 
 function expectRole(section: Section, role: Role): Expected {

@@ -27,14 +27,15 @@ export function componentsOf(
   };
   // Everything without an unknown is one component: its rows are independent anyway.
   const alone = union.add();
-  const result: Components = { components: [], ln: 0, squares: 0 };
+  const result: Components = { components: [], ln: 0, squares: 0, counted: 0 };
   const placed: { part: Part; node: number; row: Row | null }[] = [];
   for (const part of parts) {
     const hubs = sharedUnknowns(workspace.frame, part.measurand, part.role).map(nodeOf);
     for (const hub of hubs) union.join(hubs[0]!, hub);
-    const { rows, ln, squares } = rowsOf(workspace, part.measurand, part.role);
+    const { rows, ln, squares, counted } = rowsOf(workspace, part.measurand, part.role);
     result.ln += ln;
     result.squares += squares;
+    result.counted += counted;
     let any = false;
     for (const row of rows) {
       if (!keep(row)) continue;

@@ -20,12 +20,12 @@ export function generalFit(
     const { scale } = frame.measurands[measurand]!;
     return scale !== "event" && scale !== "count";
   });
-  const { components, squares } = componentsOf(
+  const { components, squares, counted } = componentsOf(
     workspace,
     parts,
     ({ told }) => told === null || isValue(told),
   );
-  const result: BlockChiSquare = { chiSquare: squares, counted: 0, flatInside: 0 };
+  const result: BlockChiSquare = { chiSquare: squares, counted, flatInside: 0 };
   for (const component of components) {
     const built = buildBlock(workspace, component);
     const outcome = blockFit(built.problem);

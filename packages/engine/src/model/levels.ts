@@ -1,6 +1,8 @@
 import { normalUnknown, uniformUnknown } from "../block/outer-unknowns";
+import type { LinearUnknown } from "../block/problem";
 import type { NormalRole, PolynomialRole, UniformRole } from "../frame";
 import { LEAST_SD } from "../sizes";
+import { legendre } from "./legendre";
 import { fixedValue, loadsRelative, type Expected, type Section } from "./section";
 import { levelKey } from "./shared-unknowns";
 
@@ -26,7 +28,7 @@ export function expectNormal(section: Section, role: NormalRole): Expected {
 /** One level between bounds: a linear unknown, but on a circle and where it scales shared errors. */
 export function expectUniform(section: Section, role: UniformRole): Expected {
   const { assembly, part, rows, begin, centre, frame } = section;
-  const { lower, upper, width } = role;
+  const { lower, width } = role;
   // Bounds that are one number as good as: a known level.
   if (width < LEAST_SD) {
     assembly.base.fill(lower - centre, begin, begin + rows.length);
@@ -36,18 +38,23 @@ export function expectUniform(section: Section, role: UniformRole): Expected {
     const breaks = cutsOf(section, role);
     return expectOuter(section, () => uniformUnknown(role, { counted: true, breaks }));
   }
-  const far = Math.max(Math.abs(lower - centre), Math.abs(upper - centre)) > FAR * width;
-  const origin = far ? lower : centre;
-  const place = assembly.addLinear(levelKey(part.measurand), {
-    kind: "flat",
-    lower: lower - origin,
-    upper: far ? width : upper - origin,
-    width,
-  });
+  const { origin, unknown } = flatLevel(role, centre);
+  const place = assembly.addLinear(levelKey(part.measurand), unknown);
   assembly.base.fill(origin - centre, begin, begin + rows.length);
   rows.forEach((_, i) => assembly.load(place, begin + i, 1));
   // Nothing is a share of it: no shared error here is relative.
   return fixedValue(rows.length, Number.NaN);
+}
+
+/** A level between bounds as a linear unknown, and what it is counted from. */
+export function flatLevel(
+  { lower, upper, width }: { lower: number; upper: number; width: number },
+  centre: number,
+): { origin: number; unknown: LinearUnknown } {
+  const far = Math.max(Math.abs(lower - centre), Math.abs(upper - centre)) > FAR * width;
+  const origin = far ? lower : centre;
+  const bounds = { lower: lower - origin, upper: far ? width : upper - origin };
+  return { origin, unknown: { kind: "flat", ...bounds, width } };
 }
 
 function expectOuter(section: Section, make: Parameters<Section["assembly"]["addOuter"]>[1]) {
@@ -83,25 +90,18 @@ export function cutsOf(
   return [...cuts].sort((a, b) => a - b);
 }
 
-/**
- * Legendre polynomials P_n of the condition's place in its range, unnormalised, as linear unknowns:
- *
- *   (n + 1) P_(n+1) = (2n + 1) x P_n - n P_(n-1),   P_0 = 1, P_1 = x
- */
+/** A polynomial's coefficients as linear unknowns. */
 export function expectPolynomial(section: Section, role: PolynomialRole): Expected {
   const { assembly, part, rows, begin, centre } = section;
-  const { condition, lower, upper, degree, sd } = role;
+  const { condition, degree, sd } = role;
   const coefficients = Array.from({ length: degree + 1 }, (_, n) =>
     assembly.addLinear(`coefficient ${part.measurand} ${n}`, { kind: "normal" }),
   );
   assembly.base.fill(role.centre - centre, begin, begin + rows.length);
+  const values = new Float64Array(degree + 1);
   rows.forEach(({ conditions }, i) => {
-    const x = (2 * (conditions[condition]! - lower)) / (upper - lower) - 1;
-    let [before, now] = [0, 1];
-    coefficients.forEach((place, n) => {
-      assembly.load(place, begin + i, sd * now);
-      [before, now] = [now, ((2 * n + 1) * x * now - n * before) / (n + 1)];
-    });
+    legendre(role, conditions[condition]!, values);
+    coefficients.forEach((place, n) => assembly.load(place, begin + i, sd * values[n]!));
   });
   return { ...fixedValue(rows.length, role.centre), coefficients };
 }

@@ -1,5 +1,5 @@
 import type { Role } from "../frame";
-import type { Loading, Reading } from "../readings";
+import { isFactored, type Loading, type Reading } from "../readings";
 import { drawIndex, LOG_VARIANCE, MEAN, placeOf, SQUARES, WEIGHT } from "../sums";
 import type { Workspace } from "../workspace";
 import type { RoleRows, Row } from "./block-parts";
@@ -42,7 +42,7 @@ export function rowsOf(workspace: Workspace, measurand: number, role: Role): Rol
   const own = sums.measurands[measurand]!;
   const { noises, scatterVariance } = frame.measurands[measurand]!;
   const noise = noiseOf(workspace, measurand, role);
-  const result: RoleRows = { rows: [], ln: 0, squares: 0 };
+  const result: RoleRows = { rows: [], ln: 0, squares: 0, counted: 0 };
   const noiseClass = noises.indexOf(noise);
   own.patterns.forEach((place, group) => {
     const { draws, loadings, relative } = sums.patterns[place]!;
@@ -64,20 +64,75 @@ export function rowsOf(workspace: Workspace, measurand: number, role: Role): Rol
       count,
     });
   });
+  const place = frame.measurands[measurand]!.roles.indexOf(role);
+  const factored = (frame.measurands[measurand]!.designs[place] ?? null) !== null;
+  if (factored) addFactors(workspace, { measurand, role: place, result });
   const extra = scatterVariance + noise;
   for (const reading of own.kept) {
     const { form } = reading.told;
+    if (factored && isFactored(frame, reading)) continue;
     // Counts and events have no row: they are factors of their own.
     if (form !== "count" && form !== "event") {
       result.rows.push(keptRow(workspace, reading, extra));
     }
   }
-  const place = derived.measurands.indexOf(measurand);
-  if (place >= 0) result.rows.push(derivedRow(workspace, place, noise));
+  const ofVector = derived.measurands.indexOf(measurand);
+  if (ofVector >= 0) result.rows.push(derivedRow(workspace, ofVector, noise));
   return result;
 }
 
-const NOTHING = { told: null, extra: 0, conditions: [], id: null };
+/**
+ * A curve's readings as the rows of their triangular factors, which are equations of unit variance:
+ *
+ *   prod N(y_i; mu_i, v_i) = prod (2 pi v_i)^(-1/2) exp(-(|R x - z|^2 + rss) / 2)
+ */
+function addFactors(
+  { sums }: Workspace,
+  { measurand, role, result }: { measurand: number; role: number; result: RoleRows },
+): void {
+  for (const { draws, systems, count } of sums.measurands[measurand]!.curves) {
+    const { size, data, rss, logVariance, impossible } = systems[role]!;
+    const own = size - draws.length;
+    result.squares += rss;
+    result.ln -= logVariance / 2;
+    result.counted += count;
+    let rows = 0;
+    for (let i = 0; i < size; i += 1) {
+      const row = data.subarray(i * (size + 1), (i + 1) * (size + 1));
+      if (row[i] === 0) continue;
+      rows += 1;
+      const loaded = draws.map((draw, d) => ({ draw, value: row[own + d]! }));
+      const loads = loaded.filter(({ value }) => value !== 0).sort((a, b) => a.draw - b.draw);
+      result.rows.push({
+        ...NOTHING,
+        measurand,
+        observed: row[size]!,
+        variance: 1,
+        draws: loads.map(({ draw }) => draw),
+        loadings: loads.map(({ value }) => value),
+        relative: loads.map(() => false),
+        factored: { coefficients: row.subarray(0, own), impossible: false },
+        count: 0,
+      });
+    }
+    if (impossible > 0) {
+      result.rows.push({
+        ...NOTHING,
+        measurand,
+        observed: 0,
+        variance: 1,
+        draws: [],
+        loadings: [],
+        relative: [],
+        factored: { coefficients: new Float64Array(own), impossible: true },
+        count: 0,
+      });
+    }
+    result.ln -= ((count - rows) * LN_2PI + rss) / 2;
+  }
+}
+
+const NOTHING = { told: null, extra: 0, conditions: [], id: null, factored: null };
 
 function keptRow(workspace: Workspace, reading: Reading, extra: number): Row {
   const { told, measurand, conditions, id } = reading;
@@ -90,6 +145,7 @@ function keptRow(workspace: Workspace, reading: Reading, extra: number): Row {
     extra,
     ...drawsOf(workspace, reading.loadings),
     conditions,
+    factored: null,
     id: workspace.frame.correlated.has(id) ? id : null,
     count: 1,
   };
