@@ -71,7 +71,8 @@ function namesProblem(names: EcsvRecord | undefined, header: EcsvHeader): TableP
   const index = declared.findIndex((name, at) => names.cells[at] !== name);
   const at = index === -1 && names.cells.length > declared.length ? declared.length : index;
   if (at === -1) return [];
-  const found = names.cells[at] === undefined ? "no name" : `the name ${names.cells[at]}`;
+  const found =
+    names.cells[at] === undefined ? "no name" : `the name ${names.cells[at].slice(0, 80)}`;
   const allowed = declared[at] ?? "no more columns than the header declares";
   return [{ line: names.line, column: null, found: `${found} of column ${at + 1}`, allowed }];
 }

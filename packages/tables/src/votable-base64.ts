@@ -3,6 +3,7 @@ const INVALID = 255;
 const SPACE = 254;
 const PAD = 61;
 
+const CODES = Uint8Array.from([...LETTERS].map((letter) => letter.charCodeAt(0)));
 const VALUES = new Uint8Array(128).fill(INVALID);
 for (const blank of " \t\r\n") VALUES[blank.charCodeAt(0)] = SPACE;
 for (const [value, letter] of [...LETTERS].entries()) VALUES[letter.charCodeAt(0)] = value;
@@ -38,20 +39,26 @@ export function readBase64(text: string): Uint8Array<ArrayBuffer> | string {
   return bytes.subarray(0, length);
 }
 
+const LINE_BYTES = 57;
+const LINE_FEED = 10;
+
 /** Base64 in lines of 76 characters. */
 export function writeBase64(bytes: Uint8Array): string {
-  const lines: string[] = [];
-  for (let at = 0; at < bytes.length; at += 57) lines.push(base64Line(bytes.subarray(at, at + 57)));
-  return lines.join("\n");
+  const thirds = Math.ceil(bytes.length / 3);
+  const letters = new Uint8Array(4 * thirds + Math.ceil(bytes.length / LINE_BYTES));
+  let to = 0;
+  for (let at = 0; at < bytes.length; at += 3) {
+    if (at > 0 && at % LINE_BYTES === 0) letters[to++] = LINE_FEED;
+    const left = bytes.length - at;
+    const three = (byteAt(bytes, at) << 16) | (byteAt(bytes, at + 1) << 8) | byteAt(bytes, at + 2);
+    letters[to++] = CODES[three >> 18] as number;
+    letters[to++] = CODES[(three >> 12) & 63] as number;
+    letters[to++] = left > 1 ? (CODES[(three >> 6) & 63] as number) : PAD;
+    letters[to++] = left > 2 ? (CODES[three & 63] as number) : PAD;
+  }
+  return new TextDecoder().decode(letters.subarray(0, to));
 }
 
-function base64Line(bytes: Uint8Array): string {
-  let line = "";
-  for (let at = 0; at < bytes.length; at += 3) {
-    const [a = 0, b, c] = bytes.subarray(at, at + 3);
-    const three = (a << 16) | ((b ?? 0) << 8) | (c ?? 0);
-    const letter = (shift: number) => LETTERS[(three >> shift) & 63];
-    line += `${letter(18)}${letter(12)}${b === undefined ? "=" : letter(6)}${c === undefined ? "=" : letter(0)}`;
-  }
-  return line;
+function byteAt(bytes: Uint8Array, at: number): number {
+  return at < bytes.length ? (bytes[at] as number) : 0;
 }

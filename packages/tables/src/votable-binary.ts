@@ -1,4 +1,4 @@
-import { MAX_CELL } from "./limits";
+import { MAX_CELL, MAX_CHARACTERS } from "./limits";
 import { infinity, integerCell } from "./number-text";
 import type { RawCell, RawRow } from "./raw-table";
 import type { RowProblem, TableProblem } from "./table";
@@ -50,6 +50,8 @@ class BinaryReader {
   readonly #lost: TableProblem[];
   at = 0;
   row = 0;
+  /** Of arrays, which as text are up to eight times the data. */
+  #letters = 0;
   /** Where the next value begins isn't known any more. */
   isLost = false;
 
@@ -89,8 +91,12 @@ class BinaryReader {
     if (taken === null) return null;
     if (field.form === "text") return textOf(taken, field.datatype);
     if (field.form === "value") return this.#value(field.datatype, from);
-    if (isBits) return bitsOf(taken, count);
-    return this.#values(field.datatype, from, count);
+    const text = isBits ? bitsOf(taken, count) : this.#values(field.datatype, from, count);
+    this.#letters += text.length;
+    if (this.#letters <= MAX_CHARACTERS) return text;
+    const found = `arrays that are more than ${MAX_CHARACTERS} characters as text`;
+    this.lose(field.name, found, "less; leave such columns out");
+    return null;
   }
 
   /** A value that isn't of its type is a problem; one that is the field's null is missing. */
@@ -190,9 +196,6 @@ function textOf(bytes: Uint8Array, datatype: VoDatatype): string | undefined {
 }
 
 function bitsOf(bytes: Uint8Array, count: number): string {
-  let text = "";
-  for (let index = 0; index < count; index += 1) {
-    text += ((bytes[index >> 3] ?? 0) & (0x80 >> (index & 7))) === 0 ? "0" : "1";
-  }
-  return text;
+  const bits = Array.from(bytes, (byte) => byte.toString(2).padStart(BIT_COUNT, "0"));
+  return bits.join("").slice(0, count);
 }

@@ -19,6 +19,7 @@ export type VoTable = {
 type Attribute = (name: string) => string | null;
 
 const MAX_NOTED = 40;
+const MAX_DESCRIPTION = 2000;
 
 /** Follows a VOTable's elements and keeps the first table with rows, and what is to be said. */
 export class VotableDocument implements XmlListener {
@@ -106,7 +107,8 @@ export class VotableDocument implements XmlListener {
         this.#table = null;
         break;
       case "DESCRIPTION":
-        if (this.#field !== null) this.#field.description = oneLine(text) || null;
+        if (this.#field !== null)
+          this.#field.description = oneLine(text.slice(0, MAX_DESCRIPTION)) || null;
         break;
       case "FIELD":
         this.#field = null;
@@ -115,7 +117,7 @@ export class VotableDocument implements XmlListener {
         this.#closeParam();
         break;
       case "INFO":
-        this.#closeInfo(oneLine(text));
+        this.#closeInfo(oneLine(text.slice(0, MAX_DESCRIPTION)));
         break;
       default:
         return null;

@@ -47,9 +47,12 @@ export type VoField = {
 
 export type TimeSystem = { scale: string | null; origin: string | null; reference: string | null };
 
+/** Past it a name, unit or UCD is no such thing. */
+const MAX_ATTRIBUTE = 500;
+
 /** A FIELD or PARAM as its attributes say. */
 export function readField(attribute: (name: string) => string | null, index: number): VoField {
-  const given = (name: string) => attribute(name)?.trim() || null;
+  const given = (name: string) => attribute(name)?.trim().slice(0, MAX_ATTRIBUTE) || null;
   const datatype = given("datatype") ?? "";
   const known = Object.hasOwn(datatypes, datatype);
   const isText = datatype === "char" || datatype === "unicodeChar";
@@ -69,12 +72,12 @@ export function readField(attribute: (name: string) => string | null, index: num
     nullText: null,
     problem: !known
       ? {
-          found: datatype === "" ? "no datatype" : `the datatype ${datatype}`,
+          found: datatype === "" ? "no datatype" : `the datatype ${datatype.slice(0, 80)}`,
           allowed: Object.keys(datatypes).join(", "),
         }
       : size === undefined || (size ?? 0) > MAX_CELL
         ? {
-            found: `the arraysize ${given("arraysize")}`,
+            found: `the arraysize ${given("arraysize")?.slice(0, 80)}`,
             allowed: `a count as 3, 2x3, * or 3x*, at most ${MAX_CELL} values`,
           }
         : null,

@@ -5,6 +5,7 @@ import { mutated } from "./testing/mutations";
 import { expectSound } from "./testing/sound-table";
 import { bytesOf, tableFiles, textOf } from "./testing/table-files";
 import { readVotable } from "./votable";
+import { readBase64, writeBase64 } from "./votable-base64";
 
 const encoded = (text: string) => new TextEncoder().encode(text);
 const firstFault = (bytes: Uint8Array) => readVotable(bytes).problems[0];
@@ -35,12 +36,18 @@ describe("XML that would take the machine, or reads what isn't the file's, is re
       /DOCTYPE/,
     ],
     ["an entity of nothing", body, 1, /undefined entity/],
-    ["elements in elements", `<VOTABLE>${"<GROUP>".repeat(1000)}`, 1, /nested 65 deep/],
+    ["elements in elements", `<VOTABLE>${"<GROUP>".repeat(1000)}`, 1, /nested 33 deep/],
     [
       "a million attributes of one name",
       `<VOTABLE ${'a="" '.repeat(100_000)}>`,
       1,
       /duplicate attribute/,
+    ],
+    [
+      "tables without end",
+      `<VOTABLE>${"<TABLE/>".repeat(100_001)}`,
+      1,
+      /more than 100000 elements/,
     ],
     ["another document", "<html><body/></html>", 1, /the root element html/],
     ["another namespace", '<VOTABLE xmlns="urn:other"/>', 1, /the root element VOTABLE/],
@@ -131,5 +138,25 @@ it("binary data of any bytes is read or refused", () => {
       );
     }),
     { numRuns: 500, seed: 2 },
+  );
+});
+
+it("arrays that are far more as text than as data are refused while they are read", () => {
+  const field = '<FIELD name="x" datatype="bit" arraysize="60000"/>';
+  const data = `<BINARY><STREAM encoding="base64">${"////".repeat(3_000_000)}</STREAM></BINARY>`;
+  const file = encoded(`<VOTABLE><TABLE>${field}<DATA>${data}</DATA></TABLE></VOTABLE>`);
+  expect(firstFault(file)).toMatchObject({ line: 1119, column: "x" });
+  expect(firstFault(file)?.found).toMatch(/^arrays that are more than \d+ characters as text$/);
+});
+
+it("base64 of any bytes is read back as it was written, in lines of 76 letters", () => {
+  fc.assert(
+    fc.property(fc.uint8Array({ maxLength: 400 }), (bytes) => {
+      const text = writeBase64(bytes);
+      expect(text.replaceAll("\n", "")).toBe(btoa(String.fromCharCode(...bytes)));
+      expect(text.split("\n").every((line) => line.length <= 76)).toBe(true);
+      expect(readBase64(text)).toEqual(bytes);
+    }),
+    { numRuns: 200, seed: 3 },
   );
 });

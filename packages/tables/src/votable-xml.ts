@@ -10,7 +10,11 @@ export type XmlListener = {
 };
 export type Refusal = { found: string; allowed: string } | null;
 
-const MAX_DEPTH = 64;
+const MAX_DEPTH = 32;
+/** Of elements that are no rows and no cells of the table's. */
+const MAX_ELEMENTS = 100_000;
+/** Of what was found, as it is told. */
+const MAX_FOUND = 300;
 const CHUNK = 256 * 1024;
 const NAMESPACE = /^$|^https?:\/\/www\.ivoa\.net\/xml\/VOTable\//i;
 
@@ -31,13 +35,14 @@ class Ended extends Error {
 export function readXml(bytes: Uint8Array, listener: XmlListener): TableProblem | null {
   const parser = new SaxesParser({ xmlns: true, position: true });
   const end = (found: string, allowed: string): never => {
-    throw new Ended({ line: parser.line, column: null, found, allowed });
+    throw new Ended({ line: parser.line, column: null, found: found.slice(0, MAX_FOUND), allowed });
   };
   const tell = (refusal: Refusal): void => {
     if (refusal !== null) end(refusal.found, refusal.allowed);
   };
   let depth = 0;
   let foreignFrom = 0;
+  let elements = 0;
   parser.on("doctype", () =>
     end("a document type (DOCTYPE)", "a VOTable without one, as version 1.1 and later are"),
   );
@@ -54,6 +59,10 @@ export function readXml(bytes: Uint8Array, listener: XmlListener): TableProblem 
       end(`the root element ${local}`, "VOTABLE, with IVOA's namespace or none");
     }
     if (foreignFrom === 0 && !NAMESPACE.test(uri)) foreignFrom = depth;
+    if (foreignFrom > 0 || (local !== "TD" && local !== "TR")) elements += 1;
+    if (elements > MAX_ELEMENTS) {
+      end(`more than ${MAX_ELEMENTS} elements beside rows and cells`, "fewer");
+    }
     if (foreignFrom > 0) return;
     tell(listener.open(local, (name) => attributes[name]?.value ?? null, parser.line));
   });
