@@ -53,6 +53,7 @@ const coordinatorPages = [
     "registration",
   ].map((part) => `${demo}/declare/${part}`),
   `${demo}/members`,
+  `${demo}/webhooks`,
   `${demo}/post`,
   `${demo}/post?by=table`,
 ];
