@@ -3,7 +3,7 @@ import { draftsOf } from "@weighhouse/tables/drafts";
 import { matchColumns } from "@weighhouse/tables/match-columns";
 import { readTable, readText } from "@weighhouse/tables/read-table";
 import type { TableColumn, TableProblem } from "@weighhouse/tables/table";
-import type { TableContext } from "@weighhouse/tables/table-match";
+import type { TableChoices, TableContext } from "@weighhouse/tables/table-match";
 import type { MeasurementSource } from "./measurement-source";
 
 /** What is wrong in a row; `column` null where it is the row as a whole. */
@@ -43,12 +43,21 @@ function readFile(
   source: FileSource<"csv"> | FileSource<"table">,
   document: CampaignDocument,
 ): ReadRows {
-  const { name, content, choices } =
-    source.from === "csv" ? { name: "table.csv", content: source.text, choices: null } : source;
-  const table = typeof content === "string" ? readText(name, content) : readTable(name, content);
   const context: TableContext = { document, defaults: source.defaults ?? {} };
-  const matches = matchColumns(table, context, choices ?? {});
-  const { rows, problems } = draftsOf(table, matches, context, choices ?? {});
+  if (source.from === "csv") return rowsOfTable(readText("table.csv", source.text), context);
+  const { name, content, choices } = source;
+  const table = typeof content === "string" ? readText(name, content) : readTable(name, content);
+  return rowsOfTable(table, context, choices ?? {});
+}
+
+/** A table's rows as drafts, by what its columns say and what is chosen, or remembered, for them. */
+export function rowsOfTable(
+  table: ReturnType<typeof readTable>,
+  context: TableContext,
+  choices: Partial<TableChoices> = {},
+): ReadRows {
+  const matches = matchColumns(table, context, choices);
+  const { rows, problems } = draftsOf(table, matches, context, choices);
   const columns = matches.map(({ column, field, unit }) => ({
     column,
     field: field === "extra" || field === "ignore" ? null : field,

@@ -1,6 +1,6 @@
 import { conversion } from "@weighhouse/campaign/units";
 import type { DraftPlan, Slot } from "./draft-plan";
-import { plainName } from "./field-names";
+import { keyOf } from "./part-keys";
 import { decimalText, numberCell, readNumber } from "./number-cells";
 import type { RawCell, RawRow } from "./raw-table";
 import type { RowProblem } from "./table";
@@ -59,15 +59,6 @@ function extraName({ column, match }: Slot): string {
   return match.unit === null ? name : `${name} [${match.unit}]`;
 }
 
-/** A key by itself or by its title, where that is one part's only. */
-function keyOf(parts: readonly { key: string; title: string | null }[], text: string): string {
-  if (parts.some(({ key }) => key === text)) return text;
-  const named = parts.filter(({ key, title }) =>
-    [key, title ?? ""].some((one) => plainName(one) === plainName(text)),
-  );
-  return named.length === 1 ? named[0]!.key : text;
-}
-
 function conditionValue(plan: DraftPlan, name: string, { slot, cell }: Given): RawCell {
   const value = numberCell(cell, plan.mark);
   const { unit } = slot.match;
@@ -102,8 +93,7 @@ function joinDate(plan: DraftPlan, common: Common, { cells }: RawRow): void {
       column.timeScale === "ut" ||
       /(?:^|[^a-z])utc?$|^utc?(?:[^a-z]|$)/i.test(column.name),
   );
-  const chosen =
-    plan.choices.times?.[date.column.name] ?? plan.choices.times?.[clock.column.name] ?? null;
+  const chosen = date.match.time ?? clock.match.time;
   const reading = chosen ?? (isUtc ? ({ format: "iso", scale: "utc", offset: 0 } as const) : null);
   const read = readTime(`${String(day)}T${String(hour)}`, reading);
   if (read.ok) common.fields["observedAt"] = read.time;

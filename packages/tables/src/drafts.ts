@@ -48,7 +48,8 @@ export function draftsOf(
   return { rows, problems: [], notes: [...table.notes, ...plan.notes, ...emptyNote(empty)] };
 }
 
-function isDraftTable(table: RawTable | DraftTable): table is DraftTable {
+/** Whether a table's rows are drafts already, without columns to match. */
+export function isDraftTable(table: RawTable | DraftTable): table is DraftTable {
   return table.format === "ndjson" || table.format === "document";
 }
 

@@ -31,6 +31,9 @@ export function matchColumns(
     const match: ColumnMatch = { ...plain, problem: null };
     const refused = refusal(raw.columns, index, assigned, scope);
     if (refused !== null) return { ...match, problem: refused };
+    if (field === "date" || field === "timeOfDay") {
+      return { ...match, time: own(choices.times, column.name) };
+    }
     if (field === "observedAt" || field === "knownSince") {
       return timeMatch(
         match,
