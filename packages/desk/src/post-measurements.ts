@@ -6,7 +6,7 @@ import type { Appended } from "./appended";
 import type { Actor, Desk } from "./desk";
 import { measurementSource } from "./measurement-source";
 import { parseInput } from "./parse-input";
-import { postTable } from "./post-rows";
+import { postTable } from "./post-table";
 import { readRows } from "./read-rows";
 import { inDrafts, inText } from "./row-source";
 import { onStore } from "./store-refusals";
@@ -41,7 +41,7 @@ export async function postMeasurements(
   const access = await enter(desk, actor, key, "post-measurements");
   const { document } = await onStore(() => readDeclarations(desk.store, key));
   const table = readRows(source, document);
-  const place = source.from === "csv" ? inText("/source/text") : inDrafts("/source/drafts");
+  const place = source.from === "drafts" ? inDrafts("/source/drafts") : inText("/source/text");
   const posted = await postTable(desk, access, { document, table, place, correlations: [] });
   return {
     key,

@@ -4,7 +4,7 @@ import type { JudgedRow } from "./judge-rows";
 import { measurementSource } from "./measurement-source";
 import { parseInput } from "./parse-input";
 import { previewRows } from "./preview-rows";
-import type { PreviewedRows } from "./preview-rows";
+import type { PreviewedRows } from "./previewed-rows";
 import { readRows } from "./read-rows";
 import { inText, piecesOf } from "./row-source";
 

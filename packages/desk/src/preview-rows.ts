@@ -4,34 +4,33 @@ import { scoreCampaign } from "@weighhouse/engine/score";
 import { readDocument } from "@weighhouse/store/read-document";
 import type { TableColumn, TableProblem } from "@weighhouse/tables/table";
 import { enter } from "./access";
+import type { Access } from "./access";
 import type { Actor, Desk } from "./desk";
 import { documentAfter, partsOf } from "./document-after";
 import type { Moment } from "./document-after";
 import { judgeRows } from "./judge-rows";
 import type { JudgedRow } from "./judge-rows";
 import { measurementEntries } from "./measurement-entries";
-import { noneRefused } from "./post-rows";
-import type { Correlations, TellProgress } from "./post-rows";
-import type { ReadRows } from "./read-rows";
+import { previewUpload } from "./preview-upload";
+import type { Correlations, TellProgress } from "./posted-rows";
+import type { PreviewedRow, PreviewedRows } from "./previewed-rows";
 import { authorOf } from "./record-entries";
 import type { RowSource } from "./row-source";
 import { standingsChanges } from "./standings-changes";
 import type { StandingsChanges } from "./standings-changes";
+import { noneRefused, takeFew } from "./take-few";
+import { withUpload } from "./with-upload";
+import type { Piece } from "./stage-lines";
+import { stageRows } from "./stage-rows";
 import { onStore } from "./store-refusals";
 import { timeAt } from "./time";
 
-export type PreviewedRows = {
-  /** The ledger's size that this was found at. */
-  size: number;
-  /** The file's columns in order, and the field that each is read as; null: kept in `extra`. */
-  columns: TableColumn[];
-  counts: Record<JudgedRow["fate"], number>;
-  /** What is wrong with the text as a whole, or with its rows taken together. */
-  problems: TableProblem[];
-  /** Whether posting would be taken: nothing refused, nothing in conflict, something new. */
-  postable: boolean;
-  /** What posting would change; null where it would not be taken. */
-  changes: StandingsChanges | null;
+type PreviewInput = {
+  key: string;
+  source: RowSource;
+  correlations?: Correlations;
+  row: (row: PreviewedRow) => void | Promise<void>;
+  tell?: TellProgress;
 };
 
 /**
@@ -42,27 +41,24 @@ export type PreviewedRows = {
 export async function previewRows(
   desk: Desk,
   actor: Actor,
-  input: {
-    key: string;
-    source: RowSource;
-    correlations?: Correlations;
-    row: (row: JudgedRow) => void | Promise<void>;
-    tell?: TellProgress;
-  },
+  input: PreviewInput,
 ): Promise<PreviewedRows> {
   const { key, source, correlations = [], row: told, tell = () => {} } = input;
   const access = await enter(desk, actor, key, "preview-measurements");
   const { document, size } = await onStore(() => readDocument(desk.store, key));
   const { pieces, columns, problems: unreadable } = source(document);
-  const rows: ReadRows["rows"] = [];
-  for await (const piece of pieces) {
-    for (const row of piece.rows) rows.push(row);
-    tell({ stage: "read", rows: rows.length, bytes: piece.bytes });
+  const { rows, rest, bytes } = await takeFew(pieces, tell);
+  if (rest !== null && unreadable.length === 0 && correlations.length === 0) {
+    return previewStaged(desk, { document, access }, { ...input, tell, pieces: rest, columns });
   }
+  for await (const piece of rest ?? []) for (const row of piece.rows) rows.push(row);
+  tell({ stage: "check", rows: rows.length, bytes });
   const at = timeAt(desk);
   const table = { rows, columns, problems: noneRefused(rows, unreadable) };
   const judged = await judgeRows(desk, table, { document, access, at });
-  for (const row of judged.rows) await told(row);
+  for (const row of judged.rows) {
+    await told({ ...row, measurand: row.measurement?.measurand ?? null });
+  }
   const problems = [...table.problems, ...judged.problems.map(wholeProblem)];
   const counts = countFates(judged.rows);
   const postable =
@@ -70,6 +66,27 @@ export async function previewRows(
   const moment = { by: authorOf(access), at, size };
   const changes = postable ? changesOf(document, judged.rows, { correlations, moment }) : null;
   return { size, columns, counts, problems, postable, changes };
+}
+
+/** Many rows are staged, as for a posting, and cleared away again. */
+async function previewStaged(
+  desk: Desk,
+  against: { document: CampaignDocument; access: Access },
+  input: Pick<PreviewInput, "row"> & {
+    tell: TellProgress;
+    pieces: AsyncIterable<Piece>;
+    columns: TableColumn[];
+  },
+): Promise<PreviewedRows> {
+  const { tell, pieces, columns, row } = input;
+  return withUpload(desk, against.access, async (upload) => {
+    const to = { ...upload, part: 0 };
+    const staged = await stageRows(desk, against, { to, pieces, columns, tell });
+    const { problems: together, bytes } = staged;
+    const { document } = against;
+    const preview = await previewUpload(desk, document, { upload, together, bytes, row, tell });
+    return { ...preview, columns };
+  });
 }
 
 function countFates(rows: JudgedRow[]): PreviewedRows["counts"] {

@@ -8,7 +8,7 @@ export type Piece = { rows: ReadRow[]; bytes: number };
 
 /** The longest line that is read: what is longer could be no entry anyway. */
 export const LONGEST_LINE = 1_048_576;
-const ROWS_AT_A_TIME = 5000;
+const ROWS_AT_A_TIME = 2000;
 const NEWLINE = 10;
 
 /**

@@ -9,6 +9,7 @@ const meanings: Record<StoreErrorCode, DeskErrorCode | null> = {
   "no-such-campaign": "not-found",
   "no-such-size": "not-found",
   "no-such-entry": "not-found",
+  "no-such-upload": "not-found",
   "no-such-webhook": "not-found",
   "moved-on": "busy",
   "invalid-payload": "invalid",

@@ -121,12 +121,12 @@ export async function writeEntries(
 }
 
 /** A database put back to a backup while this process runs is found before anything is added to it. */
-function requireGoingOn(store: Store, { ledger, campaign, size }: Tip): void {
+export function requireGoingOn(store: Store, { ledger, campaign, size }: Tip): void {
   const kept = store.keptHeads?.last(ledger) ?? null;
   if (kept !== null && kept.size > size) throw restored([{ campaign, kept, size }]);
 }
 
-function readsOfAll(payloads: PreparedPayload[]): Reads {
+export function readsOfAll(payloads: PreparedPayload[]): Reads {
   const all = payloads.map(({ kind, value }) =>
     readsOf({ kind, payload: value } as Parameters<typeof readsOf>[0]),
   );
@@ -138,7 +138,7 @@ function readsOfAll(payloads: PreparedPayload[]): Reads {
 }
 
 /** The rules are asked here once more, under the lock: who decided before it may be out of date. */
-function applyAll(projector: Projector, entries: Entry[], { by, payloads }: WriteInput): void {
+export function applyAll(projector: Projector, entries: Entry[], { by, payloads }: WriteInput): void {
   try {
     for (const [index, { seq, at }] of entries.entries()) {
       const { kind, value: payload } = payloads[index] as PreparedPayload;

@@ -28,6 +28,8 @@ export type Extended = {
   note: string;
   /** Sends the statements that write it; each must succeed. */
   write(tx: Queries): Promise<unknown>[];
+  /** The same without the entries themselves, for who brings them another way. */
+  writeTree(tx: Queries): Promise<unknown>[];
 };
 
 /** Gives entries their time and place, appends their leaves and signs the head. Nothing is written. */
@@ -52,21 +54,22 @@ export function extendLedger(store: Store, input: WriteInput): Extended {
   const head = formatTreeHead({ origin: tip.ledger, size: edge.size, root });
   const note = signTreeHead(head, store.signer);
   const at = times.at(-1) as string;
+  const writeTree = (tx: Queries) => [
+    insertNodes(tx, tip, nodes),
+    tx`
+      insert into heads (campaign_id, size, root, note, at)
+      values (${tip.campaignId}, ${edge.size}, ${Buffer.from(root)}, ${note}, ${at})`,
+    tx`
+      update tips set size = ${edge.size}, edge = ${Buffer.concat(edge.hashes)}, last_at = ${at}
+      where campaign_id = ${tip.campaignId}`,
+  ];
   return {
     entries,
     size: edge.size,
     treeHead: base64(root),
     note,
-    write: (tx) => [
-      insertEntries(tx, tip, entries, payloads),
-      insertNodes(tx, tip, nodes),
-      tx`
-        insert into heads (campaign_id, size, root, note, at)
-        values (${tip.campaignId}, ${edge.size}, ${Buffer.from(root)}, ${note}, ${at})`,
-      tx`
-        update tips set size = ${edge.size}, edge = ${Buffer.concat(edge.hashes)}, last_at = ${at}
-        where campaign_id = ${tip.campaignId}`,
-    ],
+    write: (tx) => [insertEntries(tx, tip, entries, payloads), ...writeTree(tx)],
+    writeTree,
   };
 }
 

@@ -20,7 +20,7 @@ export const grants: Record<string, string> = {
   staged_parts: "select, insert, delete",
   staged_measurements: change,
   staged_entries: change,
-  staged_fates: "select, insert, delete",
+  staged_fates: change,
   standings: change,
   timeline_steps: change,
   timeline_points: change,

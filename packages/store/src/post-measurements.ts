@@ -179,7 +179,7 @@ function sortOut(items: Item[], there: Map<string, Content[]>) {
   return { fresh, alreadyThere, conflicts };
 }
 
-function differingFields(content: Content, there: Content): string[] {
+export function differingFields(content: Content, there: Content): string[] {
   return Object.keys(content).filter(
     (field) => canonicalJson(content[field]) !== canonicalJson(there[field] ?? null),
   );

@@ -5,6 +5,7 @@ export type StoreErrorCode =
   | "no-such-campaign"
   | "no-such-size"
   | "no-such-entry"
+  | "no-such-upload"
   | "no-such-webhook"
   | "moved-on"
   | "invalid-payload"

@@ -41,6 +41,7 @@ const rowProblem = z.strictObject({
 });
 
 export const rowSchema = z.strictObject({
+  part: z.int().optional().describe("Of an upload."),
   line: z.int().min(1),
   id: z.string().nullable(),
   fate: z.enum(["new", "alreadyThere", "conflict", "refused"]),

@@ -1,8 +1,8 @@
 import * as z from "zod";
 import { postRows } from "@weighhouse/desk/post-rows";
-import type { PostedRows } from "@weighhouse/desk/post-rows";
+import type { PostedRows } from "@weighhouse/desk/posted-rows";
 import { previewRows } from "@weighhouse/desk/preview-rows";
-import type { JudgedRow } from "@weighhouse/desk/judge-rows";
+import type { PreviewedRow } from "@weighhouse/desk/previewed-rows";
 import { linesAnswer, someOf } from "./lines-answer";
 import { postedLineSchema, postedSchema, previewLineSchema } from "./measurement-answers";
 import { created } from "./respond";
@@ -73,7 +73,8 @@ export const measurementRoutes = [
           tell: someOf(write, "progress"),
           row: async (row) => {
             if (rows === "faults" && !isAtFault(row)) return;
-            await write({ row: rowAnswer(row) });
+            // The client has sent the measurement itself.
+            await write({ row: { ...row, measurement: undefined } });
           },
         });
         await write({ preview });
@@ -94,10 +95,6 @@ export function postedAnswer({ key, posted, alreadyThere, appended, ids }: Poste
   };
 }
 
-function isAtFault({ fate }: JudgedRow): boolean {
+function isAtFault({ fate }: PreviewedRow): boolean {
   return fate === "refused" || fate === "conflict";
-}
-
-function rowAnswer({ measurement, ...row }: JudgedRow) {
-  return { ...row, measurand: measurement?.measurand ?? null };
 }

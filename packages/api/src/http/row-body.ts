@@ -5,7 +5,7 @@ import { readForm } from "@weighhouse/campaign/form";
 import { parseJson } from "@weighhouse/campaign/json-text";
 import { measurementContentSchema } from "@weighhouse/campaign/entries";
 import { DeskError, invalid } from "@weighhouse/desk/desk-error";
-import type { Correlations } from "@weighhouse/desk/post-rows";
+import type { Correlations } from "@weighhouse/desk/posted-rows";
 import { readRows } from "@weighhouse/desk/read-rows";
 import { inDraft, inDrafts, inText, piecesOf, withDefaults } from "@weighhouse/desk/row-source";
 import type { Place, RowDefaults, RowSource } from "@weighhouse/desk/row-source";
