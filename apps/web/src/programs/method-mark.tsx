@@ -9,7 +9,7 @@ const edges: Record<string, string> = {
 export function MethodMark({ method }: { method: string }) {
   return (
     <span
-      className={`inline-block rounded-sheet border px-1.5 text-[12.5px] font-medium ${edges[method] ?? "border-edge"}`}
+      className={`inline-block min-w-[62px] rounded-sheet border px-1 text-center text-[12.5px] font-medium ${edges[method] ?? "border-edge"}`}
     >
       {method}
     </span>

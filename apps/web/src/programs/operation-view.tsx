@@ -122,10 +122,7 @@ function Types(props: {
         const shown = line ?? schema;
         return (
           <li key={type} className="mb-1.5">
-            <code>{type}</code>{" "}
-            <span className="text-quiet">
-              {line ? `a line each: ${typeWords(line)}` : saysOf(schema)}
-            </span>
+            <code>{type}</code> <span className="text-quiet">{saysOf(schema)}</span>
             <FieldTable type={type} schema={shown} schemas={props.schemas} />
           </li>
         );
@@ -134,9 +131,10 @@ function Types(props: {
   );
 }
 
+/** Without what the description adds for programs about the lines of an answer. */
 function saysOf(schema: JsonSchema): string {
-  if (typeof schema["$ref"] === "string") return typeWords(schema);
-  return typeof schema["description"] === "string" ? schema["description"] : "";
+  const says = schema["description"];
+  return typeof says === "string" ? says.split(" Each line is JSON by ")[0]! : "";
 }
 
 function scopeOf({ security }: Operation): string {

@@ -178,7 +178,9 @@ function schemaOf(
   schema: z.ZodType | null,
   { says, named }: { says: string; named: NamedSchemas },
 ): JsonSchema {
-  if (type === "application/json" && schema !== null) return named.refTo(schema);
+  if (type === "application/json" && schema !== null) {
+    return { ...named.refTo(schema), description: says };
+  }
   if (type === LINES && schema !== null) {
     const { $ref } = named.refTo(schema);
     return {

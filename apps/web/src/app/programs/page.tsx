@@ -78,8 +78,12 @@ function Contents({ name, shown }: { name: string; shown: readonly ShownOperatio
       <ul className="list-none">
         {shown.map(({ method, operation }) => (
           <li key={operation.operationId} className="mb-0.5">
-            <a className="no-underline hover:underline" href={`#${operation.operationId}`}>
-              <MethodMark method={method} /> {operation.summary}
+            <a
+              className="flex items-baseline gap-2 no-underline hover:underline"
+              href={`#${operation.operationId}`}
+            >
+              <MethodMark method={method} />
+              <span>{operation.summary}</span>
             </a>
           </li>
         ))}

@@ -73,7 +73,7 @@ function Fields() {
         aria-describedby={ofScopes === undefined ? undefined : "scopes-error"}
       >
         <legend className="mb-1.5 font-medium">What a program may do with it</legend>
-        <div className="grid gap-x-5 sm:grid-cols-2 lg:grid-cols-3">
+        <div className="grid items-start gap-x-5 sm:grid-cols-2 lg:grid-cols-3">
           {scopesInOrder.map((scope) => (
             <Tick
               key={scope}
