@@ -4,6 +4,7 @@ import { joinParts, type EcsvSource } from "./ecsv-parts";
 import { ecsvRecords, type EcsvRecord } from "./ecsv-records";
 import { plainColumn, type RawCell, type RawRow, type RawTable } from "./raw-table";
 import type { RowProblem, TableProblem } from "./table";
+import { addProblem } from "./row-limit";
 import { refusedText } from "./text";
 
 /**
@@ -107,7 +108,7 @@ class CellReader {
     const cell = read(kind === "text" ? text : text.trim());
     if (cell === undefined) {
       const column = this.#columns[index]?.name ?? null;
-      problems.push({ column, found: text.slice(0, 80), allowed });
+      addProblem(problems, { column, found: text.slice(0, 80), allowed });
       return null;
     }
     if (!Number.isNaN(cell)) return cell;

@@ -2,7 +2,7 @@ import { MAX_CELL, MAX_CHARACTERS } from "./limits";
 import { infinity, integerCell } from "./number-text";
 import type { RawCell, RawRow } from "./raw-table";
 import type { RowProblem, TableProblem } from "./table";
-import { rowRefusal } from "./row-limit";
+import { addProblem, rowRefusal } from "./row-limit";
 import { allowedCell, isNull } from "./votable-cells";
 import { datatypes, type VoDatatype, type VoField } from "./votable-fields";
 
@@ -106,7 +106,7 @@ class BinaryReader {
         field.form === "text" ? "bytes that aren't text" : "a byte that is no truth value";
       const allowed =
         field.form === "text" ? `${field.datatype} in UTF-8 or UTF-16` : allowedCell(field);
-      problems.push({ column: field.name, found, allowed });
+      addProblem(problems, { column: field.name, found, allowed });
       return null;
     }
     return Number.isNaN(cell) || cell === "" || isNull(field, cell) ? null : cell;
@@ -195,7 +195,10 @@ function textOf(bytes: Uint8Array, datatype: VoDatatype): string | undefined {
   }
 }
 
+const BITS = Array.from({ length: 256 }, (_, byte) => byte.toString(2).padStart(BIT_COUNT, "0"));
+
 function bitsOf(bytes: Uint8Array, count: number): string {
-  const bits = Array.from(bytes, (byte) => byte.toString(2).padStart(BIT_COUNT, "0"));
-  return bits.join("").slice(0, count);
+  return Array.from(bytes, (byte) => BITS[byte])
+    .join("")
+    .slice(0, count);
 }

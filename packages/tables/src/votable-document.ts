@@ -1,7 +1,7 @@
 import { MAX_CELL, MAX_COLUMNS } from "./limits";
 import type { RawCell, RawRow } from "./raw-table";
 import type { RowProblem, TableProblem } from "./table";
-import { rowRefusal } from "./row-limit";
+import { addProblem, rowRefusal } from "./row-limit";
 import { readBase64 } from "./votable-base64";
 import { readBinary } from "./votable-binary";
 import { allowedCell, textCell } from "./votable-cells";
@@ -199,7 +199,7 @@ export class VotableDocument implements XmlListener {
     row.cells.push(cell ?? null);
     if (cell !== undefined) return;
     const found = text.trim().slice(0, 80);
-    row.problems.push({ column: field.name, found, allowed: allowedCell(field) });
+    addProblem(row.problems, { column: field.name, found, allowed: allowedCell(field) });
   }
 
   #closeRow(): void {
