@@ -2,7 +2,7 @@
 
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { TableChoices } from "@weighhouse/tables/table-match";
-import { useEffect, useState } from "react";
+import { useState } from "react";
 import { FormProvider, useWatch } from "react-hook-form";
 import { Button } from "@/look/button";
 import { FormBody } from "../form-body";
@@ -17,16 +17,11 @@ import { FateRows } from "./table/fate-rows";
 import { LeaveOut } from "./table/leave-out";
 import { ProgressNote } from "./table/progress-note";
 import { RememberedNote } from "./table/remembered-note";
-import {
-  choicesOf,
-  defaultsOf,
-  emptyTable,
-  tableSchema,
-  type TableDraft,
-} from "./table/table-draft";
+import { emptyTable, tableSchema } from "./table/table-draft";
 import { TableFacts, TableProblems } from "./table/table-facts";
 import { TablePreview } from "./table/table-preview";
 import { useKeptTable } from "./table/use-kept-table";
+import { useMatching } from "./table/use-matching";
 import { useTable } from "./table/use-table";
 import { WholeTableFields } from "./table/whole-table-fields";
 
@@ -39,31 +34,12 @@ export function PostTable({ document }: { document: CampaignDocument }) {
     schema: tableSchema,
   });
   const table = useTable(document);
-  const { opened, matched, previewed, busy, open, match } = table;
+  const { opened, matched, previewed, busy, open } = table;
   const [columns, setColumns] = useState<TableChoices>(noChoices);
   const [leaveOut, setLeaveOut] = useState(false);
   const { bring, kept } = useKeptTable({ campaign: key, choices: columns, open, setColumns });
   const values = useWatch({ control: form.control });
-  const settingsText = JSON.stringify({ ...values, text: "" });
-
-  // Whatever is chosen is read anew at once; what was previewed before is no longer so.
-  const remembered = table.remembered;
-  useEffect(() => {
-    if (opened === null) return;
-    let current = true;
-    const settle = async () => {
-      const read = await tableSchema.safeParseAsync(JSON.parse(settingsText) as TableDraft);
-      if (!current || !read.success) return;
-      const { data } = read;
-      setLeaveOut(false);
-      await match({ choices: choicesOf(columns, data), remembered, defaults: defaultsOf(data) });
-    };
-    const timer = setTimeout(() => void settle(), 150);
-    return () => {
-      current = false;
-      clearTimeout(timer);
-    };
-  }, [opened, columns, settingsText, remembered, match]);
+  const settle = useMatching({ table, columns, values: { ...emptyTable, ...values } });
 
   const startAfresh = () => {
     table.close();
@@ -81,7 +57,12 @@ export function PostTable({ document }: { document: CampaignDocument }) {
       typed.sent();
     },
   };
-  const preview = form.handleSubmit(() => void table.preview(leaveOut));
+  const preview = form.handleSubmit(async () => {
+    // Whoever was quicker than the matching sees what stands there now.
+    await settle();
+    setLeaveOut(false);
+    await table.preview(false);
+  });
   const counts = previewed?.counts ?? matched?.counts ?? null;
   const rows = counts === null ? null : Object.values(counts).reduce((sum, each) => sum + each, 0);
   const usable =

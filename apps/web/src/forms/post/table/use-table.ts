@@ -43,8 +43,6 @@ const closed: State = {
   version: 0,
 };
 
-export type TableState = ReturnType<typeof useTable>;
-
 /** A table in its worker: read, matched, previewed, posted. The page holds what it shows alone. */
 export function useTable(document: CampaignDocument) {
   const campaign = document.campaign.key;
