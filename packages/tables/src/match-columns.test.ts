@@ -1,4 +1,6 @@
 import { describe, expect, test } from "vitest";
+import { matchColumns } from "./match-columns";
+import { plainColumn } from "./raw-table";
 import { manyQuantities, oneQuantity, readDrafts } from "./testing/harbour";
 
 const fields = (header: string, row: string, options: Parameters<typeof readDrafts>[1] = {}) =>
@@ -93,6 +95,34 @@ describe("a value's column is told", () => {
         found: "no column that holds a result",
         allowed: "a column that is, or is chosen to be, value, count or occurred",
       },
+    ]);
+  });
+
+  test("by the name of its unit", () => {
+    const read = readDrafts("JD,mag,mag_err\n2463000.5,21.3,0.1\n", { document: manyQuantities });
+    expect(read.matches.map(({ field }) => field)).toEqual(["observedAt", "value@glow", "sd@glow"]);
+  });
+
+  test("by its UCD, and its error by what it is an error of", () => {
+    const columns = [
+      { ucd: "time.epoch", name: "t", timeFormat: "mjd" },
+      { ucd: "phot.mag;em.opt.B", name: "Bmag" },
+      { ucd: "stat.error;phot.mag;em.opt.B", name: "dB" },
+      { ucd: "pos.eq.ra;meta.main", name: "ra" },
+      { ucd: "meta.id;meta.main", name: "name" },
+      { ucd: "instr.tel", name: "tel" },
+      { ucd: "meta.bib.bibcode", name: "paper" },
+    ].map((one) => ({ ...plainColumn(one.name), ...one }));
+    const context = { document: manyQuantities, defaults: { measurand: "glow-may" } };
+    const matches = matchColumns({ columns, rows: [] }, context);
+    expect(matches.map(({ field, why }) => [field, why])).toEqual([
+      ["observedAt", "ucd"],
+      ["value", "ucd"],
+      ["sd", "ucd"],
+      ["extra", "none"],
+      ["id", "ucd"],
+      ["facility", "ucd"],
+      ["source", "ucd"],
     ]);
   });
 
@@ -230,6 +260,21 @@ describe("what a table may also say of its rows", () => {
       setAside: { reason: "no uncertainty given" },
       sameData: "plate-7",
     });
+  });
+
+  test("what only counts or events have is theirs beside other results", () => {
+    const header = "date-obs,flux,err,tremors,exposure,plume,efficiency";
+    expect(
+      fields(header, "2031-05-04T11:20:00,8.1,0.6,6,1,yes,0.9", { document: manyQuantities }),
+    ).toEqual([
+      "observedAt",
+      "value@flux",
+      "sd@flux",
+      "count@tremors",
+      "exposure@tremors",
+      "occurred@plume",
+      "efficiency@plume",
+    ]);
   });
 
   test("what only counts have is extra where there are none", () => {

@@ -1,5 +1,5 @@
 import { assignFields } from "./assign-fields";
-import type { Assigned } from "./assign-fields";
+import type { Assigned } from "./assignment";
 import { matchScope } from "./match-scope";
 import type { MatchScope } from "./match-scope";
 import { timeMatch } from "./match-times";

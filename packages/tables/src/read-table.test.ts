@@ -118,6 +118,13 @@ describe("units under the header", () => {
     expect(read.rows.map(({ line, draft }) => [line, draft?.unit])).toEqual([[4, "mJy"]]);
   });
 
+  test("whatever stands between a header and a ruled line is units", () => {
+    const text = "obsDate\tl_flux\tflux\te_flux\ndate\t\tADU\tADU\n----\t-\t---\t---\n";
+    const table = readText("t.tsv", `${text}2031-05-04T00:00:00Z\t\t8.1\t0.6\n`);
+    expect(table.columns.map(({ unit }) => unit)).toEqual([null, null, "ADU", "ADU"]);
+    expect(table.rows.map(({ line }) => line)).toEqual([4]);
+  });
+
   test.each([
     ["a row of data", "value,sd\n1,2\n3,4\n", 2],
     ["units where the header has some", "value [Jy],sd\n1,2\n3,4\n", 2],

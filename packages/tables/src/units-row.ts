@@ -5,6 +5,8 @@ import type { CsvRecord } from "./records";
 import { readTimeWords } from "./time-words";
 
 const NO_UNIT = new Set(["", "-", "--", "none", "n/a"]);
+/** What catalogues name in a unit's place for texts and dates. */
+const KINDS = /^(?:date|datetime|time|text|string|char|"?[ymdhms:\-/ ]+"?)$/i;
 /** Rows looked at behind it: a column with a unit holds numbers. */
 const LOOKED_AT = 50;
 
@@ -18,6 +20,9 @@ export function readUnitsRow(
   records: readonly CsvRecord[],
 ): (string | null)[] | null {
   const [first, ...others] = records;
+  // Between a header and a ruled line nothing else stands.
+  const isSure = others[0] !== undefined && isRule(others[0]) && !isRule(first!);
+  if (isSure && first?.cells.length === columns.length) return first.cells.map(unitOfCell);
   if (first === undefined || first.cells.length !== columns.length || others.length === 0)
     return null;
   if (columns.some(({ unit }) => unit !== null)) return null;
@@ -33,7 +38,13 @@ export function readUnitsRow(
     known += 1;
   }
   if (known === 0) return null;
-  return units.map((unit) => (NO_UNIT.has(unit.toLowerCase()) ? null : unit));
+  return units.map(unitOfCell);
+}
+
+function unitOfCell(cell: string): string | null {
+  const unit = cell.replace(/^[[(](.*)[\])]$/, "$1").trim();
+  if (NO_UNIT.has(unit.toLowerCase())) return null;
+  return unitOf(unit) === null && KINDS.test(unit) ? null : unit;
 }
 
 function holdsNumbers(records: readonly CsvRecord[], index: number): boolean {
@@ -41,7 +52,7 @@ function holdsNumbers(records: readonly CsvRecord[], index: number): boolean {
   return cells.some((cell) => /^[<>≤≥+\-\u2212]?\s*[\d.,]*\d/.test(cell));
 }
 
-/** A line of hyphens under a header, as catalogues in text have it; marks of missing cells are shorter. */
+/** A line of hyphens under a header, as wide as its columns; marks of missing cells are shorter. */
 export function isRule({ cells }: CsvRecord): boolean {
-  return cells.length > 0 && cells.every((cell) => /^-{3,}$|^={3,}$/.test(cell));
+  return cells.every((cell) => /^(?:-+|=+)$/.test(cell)) && cells.some((cell) => cell.length >= 3);
 }
