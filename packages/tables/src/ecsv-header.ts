@@ -30,7 +30,8 @@ export function readEcsvHeader(text: string): EcsvHeader | TableProblem {
   const { lines, body } = commentLines(text);
   const version = /^%ECSV (\d+)\.(\d+)(?:\.\d+)?$/.exec(lines[0]?.trim() ?? "");
   if (version === null) return at(1, "a first line without # %ECSV", "# %ECSV 1.0");
-  if (version[1] !== "1") return at(1, version[0], "%ECSV 1.0");
+  // Astropy before 4.3 wrote 0.9, which is the same but for what 1.0 has more of.
+  if (version[1] !== "1" && version[0] !== "%ECSV 0.9") return at(1, version[0], "%ECSV 1.0");
   const header = readYaml(lines.slice(1).join("\n"), 2);
   if (!(header instanceof Map)) return header;
   const delimiter = header.get("delimiter") ?? " ";

@@ -108,6 +108,11 @@ it("runs of spaces part once, quotes hold anything, comments and blank lines are
   expect(table.notes).toEqual(["1 comment line among the rows left out"]);
 });
 
+it("version 0.9, as older files say, is read the same", () => {
+  const text = small("a b\n1 x\n");
+  expect(readEcsv(text.replace("ECSV 1.0", "ECSV 0.9"))).toEqual(readEcsv(text));
+});
+
 it("a file without a last line end may be cut off, which is said", () => {
   expect(readEcsv(small("a b\n1 x")).notes).toEqual([
     "the last line isn't ended: the file may be cut off",
