@@ -9,7 +9,8 @@ import { revokeApiKey } from "@weighhouse/desk/revoke-api-key";
 import { listApiKeys } from "@weighhouse/desk/list-api-keys";
 import { readCampaign } from "@weighhouse/desk/read-campaign";
 import { registerHypothesis } from "@weighhouse/desk/register-hypothesis";
-import { hypothesis, openLagoon } from "@weighhouse/desk/testing/lagoon";
+import type { Scope } from "@weighhouse/desk/scopes";
+import { hypothesis, openLagoon, reading } from "@weighhouse/desk/testing/lagoon";
 import type { Lagoon } from "@weighhouse/desk/testing/lagoon";
 import { answerHttp } from "../http";
 import { keyOf, serveApi } from "../testing/serve-api";
@@ -113,6 +114,37 @@ describe("a key in Authorization: Bearer (RFC 6750)", () => {
     const refused = await ask("POST", `${open.key}/seals`, { body });
     expect(refused.status).toBe(401);
     expect(refused.headers.get("www-authenticate")).toBe("Bearer");
+  });
+});
+
+describe("one scope is enough for what it is for", () => {
+  const row = { ...reading("by-scope", 41), batch: "one" };
+  const id = "by-scope";
+  const correction = { reason: "read off again", measurement: { ...row, value: 42 } };
+  const until = "2058-01-01T00:00:00Z";
+
+  it.each<[Scope, string, string, object | undefined, number]>([
+    ["read", "GET", "document.json", undefined, 200],
+    ["read", "GET", "audit.zip", undefined, 200],
+    ["measurements:post", "POST", "measurements/preview", row, 200],
+    ["measurements:post", "POST", "measurements", row, 201],
+    ["measurements:correct", "POST", "corrections/preview", { corrections: [correction] }, 200],
+    ["measurements:correct", "POST", "corrections", { corrections: [correction] }, 201],
+    [
+      "measurements:correct",
+      "POST",
+      "withdrawals/preview",
+      { selection: { by: "ids", ids: [id] } },
+      200,
+    ],
+    ["measurements:correct", "POST", "set-asides", { id, reason: "clouds" }, 201],
+    ["seals", "POST", "seals", { digest: "7a".repeat(32), measurand: "new-moon", until }, 201],
+    ["webhooks", "GET", "webhooks", undefined, 200],
+  ])("%s: %s %s", async (scope, method, path, body, status) => {
+    const headers = await keyOf(server, open.key, { maker: open.coordinator, scopes: [scope] });
+    const answer = await ask(method, `${open.key}/${path}`, { headers, body });
+    const said = answer.status === status ? "" : await answer.text();
+    expect([answer.status, said]).toEqual([status, ""]);
   });
 });
 
