@@ -15,6 +15,8 @@ export function readNumber(text: string, mark: DecimalMark): number | null {
   const ascii = text.replace(/^[\u2212\u2013]/, "-");
   if (!NUMBERS[mark].test(ascii)) return null;
   const number = Number(mark === "comma" ? ascii.replace(",", ".") : ascii);
+  // Too small for a double isn't zero: it stays text, and is refused.
+  if (number === 0 && /^[^eE]*[1-9]/.test(ascii)) return null;
   return Number.isFinite(number) ? number : null;
 }
 
