@@ -11,8 +11,8 @@ import { postToWebhook } from "./webhook-request";
 const COVERED = ["@method", "@target-uri", "content-type", "content-digest"];
 
 /**
- * Sends one delivery and keeps how that went. Throws where it did not arrive: the queue tries again,
- * later each time.
+ * Sends one delivery and keeps how that went. Throws where it did not arrive, but at its last try: the
+ * queue tries again, later each time.
  */
 export async function webhookTask(
   store: Store,
@@ -23,8 +23,10 @@ export async function webhookTask(
   const tried = await tryOnce(store, place, how);
   if (tried === null) return;
   await recordTry(store, place, { tried, last });
-  if (!tried.ok) throw new Error(`${place.campaign}: ${tried.error}`);
-  store.log.info({ ...place, status: tried.status }, "delivered");
+  if (tried.ok) store.log.info({ ...place, status: tried.status }, "delivered");
+  // The queue would keep a job that failed at its last try for ever; the delivery's own log tells it.
+  else if (last) store.log.warn({ ...place, error: tried.error }, "gave a delivery up");
+  else throw new Error(`${place.campaign}: ${tried.error}`);
 }
 
 /** Null where there is nothing to send any more. */
