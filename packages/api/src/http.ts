@@ -18,12 +18,14 @@ import { tableContextRoutes } from "./http/table-context";
 import { webhookRoutes } from "./http/webhooks";
 import { respondJson } from "./http/respond";
 import { describeApi } from "./openapi/describe-api";
+import { uploadRoutes } from "./http/uploads";
 import { problemResponse } from "./problem-details";
 
 /** All that stands below `/api/v1/campaigns/{key}/`, in the order in which it is described. */
 export const routes: Route[] = [
   ...campaignRoutes,
   ...measurementRoutes,
+  ...uploadRoutes,
   ...tableContextRoutes,
   ...recordRoutes,
   ...ledgerRoutes,

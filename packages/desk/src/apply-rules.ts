@@ -57,11 +57,19 @@ export class RowRules {
   /** What is wrong with all rows taken together, where one piece hadn't all of them. */
   finish(): Problem[] {
     if (this.#pieces < 2 || this.#loaded.size === 0) return [];
-    const some = [...this.#loaded.values()];
+    return this.#together([...this.#loaded.values()]);
+  }
+
+  /** The same of rows that came in several parts: given those that have to be looked at together. */
+  together(some: MeasurementContent[]): Problem[] {
+    return this.#together(some.map((one) => documentMeasurement(one, this.#at)));
+  }
+
+  #together(some: Measurement[]): Problem[] {
     return this.#problemsOf(some).map((problem) => {
       const index = /^\/measurements\/(\d+)/.exec(problem.pointer)?.[1];
       const id = index === undefined ? undefined : some[Number(index)]?.id;
-      return id === undefined ? problem : { ...problem, found: `${problem.found} (${id})` };
+      return { ...problem, pointer: "", found: `${problem.found}${id ? ` (${id})` : ""}` };
     });
   }
 

@@ -67,7 +67,8 @@ async function postStaged(
   return withUpload(desk, against.access, async (upload) => {
     const to = { ...upload, part: 0 };
     const staged = await stageRows(desk, against, { to, pieces, columns, tell });
-    const { problems: together, bytes } = staged;
+    const { problems, bytes } = staged;
+    const together = async () => problems;
     return postUpload(desk, against.access, { upload, together, place: () => place, bytes, tell });
   });
 }

@@ -25,27 +25,26 @@ const ATTEMPTS = 5;
 /**
  * Enters what is staged, all of it or nothing: what is refused, repeated or in conflict keeps the
  * whole out.
- *
- * @param together what is wrong with the rows taken together
  */
 export async function postUpload(
   desk: Desk,
   access: Access,
   input: {
     upload: Upload;
-    together: Problem[];
+    together: Together;
     place: PartPlace;
     bytes: number;
     tell: TellProgress;
   },
 ): Promise<PostedRows> {
-  const { upload, together, place, bytes, tell } = input;
+  const { upload, place, bytes, tell } = input;
   const { store, clock } = desk;
   const { key } = access.campaign;
   for (let attempt = 0; attempt < ATTEMPTS; attempt += 1) {
     tell({ stage: "check", rows: 0, bytes });
     const { size, counts } = await onStore(() => compareStaged(store, upload));
     const { rows, refused } = await countStaged(store, upload);
+    const together = await input.together();
     if (refused + counts.repeated > 0 || together.length > 0) {
       throw invalid([...(await faultsOf(desk, { upload, place, refused, counts })), ...together]);
     }
@@ -62,6 +61,9 @@ export async function postUpload(
   }
   throw new DeskError("busy", "others kept posting measurements of the same ids; try again");
 }
+
+/** What is wrong with the rows taken together; asked once it is known which are new. */
+export type Together = () => Promise<Problem[]>;
 
 /** Where a row of a part lies in what was sent. */
 export type PartPlace = (part: number) => Place;

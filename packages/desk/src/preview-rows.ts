@@ -82,7 +82,8 @@ async function previewStaged(
   return withUpload(desk, against.access, async (upload) => {
     const to = { ...upload, part: 0 };
     const staged = await stageRows(desk, against, { to, pieces, columns, tell });
-    const { problems: together, bytes } = staged;
+    const { problems, bytes } = staged;
+    const together = async () => problems;
     const { document } = against;
     const preview = await previewUpload(desk, document, { upload, together, bytes, row, tell });
     return { ...preview, columns };

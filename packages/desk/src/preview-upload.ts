@@ -1,6 +1,5 @@
 import { completeDocument } from "@weighhouse/campaign/complete";
 import type { CampaignDocument } from "@weighhouse/campaign/document";
-import type { Problem } from "@weighhouse/campaign/problem";
 import { addMeasurements, createState, standingsOf } from "@weighhouse/engine/state";
 import type { EngineState } from "@weighhouse/engine/state";
 import { compareStaged } from "@weighhouse/store/compare-staged";
@@ -10,6 +9,7 @@ import type { Upload } from "@weighhouse/store/uploads";
 import { documentMeasurement } from "./apply-rules";
 import type { Desk } from "./desk";
 import { rowProblems } from "./post-upload";
+import type { Together } from "./post-upload";
 import type { TellProgress } from "./posted-rows";
 import type { PreviewedRow, PreviewedRows } from "./previewed-rows";
 import { standingsChanges } from "./standings-changes";
@@ -23,13 +23,13 @@ export async function previewUpload(
   document: CampaignDocument,
   input: {
     upload: Upload;
-    together: Problem[];
+    together: Together;
     bytes: number;
     row: (row: PreviewedRow) => void | Promise<void>;
     tell: TellProgress;
   },
 ): Promise<Omit<PreviewedRows, "columns">> {
-  const { upload, together, bytes, row: told, tell } = input;
+  const { upload, bytes, row: told, tell } = input;
   const { store } = desk;
   tell({ stage: "check", rows: 0, bytes });
   const { size, counts: found } = await onStore(() => compareStaged(store, upload));
@@ -44,7 +44,7 @@ export async function previewUpload(
     conflict,
     refused: refused + repeated,
   };
-  const problems = together.map((one) => ({
+  const problems = (await input.together()).map((one) => ({
     line: null,
     column: null,
     found: one.found,

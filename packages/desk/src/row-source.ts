@@ -41,6 +41,17 @@ export function inText(pointer: string): Place {
   return { row: place, text: place };
 }
 
+/** Of a part of an upload, of which there are several. */
+export function inPart(part: number): Place {
+  const place = ({ column, ...problem }: RowProblem, line: number | null): Problem => {
+    const words = [`part ${part}`, line === null ? "" : `line ${line}`];
+    if (column !== null) words.push(`column ${column}`);
+    const where = words.filter((word) => word !== "").join(", ");
+    return { pointer: "", code: "bad-format", ...problem, found: `${problem.found} (${where})` };
+  };
+  return { row: place, text: place };
+}
+
 /** Of a list of drafts, at its pointer. */
 export function inDrafts(pointer: string): Place {
   const ofText = inText(pointer).text;

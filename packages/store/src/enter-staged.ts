@@ -12,6 +12,7 @@ import { currentRows, writeRows } from "./projection-rows";
 import { Projector } from "./projector";
 import type { Queries } from "./queries";
 import { queueScoring } from "./scoring-queue";
+import { StoreError } from "./store-error";
 import type { Upload } from "./uploads";
 
 export type EnterInput = {
@@ -148,7 +149,7 @@ type Placed = EnterInput & { tip: Tip; prepared: Prepared[]; extended: Extended 
 async function insertEntries(tx: Queries, input: Placed): Promise<void> {
   const { upload, by, prepared, extended } = input;
   const author = "system" in by ? { member: null, team: null } : by;
-  await tx`
+  const { count } = await tx`
     insert into entries
       (campaign_id, seq, version, at, member, team, kind, payload, payload_sha256)
     select ${upload.campaignId}::int, p.seq, 1, p.at, ${author.member}::text, ${author.team}::text,
@@ -161,13 +162,23 @@ async function insertEntries(tx: Queries, input: Placed): Promise<void> {
     join staged_entries s on s.campaign_id = ${upload.campaignId} and s.upload = ${upload.upload}::uuid
       and s.part = p.part and s.entry = p.entry
     order by p.seq`;
+  requireAll(count, prepared.length);
+}
+
+/** Whoever took staged rows away meanwhile: then nothing is entered. */
+function requireAll(found: number, expected: number): void {
+  if (found === expected) return;
+  throw new StoreError(
+    "no-such-upload",
+    `found ${found} of ${expected} of what was staged; allowed is all of it: send it again`,
+  );
 }
 
 /** Row by row where they lie: each entry's rows are found by their lines. */
 async function insertMeasurements(tx: Queries, input: Placed): Promise<void> {
   const { upload, prepared, extended } = input;
   const { campaignId } = upload;
-  await tx`
+  const { count } = await tx`
     insert into measurements
       (campaign_id, id, from_size, to_size, first_seq, first_place, measurand, facility, team,
       batch, observed_at, posted_at, value, sd, unit, set_aside, withdrawn, content)
@@ -188,4 +199,8 @@ async function insertMeasurements(tx: Queries, input: Placed): Promise<void> {
         and m.line between p.first_line and p.last_line and m.entry = p.entry
       offset 0
     ) s`;
+  requireAll(
+    count,
+    prepared.reduce((sum, { rows }) => sum + rows, 0),
+  );
 }

@@ -4,6 +4,7 @@ import type { PostedRows } from "@weighhouse/desk/posted-rows";
 import { previewRows } from "@weighhouse/desk/preview-rows";
 import type { PreviewedRow } from "@weighhouse/desk/previewed-rows";
 import { linesAnswer, someOf } from "./lines-answer";
+import type { WriteLine } from "./lines-answer";
 import { postedLineSchema, postedSchema, previewLineSchema } from "./measurement-answers";
 import { created } from "./respond";
 import { route } from "./route";
@@ -12,6 +13,11 @@ import { rowBodies, rowDefaultsSchema, rowsOfBody } from "./row-body";
 const group = "Measurements";
 const scope = "measurements:post";
 const LINES = "application/x-ndjson";
+
+export const whichRows = z
+  .enum(["all", "faults"])
+  .optional()
+  .describe("faults leaves out the rows that are good; all unless given.");
 
 export const measurementRoutes = [
   route({
@@ -32,7 +38,7 @@ export const measurementRoutes = [
       },
     },
     async answer({ desk, actor, log, key, answerType, ...question }) {
-      const body = await rowsOfBody(question);
+      const body = await rowsOfBody({ desk, key, ...question });
       if (answerType !== LINES) {
         return created(postedAnswer(await postRows(desk, actor, { key, ...body })));
       }
@@ -51,12 +57,7 @@ export const measurementRoutes = [
     says: "Takes what a posting takes, enters nothing, and tells each row's fate and which verdicts and standings would change.",
     scope,
     rate: "heavy",
-    query: rowDefaultsSchema.extend({
-      rows: z
-        .enum(["all", "faults"])
-        .optional()
-        .describe("faults leaves out the rows that are good; all unless given."),
-    }),
+    query: rowDefaultsSchema.extend({ rows: whichRows }),
     takes: rowBodies,
     gives: {
       status: 200,
@@ -65,19 +66,10 @@ export const measurementRoutes = [
       },
     },
     async answer({ desk, actor, log, key, query: { rows, ...query }, request, bodyType }) {
-      const body = await rowsOfBody({ request, bodyType, query });
+      const body = await rowsOfBody({ desk, key, request, bodyType, query });
       return linesAnswer(log, async (write) => {
-        const preview = await previewRows(desk, actor, {
-          key,
-          ...body,
-          tell: someOf(write, "progress"),
-          row: async (row) => {
-            if (rows === "faults" && !isAtFault(row)) return;
-            // The client has sent the measurement itself.
-            await write({ row: { ...row, measurement: undefined } });
-          },
-        });
-        await write({ preview });
+        const telling = { tell: someOf(write, "progress"), row: rowWriter(write, rows) };
+        await write({ preview: await previewRows(desk, actor, { key, ...body, ...telling }) });
       });
     },
   }),
@@ -95,6 +87,10 @@ export function postedAnswer({ key, posted, alreadyThere, appended, ids }: Poste
   };
 }
 
-function isAtFault({ fate }: PreviewedRow): boolean {
-  return fate === "refused" || fate === "conflict";
+/** Writes a line for each row, or for each that keeps a posting from being taken. */
+export function rowWriter(write: WriteLine, rows: "all" | "faults" = "all") {
+  return async ({ measurement: _sent, ...row }: PreviewedRow) => {
+    if (rows === "faults" && row.fate !== "refused" && row.fate !== "conflict") return;
+    await write({ row });
+  };
 }

@@ -6,10 +6,10 @@ import { parseJson } from "@weighhouse/campaign/json-text";
 import { measurementContentSchema } from "@weighhouse/campaign/entries";
 import { DeskError, invalid } from "@weighhouse/desk/desk-error";
 import type { Correlations } from "@weighhouse/desk/posted-rows";
-import { readRows } from "@weighhouse/desk/read-rows";
 import { inDraft, inDrafts, inText, piecesOf, withDefaults } from "@weighhouse/desk/row-source";
 import type { Place, RowDefaults, RowSource } from "@weighhouse/desk/row-source";
 import { linePieces } from "@weighhouse/desk/stage-lines";
+import { tableRows } from "@weighhouse/desk/table-rows";
 import type { Piece } from "@weighhouse/desk/stage-lines";
 import type { BodyType, Question } from "./route";
 
@@ -49,7 +49,14 @@ export const rowBodies: Record<string, BodyType> = {
   },
   "text/csv": {
     schema: null,
-    says: "A table whose header names the columns (RFC 4180).",
+    says: "A table whose header names the columns (RFC 4180), read as is remembered for its facility.",
+    maxBytes: MAX_BYTES,
+  },
+  "text/ecsv": { schema: null, says: "An ECSV table, as astropy writes it.", maxBytes: MAX_BYTES },
+  "application/x-ecsv": { schema: null, says: "The same.", maxBytes: MAX_BYTES },
+  "application/x-votable+xml": {
+    schema: null,
+    says: "A VOTable (IVOA, 1.4), TABLEDATA or BINARY2.",
     maxBytes: MAX_BYTES,
   },
 };
@@ -64,27 +71,34 @@ export const rowDefaultsSchema = z.strictObject({
 
 /** The rows that a request brings. A stream is read as it is worked on. */
 export async function rowsOfBody({
+  desk,
+  key: campaign,
   request,
   bodyType,
   query,
-}: Pick<Question<unknown, RowDefaults>, "request" | "bodyType" | "query">): Promise<{
-  source: RowSource;
-  correlations: Correlations;
-}> {
+}: Pick<
+  Question<unknown, RowDefaults>,
+  "desk" | "key" | "request" | "bodyType" | "query"
+>): Promise<{ source: RowSource; correlations: Correlations }> {
   const { facility, team, measurand, batch } = query;
   const defaults = present({ facility, team, measurand, batch });
   if (bodyType === "application/x-ndjson") {
     const pieces = filled(linePieces(chunksOf(request)), defaults);
     return { source: rowsOf(pieces, inText("")), correlations: [] };
   }
-  const text = await request.text();
-  if (bodyType === "application/json") return rowsOfJson(text, defaults);
+  if (bodyType === "application/json") return rowsOfJson(await request.text(), defaults);
+  const bytes = new Uint8Array(await request.arrayBuffer());
+  const fields = {
+    measurand: measurand ?? null,
+    facility: facility ?? null,
+    team: team ?? null,
+    batch: batch ?? null,
+  };
+  const read = await tableRows(desk, campaign, { name: "", bytes, defaults: fields });
   return {
     source: (document) => {
-      const fields = { measurand: measurand ?? null, facility: facility ?? null };
-      const read = readRows({ from: "csv", text, defaults: fields }, document);
-      const rows = withDefaults(read.rows, defaults);
-      return { ...read, pieces: piecesOf(rows, text.length), place: inText("") };
+      const { rows, columns, problems } = read(document);
+      return { pieces: piecesOf(rows, bytes.length), columns, problems, place: inText("") };
     },
     correlations: [],
   };
@@ -136,6 +150,7 @@ async function* chunksOf(request: Request): AsyncGenerator<Uint8Array> {
   for await (const chunk of request.body ?? []) yield chunk as Uint8Array;
 }
 
-function present(fields: { [K in keyof RowDefaults]: string | undefined }): RowDefaults {
+/** Without what isn't given. */
+export function present(fields: { [K in keyof RowDefaults]: string | undefined }): RowDefaults {
   return Object.fromEntries(Object.entries(fields).filter(([, value]) => value !== undefined));
 }
