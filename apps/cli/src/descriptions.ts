@@ -10,5 +10,6 @@ export const descriptions = {
   seal: "Seal a prediction or a measurement: the digest to file, and the file to keep",
   reveal: "Open a seal on a server with the file that was kept",
   watch: "Watch a campaign's ledger on a server: was anything before rewritten?",
+  post: "Post a file of measurements to a server, or tell what would happen",
   export: "Save a campaign's audit trail from a server",
 } as const;

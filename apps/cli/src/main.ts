@@ -14,5 +14,6 @@ process.exitCode = await run(process.argv.slice(2), {
   seal: () => import("./commands/seal").then((module) => module.seal as CommandDef),
   reveal: () => import("./commands/reveal").then((module) => module.reveal as CommandDef),
   watch: () => import("./commands/watch").then((module) => module.watch as CommandDef),
+  post: () => import("./commands/post").then((module) => module.post as CommandDef),
   export: () => import("./commands/export").then((module) => module.exportTrail as CommandDef),
 });

@@ -12,6 +12,14 @@ export function campaignAddress(campaign: string, path: string): URL {
   return new URL(`${base.replace(/\/+$/, "")}/api/v1/campaigns/${campaign}/${path}`);
 }
 
+/** Refuses what can't be a campaign's key before anything is asked. */
+export function requireCampaignKey(text: string): string {
+  if (/^[a-z0-9][a-z0-9-]{0,63}$/.test(text)) return text;
+  throw wrongUsage(
+    `found --campaign ${text}; allowed a key: 1 to 64 of a-z, 0-9 and -, starting with a letter or digit`,
+  );
+}
+
 /**
  * Asks the server, with the key in WEIGHHOUSE_API_KEY where there is one.
  *
@@ -21,28 +29,55 @@ export async function ask(
   address: URL,
   request: { accept: string; post?: unknown },
 ): Promise<Uint8Array> {
-  const key = process.env.WEIGHHOUSE_API_KEY;
   const { accept, post } = request;
-  let response: Response;
-  let body: Uint8Array;
-  try {
-    response = await fetch(address, {
-      ...(post === undefined ? {} : { method: "POST", body: JSON.stringify(post) }),
-      headers: {
-        accept,
-        ...(post === undefined ? {} : { "content-type": "application/json" }),
-        ...(key ? { authorization: `Bearer ${key}` } : {}),
-      },
-      redirect: "error",
-    });
-    body = new Uint8Array(await response.arrayBuffer());
-  } catch (error) {
-    throw new Refusal(3, [`${address.origin} could not be reached: ${reasonOf(error)}`], {
-      cause: error,
-    });
+  const sent: Sent = { headers: { accept } };
+  if (post !== undefined) {
+    sent.method = "POST";
+    sent.body = JSON.stringify(post);
+    sent.headers["content-type"] = "application/json";
   }
+  const response = await send(address, sent);
+  const body = await bodyOf(address, response);
   if (!response.ok) throw refused(address, response, body);
   return body;
+}
+
+export type Sent = {
+  method?: string;
+  body?: string | Uint8Array<ArrayBuffer>;
+  headers: Record<string, string>;
+};
+
+/**
+ * Sends a request with the key, and gives the answer before its body has come, whatever its status.
+ *
+ * @throws {Refusal} 3 where the server can't be reached
+ */
+export async function send(address: URL, { headers, ...request }: Sent): Promise<Response> {
+  const key = process.env.WEIGHHOUSE_API_KEY;
+  try {
+    return await fetch(address, {
+      ...request,
+      headers: { ...headers, ...(key ? { authorization: `Bearer ${key}` } : {}) },
+      redirect: "error",
+    });
+  } catch (error) {
+    throw unreachable(address, error);
+  }
+}
+
+export async function bodyOf(address: URL, response: Response): Promise<Uint8Array> {
+  try {
+    return new Uint8Array(await response.arrayBuffer());
+  } catch (error) {
+    throw unreachable(address, error);
+  }
+}
+
+export function unreachable(address: URL, error: unknown): Refusal {
+  return new Refusal(3, [`${address.origin} could not be reached: ${reasonOf(error)}`], {
+    cause: error,
+  });
 }
 
 const STATUS_WORDS: Record<number, string> = {
@@ -52,7 +87,8 @@ const STATUS_WORDS: Record<number, string> = {
   429: "too many requests; try again later",
 };
 
-function refused(address: URL, response: Response, body: Uint8Array): Refusal {
+/** What the server refuses, in its own words. */
+export function refused(address: URL, response: Response, body: Uint8Array): Refusal {
   const { status, statusText } = response;
   const why = [STATUS_WORDS[status] ?? statusText, detailOf(body)].filter(Boolean).join("; ");
   return new Refusal(3, [`${address.href} answered ${status}: ${why}`]);

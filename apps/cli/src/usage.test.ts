@@ -9,7 +9,7 @@ describe("wrong usage ends with 2 and says what is allowed", () => {
   test.each([
     [
       ["bogus"],
-      "found the command bogus; allowed score, check, sensitivity, plan, simulate, chance, verify, seal, reveal, watch, export\n",
+      "found the command bogus; allowed score, check, sensitivity, plan, simulate, chance, verify, seal, reveal, watch, post, export\n",
     ],
     [["score", eclipse, "--jsno"], "found --jsno; allowed --json, --include-after\n"],
     [["score", eclipse, "other.json"], "found a further argument other.json; allowed 1\n"],
@@ -34,7 +34,7 @@ describe("wrong usage ends with 2 and says what is allowed", () => {
     const { code, out, err } = await weighhouse([]);
     expect([code, out]).toEqual([2, ""]);
     expect(err).toContain(
-      "USAGE weighhouse score|check|sensitivity|plan|simulate|chance|verify|seal|reveal|watch|export",
+      "USAGE weighhouse score|check|sensitivity|plan|simulate|chance|verify|seal|reveal|watch|post|export",
     );
   });
 });
@@ -43,7 +43,7 @@ test("--help is on stdout, plain in a pipe", async () => {
   const whole = await weighhouse(["--help"]);
   expect(whole).toMatchObject({ code: 0, err: "" });
   expect(whole.out).toContain(
-    "USAGE weighhouse score|check|sensitivity|plan|simulate|chance|verify|seal|reveal|watch|export",
+    "USAGE weighhouse score|check|sensitivity|plan|simulate|chance|verify|seal|reveal|watch|post|export",
   );
   const one = await weighhouse(["score", "--help"]);
   expect(one.code).toBe(0);

@@ -2,7 +2,7 @@ import { rename, rm, writeFile } from "node:fs/promises";
 import { defineCommand } from "citty";
 import { descriptions } from "../descriptions";
 import { Refusal, wrongUsage } from "../refusal";
-import { ask, campaignAddress } from "../server";
+import { ask, campaignAddress, requireCampaignKey } from "../server";
 
 export const exportTrail = defineCommand({
   meta: { name: "export", description: descriptions.export },
@@ -22,12 +22,7 @@ export const exportTrail = defineCommand({
     },
   },
   async run({ args }) {
-    if (!/^[a-z0-9][a-z0-9-]{0,63}$/.test(args.campaign)) {
-      throw wrongUsage(
-        `found --campaign ${args.campaign}; allowed a key: 1 to 64 of a-z, 0-9 and -, starting with a letter or digit`,
-      );
-    }
-    const bytes = await download(args.campaign);
+    const bytes = await download(requireCampaignKey(args.campaign));
     await writeWhole(args.output, bytes);
     process.stderr.write(`Saved ${args.output} (${bytes.length} bytes)\n`);
   },
