@@ -176,7 +176,12 @@ function widthOf(
 function setLimit(at: Reading, { side, isSign }: Flag): void {
   if (side === "none") return;
   const isMagnitude = at.observable?.scale === "magnitude";
-  at.fields["limit"] = limitWord(side, { isMagnitude, isSign });
+  const word = limitWord(side, { isMagnitude, isSign });
+  at.fields["limit"] = word;
+  if (isMagnitude && side !== word) {
+    const given = isSign ? (side === "below" ? "<" : ">") : side === "below" ? "upper" : "lower";
+    at.notes.push(`A limit "${given}" on a magnitude is read as ${word}.`);
+  }
 }
 
 /** What a limit is said at: in the row, else as chosen for the table. */

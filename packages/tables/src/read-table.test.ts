@@ -105,6 +105,37 @@ describe("the format is told by the content", () => {
   });
 });
 
+describe("headers", () => {
+  test("a comment line with as many words is one, where the first line is of numbers", () => {
+    const read = readDrafts("# night 4\n# MJD,flux,flux_err\n60310.25,8.1,0.6\n");
+    expect(read.rows.map(({ line, draft }) => [line, draft?.value, draft?.sd])).toEqual([
+      [3, 8.1, 0.6],
+    ]);
+    expect(read.notes.slice(0, 2)).toEqual([
+      "Line 2, a comment, is read as the header.",
+      "1 comment line is left out.",
+    ]);
+  });
+
+  test("without one, a table of numbers is refused", () => {
+    expect(readText("t.csv", "# night 4\n1,2,3\n4,5,6\n").problems).toEqual([
+      {
+        line: 2,
+        column: null,
+        found: "a first line of numbers",
+        allowed: "a header line with the columns' names, then a line for each measurement",
+      },
+    ]);
+  });
+
+  test("cells parted by spaces are told by lines of one length", () => {
+    const read = readDrafts("# MJD flux  flux_err\n60310.25   8.1 0.6\n60311.25  -0.4 0.6\n");
+    expect(read.rows.map(({ draft }) => draft?.value)).toEqual([8.1, -0.4]);
+    expect(read.notes).toContain("Cells are parted by spaces.");
+    expect(readText("t", "a note\nof three words\n").columns).toHaveLength(1);
+  });
+});
+
 describe("units under the header", () => {
   test("are told apart surely, and said", () => {
     const read = readDrafts("night,flux,e_flux,T\n,mJy,mJy,K\n1,8.1,0.6,280\n");

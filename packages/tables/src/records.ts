@@ -5,7 +5,15 @@ import { refusedText } from "./text";
 
 export type CsvRecord = { line: number; cells: string[] };
 
-export type CsvRecords = { separator: Separator; records: CsvRecord[]; problems: TableProblem[] };
+export type CsvRecords = {
+  separator: Separator;
+  records: CsvRecord[];
+  problems: TableProblem[];
+  /** Lines that begin with `#`, and the last one above the first record. */
+  comments: { count: number; above: { line: number; text: string } | null };
+};
+
+const NO_COMMENTS: CsvRecords["comments"] = { count: 0, above: null };
 
 const NAMES: Record<Separator, string> = {
   ",": "commas",
@@ -16,22 +24,22 @@ const NAMES: Record<Separator, string> = {
 
 /**
  * The records of a CSV text (RFC 4180), the header's first. Also read: semicolons, tabs or
- * vertical bars in place of commas, a byte order mark, LF or CR line ends, blank lines, and lines that begin with `#`
- * (common practice).
+ * vertical bars in place of commas, a byte order mark, LF or CR line ends, blank lines, and lines
+ * that begin with `#` (common practice).
  */
 export function readRecords(text: string): CsvRecords {
-  const none = { separator: "," as const, records: [] };
+  const none = { separator: "," as const, records: [], comments: NO_COMMENTS };
   const refused = refusedText(text);
   if (refused !== null) return { ...none, problems: [refused] };
   const separator = detectSeparator(text);
   const many = tooManyCells(text, separator);
-  if (many !== null) return { separator, records: [], problems: [many] };
+  if (many !== null) return { ...none, separator, problems: [many] };
   try {
-    const records = parseRecords(text, separator);
-    return { separator, records, problems: sizeProblems(records) };
+    const { records, comments } = parseRecords(text, separator);
+    return { separator, records, problems: sizeProblems(records), comments };
   } catch (error) {
     if (!(error instanceof CsvError)) throw error;
-    return { separator, records: [], problems: [brokenQuotes(text, separator)] };
+    return { ...none, separator, problems: [brokenQuotes(text, separator)] };
   }
 }
 
@@ -55,7 +63,10 @@ type ParsedRecord = { record: string[]; raw: string };
 const LINE_END = /\r\n|\n|\r/g;
 const BLANK_AND_COMMENTS = /^(?:(?:#[^\r\n]*)?(?:\r\n|\n|\r))*/;
 
-function parseRecords(text: string, separator: Separator): CsvRecord[] {
+function parseRecords(
+  text: string,
+  separator: Separator,
+): Pick<CsvRecords, "records" | "comments"> {
   const parsed = parse(text, {
     bom: true,
     comment: "#",
@@ -68,14 +79,29 @@ function parseRecords(text: string, separator: Separator): CsvRecord[] {
   }) as unknown as ParsedRecord[];
   // The parser's own line count takes a CRLF inside quotes for two; `raw` runs through the whole
   // text, comments and blank lines before a record included.
-  let line = 1;
+  let [line, consumed] = [1, 0];
+  const comments = { ...NO_COMMENTS };
   const records = parsed.map(({ record, raw }) => {
-    const before = countLines(BLANK_AND_COMMENTS.exec(raw)?.[0] ?? "");
-    const at = line + before;
+    const before = BLANK_AND_COMMENTS.exec(raw)?.[0] ?? "";
+    if (consumed === 0) comments.above = lastComment(before);
+    comments.count += countComments(before);
+    const at = line + countLines(before);
     line += countLines(raw);
+    consumed += raw.length;
     return { line: at, cells: record.map((cell) => cell.trim()) };
   });
-  return records.filter(({ cells }) => cells.some((cell) => cell !== ""));
+  comments.count += countComments(text.slice(consumed));
+  return { records: records.filter(({ cells }) => cells.some((cell) => cell !== "")), comments };
+}
+
+function countComments(text: string): number {
+  return text.includes("#") ? (text.match(/^#/gm)?.length ?? 0) : 0;
+}
+
+function lastComment(before: string): CsvRecords["comments"]["above"] {
+  const lines = before.split(LINE_END);
+  const index = lines.findLastIndex((line) => line.startsWith("#"));
+  return index === -1 ? null : { line: index + 1, text: lines[index]!.replace(/^#+\s*/, "") };
 }
 
 /** Counted before parsing: lines of a million separators would take more room than their text. */
