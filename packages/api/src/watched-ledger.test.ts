@@ -6,13 +6,10 @@ import { tmpdir } from "node:os";
 import path from "node:path";
 import { fileURLToPath } from "node:url";
 import { afterAll, beforeAll, expect, it } from "vitest";
-import { base64, utf8 } from "@weighhouse/ledger/bytes";
-import { nodeHasher } from "@weighhouse/ledger/node-hasher";
-import { formatTreeHead, signTreeHead } from "@weighhouse/ledger/tree-head";
 import { appendEntries } from "@weighhouse/store/append";
-import { findCampaign } from "@weighhouse/store/campaigns";
 import { readEntry } from "@weighhouse/store/read-ledger";
 import { openCampaign } from "@weighhouse/store/open-campaign";
+import { lostHead } from "@weighhouse/store/testing/lost-head";
 import { rewriteLedger } from "@weighhouse/store/testing/rewrite-ledger";
 import { declarations, opening } from "@weighhouse/store/testing/sample-campaign";
 import { answerHttp } from "./http";
@@ -121,12 +118,10 @@ it("ends with 1 once where the ledger itself says that it was restored, and watc
   const once = () => run(page, "--keep", folder, "--once");
   await once();
   // What was signed of 8 entries, two of which the restore took away.
-  const { ledger } = await findCampaign(store, "erg");
-  const lost = { origin: ledger, size: 8, root: nodeHasher(utf8("8 entries")) };
-  const note = signTreeHead(formatTreeHead(lost), store.signer!);
-  writeFileSync(path.join(folder, "0000000000000008.note"), note);
+  const lost = await lostHead(store, "erg", 8);
+  writeFileSync(path.join(folder, "0000000000000008.note"), lost.note);
   expect((await once()).err).toContain("the ledger was rewritten: it has 6 entries");
-  const payload = { before: 8, root: base64(lost.root), after: 6, reason: "a disk failed" };
+  const payload = { before: 8, root: lost.root, after: 6, reason: "a disk failed" };
   await appendEntries(store, {
     campaign: "erg",
     by: { system: true },
