@@ -1,4 +1,4 @@
-import { scoreHypothesis, scoreSilence } from "./hypothesis-scores";
+import { lnEvidenceOf, type Said } from "./hypothesis-scores";
 import { openWorkspace } from "./open-workspace";
 import type { ScoreOptions } from "./score-options";
 import type { EngineState } from "./engine-state";
@@ -17,11 +17,11 @@ export function evidencesOf(
 ): EvidencePoint[] {
   const workspace = openWorkspace(state);
   const context = { dates: state.tally.dates, includeAfter };
-  const scores = state.frame.hypotheses.map((one) => scoreHypothesis(workspace, one, context));
-  const silence = scoreSilence(workspace);
-  const points = silence.share > 0 ? [...scores, silence] : scores;
-  return [...points, { ...silence, key: "noModel" }].map(({ key, lnEvidence }) => ({
-    hypothesis: key,
-    lnEvidence: Number.isFinite(lnEvidence) ? lnEvidence : null,
-  }));
+  const point = (hypothesis: string, said: Said): EvidencePoint => {
+    const lnEvidence = lnEvidenceOf(workspace, said, context);
+    return { hypothesis, lnEvidence: Number.isFinite(lnEvidence) ? lnEvidence : null };
+  };
+  const points = state.frame.hypotheses.map((one) => point(one.key, one));
+  if (state.frame.document.campaign.noneOfThese.weight > 0) points.push(point("noneOfThese", null));
+  return [...points, point("noModel", null)];
 }

@@ -36,19 +36,33 @@ export function isSilenced(order: Order, includeAfter: boolean): boolean {
   return order === "after" && !includeAfter;
 }
 
+export interface ScoreContext {
+  dates: readonly FirstDates[];
+  includeAfter: boolean;
+}
+
+/** Null for the hypothesis that is silent on everything. */
+export type Said = HypothesisFrame | null;
+
+/** ln Z alone, -Infinity where the likelihood is zero. */
+export function lnEvidenceOf(
+  workspace: Workspace,
+  hypothesis: Said,
+  { dates, includeAfter }: ScoreContext,
+): number {
+  const listed = hypothesis === null ? [] : listPredictions(workspace, hypothesis, dates);
+  const { charged } = enteredRoles(workspace, spokenIn(workspace, listed, includeAfter));
+  const { ln } = evidence(workspace, charged);
+  return Number.isFinite(ln) ? ln : -Infinity;
+}
+
 export function scoreHypothesis(
   workspace: Workspace,
   hypothesis: HypothesisFrame,
-  { dates, includeAfter }: { dates: readonly FirstDates[]; includeAfter: boolean },
+  { dates, includeAfter }: ScoreContext,
 ): HypothesisScore {
   const listed = listPredictions(workspace, hypothesis, dates);
-  const spoken: (number | null)[] = workspace.frame.measurands.map(() => null);
-  for (const one of listed) {
-    if (one.kind !== "open" || isSilenced(one.order, includeAfter)) continue;
-    const { measurand, role, given } = one.prediction;
-    if (given !== null && givenState(workspace, given) !== "met") continue;
-    spoken[measurand] = role;
-  }
+  const spoken = spokenIn(workspace, listed, includeAfter);
   const { key, pointer, share } = hypothesis;
   const { charged, ...scores } = scoreRoles(workspace, spoken);
   return {
@@ -78,17 +92,40 @@ export function scoreSilence(workspace: Workspace): HypothesisScore {
   };
 }
 
+/** What it says where it speaks and counts. */
+function spokenIn(
+  workspace: Workspace,
+  listed: readonly ListedPrediction[],
+  includeAfter: boolean,
+): Roles {
+  const spoken: (number | null)[] = workspace.frame.measurands.map(() => null);
+  for (const one of listed) {
+    if (one.kind !== "open" || isSilenced(one.order, includeAfter)) continue;
+    const { measurand, role, given } = one.prediction;
+    if (given !== null && givenState(workspace, given) !== "met") continue;
+    spoken[measurand] = role;
+  }
+  return spoken;
+}
+
+/** Roles of what enters: as it is said, and with the reference where it is silent. */
+function enteredRoles(workspace: Workspace, said: Roles) {
+  const counts = enteredCounts(workspace);
+  return {
+    counts,
+    spoken: said.map((role, m) => (counts[m]! > 0 ? role : null)),
+    charged: said.map((role, m) => (counts[m]! > 0 ? (role ?? 0) : null)),
+  };
+}
+
 function scoreRoles(workspace: Workspace, said: Roles) {
   let compared = 0;
   let silent = 0;
-  const counts = enteredCounts(workspace);
+  const { counts, spoken, charged } = enteredRoles(workspace, said);
   counts.forEach((count, m) => {
     if (said[m] === null) silent += count;
     else compared += count;
   });
-  const spoken = said.map((role, m) => (counts[m]! > 0 ? role : null));
-  // Where it is silent it is charged the measurand's reference.
-  const charged = said.map((role, m) => (counts[m]! > 0 ? (role ?? 0) : null));
   const { ln, error } = evidence(workspace, charged);
   const lnEvidence = Number.isFinite(ln) ? ln : -Infinity;
   const own = fit(workspace, spoken);

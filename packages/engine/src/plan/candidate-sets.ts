@@ -2,7 +2,7 @@ import { candidateMeasurement } from "@weighhouse/campaign/candidates";
 import type { CampaignDocument, Measurement } from "@weighhouse/campaign/document";
 import type { Plan } from "@weighhouse/campaign/plan";
 import { toNatural } from "../scoring-space";
-import { evidenceWith } from "./evidence-with";
+import { evidenceRatio } from "./evidence-with";
 import { jointGain, type Joint } from "./joint-gain";
 import { relevantPart } from "./relevant-part";
 import type { Today, Weighed } from "./weighed";
@@ -145,7 +145,7 @@ function pairCorrelations(
   const measurands = pair.map(({ candidate }) => candidate.measurand);
   const errors = pair.flatMap(({ candidate }) => candidate.shared.map(({ error }) => error));
   const part = relevantPart(document, measurands, errors);
-  const evidence = evidenceWith(part);
+  const ratio = evidenceRatio(part);
   const correlations = new Map<string, number>();
   for (const key of keys) {
     const places = pair.map(({ candidate, predictives }) => {
@@ -157,10 +157,13 @@ function pairCorrelations(
     const [a, b] = [places[0] ?? null, places[1] ?? null];
     if (a === null || b === null) continue;
     const ln = (signA: number, signB: number) =>
-      evidence([
-        reading(document, pair[0], a.mean + signA * a.spread),
-        reading(document, pair[1], b.mean + signB * b.spread),
-      ]).get(key) ?? Number.NaN;
+      ratio(
+        [
+          reading(document, pair[0], a.mean + signA * a.spread),
+          reading(document, pair[1], b.mean + signB * b.spread),
+        ],
+        key,
+      ) ?? Number.NaN;
     const mixed = (ln(1, 1) - ln(1, -1) - ln(-1, 1) + ln(-1, -1)) / 4;
     const q = -mixed;
     const rho = (-2 * q) / (1 + Math.sqrt(1 + 4 * q * q));

@@ -1,7 +1,7 @@
 import type { Candidate, Outcome } from "@weighhouse/campaign/candidates";
 import { Unscorable } from "./evidence-with";
 
-type LogProbability = (outcome: Outcome) => ReadonlyMap<string, number | null>;
+type LogProbability = (outcome: Outcome, hypothesis: string) => number | null;
 
 interface Outcomes {
   /** Per hypothesis, of each outcome. */
@@ -32,8 +32,8 @@ function eventOutcomes(
   logProbability: LogProbability,
 ): Outcomes {
   const probabilities = probabilitiesOf(keys, [
-    logProbability({ occurred: true }),
-    logProbability({ occurred: false }),
+    logsOf({ occurred: true }, keys, logProbability),
+    logsOf({ occurred: false }, keys, logProbability),
   ]);
   const predictive: Outcomes["predictive"] = new Map();
   for (const key of keys) {
@@ -63,7 +63,7 @@ function countOutcomes(
       const allowed = "an exposure with fewer expected counts";
       throw new Unscorable([{ pointer: "", code: "out-of-range", found, allowed }]);
     }
-    const next = logProbability({ count: logs.length });
+    const next = logsOf({ count: logs.length }, keys, logProbability);
     logs.push(next);
     for (const key of keys) {
       const log = next.get(key) ?? null;
@@ -85,6 +85,14 @@ function countOutcomes(
     predictive.set(key, { mean: rate, sd: Math.sqrt(variance) / exposure });
   }
   return { probabilities, predictive };
+}
+
+function logsOf(
+  outcome: Outcome,
+  keys: readonly string[],
+  logProbability: LogProbability,
+): Map<string, number | null> {
+  return new Map(keys.map((key) => [key, logProbability(outcome, key)]));
 }
 
 function probabilitiesOf(

@@ -10,7 +10,7 @@ import type { Standings } from "@weighhouse/campaign/standings";
 import { scoreCampaign } from "../score";
 import { toNatural, toScoringSpace } from "../scoring-space";
 import { greedySets } from "./candidate-sets";
-import { evidenceWith, Unscorable } from "./evidence-with";
+import { evidenceRatio, Unscorable } from "./evidence-with";
 import {
   decisiveProbability,
   halfGainSd,
@@ -82,6 +82,8 @@ interface Context {
   standings: Standings;
 }
 
+type LogProbability = (outcome: Outcome, sd: number | null, hypothesis: string) => number | null;
+
 type CandidateRow = Plan["candidates"][number];
 
 function weigh(document: CampaignDocument, candidate: Candidate, context: Context) {
@@ -89,23 +91,15 @@ function weigh(document: CampaignDocument, candidate: Candidate, context: Contex
   const part = relevantPart(document, [candidate.measurand], errors);
   const measurand = document.measurands.find(({ key }) => key === candidate.measurand)!;
   const observable = document.observables.find(({ key }) => key === measurand.observable)!;
-  const evidence = evidenceWith(part);
-  const before = evidence([]);
-  const logProbability = (outcome: Outcome, sd: number | null): Map<string, number | null> => {
-    const after = evidence([candidateMeasurement({ ...candidate, sd }, outcome)]);
-    const logs = new Map<string, number | null>();
-    for (const key of context.today.posteriors.keys()) {
-      const [now, then] = [before.get(key) ?? null, after.get(key) ?? null];
-      logs.set(key, now === null || then === null ? null : then - now);
-    }
-    return logs;
-  };
+  const ratio = evidenceRatio(part);
+  const logProbability: LogProbability = (outcome, sd, hypothesis) =>
+    ratio([candidateMeasurement({ ...candidate, sd }, outcome)], hypothesis);
   const { scale } = observable;
   if (scale === "event" || scale === "count") {
     return weighOutcomes(candidate, { scale, logProbability, ...context });
   }
-  const logPredictive: LogPredictive = (y, sd) =>
-    logProbability({ value: toNatural(y, scale), scale }, sd);
+  const logPredictive: LogPredictive = (y, sd, hypothesis) =>
+    logProbability({ value: toNatural(y, scale), scale }, sd, hypothesis);
   const range = rangeOf(measurand, observable, context.standings);
   return weighValue(candidate, { logPredictive, range, ...context });
 }
@@ -151,13 +145,13 @@ function weighOutcomes(
     today,
   }: Context & {
     scale: "event" | "count";
-    logProbability: (outcome: Outcome, sd: number | null) => Map<string, number | null>;
+    logProbability: LogProbability;
   },
 ): { row: CandidateRow; weighed: Weighed } {
   const keys = [...today.posteriors.keys()];
   const { probabilities, predictive } = outcomesOf(candidate, scale, {
     keys,
-    logProbability: (outcome) => logProbability(outcome, null),
+    logProbability: (outcome, hypothesis) => logProbability(outcome, null, hypothesis),
   });
   const mixture = [...today.posteriors].map(([key, posterior]) => ({
     posterior,

@@ -50,8 +50,8 @@ function firstNear(components: Predictive["components"], y: number, own: number)
   return low;
 }
 
-/** ln p(y) of the reading under each hypothesis, with a noise of its own; null: impossible. */
-export type LogPredictive = (y: number, sd: number) => ReadonlyMap<string, number | null>;
+/** ln p(y) of the reading under a hypothesis, with a noise of its own; null: impossible. */
+export type LogPredictive = (y: number, sd: number, hypothesis: string) => number | null;
 
 /** Where a reading might fall, in scoring space. */
 export interface Range {
@@ -77,10 +77,9 @@ export function predictivesOf(
   hypotheses: readonly string[],
   { sd, range }: { sd: number; range: Range },
 ): Map<string, Predictive> {
-  const at = remembered(logPredictive);
   const predictives = new Map<string, Predictive>();
   for (const key of hypotheses) {
-    const ln = (y: number, own: number) => at(y, own).get(key) ?? -Infinity;
+    const ln = remembered((y, own) => logPredictive(y, own, key) ?? -Infinity);
     const normal =
       range.period === undefined ? normalPredictive((y) => ln(y, sd), { sd, range }) : null;
     const found = normal ?? tabulated(ln, { sd, range });
@@ -89,16 +88,16 @@ export function predictivesOf(
   return predictives;
 }
 
-/** One scoring gives every hypothesis's value: the same reading is never scored twice. */
-function remembered(logPredictive: LogPredictive): LogPredictive {
-  const known = new Map<string, ReadonlyMap<string, number | null>>();
+/** The same reading is never scored twice. */
+function remembered(ln: (y: number, sd: number) => number): (y: number, sd: number) => number {
+  const known = new Map<string, number>();
   return (y, sd) => {
     const key = `${y} ${sd}`;
     const there = known.get(key);
     if (there !== undefined) return there;
-    const values = logPredictive(y, sd);
-    known.set(key, values);
-    return values;
+    const value = ln(y, sd);
+    known.set(key, value);
+    return value;
   };
 }
 
