@@ -1,4 +1,3 @@
-import type { Desk } from "./desk";
 import type { WebhookReach } from "./webhook-address";
 
 export type WebhookSettings = {
@@ -7,7 +6,10 @@ export type WebhookSettings = {
   origin: string;
 };
 
-/** As the installation's settings have it; without any, deliveries go to public addresses only. */
-export function webhookSettings(desk: Desk): WebhookSettings {
-  return desk.webhooks ?? { reach: "public", origin: "http://localhost:3000" };
+/** Without any settings, deliveries go to public addresses only. */
+const PUBLIC_ONLY: WebhookSettings = { reach: "public", origin: "http://localhost:3000" };
+
+/** As the installation's settings have it. */
+export function webhookSettings(desk: { webhooks?: WebhookSettings }): WebhookSettings {
+  return desk.webhooks ?? PUBLIC_ONLY;
 }
