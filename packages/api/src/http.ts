@@ -18,6 +18,7 @@ import { tableContextRoutes } from "./http/table-context";
 import { webhookRoutes } from "./http/webhooks";
 import { respondJson } from "./http/respond";
 import { describeApi } from "./openapi/describe-api";
+import { readMeasurementRoutes } from "./http/read-measurements";
 import { uploadRoutes } from "./http/uploads";
 import { problemResponse } from "./problem-details";
 
@@ -25,6 +26,7 @@ import { problemResponse } from "./problem-details";
 export const routes: Route[] = [
   ...campaignRoutes,
   ...measurementRoutes,
+  ...readMeasurementRoutes,
   ...uploadRoutes,
   ...tableContextRoutes,
   ...recordRoutes,

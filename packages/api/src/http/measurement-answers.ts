@@ -79,3 +79,20 @@ export const previewLineSchema = z.union([
   z.strictObject({ preview: previewSchema }),
   z.strictObject({ problem }),
 ]);
+
+export const historySchema = z.strictObject({
+  id: z.string(),
+  versions: z
+    .array(
+      z.strictObject({
+        seq: count.describe("The entry that made it."),
+        at: z.string(),
+        kind: z.string(),
+        team: z.string().nullable(),
+        reason: z.string().nullable().describe("Of a correction, a withdrawal, a setting aside."),
+        withdrawn: z.boolean(),
+        measurement: z.looseObject({ id: z.string(), measurand: z.string() }),
+      }),
+    )
+    .describe("Oldest first."),
+});

@@ -6,7 +6,13 @@ import { readCampaign } from "@weighhouse/desk/read-campaign";
 import { answerHttp } from "../http";
 import { openTestServer, ORIGIN } from "../testing/test-server";
 import type { TestServer } from "../testing/test-server";
-import { postedLineSchema, postedSchema, previewLineSchema } from "./measurement-answers";
+import { withdrawMeasurements } from "@weighhouse/desk/withdraw-measurements";
+import {
+  historySchema,
+  postedLineSchema,
+  postedSchema,
+  previewLineSchema,
+} from "./measurement-answers";
 
 let server: TestServer;
 let lagoon: Lagoon;
@@ -241,5 +247,68 @@ describe("the preview", () => {
     expect(told.at(-1)).toMatchObject({
       preview: { postable: true, changes: { verdicts: [{ hypothesis: "algae", after: "fail" }] } },
     });
+  });
+});
+
+describe("reading", () => {
+  async function get(path: string, headers: Record<string, string> = {}) {
+    const request = new Request(`${ORIGIN}/api/v1/campaigns/${lagoon.key}/${path}`, { headers });
+    return answerHttp(await server.context(), request);
+  }
+  const ofAll = async () =>
+    (await readCampaign(server.desk, null, { key: lagoon.key })).document.measurements;
+
+  it("gives all of them by page, in the document's order and as of one size", async () => {
+    const ids: unknown[] = [];
+    let path: string | undefined = "measurements?limit=4";
+    while (path !== undefined) {
+      const response = await get(path);
+      const page = await linesOf(response);
+      expect(page.length).toBeLessThanOrEqual(4);
+      ids.push(...page.map(({ id }) => id));
+      // What comes meanwhile is on none of these pages.
+      if (ids.length === 4) await post("measurements", reading(fresh(), 41));
+      path = /^<.*\/(measurements\?.*)>; rel="next"$/.exec(response.headers.get("link") ?? "")?.[1];
+    }
+    const there = await ofAll();
+    expect(ids).toEqual(there.slice(0, -1).map(({ id }) => id));
+  });
+
+  it.each(["ndjson", "csv", "ecsv", "votable"])(
+    "gives %s by name and by Accept, and not again to who has it",
+    async (format) => {
+      const first = await get(`measurements?format=${format}`);
+      const accept = first.headers.get("content-type")!.split(";")[0]!;
+      const byAccept = await get("measurements", { accept });
+      const text = await byAccept.text();
+      expect(text).toBe(await first.text());
+      for (const { id } of await ofAll()) expect(text).toContain(id);
+      const headers = { accept, "if-none-match": byAccept.headers.get("etag")! };
+      expect((await get("measurements", headers)).status).toBe(304);
+      const preview = await post("measurements/preview", text, { type: accept });
+      const told = (await linesOf(preview)).at(-1)!["preview"];
+      expect(told).toMatchObject({ problems: [], counts: { new: 0 } });
+    },
+  );
+
+  it("gives lines that can be posted again", async () => {
+    const body = await (await get("measurements")).text();
+    const posted = await post("measurements", body);
+    const all = await ofAll();
+    expect(await posted.json()).toMatchObject({ posted: 0, alreadyThere: all.length });
+  });
+
+  it("gives a measurement with what became of it", async () => {
+    const id = fresh();
+    await post("measurements", reading(id, 41));
+    const { key, member } = lagoon;
+    const selection = { by: "ids" as const, ids: [id] };
+    await withdrawMeasurements(server.desk, member, { key, selection, reason: "a stray lamp" });
+    const history = historySchema.parse(await (await get(`measurements/${id}`)).json());
+    expect(history.versions).toMatchObject([
+      { kind: "measurements.posted", team: "algae", withdrawn: false },
+      { kind: "measurements.withdrawn", reason: "a stray lamp", withdrawn: true },
+    ]);
+    expect((await get("measurements/nobody")).status).toBe(404);
   });
 });
