@@ -8,6 +8,7 @@ import { queueTimeStamps, TIME_STAMP_TASK } from "@weighhouse/store/time-stamps"
 import { workerLogger } from "@weighhouse/store/worker-logger";
 import { run } from "graphile-worker";
 import type { WorkerEvents } from "graphile-worker";
+import { webhookSettings } from "@weighhouse/desk/webhook-settings";
 import type { WebhookSettings } from "@weighhouse/desk/webhook-settings";
 import { datesTask } from "./dates-task";
 import { watchScorers } from "./living-scorers";
@@ -30,12 +31,10 @@ export type ScorerOptions = {
   webhooks?: WebhookSettings;
 };
 
-const PUBLIC_ONLY: WebhookSettings = { reach: "public", origin: "http://localhost:3000" };
-
 /** Starts a scorer on a store. Any number of them, on any machines, share the campaigns. */
 export async function runScorer(store: Store, options: ScorerOptions = {}): Promise<RunningScorer> {
-  const { concurrency = 1, everyMs = 10_000, authority = null, webhooks = PUBLIC_ONLY } = options;
-  const { origin, reach } = webhooks;
+  const { concurrency = 1, everyMs = 10_000, authority = null } = options;
+  const { origin, reach } = webhookSettings(options);
   const watch = await watchScorers(store, { everyMs });
   let stopping = false;
   const events = new EventEmitter() as WorkerEvents;

@@ -56,7 +56,7 @@ export async function openRowFile(path: string, options: TableOptions): Promise<
 }
 
 /** A problem where it stands: the file, its line, its column. */
-export function placedLine(path: string, { line, column, found, allowed }: TableProblem): string {
+function placedLine(path: string, { line, column, found, allowed }: TableProblem): string {
   const place = [path, line, column].filter((one) => one !== null).join(":");
   return harmless(`${place}: found ${found}; allowed ${allowed}`);
 }
