@@ -89,6 +89,8 @@ test("a key is made by keyboard, shown once, copied, used by a program, and revo
   });
   expect(forged.status()).toBe(403);
   expect(((await forged.json()) as { code: string }).code).toBe("other-origin");
+  const pages = await page.request.post("/api/trpc/apiKeys.make", { headers: other, data: {} });
+  expect(pages.status()).toBe(403);
   await program.close();
   await context.close();
 });

@@ -51,16 +51,27 @@ function isSafe(method: string): boolean {
   return method === "GET" || method === "HEAD";
 }
 
-/** Browsers name the page's origin in what they send; both fields are out of a page's reach. */
 function requireSameOrigin(ctx: Context, request: Request): void {
-  const origin = request.headers.get("origin");
-  const site = request.headers.get("sec-fetch-site");
-  const named = origin === null || trustedOrigins(ctx.origin, request).includes(origin);
-  const fetched = site === null || site === "same-origin";
-  if (named && fetched && (origin !== null || site !== null)) return;
+  const { origin, site } = whereFrom(request);
+  const named = origin !== null || site !== null;
+  if (named && !isFromElsewhere(ctx.origin, request)) return;
   const found = `Origin ${origin ?? "(none)"} and Sec-Fetch-Site ${site ?? "(none)"}`;
   throw new ApiError(
     "other-origin",
     `found ${found} beside a session's cookie; allowed are this server's own pages, and programs with a key in Authorization: Bearer`,
   );
+}
+
+/**
+ * Whether a browser says that a page of another origin asks. It names the page's origin in what it
+ * posts, and its relation to this server; both fields are out of a page's reach.
+ */
+export function isFromElsewhere(ownOrigin: string, request: Request): boolean {
+  const { origin, site } = whereFrom(request);
+  const named = origin === null || trustedOrigins(ownOrigin, request).includes(origin);
+  return !named || !(site === null || site === "same-origin");
+}
+
+function whereFrom({ headers }: Request) {
+  return { origin: headers.get("origin"), site: headers.get("sec-fetch-site") };
 }

@@ -117,6 +117,31 @@ describe("a key in Authorization: Bearer (RFC 6750)", () => {
   });
 });
 
+it("no key is in the log, whatever becomes of its request", async () => {
+  const lines: string[] = [];
+  const note = (fields: object, message: string) =>
+    void lines.push(JSON.stringify(fields) + message);
+  const log = { info: note, warn: note, error: note };
+  const good = await keyOf(server, open.key, { maker: open.member, scopes: ["read"] });
+  const bad = { authorization: `${good.authorization}a` };
+  const context = { ...(await server.context()), log };
+  const broken = { ...context, desk: { ...context.desk, store: null as never } };
+  const statuses: number[] = [];
+  for (const [ctx, headers] of [
+    [context, good],
+    [context, bad],
+    [broken, good],
+  ] as const) {
+    const url = `${ORIGIN}/api/v1/campaigns/${open.key}/document.json`;
+    const answer = await answerHttp(ctx, new Request(url, { headers }));
+    statuses.push(answer.status);
+    expect(await answer.text()).not.toContain(good.authorization.slice(-40));
+  }
+  expect(statuses).toEqual([200, 401, 500]);
+  expect(lines.length).toBeGreaterThan(0);
+  expect(lines.join("\n")).not.toContain(good.authorization.slice(-40));
+});
+
 describe("one scope is enough for what it is for", () => {
   const row = { ...reading("by-scope", 41), batch: "one" };
   const id = "by-scope";

@@ -9,4 +9,11 @@ async function answer(request: Request): Promise<Response> {
   return answerHttp(await createContext({ desk, auth, log, headers: request.headers }), request);
 }
 
-export { answer as GET, answer as HEAD, answer as POST, answer as PUT, answer as DELETE };
+export {
+  answer as GET,
+  answer as HEAD,
+  answer as POST,
+  answer as PUT,
+  answer as PATCH,
+  answer as DELETE,
+};
