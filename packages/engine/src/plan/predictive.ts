@@ -1,4 +1,5 @@
 import { LN_SQRT_2PI } from "@weighhouse/numerics/normal";
+import { filled } from "./filled";
 
 /**
  * A hypothesis's distribution of a reading, given all data, as a mixture of normals in scoring
@@ -173,10 +174,10 @@ function tabulated(
   // On a circle the last point would be the first again.
   const count = period === undefined ? cells + 1 : cells;
   const points = Array.from({ length: count }, (_, i) => lower + i * h);
-  const logs = points.map((y) => ln(y, own));
+  const logs = filled(count, (i) => ln(points[i]!, own));
   const most = Math.max(...logs);
   if (most === -Infinity) return null;
-  const masses = logs.map((log) => Math.exp(log - most));
+  const masses = Array.from(logs, (log) => Math.exp(log - most));
   const total = masses.reduce((sum, mass) => sum + mass, 0);
   // Kernels of sd h in place of points: they and the reading's noise are the floor.
   const components = points
@@ -193,10 +194,10 @@ function supportOf(ln: (y: number) => number, { middle, scale }: Range): [number
   let [lower, upper] = [middle - 8 * scale, middle + 8 * scale];
   for (let zoom = 0; zoom < MOST_ZOOMS; zoom += 1) {
     const step = (upper - lower) / SCAN;
-    const logs = Array.from({ length: SCAN + 1 }, (_, i) => ln(lower + i * step));
+    const logs = filled(SCAN + 1, (i) => ln(lower + i * step));
     const most = Math.max(...logs);
     if (most === -Infinity) return null;
-    const counts = logs.map((log) => log > most - NEGLIGIBLE);
+    const counts = Array.from(logs, (log) => log > most - NEGLIGIBLE);
     const first = counts.indexOf(true);
     const last = counts.lastIndexOf(true);
     const [from, to] = [first - 1, last + 1];
