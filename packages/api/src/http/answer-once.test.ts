@@ -162,6 +162,22 @@ describe("while the first is worked on", () => {
     });
   });
 
+  it("a body that the route has no use for is digested all the same, also an empty stream", async () => {
+    const empty = () =>
+      new ReadableStream<Uint8Array>({ start: (controller) => controller.close() });
+    const answer = () => Promise.resolve(new Response(null, { status: 204 }));
+    const never = () => Promise.reject(new Error("entered twice"));
+    for (const [key, body] of [
+      ['"unread"', () => "unread\n"],
+      ['"empty"', empty],
+    ] as const) {
+      expect((await once(key, body(), answer)).status).toBe(204);
+      const again = await once(key, body(), never);
+      expect([again.status, again.headers.get("idempotency-replayed")]).toEqual([204, "true"]);
+      await expect(once(key, "other", never)).rejects.toMatchObject({ code: "other-body" });
+    }
+  });
+
   it("of an answer by lines the last one is given again; one that ends with a problem isn't kept", async () => {
     const lines = (last: string) => async (request: Request) => {
       await request.text();

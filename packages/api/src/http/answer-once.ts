@@ -67,7 +67,7 @@ async function answerAgain(request: Request, kept: KeptAnswer | null): Promise<R
     const words = "found another request than the first one with this Idempotency-Key";
     throw new ApiError("other-body", `${words}; allowed the same again, or another key`);
   }
-  return new Response(new Uint8Array(kept.body), {
+  return new Response(kept.status === 204 ? null : new Uint8Array(kept.body), {
     status: kept.status,
     headers: { ...kept.headers, "idempotency-replayed": "true" },
   });
@@ -116,15 +116,11 @@ function requestHash(request: Request): Hash {
   return createHash("sha256").update(`${request.method} ${pathname}${search}\n${type}\n`);
 }
 
-/** The same request, digested while its body is read; the digest is there once all of it was. */
-function digestBody(request: Request): { request: Request; digest(): Uint8Array } {
+/** The same request, digested while its body is read; what the route had no use for is read then. */
+function digestBody(request: Request): { request: Request; digest(): Promise<Uint8Array> } {
   const hash = requestHash(request);
-  let ended = request.body === null;
-  const digest = () => {
-    if (!ended) throw new Error("an answer that enters something was made before its body's end");
-    return hash.digest();
-  };
-  if (request.body === null) return { request, digest };
+  if (request.body === null) return { request, digest: async () => hash.digest() };
+  let ended = false;
   const digesting = new TransformStream<Uint8Array, Uint8Array>({
     transform(chunk, controller) {
       hash.update(chunk);
@@ -134,11 +130,17 @@ function digestBody(request: Request): { request: Request; digest(): Uint8Array 
       ended = true;
     },
   });
-  return { request: withBody(request, request.body.pipeThrough(digesting)), digest };
+  const given = withBody(request, request.body.pipeThrough(digesting));
+  const digest = async () => {
+    if (!given.bodyUsed) for await (const _ of given.body!);
+    if (!ended) throw new Error("found an answer that was made before its body's end");
+    return hash.digest();
+  };
+  return { request: given, digest };
 }
 
 type Keeping = {
-  digest(): Uint8Array;
+  digest(): Promise<Uint8Array>;
   keep(answer: KeptAnswer): Promise<void>;
   drop(): Promise<void>;
 };
@@ -148,15 +150,20 @@ async function keeping(answered: Response, { digest, keep, drop }: Keeping): Pro
   const headers = Object.fromEntries(answered.headers);
   if (answered.body === null || headers["content-type"] !== "application/x-ndjson") {
     const body = new Uint8Array(await answered.arrayBuffer());
-    await keep({ digest: digest(), status, headers, body });
+    await keep({ digest: await digest(), status, headers, body });
     return new Response(answered.status === 204 ? null : body, { status, headers });
   }
   const body = watchLastLine(answered.body, {
     // Of an answer by lines the last is the answer; those before it tell how far the work is.
-    ended: (line) =>
-      /^\s*\{\s*"problem"/.test(line)
-        ? drop()
-        : keep({ digest: digest(), status, headers, body: new TextEncoder().encode(line) }),
+    ended: async (line) => {
+      if (/^\s*\{\s*"problem"/.test(line)) return drop();
+      return keep({
+        digest: await digest(),
+        status,
+        headers,
+        body: new TextEncoder().encode(line),
+      });
+    },
     broken: drop,
   });
   return new Response(body, { status, headers });
