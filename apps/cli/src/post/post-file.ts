@@ -75,7 +75,8 @@ async function sendParts(path: string, file: RowFile, upload: Upload): Promise<S
     progress.end();
   }
   if (there > 0) {
-    process.stderr.write(`Went on where an earlier run broke off: ${there} parts were there\n`);
+    const parts = there === 1 ? "1 of its parts was" : `${there} of its parts were`;
+    process.stderr.write(`Went on where an earlier run broke off: ${parts} there\n`);
   }
   const lineOf: LineFinder = (part, line) => file.lineOf((firstLines[part] ?? 1) + line - 1);
   return { upload, rows, lineOf };

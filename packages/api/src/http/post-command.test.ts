@@ -6,6 +6,7 @@ import { tmpdir } from "node:os";
 import path from "node:path";
 import { fileURLToPath } from "node:url";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
+import { postMeasurements } from "@weighhouse/desk/post-measurements";
 import { readCampaign } from "@weighhouse/desk/read-campaign";
 import { registerHypothesis } from "@weighhouse/desk/register-hypothesis";
 import { hypothesis, openLagoon, reading } from "@weighhouse/desk/testing/lagoon";
@@ -28,6 +29,8 @@ beforeAll(async () => {
     key: lagoon.key,
     hypothesis: hypothesis("algae", 40),
   });
+  const source = { from: "drafts" as const, drafts: [reading("there", 41)] };
+  await postMeasurements(server.desk, lagoon.member, { key: lagoon.key, source });
   api = await serveApi(server);
   const options = { maker: lagoon.member, scopes: ["measurements:post" as const] };
   const { authorization } = await keyOf(server, lagoon.key, options);
@@ -110,7 +113,7 @@ describe("weighhouse post", () => {
       code: 0,
       out: expect.stringMatching(/^night\.csv: posted 2 measurements to lagoon-glow, entry \d+\n$/),
     });
-    expect(await measured()).toEqual(["a", "b"]);
+    expect(await measured()).toEqual(expect.arrayContaining(["a", "b"]));
     expect(await post(table)).toMatchObject({
       code: 0,
       out: "night.csv: nothing new for lagoon-glow, 2 there already\n",
@@ -135,7 +138,7 @@ describe("weighhouse post", () => {
     const rows = [1, 2, 3, 4].map((index) => row(`far-${index}`, 80).replace(",2\n", ",0.5\n"));
     const table = file(
       "far.csv",
-      header.replace("error", "value_err") + rows.join("") + row("a", 41),
+      header.replace("error", "value_err") + rows.join("") + row("there", 41),
     );
     const { code, out, err } = await post(table, "--dry-run");
     expect([code, err]).toEqual([0, ""]);
@@ -151,33 +154,37 @@ describe("weighhouse post", () => {
 
   it("tells each row that the server refuses at its line and column, and enters nothing", async () => {
     const before = await measured();
-    const text = `${header}${row("fresh", 41)}${row("a", 50)}${row("odd", 41).replace("pier", "raft")}`;
+    const text = `${header}${row("fresh", 41)}${row("there", 50)}${row("odd", 41).replace("pier", "raft")}`;
     const table = file("bad.csv", text);
     for (const flags of [[], ["--dry-run"]]) {
       const { code, err } = await post(table, ...flags);
       expect(code).toBe(1);
-      expect(err).toMatch(/^bad\.csv:3:value: found 50 under the id a, which is there with 41; /m);
+      expect(err).toMatch(
+        /^bad\.csv:3:value: found 50 under the id there, which is there with 41; /m,
+      );
       expect(err).toMatch(/^bad\.csv:4:facility: found .*raft.*; allowed /m);
     }
     expect(await measured()).toEqual(before);
   });
 
   it("goes on where a broken line left off, sending no part twice", async () => {
-    const rows = file("long.ndjson", longRows("long", 1000));
-    const proxy = await breakingProxy(2);
+    const rows = file("long.ndjson", longRows("long", 600));
+    const proxy = await breakingProxy(1);
     const broken = await postTo(proxy.url, rows);
     expect(broken.code).toBe(3);
     expect(broken.err).toMatch(/could not be reached/);
-    expect(proxy.seen.filter((one) => one.startsWith("PUT "))).toHaveLength(2);
+    expect(proxy.seen.filter((one) => one.startsWith("PUT "))).toHaveLength(1);
     proxy.close();
     const whole = await breakingProxy(Infinity);
     const again = await postTo(whole.url, rows);
     whole.close();
     expect(again).toMatchObject({ code: 0 });
-    expect(again.err).toMatch(/^Went on where an earlier run broke off: 2 parts were there\n/);
-    expect(again.out).toMatch(/posted 1000 measurements/);
+    expect(again.err).toMatch(
+      /^Went on where an earlier run broke off: 1 of its parts was there$/m,
+    );
+    expect(again.out).toMatch(/posted 600 measurements/);
     expect(whole.seen.filter((one) => one.startsWith("PUT "))).toEqual([
-      expect.stringMatching(/\/parts\/3$/),
+      expect.stringMatching(/\/parts\/2$/),
     ]);
   });
 
