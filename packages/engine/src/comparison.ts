@@ -6,7 +6,9 @@ import type { HypothesisScore } from "./hypothesis-scores";
 import type { Workspace } from "./workspace";
 
 /** Highest evidence first, ties by key. */
-export function ranked(scores: readonly HypothesisScore[]): HypothesisScore[] {
+export function ranked<Score extends Pick<HypothesisScore, "key" | "lnEvidence">>(
+  scores: readonly Score[],
+): Score[] {
   return [...scores].sort((a, b) => {
     if (a.lnEvidence !== b.lnEvidence) return a.lnEvidence > b.lnEvidence ? -1 : 1;
     return a.key < b.key ? -1 : 1;
@@ -14,7 +16,9 @@ export function ranked(scores: readonly HypothesisScore[]): HypothesisScore[] {
 }
 
 /** Posterior probabilities, proportional to share x Z; all 0 where every likelihood is zero. */
-export function posteriors(scores: readonly HypothesisScore[]): number[] {
+export function posteriors(
+  scores: readonly Pick<HypothesisScore, "share" | "lnEvidence">[],
+): number[] {
   const logs = scores.map(({ share, lnEvidence }) => Math.log(share) + lnEvidence);
   const total = logSumExp(logs);
   return logs.map((log) => (total === -Infinity ? 0 : Math.exp(log - total)));

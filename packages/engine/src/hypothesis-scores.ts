@@ -76,6 +76,21 @@ export function scoreHypothesis(
   };
 }
 
+/** What hypotheses are ranked by, and how well they fit. */
+export type BriefScore = Pick<HypothesisScore, "key" | "share" | "lnEvidence" | "fit">;
+
+export function scoreBriefly(
+  workspace: Workspace,
+  hypothesis: Said,
+  { dates, includeAfter }: ScoreContext,
+): BriefScore {
+  const listed = hypothesis === null ? [] : listPredictions(workspace, hypothesis, dates);
+  const { lnEvidence, fit: own } = scoreRoles(workspace, spokenIn(workspace, listed, includeAfter));
+  const { noneOfThese } = workspace.frame.document.campaign;
+  const { key, share } = hypothesis ?? { key: "noneOfThese", share: noneOfThese.weight };
+  return { key, share, lnEvidence, fit: own };
+}
+
 /** The hypothesis silent on everything: `noneOfThese`, and the evidence of `noModel`. */
 export function scoreSilence(workspace: Workspace): HypothesisScore {
   const { weight } = workspace.frame.document.campaign.noneOfThese;

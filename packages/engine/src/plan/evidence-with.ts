@@ -9,6 +9,7 @@ import { readCounted } from "../read-counted";
 import type { Reading } from "../readings";
 import { createState } from "../state";
 import { addReading } from "../sums";
+import { takeUnmovedBlocks } from "../unmoved-blocks";
 import type { Workspace } from "../workspace";
 
 /**
@@ -65,7 +66,6 @@ function readingsOf({ frame, tally }: EngineState, extra: readonly Measurement[]
   });
 }
 
-/** Evidences of blocks without the readings' measurands, and what is derived of them, stay good. */
 function withReadings(
   { frame, sums }: EngineState,
   base: Workspace,
@@ -75,12 +75,6 @@ function withReadings(
   const longer = copySums(sums, touched);
   for (const reading of readings) addReading(longer, reading, frame);
   const workspace = openWorkspace({ frame, sums: longer });
-  const moved = frame.measurands.flatMap(({ derived }, m) =>
-    touched.has(m) || derived !== null ? [`${m}`] : [],
-  );
-  for (const [key, value] of base.evidences) {
-    const within = key.split(" ").map((part) => part.slice(0, part.indexOf(":")));
-    if (!within.some((m) => moved.includes(m))) workspace.evidences.set(key, value);
-  }
+  takeUnmovedBlocks(workspace, base, touched);
   return workspace;
 }

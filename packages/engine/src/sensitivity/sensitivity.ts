@@ -4,6 +4,7 @@ import { SENSITIVITY_FORMAT, type Sensitivity } from "@weighhouse/campaign/sensi
 import type { Standings } from "@weighhouse/campaign/standings";
 import { scoreCampaign } from "../score";
 import { ENGINE_VERSION } from "../version";
+import { changedScores, type ScoreChanged } from "./changed-scores";
 import { changesOf, without, type Change } from "./changes";
 import { findingOf } from "./finding";
 import { likelyTelling } from "./likely-telling";
@@ -38,11 +39,12 @@ export function sensitivityOf(
   const counted = document.measurements.filter((one) => isCounted(document, one));
   const total = changes.length + Math.min(counted.length, MOST_TRIED) + 2 * MOST_DOUBLINGS;
   let done = 0;
+  const scoreOf = changedScores(document);
   const scoreChanged = (change: Change): Row[] => {
     progress(done, total);
     done += 1;
-    const changed = scoreCampaign(change.document);
-    return changed.ok ? [rowOf(change, changed.value, standings)] : [];
+    const changed = scoreOf(change.document);
+    return changed === null ? [] : [rowOf(change, changed, standings)];
   };
   const rows = changes.flatMap(scoreChanged);
   const weights = weightsOfEvidence(rows, standings);
@@ -66,7 +68,7 @@ export function sensitivityOf(
     hypotheses: hypothesesOf(standings),
     changes: rows,
     measurementsTried: tried.length,
-    referenceWidthFactor: referenceWidthFactor(document, standings, () => {
+    referenceWidthFactor: referenceWidthFactor(document, { standings, scoreOf }, () => {
       progress(Math.min(done, total), total);
       done += 1;
     }),
@@ -89,15 +91,14 @@ function isCounted(document: CampaignDocument, { measurand, setAside }: Measurem
   return document.measurands.find(({ key }) => key === measurand)?.closed === null;
 }
 
-function rowOf({ kind, key }: Change, changed: Standings, before: Standings): Row {
-  const leader = leaderOf(changed);
-  return {
-    kind,
-    key,
-    leader,
-    leaderChanges: leader !== leaderOf(before),
-    hypotheses: hypothesesOf(changed),
-  };
+function rowOf({ kind, key }: Change, hypotheses: Row["hypotheses"], before: Standings): Row {
+  const leader = leaderIn(hypotheses);
+  return { kind, key, leader, leaderChanges: leader !== leaderOf(before), hypotheses };
+}
+
+/** The first; null without one, or where every likelihood is zero. */
+function leaderIn([first]: Row["hypotheses"]): string | null {
+  return first === undefined || first.log10BayesFactor === null ? null : first.key;
 }
 
 /** Null without a hypothesis, or where every likelihood is zero. */
@@ -151,14 +152,14 @@ function weightsOfEvidence(rows: Row[], standings: Standings): Sensitivity["weig
 /** The factor nearest to 1, by its logarithm, at which another leads; bisected to 1e-9. */
 function referenceWidthFactor(
   document: CampaignDocument,
-  standings: Standings,
+  { standings, scoreOf }: { standings: Standings; scoreOf: ScoreChanged },
   step: () => void,
 ): Sensitivity["referenceWidthFactor"] {
   const leader = leaderOf(standings);
   if (leader === null || standings.hypotheses.length < 2) return null;
   const leaderAt = (exponent: number): string | null => {
-    const changed = scoreCampaign(withReferences(document, 2 ** exponent));
-    return changed.ok ? leaderOf(changed.value) : null;
+    const changed = scoreOf(withReferences(document, 2 ** exponent));
+    return changed === null ? null : leaderIn(changed);
   };
   const changesAt = (exponent: number) => {
     const other = leaderAt(exponent);
