@@ -18,6 +18,11 @@ export interface CubeOptions {
   breaks?: readonly (readonly number[])[];
   /** Relative error of Z to stop at, up to three dimensions; 1e-11, 1e-8, 5e-7 for one to three. */
   relative?: number;
+  /**
+   * From four dimensions on: the share of the work allowed for that has been spent; at 1 and above
+   * the integral ends where it is, with the error that says so. By default of five million calls.
+   */
+  spent?: () => number;
 }
 
 /** The posterior as weighted points: sum of exp(lnWeights) is 1. */

@@ -58,7 +58,7 @@ export function integrateUnitCube(
     const { relative = dimension === 2 ? SQUARE_RELATIVE : CUBE_RELATIVE } = options;
     return cubature(safe, dimension, { modes, breaks, relative });
   }
-  return nestedSampling(safe, dimension, { seed });
+  return nestedSampling(safe, dimension, { seed, spent: options.spent });
 }
 
 function onePoint(ln: number): CubeIntegral {

@@ -11,6 +11,8 @@ export interface DeadPoint {
 
 /** The live points are given up when they hold less than this share of Z; they are still counted. */
 const REMAINDER = 0.01;
+/** They are given up too when they hold no more than the dead and add less than this to the error. */
+const SETTLED = 0.005;
 /** Live points are enclosed anew each time the volume has shrunk by about e^-0.3. */
 const ENCLOSE_EVERY = 0.3;
 /** Draws from the whole cube in search of a density above 0. */
@@ -21,8 +23,8 @@ export interface RunOptions {
   /** Number of live points. */
   live: number;
   random: RandomSource;
-  /** Calls of the density left. */
-  budget: number;
+  /** Asked before each death: whether there is work left to be spent. */
+  mayGoOn: () => boolean;
 }
 
 /**
@@ -33,21 +35,17 @@ export interface RunOptions {
  * replaced only then: that is right for plateaus, and for the region where the density is 0 (all
  * that is drawn from the cube until enough points lie outside that region is one plateau).
  *
- * @returns the dead points, density rising; `unfinished` when the budget ran out
+ * @returns the dead points, density rising; `left` what is left open where the work was spent before
+ *   the end
  * Source: Skilling, Bayesian Analysis 1 (2006) 833; plateaus: Fowlie, Handley & Su, MNRAS 503
  * (2021) 1199.
  */
 export function nestedRun(
   logDensity: (u: Float64Array) => number,
   options: RunOptions,
-): { dead: DeadPoint[]; unfinished: boolean } {
-  let calls = 0;
-  const counted = (u: Float64Array) => {
-    calls += 1;
-    return logDensity(u);
-  };
-  const { dimension, random } = options;
-  const { alive, empty } = drawFromCube(counted, options);
+): { dead: DeadPoint[]; left: Rest | null } {
+  const { dimension, random, mayGoOn } = options;
+  const { alive, empty } = drawFromCube(logDensity, options);
   const dead: DeadPoint[] = [];
   for (let i = 0; i < empty; i += 1) {
     dead.push({ u: null, ln: -Infinity, live: alive.length + empty - i });
@@ -57,14 +55,15 @@ export function nestedRun(
     dead.push({ ...point, live });
     return point;
   };
-  const sampler = constrainedDraw(counted, dimension, random);
+  const sampler = constrainedDraw(logDensity, dimension, random);
   let lnX = empty === 0 ? 0 : Math.log(alive.length / (alive.length + empty));
   let lnZ = -Infinity;
   let untilEnclosed = 0;
   let unfinished = alive.length <= 2 * dimension;
   while (!unfinished && alive[0]!.ln < alive.at(-1)!.ln) {
     if (lnX + alive.at(-1)!.ln < lnZ + Math.log(REMAINDER)) break;
-    unfinished = calls > options.budget;
+    if (untilEnclosed <= 0 && isSettled(alive, { lnX, lnZ })) break;
+    unfinished = !mayGoOn();
     if (unfinished) break;
     if (untilEnclosed <= 0) {
       sampler.enclose({ points: rowsOf(alive, dimension), dimension, lnVolume: lnX });
@@ -83,8 +82,45 @@ export function nestedRun(
       untilEnclosed -= 1;
     }
   }
+  const left = unfinished ? restOf(alive, lnX) : null;
   while (alive.length > 0) take(alive.length);
-  return { dead, unfinished };
+  return { dead, left };
+}
+
+/** What the live points say of the volume that they are spread over. */
+export interface Rest {
+  /** ln of the volume times their mean density, and times the highest one. */
+  ln: number;
+  lnMost: number;
+  /** Standard error of the mean, as a share of it. */
+  error: number;
+  /** How many points as good as carry it. */
+  effective: number;
+}
+
+function restOf(alive: readonly LivePoint[], lnX: number): Rest {
+  const top = alive.at(-1)?.ln ?? -Infinity;
+  let sum = 0;
+  let squares = 0;
+  for (const { ln } of alive) {
+    const share = Math.exp(ln - top);
+    sum += share;
+    squares += share * share;
+  }
+  const count = alive.length;
+  const effective = count === 0 ? 0 : (sum * sum) / squares;
+  return {
+    ln: count === 0 ? -Infinity : lnX + top + Math.log(sum / count),
+    lnMost: lnX + top,
+    error: count === 0 ? 0 : Math.sqrt(Math.max(1 / effective - 1 / count, 0)),
+    effective,
+  };
+}
+
+/** Whether the live points' mean, by their scatter, leaves next to no error in Z. */
+function isSettled(alive: readonly LivePoint[], { lnX, lnZ }: { lnX: number; lnZ: number }) {
+  const { ln, lnMost, error } = restOf(alive, lnX);
+  return lnMost < lnZ && error / (1 + Math.exp(lnZ - ln)) < SETTLED;
 }
 
 interface LivePoint {
@@ -94,11 +130,13 @@ interface LivePoint {
 
 function drawFromCube(
   logDensity: (u: Float64Array) => number,
-  { dimension, live, random, budget }: RunOptions,
+  { dimension, live, random, mayGoOn }: RunOptions,
 ): { alive: LivePoint[]; empty: number } {
   const alive: LivePoint[] = [];
   let empty = 0;
-  while (alive.length < live && alive.length + empty < Math.min(MOST_PRIOR_DRAWS, budget)) {
+  while (alive.length < live && alive.length + empty < MOST_PRIOR_DRAWS) {
+    // Those that every run begins with are drawn whatever they cost.
+    if (alive.length + empty >= live && !mayGoOn()) break;
     const u = Float64Array.from({ length: dimension }, () => random.uniform());
     const ln = logDensity(u);
     if (ln === -Infinity) empty += 1;

@@ -15,15 +15,16 @@ export function normalCoordinate(breaks: readonly number[] = []): Coordinate {
   };
 }
 
-/** A flat unknown whose volume is counted elsewhere. */
+/** A flat unknown. */
 export function boundedCoordinate(
   { lower, upper }: { lower: number; upper: number },
   breaks: readonly number[] = [],
 ): Coordinate {
+  const ln = -Math.log(upper - lower);
   return {
     lower,
     upper,
-    lnPrior: () => 0,
+    lnPrior: () => ln,
     quantile: (u) => lower + u * (upper - lower),
     breaks,
   };

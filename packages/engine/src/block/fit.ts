@@ -40,9 +40,7 @@ export function blockFit(problem: BlockProblem): BlockOutcome<BlockFit | null> {
   const { bench } = made;
   let best: (Minimum & { scenario: number }) | null = null;
   for (let scenario = 0; scenario < problem.scenarios.length; scenario += 1) {
-    const near = startsFor(problem.outer, STARTS);
-    const far = near.map((start) => stretched(problem.outer, start));
-    let found = outerMinima(bench, scenario, problem.outer.length === 0 ? near : [...near, ...far]);
+    let found = outerMinima(bench, scenario, nearAndFar(problem.outer, STARTS));
     // Where expressions have a value in a corner of the priors only.
     for (let more = 8 * STARTS; isNone(found) && more <= MOST_STARTS; more *= 8) {
       found = outerMinima(bench, scenario, startsFor(problem.outer, more));
@@ -78,7 +76,13 @@ export function startsFor(outer: readonly OuterUnknown[], count: number): Float6
   );
 }
 
-/** A start further out than the prior's own points, where the prior is a normal's. */
+/** Points spread over the priors, then the same further out where a prior is a normal's. */
+export function nearAndFar(outer: readonly OuterUnknown[], count: number): Float64Array[] {
+  const near = startsFor(outer, count);
+  const reaches = outer.some(({ penalised }) => penalised);
+  return reaches ? [...near, ...near.map((start) => stretched(outer, start))] : near;
+}
+
 function stretched(outer: readonly OuterUnknown[], start: Float64Array): Float64Array {
   return start.map((c, j) => {
     const { penalised, lower, upper } = outer[j]!;

@@ -8,6 +8,7 @@ import { lowestAlongLines, type LowestFit } from "./line-search";
 import { rowSum } from "./row-sum";
 import { moveTangents, startTangents } from "./tangents";
 import { whitenRows, type WhiteRows } from "./whitening";
+import { workOfRound } from "./work";
 import type { Workbench } from "./workbench";
 
 /** Variances and loadings have settled when none moves by more than this share. */
@@ -70,7 +71,9 @@ function moves({ layout }: Workbench): boolean {
 function iterate(bench: Workbench): Settled | { singular: number[] } {
   const { layout, plan, prior, state } = bench;
   const enough = bench.settledTo ?? SETTLED;
+  const work = workOfRound(layout);
   for (let round = 0; ; round += 1) {
+    bench.work += work;
     const white = whitenRows(layout, plan, state);
     if (!white.ok) return { singular: white.singular };
     const eliminated = eliminate(layout, white.rows, prior);

@@ -5,6 +5,7 @@ import { boundedCoordinate, normalCoordinate, type Coordinate } from "./coordina
 import { startsFor } from "./fit";
 import { fixedDesignOf } from "./fixed-design";
 import { lnOpen, openPartOf, type OpenPart } from "./open-part";
+import { workOfBox, workOfRows } from "./work";
 import type { Workbench } from "./workbench";
 
 /**
@@ -68,7 +69,9 @@ export function integrandOf(
     design === null
       ? conditional(c)
       : conditionalBy(bench, design, { outer: valuesAt(c), scenario });
+  const each = workOfRows(bench.layout);
   const density = (c: Float64Array): LogIntegral => {
+    bench.work += each;
     let ln = 0;
     for (let j = 0; j < outer.length; j += 1) ln += outer[j]!.lnPrior(c[j]!);
     if (outerFactor !== undefined) ln += outerFactor(valuesAt(c), scenario);
@@ -77,6 +80,7 @@ export function integrandOf(
       const one = near(c);
       if (one === null) return NOTHING;
       const box = lnBoxes(bench.layout, one.eliminated.tail);
+      if (box.error > 0) bench.work += workOfBox(bounds.length);
       return { ln: ln + one.ln + box.ln, error: box.error };
     }
     const one = outer.length > 0 ? near(c) : null;

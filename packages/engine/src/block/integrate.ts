@@ -2,8 +2,9 @@ import type { CubeMode, CubeOptions } from "@weighhouse/numerics/cube-integral";
 import { integrateUnitCube } from "@weighhouse/numerics/log-integral";
 import { LN_SQRT_2PI, normalCdf, truncatedNormalQuantile } from "@weighhouse/numerics/normal";
 import type { Axis, Coordinate } from "./coordinates";
-import { climb, type Mode } from "./modes";
-import { mapAboutPeak, type CubeMap } from "./peak-map";
+import type { Mode } from "./modes";
+import { mapAboutPeaks, type CubeMap } from "./peak-map";
+import { createSummits } from "./summits";
 
 export interface Integral {
   ln: number;
@@ -23,9 +24,19 @@ export interface IntegralOptions {
   kinks?: number;
   /** Whether its kinks lie across the axes. */
   rough?: boolean;
-  /** Where two or three dimensions take more evaluations than this they are sampled instead. */
-  calls?: number;
+  /** More starts, should there be many peaks; looked at only where the integral is sampled. */
+  more?: () => readonly Float64Array[];
+  /** What is done, and how much of it a rule in two or three dimensions, then sampling may take. */
+  work?: Work;
 }
+
+export interface Work {
+  done: () => number;
+  rule: number;
+  sampling: number;
+}
+
+const UNBOUNDED: Work = { done: () => 0, rule: Infinity, sampling: Infinity };
 
 /** Thousands of small kinks can't each be found, nor do they have to be. */
 function relativeOnLine(kinks: number, rough: boolean): number {
@@ -39,6 +50,8 @@ const MARGIN = 9;
  * are within this many standard deviations: further out (0, 1) runs out of numbers.
  */
 const REACH = 5;
+/** The integral over a peak is known from its width but for less than this in ln. */
+const ROUGHLY = 3;
 /** Up to so many dimensions there are rules that need no map about the peak. */
 const FEW = 3;
 
@@ -46,53 +59,72 @@ const FEW = 3;
  * ln of the integral of exp(lnDensity) over the coordinates, priors included in it.
  *
  * Peaks are climbed to from the starts and handed to the integrator. Infinite axes are laid onto
- * (0, 1) by a normal distribution wide enough for the peaks, whatever their priors.
- *
+ * (0, 1) by a normal distribution wide enough for the peaks, whatever their priors. Sampling goes
+ * about the peaks where these are all that there are, as far as climbs can tell.
  */
 export function integrate(
   lnDensity: (c: Float64Array) => number,
   coordinates: readonly Coordinate[],
-  { starts, seed, kinks = 0, rough = false, calls = Infinity }: IntegralOptions,
+  { starts, more, seed, kinks = 0, rough = false, work = UNBOUNDED }: IntegralOptions,
 ): Integral {
   const size = coordinates.length;
-  const modes = peaksOf(lnDensity, coordinates, starts);
-  const about = () => (modes.length === 1 ? mapAboutPeak(lnDensity, coordinates, modes[0]!) : null);
-  const axes = coordinates.map((one, j) => axisOf(one, modes, j));
-  const map: CubeMap = {
-    place: (u, c) => {
-      let ln = 0;
-      for (let j = 0; j < size; j += 1) ln += axes[j]!.place(u[j]!, c, j);
-      return ln;
-    },
-  };
-  const breaks = coordinates.map((one, j) => {
-    const places = one.breaks.map((at) => axes[j]!.toUnit(at)).filter((u) => u > 0 && u < 1);
-    return [...new Set(places)].sort((a, b) => a - b);
-  });
-  if (size > FEW) return overCube(lnDensity, about() ?? map, { size, seed });
-  const relative = size === 1 ? relativeOnLine(kinks, rough) : rough ? 1e-6 : undefined;
-  const cubeModes = modes.map((mode) => cubeMode(mode, axes));
-  const options = {
-    size,
-    seed,
-    modes: cubeModes,
-    breaks,
-    relative,
-    calls: size > 1 ? calls : Infinity,
-  };
-  try {
-    const found = overCube(lnDensity, map, options);
+  const summits = createSummits(lnDensity, coordinates);
+  summits.climbFrom(starts);
+  const byRule = () => {
+    const modes = summits.highest();
+    const axes = coordinates.map((one, j) => axisOf(one, modes, j));
+    const breaks = coordinates.map((one, j) => {
+      const places = one.breaks.map((at) => axes[j]!.toUnit(at)).filter((u) => u > 0 && u < 1);
+      return [...new Set(places)].sort((a, b) => a - b);
+    });
+    const relative = size === 1 ? relativeOnLine(kinks, rough) : rough ? 1e-6 : undefined;
+    const cubeModes = modes.map((mode) => cubeMode(mode, axes));
+    const most = size === 1 ? Infinity : work.done() + work.rule;
+    const mayGoOn = () => work.done() < most;
+    const options = { size, seed, modes: cubeModes, breaks, relative, mayGoOn };
+    const found = overCube(lnDensity, mapByAxes(axes), options);
     const { cdf } = found;
-    return { ...found, cdf: cdf && ((axis, at) => cdf(axis, axes[axis]!.toUnit(at))) };
-  } catch (error) {
-    if (!(error instanceof CallsSpent)) throw error;
+    return {
+      ...found,
+      cdf: cdf && ((axis: number, at: number) => cdf(axis, axes[axis]!.toUnit(at))),
+    };
+  };
+  const bySampling = () => {
+    const before = work.done();
+    if (more !== undefined) summits.climbFrom(more());
+    const modes = summits.highest();
+    const about = summits.areAllKnown() ? mapAboutPeaks(lnDensity, coordinates, modes) : null;
+    const byAxes = () => mapByAxes(coordinates.map((one, j) => axisOf(one, modes, j)));
+    const spent =
+      work.sampling < Infinity ? () => (work.done() - before) / work.sampling : undefined;
     // Sampling begins at four dimensions: those that are over change nothing.
-    return overCube(lnDensity, about() ?? map, { size, seed, spare: FEW + 1 - size });
+    const spare = Math.max(FEW + 1 - size, 0);
+    const found = overCube(lnDensity, about ?? byAxes(), { size, seed, spare, spent });
+    // What the peaks that are known hold, as if they were normal, has to be in it.
+    const missed = summits.lnMass() - found.ln;
+    return missed > ROUGHLY ? { ...found, error: Math.hypot(found.error, missed) } : found;
+  };
+  if (size > FEW) return bySampling();
+  try {
+    return byRule();
+  } catch (error) {
+    if (!(error instanceof WorkSpent)) throw error;
+    return bySampling();
   }
 }
 
-/** Thrown through the integrator when a rule that doesn't converge has had its calls. */
-class CallsSpent extends Error {}
+/** Thrown through the integrator when a rule that doesn't converge has had its share of the work. */
+class WorkSpent extends Error {}
+
+function mapByAxes(axes: readonly Axis[]): CubeMap {
+  return {
+    place: (u, c) => {
+      let ln = 0;
+      for (let j = 0; j < axes.length; j += 1) ln += axes[j]!.place(u[j]!, c, j);
+      return ln;
+    },
+  };
+}
 
 function overCube(
   lnDensity: (c: Float64Array) => number,
@@ -100,19 +132,13 @@ function overCube(
   {
     size,
     spare = 0,
-    calls = Infinity,
+    mayGoOn = () => true,
     ...options
-  }: CubeOptions & {
-    size: number;
-    spare?: number;
-    calls?: number;
-  },
+  }: CubeOptions & { size: number; spare?: number; mayGoOn?: () => boolean },
 ): Integral {
   const c = new Float64Array(size);
-  let spent = 0;
   const onCube = (u: Float64Array) => {
-    spent += 1;
-    if (spent > calls) throw new CallsSpent();
+    if (!mayGoOn()) throw new WorkSpent();
     const ln = map.place(u, c);
     return ln > -Infinity ? ln + lnDensity(c) : -Infinity;
   };
@@ -129,41 +155,6 @@ function overCube(
     weights: Float64Array.from(nodes.lnWeights, Math.exp),
     cdf: cdf ?? null,
   };
-}
-
-function peaksOf(
-  lnDensity: (c: Float64Array) => number,
-  coordinates: readonly Coordinate[],
-  starts: readonly Float64Array[],
-): Mode[] {
-  const landscape = {
-    ln: lnDensity,
-    lower: Float64Array.from(coordinates, ({ lower }) => lower),
-    upper: Float64Array.from(coordinates, ({ upper }) => upper),
-    step: Float64Array.from(coordinates, ({ lower, upper }) => Math.min((upper - lower) / 10, 0.5)),
-  };
-  const modes: Mode[] = [];
-  for (const start of starts) {
-    const mode = climb(landscape, start);
-    if (mode === null) continue;
-    if (!modes.some((one) => isSame(one, mode))) modes.push(mode);
-  }
-  modes.sort((a, b) => b.height - a.height);
-  return modes.filter(({ height }) => height > modes[0]!.height - 60);
-}
-
-/** Whether two peaks are the same: centres within a standard deviation of the first. */
-function isSame(one: Mode, other: Mode): boolean {
-  const size = one.centre.length;
-  let squares = 0;
-  const y = new Float64Array(size);
-  for (let i = 0; i < size; i += 1) {
-    let rest = other.centre[i]! - one.centre[i]!;
-    for (let k = 0; k < i; k += 1) rest -= one.scale[i * size + k]! * y[k]!;
-    y[i] = rest / one.scale[i * size + i]!;
-    squares += y[i]! * y[i]!;
-  }
-  return squares < 1;
 }
 
 function axisOf({ lower, upper }: Coordinate, modes: readonly Mode[], j: number): Axis {

@@ -136,6 +136,28 @@ function addMixed(
   }
 }
 
+/** ln of the square root of the covariance's determinant. */
+export function lnScaleOf({ centre, scale }: Mode): number {
+  const size = centre.length;
+  let ln = 0;
+  for (let j = 0; j < size; j += 1) ln += Math.log(scale[j * size + j]!);
+  return ln;
+}
+
+/** Whether two peaks are the same: centres within a standard deviation of the first. */
+export function isSame(one: Mode, other: Mode): boolean {
+  const size = one.centre.length;
+  let squares = 0;
+  const y = new Float64Array(size);
+  for (let i = 0; i < size; i += 1) {
+    let rest = other.centre[i]! - one.centre[i]!;
+    for (let k = 0; k < i; k += 1) rest -= one.scale[i * size + k]! * y[k]!;
+    y[i] = rest / one.scale[i * size + i]!;
+    squares += y[i]! * y[i]!;
+  }
+  return squares < 1;
+}
+
 /** Solves curvature move = gradient, with as much added to the diagonal as makes it definite. */
 function newtonStep({ step, gradient, curvature, held }: Quadratic) {
   const size = step.length;

@@ -47,6 +47,21 @@ describe("one outer unknown", () => {
     expect(Math.abs(found - Math.log(expected))).toBeLessThan(1e-9);
   });
 
+  test.each([0.1, 0.01])("a second peak five prior sds out, of weight 4e-6, noise %d", (sd) => {
+    const found = lnZ({
+      observed: [0],
+      variance: [sd * sd],
+      outer: [normalUnknown(0, 1, PLACE)],
+      evaluate: ([value], _scenario, { base }) => {
+        base.fill(value! * (value! - 5));
+        return true;
+      },
+    });
+    const density = (z: number) => phi(z) * phi(z * (z - 5), sd * sd);
+    const expected = panels(density, -1, 1, 2000) + panels(density, 4, 6, 2000);
+    expect(Math.abs(found - Math.log(expected))).toBeLessThan(1e-9);
+  });
+
   test("a narrow posterior ten prior sds out", () => {
     const found = lnZ({
       observed: [10, 10.00001],

@@ -28,12 +28,12 @@ export function posteriorOf(bench: Workbench, { shares, found }: Scenarios): Pos
     integral.points.forEach((point, n) => {
       const weight = shares[r]! * integral.weights[n]!;
       if (weight <= NO_WEIGHT) return;
-      let known: LinearPosterior | null = null;
+      let linear: LinearPosterior | null = null;
       pieces.push({
         weight,
         scenario: integrand.scenario,
         outer: integrand.valuesAt(point),
-        linear: () => (known ??= linearAt(bench, integrand, point)),
+        linear: () => (linear ??= linearAt(bench, integrand, point)),
       });
     });
   });
@@ -43,8 +43,18 @@ export function posteriorOf(bench: Workbench, { shares, found }: Scenarios): Pos
   return pieces;
 }
 
-/** The integral once more where its points don't tell the linear unknowns. */
+const known = new WeakMap<ScenarioEvidence, ScenarioEvidence>();
+
+/** The integral once more where its points don't tell the linear unknowns; done once. */
 function withPoints(bench: Workbench, one: ScenarioEvidence): ScenarioEvidence {
+  const there = known.get(one);
+  if (there !== undefined) return there;
+  const made = integratedForPoints(bench, one);
+  known.set(one, made);
+  return made;
+}
+
+function integratedForPoints(bench: Workbench, one: ScenarioEvidence): ScenarioEvidence {
   const { layout } = bench;
   if (one.integral.points.length === 0) {
     const integral = integralOf(bench, one.integrand);

@@ -5,8 +5,11 @@ import { startsOf } from "./starts";
 import type { Workbench } from "./workbench";
 
 const MOST_DIMENSIONS = 30;
-const MOST_CALLS = 2_000_000;
-const FEWEST_CALLS = 50_000;
+/** Units of work.ts: for a rule, and for sampling where that doesn't converge or there is none. */
+const RULE_WORK = 2_000_000;
+const SAMPLING_WORK = 3_000_000;
+/** Of an ensemble's rows; more take more time in all. */
+const MOST_SHARES = 8;
 
 export interface ScenarioEvidence {
   integrand: Integrand;
@@ -29,27 +32,18 @@ export function integralOf(
     const { ln, error } = integrand.lnWithError(point);
     integral = { ln, error, points: [point], weights: Float64Array.of(1), cdf: null };
   } else {
-    const { seed } = bench.layout.problem;
+    const { seed, scenarios } = bench.layout.problem;
     let kinks = 0;
     for (const { breaks } of bench.layout.factors) kinks += breaks.length;
-    const starts = startsOf(bench, integrand);
+    const { starts, more } = startsOf(bench, integrand);
     // A variance taken at the best fit has kinks wherever it meets its clamps.
     const rough = bench.layout.moving;
-    const calls = callsFor(bench);
-    const options = { starts, seed, kinks, rough, calls };
+    const share = Math.min(scenarios.length, MOST_SHARES);
+    const budget = { rule: RULE_WORK / share, sampling: SAMPLING_WORK / share };
+    const work = { done: () => bench.work, ...budget };
+    const options = { starts, more, seed, kinks, rough, work };
     integral = integrate((c) => integrand.lnWithError(c).ln, coordinates, options);
   }
   const singular = integrand.singular();
   return singular === null ? integral : { refusal: { kind: "singular", rows: singular } };
-}
-
-/** As many evaluations as take some seconds, by what one of them has to do. */
-function callsFor({ layout }: Workbench): number {
-  const { rows, linear, outer, varying, atFit } = layout.problem;
-  const moves = layout.moving || varying.length + atFit.length > 0;
-  let cost = 1 + rows.count / 20;
-  if (layout.others.length > 0) cost *= 2;
-  if (outer.length > 0 && moves) cost *= 20;
-  else if (outer.length > 0 && linear.length > 0) cost *= 4;
-  return Math.max(MOST_CALLS / cost, FEWEST_CALLS);
 }

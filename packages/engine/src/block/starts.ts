@@ -1,6 +1,6 @@
 import { addRow, createSystem } from "@weighhouse/numerics/triangular-system";
 import { boundedLeastSquares } from "./bounded-least-squares";
-import { outerMinima, startsFor } from "./fit";
+import { nearAndFar, outerMinima } from "./fit";
 import type { Integrand } from "./integrand";
 import { layoutOf } from "./layout";
 import type { OpenPart } from "./open-part";
@@ -9,16 +9,23 @@ import { workbenchOf, type Workbench } from "./workbench";
 /** Minima of chi-square further above the lowest than this weigh nothing. */
 const FAR = 120;
 const MOST_MINIMA = 3;
+const MORE = 12;
+
+export interface Starts {
+  starts: Float64Array[];
+  /** The next best. */
+  more: () => Float64Array[];
+}
 
 /**
  * Where to look for an integrand's peaks: chi-square's minima, and the best of points spread over
  * the outer unknowns' priors; the linear unknowns there as if every factor were normal.
  */
-export function startsOf(bench: Workbench, integrand: Integrand): Float64Array[] {
+export function startsOf(bench: Workbench, integrand: Integrand): Starts {
   const { problem } = bench.layout;
   const size = problem.outer.length;
   const tries = Math.min(16 + 8 * size, 80);
-  const scattered = startsFor(problem.outer, size === 0 ? 1 : tries).map((c) =>
+  const scattered = nearAndFar(problem.outer, size === 0 ? 1 : tries).map((c) =>
     completed(bench, integrand, c),
   );
   const minima = size === 0 ? [] : minimaOf(bench, integrand.scenario);
@@ -26,9 +33,10 @@ export function startsOf(bench: Workbench, integrand: Integrand): Float64Array[]
     .map((c) => ({ c, ln: integrand.lnWithError(c).ln }))
     .filter(({ ln }) => ln > -Infinity)
     .sort((a, b) => b.ln - a.ln)
-    .slice(0, minima.length > 0 ? 2 : 4);
+    .map(({ c }) => c);
+  const few = minima.length > 0 ? 2 : 4;
   const starts = minima.map((c) => completed(bench, integrand, c));
-  for (const { c } of ranked) starts.push(c);
+  starts.push(...ranked.slice(0, few));
   if (size === 0)
     starts.push(
       new Float64Array(integrand.coordinates.length).map((_, j) => {
@@ -36,7 +44,7 @@ export function startsOf(bench: Workbench, integrand: Integrand): Float64Array[]
         return lower > -Infinity ? (lower + upper) / 2 : 0;
       }),
     );
-  return starts;
+  return { starts, more: () => ranked.slice(few, few + MORE) };
 }
 
 const fittings = new WeakMap<Workbench, Workbench | null>();
@@ -54,7 +62,7 @@ function fittingBench(bench: Workbench): Workbench | null {
 function minimaOf(bench: Workbench, scenario: number): Float64Array[] {
   const fitting = fittingBench(bench);
   if (fitting === null) return [];
-  const found = outerMinima(fitting, scenario, startsFor(bench.layout.problem.outer, 5));
+  const found = outerMinima(fitting, scenario, nearAndFar(bench.layout.problem.outer, 5));
   if ("singular" in found) return [];
   const near = found.filter(({ chiSquare }) => chiSquare < found[0]!.chiSquare + FAR);
   return near.slice(0, MOST_MINIMA).map(({ outer }) => outer);

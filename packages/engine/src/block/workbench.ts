@@ -25,6 +25,8 @@ export interface Workbench {
   settled: boolean;
   /** To what share fixed points have to settle; as far as they can where it isn't given. */
   settledTo?: number;
+  /** What has been done, in units of work.ts: the same for the same input, as time isn't. */
+  work: number;
 }
 
 export function workbenchOf(
@@ -48,6 +50,7 @@ export function workbenchOf(
     },
     bent: new Map(),
     settled: false,
+    work: 0,
   };
   return { ok: true, bench };
 }
