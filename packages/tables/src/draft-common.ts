@@ -1,4 +1,5 @@
-import { conversion } from "@weighhouse/campaign/units";
+import { addExtra, extraName } from "./draft-conditions";
+import type { GivenCondition } from "./draft-conditions";
 import type { DraftPlan, Slot } from "./draft-plan";
 import { keyOf } from "./part-keys";
 import { decimalText, numberCell, readNumber } from "./number-cells";
@@ -9,6 +10,8 @@ import { extraCell, sharedCell } from "./word-cells";
 
 export type Common = {
   fields: Record<string, unknown>;
+  /** Conditions as they are given: what they are called and counted in is each observable's own. */
+  conditions: GivenCondition[];
   /** An observable that the row names where it names no measurand. */
   observable: string | null;
   problems: RowProblem[];
@@ -16,7 +19,7 @@ export type Common = {
 
 /** What a row says once for all of its results. */
 export function readCommon(plan: DraftPlan, row: RawRow): Common {
-  const common: Common = { fields: {}, observable: null, problems: [] };
+  const common: Common = { fields: {}, conditions: [], observable: null, problems: [] };
   for (const slot of plan.common) {
     const cell = row.cells[slot.index] ?? null;
     if (!slot.isMissing(cell)) addCell(plan, common, { slot, cell });
@@ -33,11 +36,10 @@ function addCell(plan: DraftPlan, common: Common, { slot, cell }: Given): void {
   const { role } = slot;
   if (role === "date" || role === "timeOfDay") return;
   if (role === "extra") {
-    fields["extra"] = { ...(fields["extra"] as object), [extraName(slot)]: extraCell(cell) };
+    addExtra(fields, extraName(slot), extraCell(cell));
   } else if (role.startsWith("conditions.")) {
     const name = role.slice("conditions.".length);
-    const value = conditionValue(plan, name, { slot, cell });
-    fields["conditions"] = { ...(fields["conditions"] as object), [name]: value };
+    common.conditions.push({ name, slot, value: numberCell(cell, plan.mark) });
   } else if (role === "observedAt" || role === "knownSince") {
     addTime(plan, common, { slot, cell });
   } else if (role === "observable") {
@@ -51,24 +53,6 @@ function addCell(plan: DraftPlan, common: Common, { slot, cell }: Given): void {
   } else {
     fields[role] = typeof cell === "number" ? String(cell) : cell;
   }
-}
-
-/** An extra keeps its column's name, with the unit that a number is in. */
-function extraName({ column, match }: Slot): string {
-  const name = column.name.replace(/^extra\.(?=.)/, "");
-  return match.unit === null ? name : `${name} [${match.unit}]`;
-}
-
-function conditionValue(plan: DraftPlan, name: string, { slot, cell }: Given): RawCell {
-  const value = numberCell(cell, plan.mark);
-  const { unit } = slot.match;
-  if (unit === null || typeof value !== "number") return value;
-  const wanted = plan.scope.observables
-    .flatMap(({ conditions }) => conditions)
-    .find(({ key }) => key === name)?.unit;
-  if (wanted === null || wanted === undefined || wanted === unit) return value;
-  const found = conversion(unit, wanted);
-  return found.kind === "factor" ? value * found.factor + found.offset : value;
 }
 
 function addTime(plan: DraftPlan, common: Common, { slot, cell }: Given): void {

@@ -1,3 +1,4 @@
+import { addConditions } from "./draft-conditions";
 import { readCommon } from "./draft-common";
 import type { Common } from "./draft-common";
 import { formProblems } from "./draft-form";
@@ -75,6 +76,8 @@ function draftsOfRow(plan: DraftPlan, row: RawRow): DraftRow[] {
   return plan.parts.flatMap((part) => draftOfPart(plan, part, { row, common }));
 }
 
+/** Stands where a measurand isn't known, so that the other fields are checked all the same. */
+const UNKNOWN = "none";
 const RESULTS = ["value", "count", "occurred"];
 
 function draftOfPart(
@@ -92,7 +95,11 @@ function draftOfPart(
     draft["extra"] = { ...(draft["extra"] as object), ...result.extra };
   }
   const notes = [...result.notes];
-  const problems = [...common.problems, ...result.problems];
+  const problems = [
+    ...common.problems,
+    ...addConditions(draft, common.conditions, { plan, observable }),
+    ...result.problems,
+  ];
   if (part.target !== null && plan.parts.length > 1 && typeof draft["id"] === "string") {
     draft["id"] = `${draft["id"]}:${part.target.key}`;
   }
@@ -101,8 +108,10 @@ function draftOfPart(
   if (RESULTS.some((field) => draft[field] !== undefined)) {
     const placed = place(plan, part, { draft, observable: common.observable });
     notes.push(...placed.notes);
-    if (placed.problem !== null) problems.push({ ...placed.problem, column });
-    if (placed.problem !== null) refused.add(column);
+    if (placed.problem !== null) {
+      problems.push({ ...placed.problem, column });
+      draft["measurand"] = UNKNOWN;
+    }
   } else {
     // Without a result nothing is looked for that it could fall in.
     refused.add(column);

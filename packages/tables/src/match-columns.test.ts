@@ -197,6 +197,17 @@ describe("a table with several quantities side by side", () => {
     });
   });
 
+  test("conditions go to the results that have them, and are extra for others", () => {
+    const { rows } = readDrafts(
+      "date-obs,flux,flux_err,glow,glow_err,depth [cm]\n2031-05-04T11:20:00,1,0.1,21,0.1,1200\n",
+      { document: manyQuantities },
+    );
+    expect(rows.map(({ draft }) => [draft?.conditions, draft?.extra])).toEqual([
+      [{ depth: 12 }, undefined],
+      [undefined, { "depth [cm]": 1200 }],
+    ]);
+  });
+
   test("with measurands' own names needs no time", () => {
     const named = readDrafts("flux-may,flux-may_err,flux-june,flux-june_err\n1,0.1,2,0.2\n", {
       document: manyQuantities,
