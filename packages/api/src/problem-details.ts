@@ -32,16 +32,23 @@ export function problemResponse(error: unknown, log: Log): Response {
   const headers = {
     "content-type": "application/problem+json",
     "cache-control": "no-store",
-    ...challenge(error),
-    ...(error instanceof ApiError ? error.headers : {}),
+    ...fieldsOf(error),
   };
   return new Response(JSON.stringify(problem), { status: problem.status, headers });
 }
 
-/** What RFC 6750 asks of a refusal that another key would not have met. */
-function challenge(error: unknown): Record<string, string> {
+/** What a client needs beside the words: which credentials would do (RFC 6750), when to come again. */
+function fieldsOf(error: unknown): Record<string, string> {
+  if (error instanceof ApiError) return error.headers;
   if (!(error instanceof DeskError)) return {};
-  if (error.code === "not-signed-in") return { "www-authenticate": "Bearer" };
-  if (error.code !== "insufficient-scope") return {};
-  return { "www-authenticate": 'Bearer error="insufficient_scope"' };
+  switch (error.code) {
+    case "not-signed-in":
+      return { "www-authenticate": "Bearer" };
+    case "insufficient-scope":
+      return { "www-authenticate": 'Bearer error="insufficient_scope"' };
+    case "busy":
+      return { "retry-after": "1" };
+    default:
+      return {};
+  }
 }

@@ -167,7 +167,7 @@ function refusal(code: number, description: string): Described {
   const retry = { "Retry-After": { description: "Seconds to wait.", schema: { type: "integer" } } };
   return {
     description,
-    ...(code === 429 ? { headers: retry } : {}),
+    ...(code === 429 || code === 503 ? { headers: retry } : {}),
     content: { "application/problem+json": { schema: problemRef } },
   };
 }
