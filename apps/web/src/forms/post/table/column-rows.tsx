@@ -3,6 +3,7 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
 import type { ColumnMatch, TableChoices, TimeReading } from "@weighhouse/tables/table-match";
 import { Table } from "@/look/table";
+import { numberFromText } from "../../entered-text";
 import { problemWords } from "../../form-schema";
 import { fieldGroups, whyWords } from "./field-choices";
 import type { MatchedTable, OpenedColumn } from "./protocol";
@@ -69,7 +70,7 @@ function ColumnRow(
         {column?.samples.map(shortened).join(", ")}
       </td>
       <td data-label="Read as">
-        <div className="grid min-w-[230px] max-w-[320px] gap-1">
+        <div className="grid max-w-[320px] gap-1 min-[901px]:min-w-[230px]">
           <select
             aria-label={`Column ${match.column} is read as`}
             className={`${box} ${quiet ? "text-quiet" : ""}`}
@@ -91,9 +92,7 @@ function ColumnRow(
               </optgroup>
             ))}
           </select>
-          {match.time === null ? null : (
-            <TimeBoxes {...{ match, choices, onChoose }} time={match.time} />
-          )}
+          {timeFields.has(match.field) ? <TimeBoxes {...{ match, choices, onChoose }} /> : null}
         </div>
       </td>
       <td data-label="Why" className="text-[14px]">
@@ -145,6 +144,7 @@ function UnitBox(props: {
 
 const unitFields = new Set(["value", "sd", "plus", "minus"]);
 
+const timeFields = new Set(["observedAt", "knownSince"]);
 const formats: Record<TimeReading["format"], string> = {
   iso: "date and time (ISO 8601)",
   jd: "Julian Date",
@@ -156,27 +156,30 @@ const scales: Record<TimeReading["scale"], string> = {
   tai: "TAI",
   tdb: "TDB",
 };
+const plainTime: TimeReading = { format: "iso", scale: "utc", offset: 0 };
 
+/** How a column of times is read; where it says so itself, or nothing does, that stands first. */
 function TimeBoxes(props: {
   match: ColumnMatch;
-  time: TimeReading;
   choices: TableChoices;
   onChoose: (choices: TableChoices) => void;
 }) {
-  const { match, time, choices, onChoose } = props;
+  const { match, choices, onChoose } = props;
+  const { column, time } = match;
   const choose = (changed: Partial<TimeReading>) =>
     onChoose({
       ...choices,
-      times: { ...choices.times, [match.column]: { ...time, ...changed } },
+      times: { ...choices.times, [column]: { ...(time ?? plainTime), ...changed } },
     });
   return (
     <div className="grid grid-cols-[minmax(0,1fr)_auto] gap-1">
       <select
-        aria-label={`Column ${match.column}: form of its times`}
+        aria-label={`Column ${column}: form of its times`}
         className={box}
-        value={time.format}
+        value={time?.format ?? ""}
         onChange={(event) => choose({ format: event.target.value as TimeReading["format"] })}
       >
+        {time === null ? <option value="">as they say themselves</option> : null}
         {Object.entries(formats).map(([format, words]) => (
           <option key={format} value={format}>
             {words}
@@ -184,17 +187,36 @@ function TimeBoxes(props: {
         ))}
       </select>
       <select
-        aria-label={`Column ${match.column}: time scale`}
+        aria-label={`Column ${column}: time scale`}
         className={box}
-        value={time.scale}
+        value={time?.scale ?? ""}
         onChange={(event) => choose({ scale: event.target.value as TimeReading["scale"] })}
       >
+        {time === null ? <option value="">zone</option> : null}
         {Object.entries(scales).map(([scale, words]) => (
           <option key={scale} value={scale}>
             {words}
           </option>
         ))}
       </select>
+      {time === null || time.format === "iso" ? null : (
+        <label className="col-span-2 flex items-center gap-2 text-[13.5px] text-quiet">
+          days added
+          <input
+            key={time.offset}
+            aria-label={`Column ${column}: days added`}
+            className={`${box} max-w-[110px] font-mono text-[13px]`}
+            inputMode="decimal"
+            autoComplete="off"
+            defaultValue={time.offset}
+            onBlur={(event) => {
+              const offset = numberFromText(event.target.value) ?? 0;
+              if (typeof offset === "number" && offset !== time.offset) choose({ offset });
+              else event.target.value = String(time.offset);
+            }}
+          />
+        </label>
+      )}
     </div>
   );
 }

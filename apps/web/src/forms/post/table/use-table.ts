@@ -54,6 +54,8 @@ export function useTable(document: CampaignDocument) {
   const turn = useRef(0);
   /** The same for every try to post what was previewed once, as long as no answer came. */
   const attempt = useRef("");
+  /** A next table is matched by what the last one's posting has kept. */
+  const remembering = useRef(Promise.resolve());
   useEffect(() => () => worker.current?.close(), []);
 
   const change = useCallback(
@@ -101,6 +103,7 @@ export function useTable(document: CampaignDocument) {
           document: { observables, measurands },
         });
         const columns = opened.columns.map(({ name: column, unit }) => ({ name: column, unit }));
+        await remembering.current;
         // Without what is remembered the table can be matched all the same.
         const remembered =
           columns.length === 0
@@ -136,7 +139,7 @@ export function useTable(document: CampaignDocument) {
       posted: await there.call("post", { campaign, attempt: attempt.current }),
     }));
     if (!entered) return;
-    await remember(opened, matched);
+    remembering.current = remember(opened, matched);
     worker.current?.close();
     setState((before) => ({ ...closed, posted: before.posted, version: before.version + 1 }));
     done();
