@@ -1,7 +1,5 @@
 import * as z from "zod";
-import type { CampaignDocument, Measurement } from "@weighhouse/campaign/document";
-import { payloadSchemas } from "@weighhouse/campaign/entries";
-import type { Payload } from "@weighhouse/campaign/entries";
+import type { Measurement } from "@weighhouse/campaign/document";
 import type { Problem } from "@weighhouse/campaign/problem";
 import { scoreCampaign } from "@weighhouse/engine/score";
 import { enter } from "./access";
@@ -9,6 +7,7 @@ import type { Access } from "./access";
 import { appended } from "./appended";
 import type { Appended } from "./appended";
 import { checkAfter } from "./check-after";
+import { correctedContents, correctionSchema, leftOutSchema } from "./corrected-contents";
 import type { Actor, Desk } from "./desk";
 import { invalid } from "./desk-error";
 import { requireOwnMeasurements, requireTeamFor } from "./own-measurements";
@@ -26,11 +25,12 @@ export const MOST_CORRECTIONS = 10_000;
 
 export const correctMeasurementsInput = z.strictObject({
   key: z.string(),
-  /** `team` of a measurement may be left out: as it was. */
-  corrections: z.array(payloadSchemas["measurement.corrected"]).min(1).max(MOST_CORRECTIONS),
+  corrections: z.array(correctionSchema).min(1).max(MOST_CORRECTIONS),
+  /** What becomes of fields that a measurement leaves out: their default unless they are kept. */
+  leftOut: leftOutSchema.optional(),
 });
 
-type Correction = Payload<"measurement.corrected">;
+type Wanted = Pick<z.output<typeof correctMeasurementsInput>, "corrections" | "leftOut">;
 
 export type CorrectedMeasurements = {
   key: string;
@@ -59,16 +59,16 @@ export async function correctMeasurements(
   actor: Actor,
   input: z.input<typeof correctMeasurementsInput>,
 ): Promise<CorrectedMeasurements> {
-  const { key, corrections } = parseInput(correctMeasurementsInput, input);
+  const { key, ...wanted } = parseInput(correctMeasurementsInput, input);
   const access = await enter(desk, actor, key, action);
-  const ids = corrections.map(({ measurement }) => measurement.id);
+  const ids = wanted.corrections.map(idOf);
   const now = await readNow(desk, key);
-  if ((await decideAll(desk, access, { now, corrections })).entries.length === 0) {
+  if ((await decide(desk, access, { now, wanted })).entries.length === 0) {
     return { key, corrected: [], unchanged: ids, appended: null };
   }
   let corrected: string[] = [];
   const stored = await recordEntries(desk, access, async (now) => {
-    const decision = await decideAll(desk, access, { now, corrections });
+    const decision = await decide(desk, access, { now, wanted });
     corrected = decision.fields.map((field) => field.key);
     return decision;
   });
@@ -83,18 +83,12 @@ export async function previewCorrections(
   actor: Actor,
   input: z.input<typeof correctMeasurementsInput>,
 ): Promise<CorrectionsPreview> {
-  const { key, corrections } = parseInput(correctMeasurementsInput, input);
+  const { key, ...wanted } = parseInput(correctMeasurementsInput, input);
   const access = await enter(desk, actor, key, action);
   const now = await readNow(desk, key);
   const { size, document, parts } = now;
-  const decision = await decideAll(desk, access, { now, corrections });
-  const there = byId(document);
-  const rows = corrections.map((correction) => {
-    const before = there.get(correction.measurement.id)!;
-    const corrected = contentOf(correction, before);
-    return { id: before.id, fields: differingFields(corrected, before, document) };
-  });
-  if (decision.entries.length === 0) return { size, corrections: rows, changes: null };
+  const { corrections, ...decision } = await decide(desk, access, { now, wanted });
+  if (decision.entries.length === 0) return { size, corrections, changes: null };
   const moment = { by: authorOf(access), at: timeAt(desk), size };
   const after = checkAfter(parts, decision.entries, { ...moment, fields: decision.fields });
   const scored = { before: scoreCampaign(document), after: scoreCampaign(after) };
@@ -102,49 +96,49 @@ export async function previewCorrections(
     scored.before.ok && scored.after.ok
       ? standingsChanges(scored.before.value, scored.after.value)
       : null;
-  return { size, corrections: rows, changes };
+  return { size, corrections, changes };
 }
 
 /** The entries of those that say something new, and where each stands in the document. */
-async function decideAll(
+async function decide(
   desk: Desk,
   access: Access,
-  { now, corrections }: { now: Now; corrections: Correction[] },
-): Promise<Decision> {
-  const there = byId(now.document);
-  refuseUnknown(corrections, there);
-  const owned = corrections.map(({ measurement: { id } }) => there.get(id)!);
+  { now: { document }, wanted }: { now: Now; wanted: Wanted },
+): Promise<Decision & Pick<CorrectionsPreview, "corrections">> {
+  const there = new Map(document.measurements.map((one) => [one.id, one]));
+  refuseUnknown(wanted.corrections, there);
+  const owned = wanted.corrections.map((one) => there.get(idOf(one))!);
   await requireOwnMeasurements(desk, access, { action, measurements: owned });
-  const decisions = corrections.flatMap((correction, index) => {
-    const before = there.get(correction.measurement.id)!;
-    const measurement = contentOf(correction, before);
-    requireTeamFor(access, action, measurement.team);
-    if (differingFields(measurement, before, now.document).length === 0) return [];
-    const pointer = `/corrections/${index}/measurement`;
-    const payload = { measurement, reason: correction.reason };
-    return {
-      entry: { kind: "measurement.corrected", payload } as const,
-      field: { list: "measurements", key: measurement.id, pointer } as const,
-    };
-  });
+  const contents = correctedContents(wanted.corrections, there, wanted.leftOut ?? "default");
+  for (const { measurement } of contents) requireTeamFor(access, action, measurement.team);
+  const corrections = contents.map(({ measurement }) => ({
+    id: measurement.id,
+    fields: differingFields(measurement, there.get(measurement.id)!, document),
+  }));
+  const differing = contents
+    .map((content, index) => ({ content, index }))
+    .filter(({ index }) => corrections[index]!.fields.length > 0);
   return {
-    entries: decisions.map(({ entry }) => entry),
-    fields: decisions.map(({ field }) => field),
+    corrections,
+    entries: differing.map(({ content: payload }) => ({ kind: "measurement.corrected", payload })),
+    fields: differing.map(({ content, index }) => ({
+      list: "measurements",
+      key: content.measurement.id,
+      pointer: `/corrections/${index}/measurement`,
+    })),
   };
 }
 
-function contentOf({ measurement }: Correction, before: Measurement) {
-  return { ...measurement, team: measurement.team ?? before.team };
-}
-
-function byId({ measurements }: CampaignDocument): Map<string, Measurement> {
-  return new Map(measurements.map((one) => [one.id, one]));
+function idOf({ measurement }: Wanted["corrections"][number]): string {
+  const { id } = measurement;
+  return typeof id === "string" ? id : JSON.stringify(id ?? null);
 }
 
 /** Names every id that isn't there, and every one that stands twice. */
-function refuseUnknown(corrections: Correction[], there: Map<string, Measurement>): void {
+function refuseUnknown(corrections: Wanted["corrections"], there: Map<string, Measurement>): void {
   const first = new Map<string, number>();
-  const problems = corrections.flatMap(({ measurement: { id } }, index): Problem[] => {
+  const problems = corrections.flatMap((correction, index): Problem[] => {
+    const id = idOf(correction);
     const pointer = `/corrections/${index}/measurement/id`;
     const earlier = first.get(id);
     if (earlier !== undefined) {

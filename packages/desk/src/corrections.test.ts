@@ -102,6 +102,33 @@ describe("corrections", () => {
     expect(await values(lagoon)).toEqual(before);
   });
 
+  it("keep what they leave out, where that is asked for, but nothing of the old result", async () => {
+    const lagoon = await measuredLagoon("kept", ({ member }) => member);
+    const { key, member } = lagoon;
+    const correct = (measurement: Record<string, unknown>, leftOut?: "kept") =>
+      correctMeasurements(house.desk, member, {
+        key,
+        leftOut,
+        corrections: [{ measurement: { id: "a", ...measurement }, reason }],
+      });
+    await correct({ batch: "night-4", extra: { filter: "B" } }, "kept");
+    await correct({ value: 43, plus: 2, minus: 1 }, "kept");
+    const read = async () => {
+      const { document } = await readCampaign(house.desk, member, { key });
+      return document.measurements[0]!;
+    };
+    expect(await read()).toMatchObject({
+      ...reading("a", 43, { sd: null, plus: 2, minus: 1 }),
+      batch: "night-4",
+      extra: { filter: "B" },
+    });
+    await correct(reading("a", 43));
+    expect(await read()).toMatchObject({ batch: null, extra: {}, sd: 2, plus: null });
+    await expect(correct({ value: 43 })).rejects.toMatchObject({
+      problems: [{ pointer: "/corrections/0/measurement/measurand", code: "missing" }],
+    });
+  });
+
   it("see that a unit was wrong, also where the right one is the observable's own", async () => {
     const lagoon = await measuredLagoon("units", ({ member }) => member);
     const { key, member } = lagoon;
