@@ -25,12 +25,14 @@ export function FateRows(props: {
 }) {
   const { document, counts, worker, version } = props;
   const [chosen, setChosen] = useState<Show>("all");
-  const [target, setTarget] = useState<number | null>(null);
+  const [gone, setGone] = useState<{ to: number; version: number } | null>(null);
+  // Rows that have changed are not scrolled to where a fault was before.
+  const target = gone?.version === version ? gone.to : null;
   // Where nothing has the fate that was looked at any more, all rows are looked at again.
   const show = countOf(counts, chosen) === 0 ? "all" : chosen;
   const jump = async () => {
     const found = await worker.current?.call("nextFault", { show, after: target ?? -1 });
-    if (found !== undefined) setTarget(found);
+    if (found !== undefined && found !== null) setGone({ to: found, version });
   };
   return (
     <section aria-label="Rows" className="mt-5 border-t border-rule pt-4">
@@ -49,7 +51,7 @@ export function FateRows(props: {
                 className="cursor-pointer border-b-3 border-transparent text-[14.5px] text-quiet hover:text-ink aria-pressed:border-brass aria-pressed:text-ink"
                 onClick={() => {
                   setChosen(each.show);
-                  setTarget(null);
+                  setGone(null);
                 }}
               >
                 {each.words} {formatCount(each.count)}
