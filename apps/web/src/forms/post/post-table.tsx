@@ -13,6 +13,7 @@ import { PostedNote, PostingRefused } from "./posted-note";
 import { noChoices } from "./table/choices";
 import { ChooseTable } from "./table/choose-table";
 import { ColumnRows } from "./table/column-rows";
+import { CorrectConflicts } from "./table/correct-conflicts";
 import { FateRows } from "./table/fate-rows";
 import { LeaveOut } from "./table/leave-out";
 import { ProgressNote } from "./table/progress-note";
@@ -136,6 +137,14 @@ export function PostTable({ document }: { document: CampaignDocument }) {
                 setLeaveOut(out);
                 void table.preview(out);
               }}
+            />
+          )}
+          {previewed === null || previewed.counts.conflict === 0 ? null : (
+            <CorrectConflicts
+              document={document}
+              count={previewed.counts.conflict}
+              drafts={() => table.worker.current!.call("conflicts", null)}
+              onCorrected={() => void table.preview(leaveOut)}
             />
           )}
           <PostingRefused refusal={table.refusal} />

@@ -107,6 +107,16 @@ export class OpenTable {
     return this.rows[place]!.draft as Record<string, unknown>;
   }
 
+  /** The rows that say something else than what is there, as measurements. */
+  conflicts(): Record<string, unknown>[] {
+    return this.list("conflict").map((place) => {
+      // Where it falls the campaign has said; that it was found by its observable is no field.
+      const { observable: _, ...draft } = this.draft(place);
+      const { id, measurand } = this.judged.get(place)!;
+      return { ...draft, id, measurand };
+    });
+  }
+
   /** Forgets what was said of these rows: they are asked about again. */
   forget(places: readonly number[]): void {
     for (const place of places) this.judged.delete(place);

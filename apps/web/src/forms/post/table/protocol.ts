@@ -103,6 +103,8 @@ export interface Calls {
   preview: { takes: { campaign: string; leaveOut: boolean }; gives: PreviewedTable };
   /** `attempt`: the same one again for what was previewed, so that nothing is entered twice. */
   post: { takes: { campaign: string; attempt: string }; gives: PostedTable };
+  /** The rows in conflict, each with its id and its measurand. */
+  conflicts: { takes: null; gives: Record<string, unknown>[] };
   rows: { takes: { show: Show; from: number; count: number }; gives: ShownRow[] };
   /** The place in the list of the next row at fault behind `after`, from the start again; null: none. */
   nextFault: { takes: { show: Show; after: number }; gives: number | null };

@@ -72,6 +72,7 @@ const answers: { [C in Call]: (input: Calls[C]["takes"]) => Promise<Calls[C]["gi
     return { posted, alreadyThere, entries, leftOut };
   },
 
+  conflicts: async () => open().conflicts(),
   rows: async ({ show, from, count }) => open().shown(show, from, count),
   nextFault: async ({ show, after }) => open().nextFault(show, after),
 
