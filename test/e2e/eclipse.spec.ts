@@ -10,6 +10,7 @@ import {
   declarePart,
   registerHypothesis,
 } from "./campaign-pages";
+import { bringTable } from "./hum-campaign";
 import { signUp } from "./people";
 import type { Person } from "./people";
 import { atPointer, printedInterval, shownNumbers, unaccountedNumbers } from "./shown-numbers";
@@ -70,7 +71,8 @@ test("a campaign goes the whole way: declared, predicted, measured, scored live,
 
   await test.step("a CSV with a bad row is shown at its row and enters nothing", async () => {
     await previewCsv(coordinator.page, csv.replace("1.61", "about 1.6"));
-    await expect(coordinator.page.getByRole("row", { name: /about 1\.6/ })).toContainText(/number/);
+    const rows = coordinator.page.getByRole("table", { name: "Rows" });
+    await expect(rows.getByRole("row", { name: /about 1\.6/ })).toContainText(/number/);
     await expect(coordinator.page.getByRole("button", { name: /^Post / })).toHaveCount(0);
   });
 
@@ -192,11 +194,7 @@ async function declareAll(page: Page, theorists: Map<string, Person>) {
 
 async function previewCsv(page: Page, text: string) {
   await page.goto(`/campaigns/${key}/post?by=table`);
-  await page.getByLabel("CSV file").setInputFiles({
-    name: "plates.csv",
-    mimeType: "text/csv",
-    buffer: Buffer.from(text),
-  });
+  await bringTable(page, "plates.csv", text);
   await page.getByRole("button", { name: "Preview" }).click();
   await expect(page.getByRole("region", { name: "Preview" })).toBeVisible();
 }

@@ -202,9 +202,14 @@ test("what is on record is corrected, withdrawn, questioned, sealed and cited on
     const before = await visitor.locator("main").innerText();
     await page.goto(`${base}/withdraw`);
     const form = page.getByRole("form", { name: "Withdraw measurements" });
+    await form.getByLabel("Reason").fill("the probe lay dry");
+    await form.getByRole("button", { name: "See what would be withdrawn" }).click();
+    // A form sent too early must not mean everything.
+    await expect(
+      form.getByText("allowed is ids here, or a facility or a time below"),
+    ).toBeVisible();
     await form.getByLabel("Facility").selectOption({ label: "Weir" });
     await form.getByLabel("Observed from").fill("2024-01-11");
-    await form.getByLabel("Reason").fill("the probe lay dry");
     await form.getByRole("button", { name: "See what would be withdrawn" }).click();
     await expect(page.getByText("1 measurement: weir:2.")).toBeVisible();
     await form.getByRole("button", { name: "Withdraw 1 measurement" }).click();
