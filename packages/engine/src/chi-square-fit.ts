@@ -1,8 +1,8 @@
 import { chiSquareUpperTail } from "@weighhouse/numerics/chi-square";
 import { boundedLeastSquares } from "./block/bounded-least-squares";
+import { boxOf, lastUnknowns } from "./block/over-box";
 import { measuredBlocks } from "./evidence";
 import { blockKey } from "./evidence-key";
-import { boxOf, lastUnknowns } from "./flat-levels";
 import { marginalOf } from "./marginal";
 import { generalFit } from "./model/general-fit";
 import { isPlain } from "./plain-blocks";

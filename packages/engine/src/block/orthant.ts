@@ -1,7 +1,8 @@
 import type { LogIntegral } from "@weighhouse/numerics/box";
 import { LN_SQRT_2PI } from "@weighhouse/numerics/normal";
 import { addRow, createSystem, logDiagonal } from "@weighhouse/numerics/triangular-system";
-import { lastUnknowns, lnBox } from "./boxes";
+import { lnBox } from "./boxes";
+import { lastUnknowns } from "./over-box";
 import type { Integrand } from "./integrand";
 import { othersLoadings } from "./open-part";
 import type { Workbench } from "./workbench";

@@ -1,11 +1,12 @@
 import { findRoot } from "@weighhouse/numerics/find-root";
 import type { TriangularSystem } from "@weighhouse/numerics/triangular-system";
-import { sharesOutside } from "./boxes";
+
 import type { Conditional } from "./conditional";
 import { backSubstitute, varianceGivenTail } from "./elimination";
 import { integrandOf, type Integrand } from "./integrand";
 import type { Integral } from "./integrate";
 import type { OpenPart } from "./open-part";
+import { sharesOutside } from "./over-box";
 import type { BlockProblem, LinearPosterior, PosteriorPiece } from "./problem";
 import { integralOf, type ScenarioEvidence } from "./scenario-integral";
 import type { Workbench } from "./workbench";
