@@ -100,11 +100,39 @@ function loadingsOf({ measurand, shared, batch, limit, plus, noise }: Measuremen
   return JSON.stringify([measurand, shared, batch, limit, plus !== null, noise]);
 }
 
-/** As the document has it, once it is posted. */
-export function documentMeasurement(
-  measurement: MeasurementContent,
-  postedAt: string,
-): Measurement {
-  const { claimed: _, ...content } = measurement;
-  return { ...content, postedAt };
+/** As the document has it, once it is posted; field by field, for hundreds of thousands. */
+export function documentMeasurement(one: MeasurementContent, postedAt: string): Measurement {
+  return {
+    id: one.id,
+    measurand: one.measurand,
+    facility: one.facility,
+    team: one.team,
+    batch: one.batch,
+    observedAt: one.observedAt,
+    postedAt,
+    knownSince: one.knownSince,
+    conditions: one.conditions,
+    value: one.value,
+    sd: one.sd,
+    sdDex: one.sdDex,
+    plus: one.plus,
+    minus: one.minus,
+    limit: one.limit,
+    confidence: one.confidence,
+    sigmas: one.sigmas,
+    noise: one.noise,
+    occurred: one.occurred,
+    efficiency: one.efficiency,
+    falseAlarm: one.falseAlarm,
+    count: one.count,
+    exposure: one.exposure,
+    background: one.background,
+    unit: one.unit,
+    status: one.status,
+    source: one.source,
+    extra: one.extra,
+    shared: one.shared,
+    sameData: one.sameData,
+    setAside: one.setAside,
+  };
 }

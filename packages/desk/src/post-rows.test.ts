@@ -140,12 +140,14 @@ describe("a stream of many rows", () => {
     const { size } = await now();
     const rows: object[] = many();
     rows[10] = { ...rows[10], sd: -1 };
+    rows[11] = { ...rows[11], observedAt: "0000-01-01T00:00:00Z" };
     rows[2500] = { ...rows[2500], id: "r-5" };
     rows[3100] = { ...rows[3100], observedAt: "2099-01-01T00:00:00Z" };
     await expect(post(rows)).rejects.toMatchObject({
       code: "invalid",
       problems: [
         { found: expect.stringMatching(/\(line 11, column sd\)$/) as string },
+        { found: expect.stringMatching(/\(line 12, column observedAt\)$/) as string },
         { found: "r-5, which line 6 has already (line 2501, column id)" },
         { found: expect.stringMatching(/\(line 3101, column observedAt\)$/) as string },
       ],

@@ -74,6 +74,11 @@ export function withDefaults(rows: Piece["rows"], defaults: RowDefaults): Piece[
   if (given.length === 0) return rows;
   return rows.map((row) => {
     if (row.draft === null) return row;
+    if (row.measurement !== undefined) {
+      const measurement = { ...row.measurement };
+      for (const [field, value] of given) measurement[field as keyof RowDefaults] ??= value;
+      return { ...row, draft: measurement, measurement };
+    }
     const draft = { ...row.draft };
     for (const [field, value] of given) {
       // A row that names its observable falls in a measurand of that one.

@@ -1,10 +1,14 @@
 import { isUtf8 } from "node:buffer";
+import type { Measurement } from "@weighhouse/campaign/document";
 import { parseJson } from "@weighhouse/campaign/json-text";
 import { MeasurementText } from "@weighhouse/campaign/measurement-text";
 import type { ReadRow } from "./read-rows";
 
+/** A row; one that was plain enough to be read as it came has its measurement, as the schema reads it. */
+export type GivenRow = ReadRow & { measurement?: Measurement };
+
 /** Rows of a stream as they come, and how many bytes had come with them. */
-export type Piece = { rows: ReadRow[]; bytes: number };
+export type Piece = { rows: GivenRow[]; bytes: number };
 
 /** The longest line that is read: what is longer could be no entry anyway. */
 export const LONGEST_LINE = 1_048_576;
@@ -19,7 +23,7 @@ const NEWLINE = 10;
 export async function* linePieces(bytes: AsyncIterable<Uint8Array>): AsyncGenerator<Piece> {
   const lines = new LineRows();
   let read = 0;
-  let rows: ReadRow[] = [];
+  let rows: GivenRow[] = [];
   for await (const chunk of bytes) {
     read += chunk.byteLength;
     for (const row of lines.push(chunk)) rows.push(row);
@@ -41,7 +45,7 @@ class LineRows {
   #begunBytes = 0;
   readonly #reader = new MeasurementText();
 
-  push(chunk: Uint8Array): ReadRow[] {
+  push(chunk: Uint8Array): GivenRow[] {
     const end = chunk.lastIndexOf(NEWLINE) + 1;
     const rows = end === 0 ? [] : this.#rowsOf([...this.#begun, chunk.subarray(0, end)]);
     if (end > 0) [this.#begun, this.#begunBytes] = [[], 0];
@@ -53,13 +57,13 @@ class LineRows {
     return [...rows, tooLong(this.#line + 1)];
   }
 
-  end(): ReadRow[] {
+  end(): GivenRow[] {
     return this.#begunBytes === 0 ? [] : this.#rowsOf(this.#begun);
   }
 
-  #rowsOf(parts: Uint8Array[]): ReadRow[] {
+  #rowsOf(parts: Uint8Array[]): GivenRow[] {
     const block = Buffer.concat(parts);
-    const rows: ReadRow[] = [];
+    const rows: GivenRow[] = [];
     for (const line of isUtf8(block) ? block.toString().split("\n") : separate(block)) {
       this.#line += 1;
       const row = typeof line === "string" ? this.#rowOf(line) : notText(this.#line);
@@ -70,7 +74,7 @@ class LineRows {
     return rows;
   }
 
-  #rowOf(given: string): ReadRow | null {
+  #rowOf(given: string): GivenRow | null {
     const line = this.#line;
     if (given.length > LONGEST_LINE) return tooLong(line);
     const { cursor } = this.#reader;
@@ -78,8 +82,7 @@ class LineRows {
     const plain = this.#reader.next();
     if (plain !== null && plain.postedAt === null) {
       cursor.space();
-      const { postedAt: _, ...draft } = plain;
-      if (cursor.isAtEnd()) return { line, draft, problems: [] };
+      if (cursor.isAtEnd()) return { line, draft: plain, problems: [], measurement: plain };
     }
     return carefully(given, line);
   }
