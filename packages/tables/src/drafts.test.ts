@@ -222,7 +222,7 @@ test("typographic minus signs and leading plus signs are numbers", () => {
   ]);
 });
 
-test("fifty thousand rows are read in seconds", { timeout: 30_000 }, () => {
-  const text = `measurand,value,sd\n${"flux-may,8.1,0.6\n".repeat(50_000)}`;
-  expect(read(text).rows).toHaveLength(50_000);
+test("twenty thousand rows are read in seconds", () => {
+  const text = `measurand,value,sd\n${"flux-may,8.1,0.6\n".repeat(20_000)}`;
+  expect(read(text).rows).toHaveLength(20_000);
 });
