@@ -45,8 +45,8 @@ export interface NestedOptions {
  *   Where the work is spent before the first run's end, what is left is the live points' mean, whose
  *   standard error adds to it; where few of them carry that mean, all that it would be if the
  *   highest density among them held throughout.
- * Accuracy: within three of its errors. Calls for a normal peak, about: 2e4 in four dimensions at 10
- *   nats, 5e4 in six at 15, 2e5 in ten at 25; three to ten times that where the peak isn't compact.
+ * Accuracy: within three of its errors. Calls for a normal peak, about: 2e4 in four dimensions at 6
+ *   nats, 3e4 in six at 9, 1e5 in ten at 16; three to ten times that where the peak isn't compact.
  * Source: Skilling, Bayesian Analysis 1 (2006) 833; merging: Higson et al., Statistics and
  * Computing 29 (2019) 891.
  */

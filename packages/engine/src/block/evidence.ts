@@ -16,7 +16,10 @@ const NO_POINTS = { points: [], weights: new Float64Array(0), cdf: null };
  * their boxes, all others with the outer unknowns numerically; scenarios added up by weight.
  *
  * Accuracy: closed forms 1e-9 relative; one numerical dimension 1e-9 in ln Z, two and three 1e-6;
- * four to thirty by nested sampling, within three of the stated errors.
+ * four to thirty by nested sampling, within three of the stated errors. Work is counted (work.ts) and
+ * bounded for each block by itself, so that no hypothesis's evidence hangs on who else is there: a
+ * rule that doesn't converge in two or three dimensions within it gives way to sampling, and sampling
+ * ends with the error that it has then.
  */
 export function blockEvidence(problem: BlockProblem): BlockOutcome<BlockEvidence> {
   const layout = layoutOf(problem, "evidence");
