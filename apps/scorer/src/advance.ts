@@ -50,6 +50,26 @@ export async function advance(
   return state === null ? { steps, state, problems } : { steps, state, problems: null };
 }
 
+const ENTRIES_AT_A_TIME = 20;
+
+/** Some entries at a time: one transaction may post a million measurements. */
+async function withPosted(
+  store: Store,
+  campaign: string,
+  from: { state: EngineState; transaction: Transaction },
+): Promise<EngineState | null> {
+  const { begin, size } = from.transaction;
+  let { state } = from;
+  for (let first = begin; first < size; first += ENTRIES_AT_A_TIME) {
+    const end = Math.min(first + ENTRIES_AT_A_TIME, size);
+    const posted = await readPosted(store, { campaign, begin: first, size: end });
+    const added = addMeasurements(state, posted);
+    if (!added.ok) return null;
+    state = added.value;
+  }
+  return state;
+}
+
 /** Null where it has to be made anew. */
 async function stateAfter(
   store: Store,
@@ -58,10 +78,7 @@ async function stateAfter(
 ): Promise<EngineState | null> {
   const { change, begin, size } = transaction;
   if (change === "none") return state;
-  if (change === "posted") {
-    const added = addMeasurements(state, await readPosted(store, { campaign, begin, size }));
-    return added.ok ? added.value : null;
-  }
+  if (change === "posted") return withPosted(store, campaign, { state, transaction });
   if (change === "document") return null;
   // To the last bit as from the document: standings mustn't hang on where a scorer went on from.
   const revisions = await readRevised(store, { campaign, begin, size });
