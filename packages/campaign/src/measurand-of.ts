@@ -40,6 +40,15 @@ export function measurandFinder(document: Declarations): (row: Row) => Falling {
   };
 }
 
+/** The unit that a measurand's values are in where they name none. */
+export function unitFinder(document: Declarations): (measurand: string) => string | null {
+  const units = new Map(document.observables.map(({ key, unit }) => [key, unit]));
+  const ofMeasurands = new Map(
+    document.measurands.map(({ key, observable }) => [key, units.get(observable) ?? null]),
+  );
+  return (measurand) => ofMeasurands.get(measurand) ?? null;
+}
+
 function fits(row: Row, measurand: Measurand, observable: Observable | undefined): boolean {
   if (observable === undefined || !isResultOf(row, observable.scale)) return false;
   const { unit } = row;

@@ -141,6 +141,15 @@ describe("corrections", () => {
   });
 });
 
+it("a table that names the observable's own unit is the same as one that names none", async () => {
+  const lagoon = await measuredLagoon("own-unit", ({ member }) => member);
+  const { key, member } = lagoon;
+  const drafts = [reading("a", 41, { unit: "nW" }), reading("new", 40, { unit: "nW" })];
+  const source = { from: "drafts" as const, drafts };
+  const posted = await postMeasurements(house.desk, member, { key, source });
+  expect(posted).toMatchObject({ posted: ["new"], alreadyThere: ["a"] });
+});
+
 describe("an observer, a member of no team", () => {
   it("corrects, sets aside and withdraws what they posted, and nothing of others", async () => {
     const key = "observed";

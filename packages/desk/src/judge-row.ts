@@ -2,7 +2,7 @@ import type { Measurement } from "@weighhouse/campaign/document";
 import type { MeasurementContent } from "@weighhouse/campaign/entries";
 import { measurementContentSchema } from "@weighhouse/campaign/entries";
 import { readForm } from "@weighhouse/campaign/form";
-import type { measurandFinder } from "@weighhouse/campaign/measurand-of";
+import type { measurandFinder, unitFinder } from "@weighhouse/campaign/measurand-of";
 import type { Problem } from "@weighhouse/campaign/problem";
 import { quickContent } from "@weighhouse/campaign/quick-measurement";
 import { LedgerError } from "@weighhouse/ledger/ledger-error";
@@ -32,14 +32,17 @@ export type JudgedRow = {
 /** A row by itself: as it would be entered, with its canonical text, or refused. */
 export type RowByItself = { row: JudgedRow; text: ContentText | null };
 
+export type RowContext = {
+  access: Access;
+  find: ReturnType<typeof measurandFinder>;
+  unitOf: ReturnType<typeof unitFinder>;
+};
+
 /** Stands for an id that is made from the content once that reads. */
 const PLACEHOLDER = "-";
 
 /** A row's content with its id, its measurand and its team filled in, or why it can't be read. */
-export function judgeRow(
-  given: GivenRow,
-  { access, find }: { access: Access; find: ReturnType<typeof measurandFinder> },
-): RowByItself {
+export function judgeRow(given: GivenRow, { access, find, unitOf }: RowContext): RowByItself {
   const { line, draft, problems } = given;
   const notes = [...(given.notes ?? [])];
   const refused = (id: unknown, faults: RowProblem[]): RowByItself => ({
@@ -55,7 +58,9 @@ export function judgeRow(
     text: null,
   });
   if (draft === null || problems.length > 0) return refused(draft?.["id"], problems);
-  const writable = (value: MeasurementContent, own: unknown): RowByItself => {
+  const writable = (read: MeasurementContent, own: unknown): RowByItself => {
+    // Named or not, it is the same unit: a table that names it is no other than one that doesn't.
+    const value = read.unit === unitOf(read.measurand) ? { ...read, unit: null } : read;
     if (value.observedAt?.startsWith("0000")) {
       const found = value.observedAt;
       return refused(own, [

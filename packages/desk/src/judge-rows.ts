@@ -1,5 +1,5 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
-import { measurandFinder } from "@weighhouse/campaign/measurand-of";
+import { measurandFinder, unitFinder } from "@weighhouse/campaign/measurand-of";
 import type { Problem } from "@weighhouse/campaign/problem";
 import { comparePosting } from "@weighhouse/store/post-measurements";
 import type { Access } from "./access";
@@ -26,7 +26,8 @@ export async function judgeRows(
 ): Promise<Judgement> {
   const { access, document } = against;
   const find = measurandFinder(document);
-  const judged = table.rows.map((row) => judgeRow(row, { access, find }).row);
+  const unitOf = unitFinder(document);
+  const judged = table.rows.map((row) => judgeRow(row, { access, find, unitOf }).row);
   const distinct = refuseRepeated(judged);
   await compareWithThere(desk, access, distinct);
   const problems = new RowRules(against).apply(distinct.filter(({ fate }) => fate === "new"));

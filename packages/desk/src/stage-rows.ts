@@ -1,5 +1,5 @@
 import type { CampaignDocument } from "@weighhouse/campaign/document";
-import { measurandFinder } from "@weighhouse/campaign/measurand-of";
+import { measurandFinder, unitFinder } from "@weighhouse/campaign/measurand-of";
 import type { Problem } from "@weighhouse/campaign/problem";
 import { PartStaging } from "@weighhouse/store/stage-rows";
 import type { Upload } from "@weighhouse/store/uploads";
@@ -37,6 +37,7 @@ export async function stageRows(
   const { to, pieces, columns, tell } = input;
   const { access, document } = against;
   const find = measurandFinder(document);
+  const unitOf = unitFinder(document);
   const rules = new RowRules({ document, at: timeAt(desk) });
   const staging = new PartStaging(desk.store, to);
   const problems: Problem[] = [];
@@ -44,7 +45,7 @@ export async function stageRows(
   try {
     for await (const { rows, bytes } of pieces) {
       read = bytes;
-      const judged = rows.map((row) => judgeRow(row, { access, find }));
+      const judged = rows.map((row) => judgeRow(row, { access, find, unitOf }));
       const fresh = judged.map(({ row }) => row).filter(({ fate }) => fate === "new");
       problems.push(...rules.apply(fresh));
       await staging.push(
