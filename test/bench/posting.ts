@@ -129,12 +129,10 @@ async function copySeconds(
 ): Promise<number> {
   const admin = new URL(process.env["WEIGHHOUSE_TEST_DATABASE_ADMIN_URL"]!);
   admin.pathname = new URL(store.url).pathname;
+  const text = `${file}.copy`;
+  await copyOut(admin.href, key, text);
   const sql = postgres(admin.href, { max: 1, onnotice: () => {} });
   try {
-    const text = `${file}.copy`;
-    const out = await sql`copy (select m.* from measurements m join campaigns c
-      on c.id = m.campaign_id where c.key = ${sql.unsafe(`'${key}'`)}) to stdout`.readable();
-    await pipeline(out, createWriteStream(text));
     await sql.unsafe(`create table raw_rows (like measurements including ${including})`);
     await sql.unsafe("checkpoint");
     if (statSync(text).size === 0) throw new Error("no rows were copied out");
@@ -146,6 +144,15 @@ async function copySeconds(
     await sql.unsafe("drop table if exists raw_rows");
     await sql.end();
   }
+}
+
+/** On a connection of its own: one that was read from as a stream may stay paused. */
+async function copyOut(url: string, key: string, text: string): Promise<void> {
+  const sql = postgres(url, { max: 1, onnotice: () => {} });
+  const out = await sql`copy (select m.* from measurements m join campaigns c
+    on c.id = m.campaign_id where c.key = ${sql.unsafe(`'${key}'`)}) to stdout`.readable();
+  await pipeline(out, createWriteStream(text));
+  await sql.end({ timeout: 0 });
 }
 
 function watchMemory(): { stop(): number } {
