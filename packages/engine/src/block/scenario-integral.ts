@@ -6,8 +6,8 @@ import type { Workbench } from "./workbench";
 
 const MOST_DIMENSIONS = 30;
 /** Units of work.ts: for a rule, and for sampling where that doesn't converge or there is none. */
-const RULE_WORK = 2_000_000;
-const SAMPLING_WORK = 3_000_000;
+const RULE_WORK = 1_500_000;
+const SAMPLING_WORK = 2_000_000;
 /** Of an ensemble's rows; more take more time in all. */
 const MOST_SHARES = 8;
 
