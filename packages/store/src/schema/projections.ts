@@ -37,11 +37,15 @@ export const parts = pgTable(
   ],
 );
 
-/** Measurements in each of their versions: `content` is the whole, the columns are for finding. */
+/**
+ * Measurements in each of their versions: `content` is the whole, the columns are for finding. No
+ * foreign key: rows are written only under the lock of their campaign's tip, and a million checks of
+ * the one campaign would keep others waiting.
+ */
 export const measurements = pgTable(
   "measurements",
   {
-    campaignId: campaignId().references(() => campaigns.id),
+    campaignId: campaignId(),
     id: text("id").notNull(),
     ...versionColumns(),
     measurand: text("measurand").notNull(),
