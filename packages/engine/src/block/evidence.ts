@@ -18,7 +18,7 @@ const NO_POINTS = { points: [], weights: new Float64Array(0), cdf: null };
  * Accuracy: closed forms 1e-9 relative; one numerical dimension 1e-9 in ln Z, two and three 1e-6;
  * four to thirty by nested sampling, within three of the stated errors. Work is counted (work.ts) and
  * bounded for each block by itself, so that no hypothesis's evidence hangs on who else is there: a
- * rule that doesn't converge in two or three dimensions within it gives way to sampling, and sampling
+ * rule that doesn't converge in up to three dimensions within it gives way to sampling, and sampling
  * ends with the error that it has then.
  */
 export function blockEvidence(problem: BlockProblem): BlockOutcome<BlockEvidence> {

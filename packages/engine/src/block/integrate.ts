@@ -26,7 +26,7 @@ export interface IntegralOptions {
   rough?: boolean;
   /** More starts, should there be many peaks; looked at only where the integral is sampled. */
   more?: () => readonly Float64Array[];
-  /** What is done, and how much of it a rule in two or three dimensions, then sampling may take. */
+  /** What is done, and how much of it a rule in up to three dimensions, then sampling may take. */
   work?: Work;
 }
 
@@ -79,7 +79,7 @@ export function integrate(
     });
     const relative = size === 1 ? relativeOnLine(kinks, rough) : rough ? 1e-6 : undefined;
     const cubeModes = modes.map((mode) => cubeMode(mode, axes));
-    const most = size === 1 ? Infinity : work.done() + work.rule;
+    const most = work.done() + work.rule;
     const mayGoOn = () => work.done() < most;
     const options = { size, seed, modes: cubeModes, breaks, relative, mayGoOn };
     const found = overCube(lnDensity, mapByAxes(axes), options);
