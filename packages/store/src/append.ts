@@ -138,7 +138,11 @@ export function readsOfAll(payloads: PreparedPayload[]): Reads {
 }
 
 /** The rules are asked here once more, under the lock: who decided before it may be out of date. */
-export function applyAll(projector: Projector, entries: Entry[], { by, payloads }: WriteInput): void {
+export function applyAll(
+  projector: Projector,
+  entries: Entry[],
+  { by, payloads }: WriteInput,
+): void {
   try {
     for (const [index, { seq, at }] of entries.entries()) {
       const { kind, value: payload } = payloads[index] as PreparedPayload;
