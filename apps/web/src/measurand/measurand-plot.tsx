@@ -19,6 +19,7 @@ import { linearTicks, logTicks, timeTicks } from "@/look/axis-ticks";
 import { inkOf } from "@/look/hypothesis-mark";
 import { unitOf } from "@/campaign/plain-words";
 import type { MeasurandPlotData, PlotBand, PlotPoint } from "./plot-data";
+import type { PlotCurve } from "./predicted-curves";
 
 /** Share of the width kept at the right for the predictions, a lane each. */
 const LANES = 0.3;
@@ -28,13 +29,12 @@ const LANES = 0.3;
  * what it allows, drawn faintly across. Behind all, the no-model range; in brass what was measured
  * taken together.
  */
-export function MeasurandPlot({ data }: { data: MeasurandPlotData }) {
+export function MeasurandPlot(props: { data: MeasurandPlotData; curves: readonly PlotCurve[] }) {
+  const { data, curves } = props;
   const { x, y } = data;
   const width = x[1] - x[0];
-  const end = x[1] + width * (LANES / (1 - LANES));
-  const along = data.timed
-    ? timeTicks(x[0], x[1], 3)
-    : { ticks: data.points.map((point) => point.x), text: formatNumber };
+  const end = data.bands.length === 0 ? x[1] : x[1] + width * (LANES / (1 - LANES));
+  const along = alongTicks(data);
   // Many bands over one another would turn to mud.
   const faint = Math.min(0.1, 0.4 / data.bands.length);
   return (
@@ -118,6 +118,28 @@ export function MeasurandPlot({ data }: { data: MeasurandPlotData }) {
             cursor={{ stroke: "var(--edge)" }}
             isAnimationActive={false}
           />
+          {data.points.length > 0 ? null : (
+            // Without a point in it the chart has no axes, and draws no band either.
+            <Scatter
+              data={[
+                { x: x[0], value: y[0] },
+                { x: x[1], value: y[1] },
+              ]}
+              shape={NoMark}
+              tooltipType="none"
+              isAnimationActive={false}
+            />
+          )}
+          {curves.map((curve) => (
+            <Scatter
+              key={`${curve.key} curve`}
+              data={curve.points}
+              line={{ stroke: inkOf(curve.index), strokeWidth: 2 }}
+              shape={NoMark}
+              tooltipType="none"
+              isAnimationActive={false}
+            />
+          ))}
           <Scatter data={data.points} shape={Point} isAnimationActive={false}>
             <ErrorBar
               dataKey="error"
@@ -132,6 +154,16 @@ export function MeasurandPlot({ data }: { data: MeasurandPlotData }) {
       </ResponsiveContainer>
     </div>
   );
+}
+
+function alongTicks({ along, points, x }: MeasurandPlotData) {
+  if (along.by === "time") return timeTicks(x[0], x[1], 3);
+  const ticks = along.by === "order" ? points.map((point) => point.x) : linearTicks(x[0], x[1]);
+  return { ticks, text: (value: number) => formatNumber(value, 6) };
+}
+
+function NoMark() {
+  return <g />;
 }
 
 /** An unbounded end runs to the plot's edge; one number drawn as a hair, so that it is seen. */
@@ -186,9 +218,15 @@ function Tip(props: Partial<TooltipContentProps> & { data: MeasurandPlotData }) 
       <p>{point.id}</p>
       <p className="text-quiet">
         {point.facility ? `${point.facility}, ` : ""}
-        {props.data.timed ? formatTime(new Date(point.x).toISOString()) : `number ${point.x}`}
+        {placeWords(props.data, point.x)}
         {point.counted ? "" : ", set aside"}
       </p>
     </div>
   );
+}
+
+function placeWords({ along }: MeasurandPlotData, x: number): string {
+  if (along.by === "time") return formatTime(new Date(x).toISOString());
+  if (along.by === "order") return `number ${x}`;
+  return `${along.title} ${formatNumber(x)}${unitOf(along)}`;
 }

@@ -12,7 +12,8 @@ import { MeasurandFacts } from "./measurand-facts";
 import { MeasurandPlot } from "./measurand-plot";
 import { MeasurementRows } from "./measurement-rows";
 import { measurandPlot } from "./plot-data";
-import type { MeasurandPlotData } from "./plot-data";
+import type { Along, MeasurandPlotData } from "./plot-data";
+import { predictedCurves } from "./predicted-curves";
 import { PlotLegend } from "./plot-legend";
 import { PredictionRows } from "./prediction-rows";
 import type { PredictionRow } from "./prediction-rows";
@@ -40,23 +41,33 @@ export function MeasurandView(props: {
         : [],
     ),
   });
+  const { along } = plot;
+  const curves =
+    along.by === "condition"
+      ? predictedCurves({
+          document,
+          standings,
+          measurand,
+          condition: along.key,
+          from: plot.x[0],
+          to: plot.x[1],
+        })
+      : [];
   return (
     <>
       <div className="grid gap-x-5 lg:grid-cols-[1.9fr_1fr]">
         <Section title={measurand.title ?? measurand.key} gloss={observable.title} id="plot">
           {measurements.length > 0 || plot.bands.length > 0 ? (
             <>
-              {observable.unit && observable.unit !== "1" ? (
-                <p className="text-[13.5px] text-quiet">in {unitText(observable.unit)}</p>
-              ) : null}
+              <p className="text-[13.5px] text-quiet">{axesWords(observable, along)}</p>
               <FigureWithoutScript
                 label={`${measurand.title}: predictions and measurements, as in the tables below`}
                 svg={measurandSvg(figureOf(measurand, observable, plot, standing), {
                   widthPx: 900,
                 })}
               />
-              <MeasurandPlot data={plot} />
-              <PlotLegend data={plot} />
+              <MeasurandPlot data={plot} curves={curves} />
+              <PlotLegend data={plot} curves={curves} />
             </>
           ) : (
             <Empty title="Nothing is measured or predicted yet.">
@@ -104,6 +115,15 @@ export function MeasurandView(props: {
       </Section>
     </>
   );
+}
+
+/** Of an axis without a title of its own: `in K, along Height above the bed (m)`. */
+function axesWords({ unit }: Observable, along: Along): string {
+  const values = unit && unit !== "1" ? `in ${unitText(unit)}` : "";
+  if (along.by !== "condition") return values;
+  const condition = along.unit === null ? "" : ` (${unitText(along.unit)})`;
+  const words = `along ${along.title}${condition}`;
+  return [values, words].filter((part) => part !== "").join(", ");
 }
 
 function figureOf(

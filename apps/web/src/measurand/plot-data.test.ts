@@ -1,8 +1,9 @@
 import { campaignDocumentSchema } from "@weighhouse/campaign/document";
 import { expect, test } from "vitest";
 import { measurandPlot } from "./plot-data";
+import { predictedCurves } from "./predicted-curves";
 
-const read = (scale: "linear" | "log10", measurements: object[]) => {
+const read = (scale: "linear" | "log10" | "count", measurements: object[]) => {
   const document = campaignDocumentSchema.parse({
     format: "weighhouse-campaign/1",
     campaign: { key: "c", title: "C" },
@@ -48,4 +49,64 @@ test("a measurement without a value is not drawn", () => {
     read("linear", [{ id: "a", measurand: "m", setAside: { reason: "lost" } }]),
   );
   expect(plot.points).toEqual([]);
+});
+
+test("a count is drawn as the rate that it gives, with the root of the count (common practice)", () => {
+  const count = { id: "a", measurand: "m", count: 25, exposure: 2, background: 5 };
+  const [point] = measurandPlot(read("count", [count])).points;
+  expect(point).toMatchObject({ value: 10, low: 7.5, high: 12.5 });
+});
+
+test("a curve stands along the condition of its reference, where all measurements have it", () => {
+  const document = campaignDocumentSchema.parse({
+    format: "weighhouse-campaign/1",
+    campaign: { key: "c", title: "C" },
+    observables: [
+      {
+        key: "o",
+        title: "O",
+        unit: "K",
+        scale: "linear",
+        conditions: [
+          { key: "wind", unit: "m/s" },
+          { key: "depth", unit: "m" },
+        ],
+      },
+    ],
+    measurands: [
+      {
+        key: "m",
+        observable: "o",
+        shape: "curve",
+        where: { depth: [0, 40] },
+        reference: { family: "polynomial", in: "depth", degree: 1, centre: 0, sd: 1 },
+      },
+    ],
+    hypotheses: [
+      {
+        key: "h",
+        title: "H",
+        predictions: [
+          { measurand: "m", expected: "2 * depth", tolerance: { family: "normal", sd: 1 } },
+        ],
+      },
+    ],
+    measurements: [
+      { id: "a", measurand: "m", value: 2, sd: 1, conditions: { depth: 12 } },
+      { id: "b", measurand: "m", value: 3, sd: 1, conditions: { depth: 30 } },
+    ],
+  });
+  const [measurand, observable] = [document.measurands[0]!, document.observables[0]!];
+  const plot = measurandPlot({
+    measurand,
+    observable,
+    measurements: document.measurements,
+    bands: [],
+    combined: null,
+  });
+  expect(plot.along).toMatchObject({ by: "condition", key: "depth" });
+  expect(plot.points.map(({ x }) => x)).toEqual([12, 30]);
+  const place = { document, standings: null, measurand, condition: "depth", from: 0, to: 60 };
+  const [curve] = predictedCurves(place);
+  expect(curve!.points.at(-1)).toEqual({ x: 60, value: 120 });
 });

@@ -3,7 +3,7 @@ import type { MeasurandStanding } from "@weighhouse/campaign/standings";
 
 export interface PlotPoint {
   id: string;
-  /** Milliseconds where every measurement has its time, else the order of posting from 1. */
+  /** Along the plot's axis; a time in milliseconds. */
   x: number;
   value: number;
   low: number;
@@ -23,19 +23,25 @@ export interface PlotBand {
   upper: number | null;
 }
 
+/** What the points stand along: a curve's condition, else time, else the order of posting from 1. */
+export type Along =
+  | { by: "condition"; key: string; title: string; unit: string | null }
+  | { by: "time" }
+  | { by: "order" };
+
 export interface MeasurandPlotData {
+  along: Along;
   points: PlotPoint[];
   bands: PlotBand[];
   combined: { value: number; low: number; high: number } | null;
   reference: { low: number; high: number } | null;
-  timed: boolean;
   log: boolean;
   unit: string | null;
   x: [number, number];
   y: [number, number];
 }
 
-/** Everything that the plot of a constant quantity shows, in its natural unit, with its axes. */
+/** Everything that the plot of a quantity shows, in its natural unit, with its axes. */
 export function measurandPlot(input: {
   measurand: Measurand;
   observable: Observable;
@@ -45,29 +51,53 @@ export function measurandPlot(input: {
 }): MeasurandPlotData {
   const { observable, measurand, bands } = input;
   const log = observable.scale === "log10";
-  const timed = input.measurements.every((each) => each.observedAt !== null);
+  const along = alongOf(input);
   const points = input.measurements.flatMap((each, order) => {
     const point = pointOf(each, log);
-    const x = each.observedAt !== null && timed ? Date.parse(each.observedAt) : order + 1;
-    return point === null ? [] : [{ ...point, x }];
+    return point === null ? [] : [{ ...point, x: placeOf(each, order, along) }];
   });
   const combined = input.combined && spread(input.combined.value, input.combined.sd, log);
   const reference = referenceRange(measurand.reference, log);
   const y = yRange({ points, bands, combined, reference, log });
   return {
+    along,
     points,
     bands,
     combined: combined && { value: input.combined?.value ?? 0, ...combined },
     reference,
-    timed,
     log,
     unit: observable.unit,
-    x: xRange(points, timed),
+    x: xRange(points, along),
     y,
   };
 }
 
+type Drawn = Parameters<typeof measurandPlot>[0];
+
+/** A curve's reference says what it runs along; else its range or its kind does. */
+function alongOf({ measurand, observable, measurements }: Drawn): Along {
+  const { reference, where } = measurand;
+  const named = reference?.family === "polynomial" ? reference.in : (Object.keys(where)[0] ?? null);
+  const wanted = named ?? observable.conditions[0]?.key;
+  const condition = observable.conditions.find(({ key }) => key === wanted);
+  if (
+    measurand.shape === "curve" &&
+    condition !== undefined &&
+    measurements.every(({ conditions }) => typeof conditions[condition.key] === "number")
+  ) {
+    const { key, title, unit } = condition;
+    return { by: "condition", key, title: title ?? key, unit };
+  }
+  return { by: measurements.every(({ observedAt }) => observedAt !== null) ? "time" : "order" };
+}
+
+function placeOf({ conditions, observedAt }: Measurement, order: number, along: Along): number {
+  if (along.by === "condition") return conditions[along.key]!;
+  return along.by === "time" && observedAt !== null ? Date.parse(observedAt) : order + 1;
+}
+
 function pointOf(measurement: Measurement, log: boolean): Omit<PlotPoint, "x"> | null {
+  if (measurement.count !== null) return countedPoint(measurement, measurement.count);
   const { value } = measurement;
   if (value === null || (log && value <= 0)) return null;
   const { low, high } = errorRange(measurement, value, log);
@@ -80,6 +110,24 @@ function pointOf(measurement: Measurement, log: boolean): Omit<PlotPoint, "x"> |
     limit: measurement.limit,
     counted: measurement.setAside === null,
     facility: measurement.facility,
+  };
+}
+
+/** A count as the rate that it gives, with the root of the count for its error (common practice). */
+function countedPoint(measurement: Measurement, count: number): Omit<PlotPoint, "x"> {
+  const { id, exposure, background, setAside, facility } = measurement;
+  const per = exposure ?? 1;
+  const value = (count - (background ?? 0)) / per;
+  const sd = Math.sqrt(Math.max(count, 1)) / per;
+  return {
+    id,
+    value,
+    low: value - sd,
+    high: value + sd,
+    error: [sd, sd],
+    limit: null,
+    counted: setAside === null,
+    facility,
   };
 }
 
@@ -112,11 +160,11 @@ function referenceRange(reference: Measurand["reference"], log: boolean) {
   return spread(reference.centre, 2 * reference.sd, log);
 }
 
-function xRange(points: readonly PlotPoint[], timed: boolean): [number, number] {
+function xRange(points: readonly PlotPoint[], along: Along): [number, number] {
   const xs = points.map((point) => point.x);
   if (xs.length === 0) return [0, 1];
   const [from, to] = [Math.min(...xs), Math.max(...xs)];
-  const least = timed ? 3_600_000 : 0.5;
+  const least = along.by === "time" ? 3_600_000 : 0.5;
   const pad = Math.max((to - from) * 0.06, least);
   return [from - pad, to + pad];
 }
