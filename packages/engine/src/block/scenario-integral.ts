@@ -7,7 +7,7 @@ import type { Workbench } from "./workbench";
 
 const MOST_DIMENSIONS = 30;
 /** Units of work.ts: for a rule, and for sampling where that doesn't converge or there is none. */
-const RULE_WORK = 1_500_000;
+const RULE_WORK = 2_000_000;
 const SAMPLING_WORK = 2_000_000;
 /** One dimension may have so many looks with a round each, however many rows there are. */
 const LOOKS_ON_LINE = 5000;
