@@ -36,6 +36,7 @@ const config: KnipConfig = {
     test: {
       entry: [
         "bench/*.ts",
+        "e2e/write-stamped-archive.ts",
         "debian-{postgres,tools}.mjs",
         "{archive,api}/{vitest.config,*.outside}.ts",
         "fault/*.ts",
