@@ -5,6 +5,7 @@ import { correctMeasurements, previewCorrections } from "./correct-measurements"
 import type { Actor } from "./desk";
 import { postMeasurements } from "./post-measurements";
 import { readCampaign } from "./read-campaign";
+import { readEntries } from "./read-entries";
 import { readStandings } from "./read-standings";
 import { registerHypothesis } from "./register-hypothesis";
 import { setAsideMeasurement } from "./set-aside-measurement";
@@ -139,6 +140,19 @@ describe("corrections", () => {
     const done = await correctMeasurements(house.desk, member, { key, corrections: right });
     expect(done.corrected).toEqual(["a"]);
   });
+});
+
+it("the ledger's list names what each entry is about", async () => {
+  const lagoon = await measuredLagoon("named", ({ member }) => member);
+  const { key, member } = lagoon;
+  await correctMeasurements(house.desk, member, { key, corrections: [corrected("a", 43)] });
+  const selection = { by: "ids" as const, ids: ["b", "c"] };
+  await withdrawMeasurements(house.desk, member, { key, selection, reason });
+  const { entries } = await readEntries(house.desk, lagoon.reader, { key });
+  const about = new Map(entries.map((one) => [one.entry.kind, one.about]));
+  expect(about.get("measurements.posted")).toEqual({ keys: ["a", "b", "c"], count: 3 });
+  expect(about.get("measurement.corrected")).toEqual({ keys: ["a"], count: 1 });
+  expect(about.get("measurements.withdrawn")).toEqual({ keys: ["b", "c"], count: 2 });
 });
 
 it("a table that names the observable's own unit is the same as one that names none", async () => {

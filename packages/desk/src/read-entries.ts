@@ -86,13 +86,31 @@ function listed({ entry, payload }: StoredEntry, names: Map<string, string>): Li
 
 const KEYS_SHOWN = 5;
 
-function concerned(payload: {
+/** What a payload of any kind may name. */
+type Naming = {
   key?: string;
   id?: string;
+  code?: string;
+  hypothesis?: string;
+  measurand?: string | { key: string };
+  measurement?: { id: string };
   measurements?: { id: string }[];
-}): ListedEntry["about"] {
-  const keys =
-    payload.measurements?.map(({ id }) => id) ??
-    [payload.key, payload.id].filter((name) => name !== undefined);
+  selection?: { ids?: string[]; facility?: string };
+  content?: { id?: string; measurand?: string };
+};
+
+function concerned(payload: Naming): ListedEntry["about"] {
+  const { measurand, measurement, measurements, selection, content } = payload;
+  const one = [
+    payload.key,
+    payload.id,
+    payload.code,
+    payload.hypothesis,
+    typeof measurand === "object" ? measurand.key : measurand,
+    measurement?.id,
+    selection?.facility,
+    content?.id ?? content?.measurand,
+  ].filter((name) => name !== undefined);
+  const keys = measurements?.map(({ id }) => id) ?? selection?.ids ?? one;
   return { keys: keys.slice(0, KEYS_SHOWN), count: keys.length };
 }
